@@ -1,0 +1,129 @@
+"""Run the plugins in dependency order and gather what they found; a failing one costs only itself."""
+
+from __future__ import annotations
+
+import math
+import traceback
+from collections.abc import Mapping
+from dataclasses import dataclass
+from datetime import datetime, timedelta
+from pathlib import Path
+
+from handoff.plugin import Action, Case, Findings, Flag, Item, Plugin
+from handoff.policy import Policy
+from handoff.registry import Setup
+from handoff.state.faults import Fault
+from handoff.state.patient import PatientState
+
+
+@dataclass(frozen=True, slots=True)
+class Failure:
+    """What could not be computed and why; holds no patient data."""
+
+    plugin: str
+    title: str
+    what: str
+
+
+@dataclass(frozen=True, slots=True)
+class Assessment:
+    """What is known of one patient at one moment: items and actions, and what could not be computed."""
+
+    state: PatientState
+    now: datetime
+    policy: Policy
+    items: tuple[Item, ...]
+    actions: tuple[Action, ...]
+    findings: Mapping[str, Findings]
+    failures: tuple[Failure, ...]
+    warnings: tuple[Fault, ...]
+    plugins: tuple[Plugin, ...]
+
+    def item(self, key: str) -> Item | None:
+        """Return the item of that key, or None."""
+        return next((item for item in self.items if item.key == key), None)
+
+    @property
+    def not_recorded(self) -> tuple[Item, ...]:
+        """The items whose value is missing from the file."""
+        return tuple(item for item in self.items if item.flag is Flag.NOT_RECORDED)
+
+
+def assess(state: PatientState, setup: Setup, now: datetime, warnings: tuple[Fault, ...] = ()) -> Assessment:
+    """Return the assessment of ``state`` at ``now``; never raises for what a plugin does."""
+    findings: dict[str, Findings] = {}
+    failures: list[Failure] = []
+    for plugin in setup.plugins:
+        lost = [name for name in plugin.requires if name not in findings]
+        if lost:
+            failures.append(Failure(plugin.name, plugin.title, f"not computed: it needs '{lost[0]}', which failed"))
+            continue
+        required = {name: findings[name] for name in plugin.requires}
+        case = case_of(plugin, state, setup, now, required)
+        try:
+            found = plugin.compute(case)
+            problem = _breach(plugin, found)
+        except Exception as error:  # a plugin may fail in any way; the document must still be made
+            problem = f"stopped with {type(error).__name__} {_place(error)}"
+        if problem:
+            failures.append(Failure(plugin.name, plugin.title, problem))
+        else:
+            findings[plugin.name] = found
+    return Assessment(
+        state=state,
+        now=now,
+        policy=setup.policy,
+        items=tuple(item for found in findings.values() for item in found.items),
+        actions=tuple(action for found in findings.values() for action in found.actions),
+        findings=findings,
+        failures=tuple(failures),
+        warnings=warnings,
+        plugins=setup.plugins,
+    )
+
+
+def case_of(
+    plugin: Plugin, state: PatientState, setup: Setup, now: datetime, findings: Mapping[str, Findings]
+) -> Case:
+    """Return what ``plugin`` is given for ``state`` at ``now``."""
+    block = state.root.get(plugin.name)
+    return Case(state, block, setup.parameters[plugin.name], now, findings)
+
+
+def _place(error: Exception) -> str:
+    frames = traceback.extract_tb(error.__traceback__)
+    if not frames:
+        return ""
+    last = frames[-1]
+    return f"({Path(last.filename).name}, line {last.lineno})"
+
+
+def _breach(plugin: Plugin, found: Findings) -> str:
+    if not isinstance(found, Findings):
+        return f"returned {type(found).__name__} instead of Findings"
+    words = (plugin.name, *plugin.owns)
+    seen: set[str] = set()
+    for part in (*found.items, *found.actions):
+        if part.key.partition(".")[0] not in words:
+            return f"returned the key '{part.key}', which is not its own"
+        if part.key in seen:
+            return f"returned the key '{part.key}' twice"
+        seen.add(part.key)
+    for item in found.items:
+        problem = _item_breach(item)
+        if problem:
+            return f"returned '{item.key}' {problem}"
+    for action in found.actions:
+        if action.every is not None and action.every < timedelta(minutes=1):
+            return f"returned the action '{action.key}' more often than once a minute"
+    return ""
+
+
+def _item_breach(item: Item) -> str:
+    if isinstance(item.value, float) and not math.isfinite(item.value):
+        return "as a number that is not finite"
+    if item.value is not None and not item.sources and not item.repeats:
+        return "without a source"
+    if item.value is None and item.flag is Flag.NONE and not item.shown:
+        return "with nothing to show"
+    return ""

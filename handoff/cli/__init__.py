@@ -1,0 +1,31 @@
+"""The command line: one file a command. Commands import what they use when they run."""
+
+from __future__ import annotations
+
+import typer
+
+from handoff.cli.check import check
+from handoff.cli.demo import demo
+from handoff.cli.draft import draft
+from handoff.cli.plugins import plugins
+from handoff.cli.schema import schema
+from handoff.cli.show import show
+from handoff.cli.working import working
+
+app = typer.Typer(
+    name="handoff",
+    help="From one patient-state file to a burn nurse's handover and care plan. "
+    "Check every document against the patient, the prescription and local policy.",
+    no_args_is_help=True,
+    pretty_exceptions_enable=False,
+    add_completion=True,
+)
+for command in (demo, check, draft, show, working, plugins, schema):
+    app.command()(command)
+
+
+def main() -> None:
+    """Run the command line."""
+    from handoff.cli.edge import guarded
+
+    guarded(app)

@@ -1,0 +1,62 @@
+"""``handoff draft``: the handover, the care plan and items.json of one patient."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import Annotated
+
+import typer
+
+from handoff.cli.edge import (
+    AtOption,
+    BundledOption,
+    Exit,
+    FileArgument,
+    PolicyOption,
+    assessed,
+    complain,
+    leave,
+    say,
+    stop,
+    who,
+)
+
+OutOption = Annotated[
+    Path | None, typer.Option("--out", metavar="DIR", help="Folder for the documents; beside the file if left out")
+]
+
+
+def draft(
+    file: FileArgument,
+    at: AtOption = "",
+    out: OutOption = None,
+    policy: PolicyOption = None,
+    bundled_only: BundledOption = False,
+) -> None:
+    """Draft the handover, the care plan and items.json.
+
+    Example: handoff draft ferrandel.yaml --at "2026-03-14 19:30" --out documents
+    """
+    from handoff.document import DocumentError
+    from handoff.document import draft as draft_documents
+    from handoff.files import CannotWrite, write_all
+    from handoff.items_json import as_json
+
+    assessment = assessed(file, at, policy, bundled_only)
+    try:
+        documents = draft_documents(assessment, file.stem)
+    except DocumentError as error:
+        stop(Exit.SETUP, f"the documents could not be made: {error}")
+    documents[f"{file.stem}.items.json"] = as_json(assessment).encode()
+    folder = out or file.parent
+    try:
+        written = write_all(folder, documents)
+    except CannotWrite as error:
+        stop(Exit.USAGE, str(error))
+    say(who(assessment.state))
+    for fault in assessment.warnings:
+        complain(fault.said(assessment.state.file))
+    for path in written:
+        say(f"written: {path}")
+    say("Check them against the patient, the prescription and local policy before you sign.")
+    leave(assessment)

@@ -1,0 +1,115 @@
+"""Local policy: which rule set, which local value, which outside plugin, which paper.
+
+The policy is one YAML file that a unit's educator keeps; without one the built-in defaults
+hold. It is read by the same strict reader as the patient state.
+"""
+
+from __future__ import annotations
+
+import os
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from datetime import UTC, datetime, timedelta
+from pathlib import Path
+from typing import Any
+
+from handoff.state.access import amount, words
+from handoff.state.faults import Fault
+from handoff.state.nodes import List, Map
+from handoff.state.reader import NotAStateFile, StateFaults, read_nodes, read_text
+from handoff.state.schema import expand, load_schema
+from handoff.state.validate import check, without_blanks
+
+
+class PolicyError(Exception):
+    """The policy cannot be used; carries one line for each fault."""
+
+    def __init__(self, lines: list[str]) -> None:
+        super().__init__("\n".join(lines))
+        self.lines = lines
+
+
+@dataclass(frozen=True, slots=True)
+class Policy:
+    """What the unit decided; ``choices`` and ``values`` are keyed ``plugin.name``."""
+
+    name: str = "built-in defaults"
+    unit_name: str = ""
+    paper: str = "A4"
+    care_plan_orientation: str = "landscape"
+    shift_length: timedelta = timedelta(hours=12)
+    late_entry_after: timedelta = timedelta(hours=1)
+    plugins: tuple[str, ...] = ()
+    choices: Mapping[str, str] = field(default_factory=dict)
+    values: Mapping[str, Mapping[str, Any]] = field(default_factory=dict)
+
+    def choices_of(self, plugin: str) -> dict[str, str]:
+        """Return the choices that concern ``plugin``, by their short names."""
+        return {key.partition(".")[2]: value for key, value in self.choices.items() if key.startswith(f"{plugin}.")}
+
+    def values_of(self, plugin: str) -> dict[str, Mapping[str, Any]]:
+        """Return the local values that concern ``plugin``, by parameter id."""
+        return {key.partition(".")[2]: value for key, value in self.values.items() if key.startswith(f"{plugin}.")}
+
+
+def load_policy(path: Path | None) -> Policy:
+    """Return the policy in ``path``, or the built-in defaults for None.
+
+    Raises:
+        PolicyError: The file is not a policy; every fault with its line.
+    """
+    if path is None:
+        return Policy()
+    try:
+        return read_policy(read_text(path), os.fspath(path))
+    except NotAStateFile as error:
+        raise PolicyError([str(error)]) from None
+
+
+def read_policy(text: str, file: str) -> Policy:
+    """Return the policy written in ``text``; ``file`` names it in messages.
+
+    Raises:
+        PolicyError: Every fault with its line.
+    """
+    try:
+        root = read_nodes(text, file)
+    except StateFaults as error:
+        raise PolicyError([fault.said(file) for fault in error.faults]) from None
+    schema = load_schema("policy.schema.json")
+    faults: list[Fault] = check(root, expand(schema, load_schema("common.schema.json")["$defs"]), datetime.now(UTC))
+    if faults:
+        raise PolicyError([fault.said(file) for fault in faults])
+    kept = without_blanks(root)
+    return _policy(kept if isinstance(kept, Map) else Map.at(), file)
+
+
+def _policy(root: Map, file: str) -> Policy:
+    built_in = Policy()
+    minutes = {key: amount(root.get(key), "min") for key in ("shift_length", "late_entry_after")}
+    choices, values, plugins = root.get("choices"), root.get("values"), root.get("plugins")
+    name = words(root.get("name")) or os.path.basename(file)
+    dated = words(root.get("dated"))
+    return Policy(
+        name=f"{name}, {dated}" if dated else name,
+        unit_name=words(root.get("unit_name")),
+        paper=words(root.get("paper")) or built_in.paper,
+        care_plan_orientation=words(root.get("care_plan_orientation")) or built_in.care_plan_orientation,
+        shift_length=_minutes(minutes["shift_length"], built_in.shift_length),
+        late_entry_after=_minutes(minutes["late_entry_after"], built_in.late_entry_after),
+        plugins=tuple(words(entry) for entry in plugins) if isinstance(plugins, List) else (),
+        choices={str(key): words(value) for key, value in choices.items()} if isinstance(choices, Map) else {},
+        values=_values(values) if isinstance(values, Map) else {},
+    )
+
+
+def _minutes(value: float | None, default: timedelta) -> timedelta:
+    return default if value is None else timedelta(minutes=value)
+
+
+def _values(node: Map) -> dict[str, Mapping[str, Any]]:
+    return {
+        str(key): {name: words(part) for name, part in entry.items()}
+        for key, entry in node.items()
+        if isinstance(entry, Map)
+    }

@@ -1,0 +1,1 @@
+"""The patient-state file: strict YAML, quantities, clock, and the validated state."""

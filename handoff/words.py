@@ -1,0 +1,43 @@
+"""Numbers and lists as they are printed: no trailing zero, a leading zero, units always."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from decimal import ROUND_HALF_UP, Decimal
+
+
+def number(value: float, places: int = 0) -> str:
+    """Return ``value`` rounded half up to ``places``, without trailing zeros, commas from 1,000."""
+    if not math.isfinite(value):
+        raise ValueError("only a finite number can be printed")
+    rounded = Decimal(repr(float(value))).quantize(Decimal(1).scaleb(-places), rounding=ROUND_HALF_UP)
+    text = f"{rounded:,f}"
+    if "." in text:
+        text = text.rstrip("0").rstrip(".")
+    return "0" if text in ("-0", "") else text
+
+
+def with_unit(value: float, unit: str, places: int = 0) -> str:
+    """Return ``number`` and unit: ``11,972 mL``; the unit may be empty."""
+    return f"{number(value, places)} {unit}".strip()
+
+
+def hours(value: float) -> str:
+    """Return hours as hours and minutes: ``6 h 10 min``; a negative value keeps its sign."""
+    minutes = round(abs(value) * 60)
+    whole, rest = divmod(minutes, 60)
+    said = f"{whole} h {rest} min" if rest and whole else f"{rest} min" if rest else f"{whole} h"
+    return f"-{said}" if value < 0 and minutes else said
+
+
+def joined(parts: Sequence[str], last: str = "and") -> str:
+    """Return ``a, b and c``; an empty string for none."""
+    if len(parts) < 2:
+        return "".join(parts)
+    return f"{', '.join(parts[:-1])} {last} {parts[-1]}"
+
+
+def plural(count: int, singular: str, several: str = "") -> str:
+    """Return ``1 dose`` or ``3 doses``."""
+    return f"{count} {singular if count == 1 else several or singular + 's'}"

@@ -1,0 +1,60 @@
+"""The main road in one place: policy and plugins ready, a file read, the assessment made."""
+
+from __future__ import annotations
+
+from datetime import datetime
+from pathlib import Path
+
+from handoff.assess import Assessment, assess, case_of
+from handoff.policy import load_policy
+from handoff.registry import Setup, find_plugins, prepare
+from handoff.state.faults import Fault, Severity
+from handoff.state.load import Loaded, load_file, load_text
+from handoff.state.nodes import path_text
+from handoff.state.patient import PatientState
+
+
+def make_setup(policy: Path | None = None, bundled_only: bool = False) -> Setup:
+    """Return policy, plugins, tables and schema ready for any number of patients.
+
+    Raises:
+        PolicyError: The policy file is at fault.
+        PluginError: A plugin is at fault.
+    """
+    read = load_policy(policy)
+    return prepare(read, find_plugins(read, bundled_only))
+
+
+def checks_of(setup: Setup, state: PatientState, now: datetime) -> list[Fault]:
+    """Return the faults that only the plugins can see, with their places."""
+    faults = []
+    for plugin in setup.plugins:
+        if plugin.check is None:
+            continue
+        try:
+            problems = plugin.check(case_of(plugin, state, setup, now, {}))
+        except Exception as error:  # a plugin may fail in any way; the rest of the file must still be checked
+            what = f"the plugin '{plugin.name}' could not check this file ({type(error).__name__})"
+            faults.append(Fault(1, 1, plugin.name, what, "check its entries by eye", Severity.UNUSUAL))
+            continue
+        for problem in problems:
+            node = problem.node
+            faults.append(
+                Fault(node.line, node.column, path_text(problem.path), problem.what, problem.cure, problem.severity)
+            )
+    return faults
+
+
+def open_file(path: Path, setup: Setup, at: str = "") -> Loaded:
+    """Return the validated state in ``path`` as of ``at``; raises as :func:`load_file`."""
+    return load_file(path, at, setup.schema, lambda state, now: checks_of(setup, state, now))
+
+
+def open_text(text: str, file: str, setup: Setup, at: str = "") -> Loaded:
+    """Return the validated state written in ``text`` as of ``at``; raises as :func:`load_text`."""
+    return load_text(text, file, at, setup.schema, lambda state, now: checks_of(setup, state, now))
+
+
+def assess_loaded(loaded: Loaded, setup: Setup) -> Assessment:
+    """Return the assessment of a loaded state at its moment."""
+    return assess(loaded.state, setup, loaded.now, loaded.unusual)
