@@ -73,11 +73,12 @@ def read_policy(text: str, file: str) -> Policy:
         PolicyError: Every fault with its line.
     """
     try:
-        root = read_nodes(text, file)
+        root, found = read_nodes(text, file)
     except StateFaults as error:
         raise PolicyError([fault.said(file) for fault in error.faults]) from None
     schema = load_schema("policy.schema.json")
-    faults: list[Fault] = check(root, expand(schema, load_schema("common.schema.json")["$defs"]), datetime.now(UTC))
+    common = load_schema("common.schema.json")["$defs"]
+    faults: list[Fault] = [*found, *check(root, expand(schema, common), datetime.now(UTC))]
     if faults:
         raise PolicyError([fault.said(file) for fault in faults])
     kept = without_blanks(root)

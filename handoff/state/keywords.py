@@ -32,7 +32,7 @@ def nearest(word: str, known: Iterable[str]) -> str:
     return f"allowed here: {shown}"
 
 
-def isis_blank(node: object) -> bool:
+def is_blank(node: object) -> bool:
     return isinstance(node, Text) and not node
 
 

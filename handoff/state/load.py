@@ -55,9 +55,9 @@ def load_text(text: str, file: str, at: str, schema: Mapping[str, Any], checks: 
         StateFaults: The file has faults; all of them.
         MomentError: ``at`` is not a moment.
     """
-    root = read_nodes(text, file)
+    root, found = read_nodes(text, file)
     now = _moment(at, root)
-    found = check(root, schema, now)
+    found += check(root, schema, now)
     faults = [fault for fault in found if fault.severity is Severity.FAULT]
     if faults:
         raise StateFaults(file, faults)

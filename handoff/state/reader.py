@@ -55,19 +55,17 @@ def read_text(path: Path) -> str:
         raise NotAStateFile(f"{path}:{line}: not UTF-8 text; save the file as UTF-8") from None
 
 
-def read_nodes(text: str, file: str) -> Map:
-    """Return the file's root mapping with places.
+def read_nodes(text: str, file: str) -> tuple[Map, list[Fault]]:
+    """Return the file's root mapping with places, and what in it is not strict YAML.
 
     Raises:
-        StateFaults: Everything in ``text`` that is not strict YAML, in one list.
+        StateFaults: The text has no readable root mapping.
     """
     reading = _Reading(text)
     root = reading.root()
-    if reading.faults:
-        raise StateFaults(file, reading.faults)
-    if not isinstance(root, Map):
-        raise StateFaults(file, [_not_a_mapping(root)])
-    return root
+    if isinstance(root, Map):
+        return root, reading.faults
+    raise StateFaults(file, reading.faults or [_not_a_mapping(root)])
 
 
 def _not_a_mapping(root: Node | None) -> Fault:

@@ -118,7 +118,7 @@ def expand(schema: Any, defs: Mapping[str, Any]) -> Any:
         return _measured(found, also, defs)
     _spell_out(found)
     if found.pop("x-entry", False):
-        found["properties"] = {**ENTRY, **found.get("properties", {})}
+        found["properties"] = {**found.get("properties", {}), **ENTRY}
     if "properties" in found:
         found.setdefault("type", "object")
         found.setdefault("additionalProperties", False)
