@@ -1,0 +1,144 @@
+"""The latest vital signs and results, each with its time and what came before it; old ones say so."""
+
+from __future__ import annotations
+
+from datetime import timedelta
+
+from handoff.bundled.overview.charted import charted
+from handoff.plugin import (
+    Action,
+    Case,
+    Flag,
+    Item,
+    Map,
+    Node,
+    Part,
+    Reading,
+    System,
+    Urgency,
+    child,
+    line_of,
+    unit_of,
+    words,
+)
+
+VITALS = (
+    ("resp", "Breaths", System.BREATHING),
+    ("spo2", "Oxygen saturation by pulse oximeter", System.BREATHING),
+    ("pulse", "Pulse", System.CIRCULATION),
+    ("bp", "Blood pressure", System.CIRCULATION),
+    ("map", "Mean arterial pressure, measured", System.CIRCULATION),
+    ("consciousness", "Consciousness", System.DISABILITY),
+    ("gcs", "Coma scale", System.DISABILITY),
+    ("pupils", "Pupils", System.DISABILITY),
+    ("temp", "Temperature", System.EXPOSURE),
+    ("room", "Room temperature", System.EXPOSURE),
+)
+ASKED = ("resp", "spo2", "pulse", "bp", "consciousness", "temp")
+"""Vital signs whose absence is said; the others are shown where they were charted."""
+
+GASES = ("ph", "pao2", "paco2", "base_excess", "bicarbonate")
+TREND_LENGTH = 4
+
+
+def vital_items(case: Case) -> tuple[Item, ...]:
+    """Return the latest of each vital sign and each laboratory result, with its trend and age."""
+    items = []
+    for name, label, system in VITALS:
+        readings = case.state.series(name)
+        if readings or name in ASKED:
+            items.append(_latest(case, f"vital.{name}", label, system, readings))
+    items += _results(case)
+    return tuple(items)
+
+
+def _said(node: Node) -> str:
+    if isinstance(node, Map) and "value" not in node:
+        parts = [(key, words(node.get(key))) for key in ("eye", "verbal", "motor")]
+        said = ", ".join(f"{key} {value or 'not recorded'}" for key, value in parts)
+        points = [value for _, value in parts]
+        if all(value.isdigit() for value in points):
+            return f"{said}, sum {sum(int(value) for value in points)}"
+        return f"{said}, no sum"
+    said = words(node)
+    site = words(child(node, "site"))
+    return f"{said} ({site})" if site else said
+
+
+def _latest(case: Case, key: str, label: str, system: System, readings: tuple[Reading, ...]) -> Item:
+    if not readings:
+        return charted(key, label, "", Part.ASSESSMENT, system)
+    last = readings[-1]
+    shown = _said(last.node)
+    earlier = [reading for reading in readings[-TREND_LENGTH:-1] if unit_of(reading.node)]
+    if earlier and unit_of(last.node):
+        trend = ", ".join(f"{words(r.node)} at {case.clock.time(r.at, case.now)}" for r in earlier)
+        shown += f"; before: {trend}"
+    age = case.now - last.at
+    interval = timedelta(minutes=case.parameters.number("vital.check_interval"))
+    flag = Flag.NONE
+    if age > interval:
+        flag = Flag.REVIEW
+        shown += f"; not rechecked since {case.clock.time(last.at, case.now)}"
+    return Item(
+        key=key,
+        label=label,
+        part=Part.ASSESSMENT,
+        system=system,
+        value=_said(last.node),
+        shown=shown,
+        as_of=last.at,
+        flag=flag,
+        repeats=True,
+        line=line_of(last.node),
+    )
+
+
+def _results(case: Case) -> list[Item]:
+    names: list[str] = []
+    for row in case.state.results:
+        names += [str(name) for name in row.entry if str(name) not in names]
+    skipped = ("at", "by", "written", "note", "confirmed", "corrects", "struck", "specimen", "carboxyhaemoglobin")
+    items = []
+    for name in names:
+        if name in skipped:
+            continue
+        readings = case.state.result_series(name)
+        last = readings[-1]
+        system = System.BREATHING if name in GASES else System.GENERAL
+        shown = words(last.node)
+        earlier = ", ".join(f"{words(r.node)} at {case.clock.time(r.at, case.now)}" for r in readings[-3:-1])
+        items.append(
+            Item(
+                key=f"result.{name}",
+                label=name.replace("_", " ").capitalize().replace("Ph", "pH").replace("Pao2", "PaO2").replace("Paco2", "PaCO2"),
+                part=Part.ASSESSMENT,
+                system=system,
+                value=shown,
+                shown=f"{shown}; before: {earlier}" if earlier else shown,
+                as_of=last.at,
+                repeats=True,
+                line=line_of(last.node),
+            )
+        )
+    return items or [charted("result.any", "Laboratory results", "", Part.ASSESSMENT)]
+
+
+def vital_actions(case: Case) -> tuple[Action, ...]:
+    """Return the check of vital signs, due from the last full row by the check interval."""
+    interval = timedelta(minutes=case.parameters.number("vital.check_interval"))
+    times = [readings[-1].at for name in ASKED if (readings := case.state.series(name))]
+    first = min(times) + interval if times else case.now
+    return (
+        Action(
+            key="vital.check",
+            area="Observations",
+            text="Breaths, SpO2, pulse, blood pressure, consciousness, temperature",
+            why="early change shows in the trend",
+            system=System.CIRCULATION,
+            first_due=first,
+            every=interval,
+            urgency=Urgency.TIMED,
+            sources=(case.parameters.source_of("vital.check_interval"),),
+        ),
+    )
