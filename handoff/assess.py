@@ -56,7 +56,9 @@ def assess(state: PatientState, setup: Setup, now: datetime, warnings: tuple[Fau
     for plugin in setup.plugins:
         lost = [name for name in plugin.requires if name not in findings]
         if lost:
-            failures.append(Failure(plugin.name, plugin.title, f"not computed: it needs '{lost[0]}', which failed"))
+            failures.append(
+                Failure(plugin.name, plugin.title, f"not computed: it needs '{lost[0]}', which failed")
+            )
             continue
         required = {name: findings[name] for name in plugin.requires}
         case = case_of(plugin, state, setup, now, required)
@@ -103,12 +105,12 @@ def _breach(plugin: Plugin, found: Findings) -> str:
         return f"returned {type(found).__name__} instead of Findings"
     words = (plugin.name, *plugin.owns)
     seen: set[str] = set()
-    for part in (*found.items, *found.actions):
-        if part.key.partition(".")[0] not in words:
-            return f"returned the key '{part.key}', which is not its own"
-        if part.key in seen:
-            return f"returned the key '{part.key}' twice"
-        seen.add(part.key)
+    for key in (*(item.key for item in found.items), *(action.key for action in found.actions)):
+        if key.partition(".")[0] not in words:
+            return f"returned the key '{key}', which is not its own"
+        if key in seen:
+            return f"returned the key '{key}' twice"
+        seen.add(key)
     for item in found.items:
         problem = _item_breach(item)
         if problem:

@@ -25,7 +25,9 @@ def write_all(folder: Path, contents: Mapping[str, bytes]) -> list[Path]:
     try:
         folder.mkdir(parents=True, exist_ok=True)
     except OSError as error:
-        raise CannotWrite(f"the folder {folder} cannot be made ({error.strerror}); name another with --out") from None
+        raise CannotWrite(
+            f"the folder {folder} cannot be made ({error.strerror}); name another with --out"
+        ) from None
     written = []
     for name, content in contents.items():
         path = folder / name

@@ -59,12 +59,19 @@ def item_data(item: Item, clock: Clock) -> dict[str, Any]:
 
 
 def _working(working: Working) -> dict[str, Any]:
-    inputs = [{"label": part.label, "shown": part.shown, "line": part.line or None} for part in working.inputs]
+    inputs = [
+        {"label": part.label, "shown": part.shown, "line": part.line or None} for part in working.inputs
+    ]
     return {"formula": working.formula, "sum": working.sum, "rule": working.rule, "inputs": inputs}
 
 
 def _source(source: Source) -> dict[str, Any]:
-    return {"citation": source.shown(), "locator": source.locator, "kind": source.kind, "doi": source.doi or None}
+    return {
+        "citation": source.shown(),
+        "locator": source.locator,
+        "kind": source.kind,
+        "doi": source.doi or None,
+    }
 
 
 def _action(action: Action, clock: Clock) -> dict[str, Any]:

@@ -179,7 +179,9 @@ def read_parameters(data: Mapping[str, Any], where: str) -> Parameters:
     return Parameters(values, choices)
 
 
-def _parameter(identifier: str, entry: Mapping[str, Any], sources: Mapping[str, Any], where: str) -> Parameter:
+def _parameter(
+    identifier: str, entry: Mapping[str, Any], sources: Mapping[str, Any], where: str
+) -> Parameter:
     kind, key = entry["kind"], entry["source"]
     if kind not in KINDS:
         raise ParameterError(f"{where}: '{identifier}' has an unknown kind '{kind}'")

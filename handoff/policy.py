@@ -14,9 +14,9 @@ from pathlib import Path
 from typing import Any
 
 from handoff.state.access import amount, words
-from handoff.state.faults import Fault
+from handoff.state.faults import Fault, StateFaults
 from handoff.state.nodes import List, Map
-from handoff.state.reader import NotAStateFile, StateFaults, read_nodes, read_text
+from handoff.state.reader import NotAStateFile, read_nodes, read_text
 from handoff.state.schema import expand, load_schema
 from handoff.state.validate import check, without_blanks
 
@@ -45,11 +45,17 @@ class Policy:
 
     def choices_of(self, plugin: str) -> dict[str, str]:
         """Return the choices that concern ``plugin``, by their short names."""
-        return {key.partition(".")[2]: value for key, value in self.choices.items() if key.startswith(f"{plugin}.")}
+        return {
+            key.partition(".")[2]: value
+            for key, value in self.choices.items()
+            if key.startswith(f"{plugin}.")
+        }
 
     def values_of(self, plugin: str) -> dict[str, Mapping[str, Any]]:
         """Return the local values that concern ``plugin``, by parameter id."""
-        return {key.partition(".")[2]: value for key, value in self.values.items() if key.startswith(f"{plugin}.")}
+        return {
+            key.partition(".")[2]: value for key, value in self.values.items() if key.startswith(f"{plugin}.")
+        }
 
 
 def load_policy(path: Path | None) -> Policy:
@@ -89,7 +95,7 @@ def _policy(root: Map, file: str) -> Policy:
     built_in = Policy()
     minutes = {key: amount(root.get(key), "min") for key in ("shift_length", "late_entry_after")}
     choices, values, plugins = root.get("choices"), root.get("values"), root.get("plugins")
-    name = words(root.get("name")) or os.path.basename(file)
+    name = words(root.get("name")) or Path(file).name
     dated = words(root.get("dated"))
     return Policy(
         name=f"{name}, {dated}" if dated else name,
@@ -99,7 +105,9 @@ def _policy(root: Map, file: str) -> Policy:
         shift_length=_minutes(minutes["shift_length"], built_in.shift_length),
         late_entry_after=_minutes(minutes["late_entry_after"], built_in.late_entry_after),
         plugins=tuple(words(entry) for entry in plugins) if isinstance(plugins, List) else (),
-        choices={str(key): words(value) for key, value in choices.items()} if isinstance(choices, Map) else {},
+        choices={str(key): words(value) for key, value in choices.items()}
+        if isinstance(choices, Map)
+        else {},
         values=_values(values) if isinstance(values, Map) else {},
     )
 

@@ -62,7 +62,9 @@ def _load(point: metadata.EntryPoint) -> Plugin:
     try:
         plugin = point.load()
     except Exception as error:
-        raise PluginError(f"the plugin '{point.name}' does not load ({type(error).__name__}: {error})") from error
+        raise PluginError(
+            f"the plugin '{point.name}' does not load ({type(error).__name__}: {error})"
+        ) from error
     if not isinstance(plugin, Plugin):
         raise PluginError(f"the entry point '{point.name}' is not a handoff.plugin.Plugin")
     if plugin.name != point.name:
@@ -97,7 +99,9 @@ def in_order(plugins: Iterable[Plugin]) -> tuple[Plugin, ...]:
             if required not in by_name:
                 raise PluginError(f"the plugin '{plugin.name}' requires '{required}', which is not there")
     try:
-        order = TopologicalSorter({name: sorted(plugin.requires) for name, plugin in by_name.items()}).static_order()
+        order = TopologicalSorter(
+            {name: sorted(plugin.requires) for name, plugin in by_name.items()}
+        ).static_order()
         return tuple(by_name[name] for name in order)
     except CycleError as error:
         circle = " requires ".join(f"'{name}'" for name in reversed(error.args[1]))

@@ -40,7 +40,14 @@ def checks_of(setup: Setup, state: PatientState, now: datetime) -> list[Fault]:
         for problem in problems:
             node = problem.node
             faults.append(
-                Fault(node.line, node.column, path_text(problem.path), problem.what, problem.cure, problem.severity)
+                Fault(
+                    node.line,
+                    node.column,
+                    path_text(problem.path),
+                    problem.what,
+                    problem.cure,
+                    problem.severity,
+                )
             )
     return faults
 

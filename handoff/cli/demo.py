@@ -10,7 +10,8 @@ import typer
 from handoff.cli.edge import Exit, say, stop
 
 FolderArgument = Annotated[
-    Path, typer.Argument(metavar="DIR", help="Folder for the example and its documents; made if it is not there")
+    Path,
+    typer.Argument(metavar="DIR", help="Folder for the example and its documents; made if it is not there"),
 ]
 
 EXAMPLE = "house-fire.yaml"

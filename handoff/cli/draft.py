@@ -22,7 +22,8 @@ from handoff.cli.edge import (
 )
 
 OutOption = Annotated[
-    Path | None, typer.Option("--out", metavar="DIR", help="Folder for the documents; beside the file if left out")
+    Path | None,
+    typer.Option("--out", metavar="DIR", help="Folder for the documents; beside the file if left out"),
 ]
 
 

@@ -27,9 +27,14 @@ class Exit(IntEnum):
     SETUP = 4
 
 
-FileArgument = Annotated[Path, typer.Argument(metavar="FILE", help="The patient-state file, for example ferrandel.yaml")]
+FileArgument = Annotated[
+    Path, typer.Argument(metavar="FILE", help="The patient-state file, for example ferrandel.yaml")
+]
 AtOption = Annotated[
-    str, typer.Option("--at", metavar="TIME", help="The moment it is written for: '2026-03-14 19:30'; now if left out")
+    str,
+    typer.Option(
+        "--at", metavar="TIME", help="The moment it is written for: '2026-03-14 19:30'; now if left out"
+    ),
 ]
 PolicyOption = Annotated[
     Path | None,

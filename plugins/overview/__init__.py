@@ -4,6 +4,7 @@ from handoff.bundled.overview.background import background_items
 from handoff.bundled.overview.handing import handing_actions, handing_items
 from handoff.bundled.overview.situation import situation_items
 from handoff.bundled.overview.vitals import vital_actions, vital_items
+
 from handoff.plugin import Case, Findings, Plugin
 
 

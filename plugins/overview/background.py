@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from handoff.bundled.overview.charted import charted, with_detail
+
 from handoff.plugin import Case, Flag, Item, Part, System, child, entries, line_of, words
 
 
@@ -61,12 +62,25 @@ def _plain_facts(case: Case) -> list[Item]:
         ("patient.height", "Height", words(patient.get("height")), "height"),
         ("patient.history", "Past illness", "; ".join(case.state.texts(patient.get("history"))), "history"),
         ("patient.conditions", "Conditions that change a figure", _conditions(case), "conditions"),
-        ("patient.medicines", "Medicines before the burn", "; ".join(case.state.texts(patient.get("medicines"))), "medicines"),
+        (
+            "patient.medicines",
+            "Medicines before the burn",
+            "; ".join(case.state.texts(patient.get("medicines"))),
+            "medicines",
+        ),
         ("patient.pregnant", "Pregnancy", words(patient.get("pregnant")), "pregnant"),
         ("patient.isolation", "Isolation", words(patient.get("isolation")), "isolation"),
-        ("patient.capacity", "Capacity or parental responsibility", words(patient.get("capacity")), "capacity"),
+        (
+            "patient.capacity",
+            "Capacity or parental responsibility",
+            words(patient.get("capacity")),
+            "capacity",
+        ),
     ]
-    return [charted(key, label, shown, Part.BACKGROUND, node=patient.get(name)) for key, label, shown, name in facts]
+    return [
+        charted(key, label, shown, Part.BACKGROUND, node=patient.get(name))
+        for key, label, shown, name in facts
+    ]
 
 
 def _conditions(case: Case) -> str:
@@ -142,7 +156,12 @@ def _events(case: Case) -> list[Item]:
     for index, row in enumerate(case.state.dated(case.state.root.get("events"))):
         entry = row.entry
         what = words(entry.get("what"))
-        parts = [words(entry.get("site")), words(entry.get("said")), words(entry.get("outcome")), words(entry.get("note"))]
+        parts = [
+            words(entry.get("site")),
+            words(entry.get("said")),
+            words(entry.get("outcome")),
+            words(entry.get("note")),
+        ]
         who = words(entry.get("who"))
         parts += [f"by {who}"] if who else []
         answered = case.when(entry.get("answered"))

@@ -5,6 +5,7 @@ from __future__ import annotations
 from datetime import timedelta
 
 from handoff.bundled.overview.charted import charted
+
 from handoff.plugin import Action, Case, Item, Part, System, Urgency, entries, words
 
 
@@ -14,8 +15,20 @@ def handing_items(case: Case) -> tuple[Item, ...]:
     at = case.when(handover.get("at"))
     texts = (
         ("handover.summary", "Course so far", words(handover.get("summary")), Part.SITUATION, "summary"),
-        ("handover.concerns", "Concerns", "; ".join(case.state.texts(handover.get("concerns"))), Part.RECOMMENDATION, "concerns"),
-        ("handover.requests", "Requests", "; ".join(case.state.texts(handover.get("requests"))), Part.RECOMMENDATION, "requests"),
+        (
+            "handover.concerns",
+            "Concerns",
+            "; ".join(case.state.texts(handover.get("concerns"))),
+            Part.RECOMMENDATION,
+            "concerns",
+        ),
+        (
+            "handover.requests",
+            "Requests",
+            "; ".join(case.state.texts(handover.get("requests"))),
+            Part.RECOMMENDATION,
+            "requests",
+        ),
         ("handover.if_then", "What to do if", _if_then(case), Part.RECOMMENDATION, "if_then"),
         ("handover.pending", "Pending", _pending(case), Part.RECOMMENDATION, "pending"),
         ("handover.to_do", "Planned", _to_do(case), Part.RECOMMENDATION, "to_do"),
@@ -30,7 +43,8 @@ def handing_items(case: Case) -> tuple[Item, ...]:
 
 def _if_then(case: Case) -> str:
     return "; ".join(
-        f"if {words(entry.get('if'))}: {words(entry.get('then'))}" for entry in entries(case.state.handover.get("if_then"))
+        f"if {words(entry.get('if'))}: {words(entry.get('then'))}"
+        for entry in entries(case.state.handover.get("if_then"))
     )
 
 
@@ -66,7 +80,9 @@ def handing_actions(case: Case) -> tuple[Action, ...]:
     handover = case.state.handover
     actions = []
     for index, text in enumerate(case.state.texts(handover.get("requests"))):
-        actions.append(_action(f"handover.request.{index + 1}", text, "asked for at the last handover", Urgency.NOW))
+        actions.append(
+            _action(f"handover.request.{index + 1}", text, "asked for at the last handover", Urgency.NOW)
+        )
     for index, entry in enumerate(entries(handover.get("to_do"))):
         due = case.when(entry.get("due"))
         actions.append(
@@ -100,11 +116,15 @@ def handing_actions(case: Case) -> tuple[Action, ...]:
 
 
 def _action(key: str, text: str, why: str, urgency: Urgency) -> Action:
-    return Action(key=key, area="Planned and awaited", text=text, why=why, system=System.GENERAL, urgency=urgency)
+    return Action(
+        key=key, area="Planned and awaited", text=text, why=why, system=System.GENERAL, urgency=urgency
+    )
 
 
 def _line_checks(case: Case) -> list[Action]:
-    names = [words(entry.get("what")) for entry in entries(case.state.root.get("lines")) if "removed" not in entry]
+    names = [
+        words(entry.get("what")) for entry in entries(case.state.root.get("lines")) if "removed" not in entry
+    ]
     if not names:
         return []
     interval = timedelta(hours=case.parameters.number("line.check_interval"))

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from handoff.bundled.overview.charted import charted
+
 from handoff.plugin import (
     Case,
     Flag,
@@ -55,12 +56,19 @@ def _burn_time(case: Case) -> Item:
 
 
 def hours_since(case: Case) -> Item:
-    """Return the hours since the burn, elapsed and not by the wall clock; the shorter where it is uncertain."""
+    """Return the hours since the burn, elapsed and not by the wall clock; no single value where the time is uncertain."""
     burn = case.state.burn_time
     common = {"key": "injury.hours_since", "label": "Hours since burn", "part": Part.SITUATION}
     if burn is None:
         return Item(
-            **common, system=System.GENERAL, unit="h", shown="not recorded", flag=Flag.NOT_RECORDED, repeats=True
+            key="injury.hours_since",
+            label="Hours since burn",
+            part=Part.SITUATION,
+            system=System.GENERAL,
+            unit="h",
+            shown="not recorded",
+            flag=Flag.NOT_RECORDED,
+            repeats=True,
         )
     longest = case.hours_between(burn.earliest, case.now)
     shortest = case.hours_between(burn.latest, case.now)
@@ -68,7 +76,9 @@ def hours_since(case: Case) -> Item:
     shown = hours_text(longest) if burn.certain else f"{hours_text(shortest)} to {hours_text(longest)}"
     value = longest if burn.certain else None
     return Item(
-        **common,
+        key="injury.hours_since",
+        label="Hours since burn",
+        part=Part.SITUATION,
         system=System.GENERAL,
         value=value,
         unit="h",
@@ -76,7 +86,9 @@ def hours_since(case: Case) -> Item:
         as_of=case.now,
         repeats=True,
         line=line_of(burn.node),
-        cautions=() if burn.certain else ("The time of the burn is uncertain: every figure from it is a range.",),
+        cautions=()
+        if burn.certain
+        else ("The time of the burn is uncertain: every figure from it is a range.",),
         working=Working(
             formula="hours since burn = moment of this document - time of burn, across any clock change",
             sum=f"{clock.day_and_time(case.now)} - {clock.day_and_time(burn.earliest)} = {hours_text(longest)}",
@@ -110,7 +122,12 @@ def _story(case: Case) -> Item:
 def _consciousness_lost(case: Case) -> Item:
     node = case.state.injury.get("lost_consciousness")
     return charted(
-        "injury.lost_consciousness", "Loss of consciousness", words(node), Part.SITUATION, System.DISABILITY, node=node
+        "injury.lost_consciousness",
+        "Loss of consciousness",
+        words(node),
+        Part.SITUATION,
+        System.DISABILITY,
+        node=node,
     )
 
 
@@ -131,4 +148,6 @@ def _resuscitation(case: Case) -> Item:
         seen = words(child(node, "form_seen"))
         parts += [f"form seen: {seen}"] if seen else ["form seen: not recorded"]
         shown = f"{decision}; {', '.join(part for part in parts if part)}"
-    return charted("patient.resuscitation", "Resuscitation decision", shown, Part.SITUATION, node=node, lethal_rank=72)
+    return charted(
+        "patient.resuscitation", "Resuscitation decision", shown, Part.SITUATION, node=node, lethal_rank=72
+    )

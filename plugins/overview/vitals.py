@@ -5,6 +5,7 @@ from __future__ import annotations
 from datetime import timedelta
 
 from handoff.bundled.overview.charted import charted
+
 from handoff.plugin import (
     Action,
     Case,
@@ -98,7 +99,17 @@ def _results(case: Case) -> list[Item]:
     names: list[str] = []
     for row in case.state.results:
         names += [str(name) for name in row.entry if str(name) not in names]
-    skipped = ("at", "by", "written", "note", "confirmed", "corrects", "struck", "specimen", "carboxyhaemoglobin")
+    skipped = (
+        "at",
+        "by",
+        "written",
+        "note",
+        "confirmed",
+        "corrects",
+        "struck",
+        "specimen",
+        "carboxyhaemoglobin",
+    )
     items = []
     for name in names:
         if name in skipped:
@@ -111,7 +122,11 @@ def _results(case: Case) -> list[Item]:
         items.append(
             Item(
                 key=f"result.{name}",
-                label=name.replace("_", " ").capitalize().replace("Ph", "pH").replace("Pao2", "PaO2").replace("Paco2", "PaCO2"),
+                label=name.replace("_", " ")
+                .capitalize()
+                .replace("Ph", "pH")
+                .replace("Pao2", "PaO2")
+                .replace("Paco2", "PaCO2"),
                 part=Part.ASSESSMENT,
                 system=system,
                 value=shown,
