@@ -1,0 +1,160 @@
+"""Where the burn is: region list, circumferential burns, special sites, deep sites and joints."""
+
+from __future__ import annotations
+
+from handoff.plugin import Case, Flag, Item, Part, System, Working, joined, number_text
+
+from .assessment import PLACES, Assessment, Burn
+from .regions import LIMBS, TORSO, may_hold_site, special_site
+from .totals import NOT_RECORDED, pct_text
+
+RANK_CIRCUMFERENTIAL = 40
+
+
+def site_names(burn: Burn) -> tuple[str, ...]:
+    """Return the special sites that one burn touches, its joint included, without repeats."""
+    own = special_site(burn.region, burn.face)
+    joint = f"{burn.joint} (joint)" if burn.joint else ""
+    return tuple(dict.fromkeys(name for name in (own, *burn.sites, joint) if name))
+
+
+def sites(assessment: Assessment, deep_only: bool = False) -> tuple[str, ...]:
+    """Return the special sites of every counted (or only of every deep) burn, without repeats."""
+    burns = [burn for burn in assessment.burns if (burn.deep if deep_only else burn.counted)]
+    return tuple(dict.fromkeys(name for burn in burns for name in site_names(burn)))
+
+
+def circumferential(assessment: Assessment) -> tuple[Burn, ...]:
+    """Return the counted burns that go all the way round, or nearly so."""
+    return tuple(
+        burn
+        for burn in assessment.burns
+        if burn.counted is not False and (burn.circumferential or burn.near_circumferential)
+    )
+
+
+def items(case: Case, assessment: Assessment | None) -> tuple[Item, ...]:
+    """Return the items that say where the burn is."""
+    if assessment is None:
+        return tuple(
+            _item(key, label, NOT_RECORDED, None, flag=Flag.NOT_RECORDED)
+            for key, label in (
+                ("area.method", "How the area was assessed"),
+                ("area.circumferential", "Circumferential burns"),
+                ("area.special_sites", "Special sites"),
+            )
+        )
+    return (
+        _method(case, assessment),
+        _circumferential(assessment),
+        _special(assessment),
+        *(_region(assessment, index, burn) for index, burn in enumerate(assessment.burns, start=1)),
+    )
+
+
+def _item(
+    key: str,
+    label: str,
+    shown: str,
+    assessment: Assessment | None,
+    *,
+    flag: Flag = Flag.NONE,
+    rank: int | None = None,
+    system: System = System.BURN,
+    cautions: tuple[str, ...] = (),
+) -> Item:
+    return Item(
+        key=key,
+        label=label,
+        part=Part.ASSESSMENT,
+        system=system,
+        shown=shown,
+        as_of=assessment.at if assessment else None,
+        flag=flag,
+        repeats=True,
+        rank=rank,
+        cautions=cautions,
+        line=assessment.line if assessment else 0,
+    )
+
+
+def _method(case: Case, assessment: Assessment) -> Item:
+    name = assessment.table.name if assessment.table else assessment.method or "method not recorded"
+    who = " ".join(part for part in (assessment.by, assessment.role) if part) or "assessor not recorded"
+    place = f", {assessment.place}" if assessment.place else ""
+    shown = f"{name}; {who}{place}, {case.clock.day_and_time(assessment.at)}"
+    return _item("area.method", "How the area was assessed", shown, assessment)
+
+
+def _circumferential(assessment: Assessment) -> Item:
+    found = circumferential(assessment)
+    said = [
+        f"{burn.region} ({burn.depth}{', nearly circumferential' if burn.near_circumferential else ''})"
+        for burn in found
+    ]
+    unknown = [
+        burn.region
+        for burn in assessment.burns
+        if burn.deep and not burn.encircling_recorded and burn.region in (*LIMBS, *TORSO)
+    ]
+    label, shown = "Circumferential burns", joined(said)
+    if unknown:
+        not_said = f"not recorded for {joined(list(dict.fromkeys(unknown)))}"
+        shown = f"{shown}; {not_said}" if shown else not_said
+    if any(burn.deep or burn.counted is None for burn in found):
+        return _item(
+            "area.circumferential",
+            label,
+            shown,
+            assessment,
+            flag=Flag.ACTION,
+            rank=RANK_CIRCUMFERENTIAL,
+            system=System.LIMBS,
+        )
+    flag = Flag.REVIEW if found else Flag.NOT_RECORDED if unknown else Flag.NONE
+    return _item(
+        "area.circumferential", label, shown or "none charted", assessment, flag=flag, system=System.LIMBS
+    )
+
+
+def _special(assessment: Assessment) -> Item:
+    said = []
+    for name in sites(assessment):
+        depths = [burn.depth for burn in assessment.burns if burn.counted and name in site_names(burn)]
+        said.append(f"{name} ({joined(list(dict.fromkeys(depths)))})")
+    may = dict.fromkeys(
+        f"{burn.where} may hold {held}"
+        for burn in assessment.burns
+        if burn.counted and (held := may_hold_site(burn.region, burn.face))
+    )
+    shown = "; ".join([*said, *may]) or "none charted"
+    return _item("area.special_sites", "Special sites", shown, assessment)
+
+
+def _region(assessment: Assessment, index: int, burn: Burn) -> Item:
+    extent = "extent not computed" if burn.tbsa_pct is None else pct_text(burn.tbsa_pct)
+    counted = {True: "", False: ", not counted", None: ", depth not assessed"}[burn.counted]
+    round_it = ", circumferential" if burn.circumferential else ""
+    working = None
+    if burn.tbsa_pct is not None:
+        working = Working(
+            formula="size of the region x burned share",
+            sum=f"{burn.sum} = {number_text(burn.tbsa_pct, PLACES)} %",
+            rule=assessment.table.name if assessment.table else assessment.method,
+        )
+    return Item(
+        key=f"area.region.{index}",
+        label=burn.where,
+        part=Part.ASSESSMENT,
+        system=System.BURN,
+        value=burn.tbsa_pct,
+        unit="%" if burn.tbsa_pct is not None else "",
+        shown=f"{extent}, {burn.depth}{counted}{round_it}",
+        as_of=assessment.at,
+        flag=Flag.NOT_RECORDED if burn.tbsa_pct is None else Flag.NONE,
+        working=working,
+        sources=assessment.table.sources if assessment.table and working else (),
+        repeats=not (assessment.table and working),
+        detail=True,
+        line=burn.line,
+    )
