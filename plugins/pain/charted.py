@@ -1,0 +1,109 @@
+"""Everything charted about analgesia, read once, and what of it falls in the last 24 h."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from datetime import datetime
+
+from handoff.plugin import Case, Input, Node, child, line_of, number_text, with_unit
+
+from .formula import HOURS_A_DAY
+from .given import MCG_IN_MG, PUMP, Given, given
+from .infusions import Run, runs
+from .names import Drug
+from .scores import Score, pain_scores
+
+CHARTS_OF_DOSES = ("doses", "infusions", "patient_controlled", "blocks")
+
+
+@dataclass(frozen=True, slots=True)
+class Portion:
+    """What one dose, reading or run gave in the last 24 h; ``mg`` is None where ``missing`` says why."""
+
+    drug: Drug
+    route: str
+    mg: float | None
+    missing: str
+    said: str
+    at: datetime
+    node: Node
+
+    def input(self) -> Input:
+        """Return it as an input of a sum."""
+        return Input(f"{self.drug.name} {self.route}", self.said, line_of(self.node))
+
+
+@dataclass(frozen=True, slots=True)
+class Charted:
+    """Doses, runs of infusions and scores of one patient; ``any_doses`` is False where none are charted."""
+
+    given: tuple[Given, ...]
+    runs: tuple[Run, ...]
+    scores: tuple[Score, ...]
+    portions: tuple[Portion, ...]
+    any_doses: bool
+    hours: float
+
+    def of(self, group: str) -> tuple[Portion, ...]:
+        """Return what was given of one group of drugs in the last 24 h."""
+        return tuple(portion for portion in self.portions if portion.drug.group == group)
+
+    def unconfirmed(self, now: datetime) -> tuple[Run, ...]:
+        """Return the infusions of which nothing says that they ran, or stopped, since they were last seen."""
+        return tuple(run for run in self.runs if run.open and run.end < now)
+
+
+def read(case: Case) -> Charted:
+    """Return everything charted about analgesia."""
+    doses, ran = given(case), runs(case)
+    return Charted(
+        given=doses,
+        runs=ran,
+        scores=pain_scores(case),
+        portions=_portions(case, doses, ran),
+        any_doses=any(child(case.block, name) is not None for name in CHARTS_OF_DOSES),
+        hours=_hours(case, doses, ran),
+    )
+
+
+def mg_text(mg: float) -> str:
+    """Return an amount as it is printed: under 1 mg in mcg."""
+    if 0 < mg < 1:
+        return with_unit(mg * MCG_IN_MG, "mcg", 1)
+    return with_unit(mg, "mg", 2)
+
+
+def _portions(case: Case, doses: tuple[Given, ...], ran: tuple[Run, ...]) -> tuple[Portion, ...]:
+    found = [
+        Portion(one.drug, one.route, one.mg, one.missing, _said(case, one), one.latest, one.node)
+        for one in doses
+        if one.in_day_to(case.now)
+    ]
+    for run in ran:
+        hours = run.hours_in_day_to(case.now)
+        if hours > 0:
+            said = f"{run.written} for {number_text(hours, 2)} h"
+            if run.weight:
+                said += f" at {run.weight}"
+            mg = run.mg_in_day_to(case.now)
+            found.append(Portion(run.drug, run.route, mg, run.missing, said, run.start, run.node))
+    return tuple(sorted(found, key=lambda one: (one.at, one.drug.name, one.route, one.said)))
+
+
+def _said(case: Case, one: Given) -> str:
+    said = f"{one.written or 'amount not recorded'} at {case.clock.time(one.latest, case.now)}"
+    if one.how == PUMP:
+        start = case.clock.time(one.earliest, case.now)
+        said = f"{one.written} by pump from {start} to {case.clock.time(one.latest, case.now)}"
+    elif one.earliest != one.latest:
+        said = f"{one.written} between {case.clock.time(one.earliest, case.now)} and "
+        said += case.clock.time(one.latest, case.now)
+    return said if one.place == "ward" else f"{said} ({one.place})"
+
+
+def _hours(case: Case, doses: tuple[Given, ...], ran: tuple[Run, ...]) -> float:
+    moments = [one.earliest for one in doses if one.place != "home"] + [run.start for run in ran]
+    # What was taken at home is told afterwards: it does not lengthen the time that the chart covers.
+    moments += [row.at for row in case.state.rows]
+    first = min(moments, default=case.now)
+    return min(case.hours_between(first, case.now), HOURS_A_DAY) if first < case.now else 0.0

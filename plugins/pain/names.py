@@ -1,0 +1,48 @@
+"""Drugs and routes by one name each, however they were spelled."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from handoff.plugin import Case, Map, Node, words
+
+OPIOID = "opioid"
+PARACETAMOL = "paracetamol"
+IBUPROFEN = "ibuprofen"
+PATCH = "transdermal"
+
+
+@dataclass(frozen=True, slots=True)
+class Drug:
+    """A drug: the name it is counted under, the group it belongs to, and whether it is in our list."""
+
+    name: str
+    group: str
+    listed: bool = True
+
+
+def drug_of(case: Case, node: Node | None) -> Drug | None:
+    """Return the drug written at ``node`` under its one name; None when nothing is written."""
+    if isinstance(node, Map):
+        other = words(node.get("other"))
+        return Drug(other, words(node.get("group")), listed=False) if other else None
+    name = _one_name(case, "drugs", words(node))
+    return Drug(name, str(case.parameters.table("drugs")[name]["group"])) if name else None
+
+
+def route_of(case: Case, node: Node | None) -> str:
+    """Return the route written at ``node`` under its one name, or an empty string."""
+    return _one_name(case, "routes", words(node))
+
+
+def factor_heading(case: Case, route: str) -> str:
+    """Return the heading under which a factor table lists ``route`` (IV: parenteral)."""
+    routes = case.parameters.table("routes")
+    return str(routes[route]["factors"]) if route in routes else route
+
+
+def _one_name(case: Case, table: str, written: str) -> str:
+    known = case.parameters.table(table)
+    if written in known:
+        return written
+    return next((name for name, entry in known.items() if written in entry.get("also", ())), "")
