@@ -1,0 +1,111 @@
+"""The appendix: how each figure was worked out, where its numbers come from, what is not recorded."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+
+from handoff.assess import Assessment
+from handoff.document.sections import NOT_RECORDED, Row, row, sentence, shown
+from handoff.parameters import Source
+from handoff.plugin import Flag, Item
+
+
+class Citations:
+    """Numbers sources in the order in which they are first cited."""
+
+    def __init__(self) -> None:
+        self._numbers: dict[str, int] = {}
+
+    def cite(self, sources: Iterable[Source]) -> str:
+        """Return the marks of ``sources``: ``[1] [3]``; an empty string for none."""
+        marks = [self._numbers.setdefault(source.shown(), len(self._numbers) + 1) for source in sources]
+        return " ".join(f"[{mark}]" for mark in dict.fromkeys(marks))
+
+    def cited(self) -> tuple[Cited, ...]:
+        """Return every source cited so far with its mark."""
+        return tuple(Cited(f"[{mark}]", text) for text, mark in self._numbers.items())
+
+
+@dataclass(frozen=True, slots=True)
+class Cited:
+    """One source with its mark."""
+
+    mark: str
+    text: str
+
+
+@dataclass(frozen=True, slots=True)
+class Figure:
+    """One figure with its working, for a reader to check."""
+
+    what: str
+    value: str
+    formula: str
+    sum: str
+    inputs: str
+    rule: str
+    sources: str
+    cautions: str
+
+
+@dataclass(frozen=True, slots=True)
+class Gap:
+    """One thing that is not recorded, and how it is printed."""
+
+    what: str
+    value: str
+    where: str
+
+
+@dataclass(frozen=True, slots=True)
+class Appendix:
+    """Working, sources, and what is not recorded."""
+
+    made_by: str
+    figures: tuple[Figure, ...]
+    details: tuple[Row, ...]
+    sources: tuple[Cited, ...]
+    gaps: tuple[Gap, ...]
+
+
+def appendix(assessment: Assessment) -> Appendix:
+    """Return the appendix of the handover."""
+    citations = Citations()
+    worked = [item for item in assessment.items if item.working or item.sources or item.cautions]
+    figures = tuple(_figure(item, citations) for item in worked if item.flag is not Flag.NOT_RECORDED)
+    details = [item for item in assessment.items if item.detail and item.flag is not Flag.NOT_RECORDED]
+    return Appendix(
+        made_by=_made_by(assessment),
+        figures=figures,
+        details=tuple(row(item, assessment) for item in details if item not in worked),
+        sources=citations.cited(),
+        gaps=tuple(
+            Gap(sentence(item.label), shown(item), f"{item.part.value}, {item.system.value}")
+            for item in assessment.not_recorded
+        ),
+    )
+
+
+def _made_by(assessment: Assessment) -> str:
+    titles = ", ".join(plugin.title for plugin in assessment.plugins) or "none"
+    return (
+        f"Worked out by: {titles}. Local policy: {assessment.policy.name}. "
+        f"Lines are those of the state file of version {assessment.state.digest}."
+    )
+
+
+def _figure(item: Item, citations: Citations) -> Figure:
+    working = item.working
+    inputs = working.inputs if working else ()
+    said = [f"{part.label} {part.shown or NOT_RECORDED}" + (f" (line {part.line})" if part.line else "") for part in inputs]
+    return Figure(
+        what=sentence(item.label),
+        value=shown(item),
+        formula=working.formula if working else "",
+        sum=working.sum if working else "",
+        inputs="; ".join(said),
+        rule=working.rule if working else "",
+        sources=citations.cite(item.sources),
+        cautions=" ".join(item.cautions),
+    )

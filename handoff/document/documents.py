@@ -1,0 +1,46 @@
+"""An assessment becomes Word files: sections, filled templates, finished and read back."""
+
+from __future__ import annotations
+
+from handoff.assess import Assessment
+from handoff.document.care_plan import care_plan
+from handoff.document.context import Data, context
+from handoff.document.finish import Properties, finish
+from handoff.document.handover import handover
+from handoff.document.paper import Page
+from handoff.document.read_back import check_marks, check_printed
+from handoff.document.render import fill, template_bytes
+
+HANDOVER = "handover.docx"
+CARE_PLAN = "care-plan.docx"
+
+
+def draft(assessment: Assessment, stem: str) -> dict[str, bytes]:
+    """Return the handover and the care plan of ``assessment`` by file name.
+
+    The same assessment gives the same bytes. Nothing is written to the disk.
+
+    Args:
+        assessment: What is known of the patient at the moment of the documents.
+        stem: What the file names begin with.
+
+    Raises:
+        DocumentError: A template is at fault, or a text would have been lost.
+    """
+    policy = assessment.policy
+    turned = policy.care_plan_orientation == "landscape"
+    return {
+        f"{stem}-{HANDOVER}": _made(HANDOVER, context(handover(assessment)), assessment, Page(policy.paper)),
+        f"{stem}-{CARE_PLAN}": _made(CARE_PLAN, context(care_plan(assessment)), assessment, Page(policy.paper, turned)),
+    }
+
+
+def _made(template: str, data: dict[str, Data], assessment: Assessment, page: Page) -> bytes:
+    filled = fill(template_bytes(template), template, data)
+    frame = data["frame"]
+    title = f"{frame['title']}, made at {frame['made_at']}" if isinstance(frame, dict) else template
+    properties = Properties(title, assessment.now, assessment.state.digest)
+    content = finish(filled.template.docx, properties, page)
+    check_printed(content, filled.printed, data)
+    check_marks(content, data)
+    return content

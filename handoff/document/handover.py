@@ -1,0 +1,145 @@
+"""The handover as finished strings: page one, the four parts, tables, appendix."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+
+from handoff.assess import Assessment
+from handoff.document.appendix import Appendix, appendix
+from handoff.document.charts import Burn, Hour, burns, hours
+from handoff.document.identity import Frame, Identity, frame, identity, person
+from handoff.document.page_one import PageOne, page_one
+from handoff.document.schedule import Shift
+from handoff.document.sections import (
+    LEGEND,
+    Band,
+    Block,
+    Mark,
+    Section,
+    bands,
+    cautions_of,
+    missing_line,
+    row,
+    sentence,
+)
+from handoff.document.timeline import Moment, Pending, pending, timeline
+from handoff.plugin import Flag, Item, Part, System, words
+
+ELSEWHERE = frozenset(
+    f"handover.{name}" for name in ("severity", "if_then", "requests", "pending", "to_do", "from", "to")
+)
+"""Items that have a place of their own on the page and are not repeated as rows."""
+
+BEDSIDE_CHECKS = (
+    ("identity", "Identity band read together: name, birth date, record number"),
+    ("pumps", "Each pump: drug, concentration, rate and volume left, against the prescription"),
+    ("lines", "Lines followed from bag to patient; sites and fixing seen"),
+    ("airway", "Airway, tube depth and ties, oxygen device and flow"),
+    ("alarms", "Monitor and ventilator alarms: on, limits set for this patient"),
+    ("kit", "Emergency kit at the bed: suction, bag and mask, airway kit, working"),
+    ("limbs", "Circumferential burns: pulses, colour and warmth looked at together"),
+    ("dressings", "Dressings and urine bag looked at together"),
+)
+
+
+@dataclass(frozen=True, slots=True)
+class Check:
+    """One thing that giver and receiver look at together, with the tag of its tick box."""
+
+    text: str
+    tag: Mark
+
+
+@dataclass(frozen=True, slots=True)
+class Handover:
+    """Everything that the handover prints."""
+
+    frame: Frame
+    bands: tuple[Band, ...]
+    identity: Identity
+    severity: str
+    severity_said: str
+    given_by: str
+    received_by: str
+    page_one: PageOne
+    legend: str
+    situation: Section
+    background: Section
+    systems: tuple[Block, ...]
+    assessment_missing: str
+    recommendation: Section
+    requests: tuple[str, ...]
+    timeline: tuple[Moment, ...]
+    pending: tuple[Pending, ...]
+    checks: tuple[Check, ...]
+    burns: tuple[Burn, ...]
+    hours: tuple[Hour, ...]
+    appendix: Appendix
+
+
+def handover(assessment: Assessment) -> Handover:
+    """Return the handover of an assessment as finished strings."""
+    state = assessment.state
+    written = state.handover
+    shift = Shift(assessment.now, assessment.now + assessment.policy.shift_length, state.clock)
+    assessed = [item for item in assessment.items if item.part is Part.ASSESSMENT]
+    severity, said = _severity(assessment)
+    return Handover(
+        frame=frame("Burn handover", assessment),
+        bands=bands(assessment),
+        identity=identity(assessment),
+        severity=severity,
+        severity_said=said,
+        given_by=person(written.get("from")),
+        received_by=person(written.get("to")),
+        page_one=page_one(assessment, shift),
+        legend=LEGEND,
+        situation=_section(assessment, Part.SITUATION),
+        background=_section(assessment, Part.BACKGROUND),
+        systems=_systems(assessed, assessment),
+        assessment_missing=missing_line(item for item in assessed if item.flag is Flag.NOT_RECORDED),
+        recommendation=_section(assessment, Part.RECOMMENDATION),
+        requests=state.texts(written.get("requests")),
+        timeline=timeline(assessment, shift),
+        pending=pending(assessment),
+        checks=tuple(Check(text, Mark(f"check:{name}")) for name, text in BEDSIDE_CHECKS),
+        burns=burns(assessment),
+        hours=hours(assessment),
+        appendix=appendix(assessment),
+    )
+
+
+def _severity(assessment: Assessment) -> tuple[str, str]:
+    state = assessment.state
+    word = words(state.handover.get("severity"))
+    if not word:
+        return "severity not recorded by the nurse", ""
+    at, by = state.when(state.handover.get("at")), person(state.handover.get("from"))
+    return word, f"{by}, {state.clock.day_and_time(at)}" if at else by
+
+
+def _section(assessment: Assessment, part: Part) -> Section:
+    items = [item for item in assessment.items if item.part is part]
+    printed = list(_printed(items))
+    return Section(
+        rows=tuple(row(item, assessment) for item in printed),
+        cautions=cautions_of(printed),
+        missing=missing_line(item for item in items if item.flag is Flag.NOT_RECORDED),
+    )
+
+
+def _printed(items: Iterable[Item]) -> Iterable[Item]:
+    for item in items:
+        if item.flag is not Flag.NOT_RECORDED and not item.detail and item.key not in ELSEWHERE:
+            yield item
+
+
+def _systems(assessed: list[Item], assessment: Assessment) -> tuple[Block, ...]:
+    blocks = []
+    for system in System:
+        printed = list(_printed(item for item in assessed if item.system is system))
+        if printed:
+            rows = tuple(row(item, assessment) for item in printed)
+            blocks.append(Block(sentence(system.value), rows, cautions_of(printed)))
+    return tuple(blocks)

@@ -1,0 +1,122 @@
+"""What both templates share: identity band, warnings, header, footer, signatures."""
+
+from __future__ import annotations
+
+from handoff.document.making.markup import (
+    BLANK,
+    blank,
+    cell,
+    each,
+    field,
+    paragraph,
+    row,
+    run,
+    tab,
+    table,
+    when,
+)
+
+
+def page_header(width: int) -> str:
+    """Return the header of every page: name, birth date, identifiers, and which document it is."""
+    return paragraph(
+        "Header",
+        run("{{ frame.name }}", "Strong"),
+        run("   {{ frame.born }}   {{ frame.numbers }}"),
+        tab(),
+        run("{{ frame.title }}"),
+        extra=_right_tab(width),
+    )
+
+
+def page_footer(width: int) -> str:
+    """Return the footer of every page: cautions, when and from what it was made, page x of y."""
+    return paragraph(
+        "Footer",
+        run("{{ frame.caution }}"),
+        "<w:r><w:br/></w:r>",
+        run("Made at {{ frame.made_at }} from state file version {{ frame.version }}"),
+        tab(),
+        run("Page "),
+        field("PAGE"),
+        run(" of "),
+        field("NUMPAGES"),
+        extra=_right_tab(width),
+    )
+
+
+def _right_tab(width: int) -> str:
+    return f'<w:tabs><w:tab w:val="right" w:pos="{width}"/></w:tabs>'
+
+
+def title() -> str:
+    """Return the title and the line below it."""
+    return paragraph("Title", "{{ frame.title }}")
+
+
+def warnings(width: int) -> str:
+    """Return the band of what could not be computed and of unusual values."""
+    lines = each("line in band.lines", paragraph("KeyNote", "{{ line }}"))
+    return each(
+        "band in bands",
+        table(
+            "Warnings to read first",
+            [width],
+            row(cell(width, paragraph("Warning", "{{ band.title }}"), lines)),
+            style="HandoffAlarm",
+            first_row=False,
+        ),
+        paragraph("Gap"),
+    )
+
+
+def labelled(width: int, label: str, *fields: str, span: int = 1, style: str = "BandValue") -> str:
+    """Return a cell with a small label above its value."""
+    return cell(width, paragraph("Label", label), *(paragraph(style, value) for value in fields), span=span)
+
+
+def identity_band(width: int, *further: str) -> str:
+    """Return the identity band; ``further`` are rows of four cells below it."""
+    quarter = width // 4
+    widths = [quarter, quarter, quarter, width - 3 * quarter]
+    name = cell(
+        2 * quarter,
+        paragraph("Label", "Patient"),
+        paragraph("BandName", "{{ identity.name }}"),
+        paragraph("BandValue", "{{ identity.born }}, {{ identity.age }}"),
+        span=2,
+        fill="F2F3F4",
+    )
+    numbers = cell(
+        width - 2 * quarter,
+        paragraph("Label", "Identifiers (a bed is never one)"),
+        paragraph("BandValue", "{{ identity.numbers }}"),
+        paragraph("Label", "Location"),
+        paragraph("Normal", "{{ identity.location }}"),
+        span=2,
+        fill="F2F3F4",
+    )
+    facts = row(
+        labelled(widths[0], "Weight", "{{ identity.weight }}"),
+        labelled(widths[1], "Allergies", "{{ identity.allergies }}"),
+        labelled(widths[2], "Resuscitation decision", "{{ identity.resuscitation }}"),
+        labelled(widths[3], "Isolation", "{{ identity.isolation }}"),
+    )
+    return table(
+        "Who the patient is", widths, row(name, numbers), facts, *further, style="HandoffBand", first_row=False
+    )
+
+
+def signature_row(widths: list[int], label: str, who: str, key: str) -> str:
+    """Return a row to be signed: who, signature, date and time."""
+    return row(
+        cell(widths[0], paragraph("Boxes", run(label, "Strong"))),
+        cell(widths[1], paragraph("Boxes", who) if who else paragraph("Boxes", blank(f"sign:{key}:name", f"{label}: name and role"))),
+        cell(widths[2], paragraph("Boxes", blank(f"sign:{key}:signature", f"{label}: signature", BLANK * 2))),
+        cell(widths[3], paragraph("Boxes", blank(f"sign:{key}:time", f"{label}: date and time"))),
+    )
+
+
+def unit_line(*more: str) -> str:
+    """Return the line below the title: the unit, where the policy names one, and what else is given."""
+    return when("frame.unit", paragraph("Subtitle", "{{ frame.unit }}")) + "".join(more)

@@ -1,0 +1,131 @@
+"""Page one: what the receiver needs standing at the bed, in few lines, what can kill first on top."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+from datetime import UTC, datetime
+
+from handoff.assess import Assessment
+from handoff.document.references import references
+from handoff.document.schedule import Shift, is_overdue
+from handoff.document.sections import sentence, shown
+from handoff.plugin import Action, Flag, Item, Urgency, entries, plural, words
+
+MOST_LINES = 7
+"""Lines of one table of page one; what is left is named below it and stands in full further on."""
+
+
+@dataclass(frozen=True, slots=True)
+class KeyRow:
+    """One line of page one: what, what was found, when, and why it matters."""
+
+    what: str
+    value: str
+    time: str
+    why: str
+
+
+@dataclass(frozen=True, slots=True)
+class Task:
+    """One line of what to do: its reference in the care plan, the text and the reason."""
+
+    ref: str
+    text: str
+    why: str
+
+
+@dataclass(frozen=True, slots=True)
+class IfThen:
+    """What may happen, and what to do then."""
+
+    event: str
+    answer: str
+
+
+@dataclass(frozen=True, slots=True)
+class PageOne:
+    """The tables of page one; ``more_`` names what did not fit into its table."""
+
+    actions: tuple[KeyRow, ...]
+    more_actions: str
+    tasks: tuple[Task, ...]
+    more_tasks: str
+    due: tuple[KeyRow, ...]
+    more_due: str
+    if_then: tuple[IfThen, ...]
+    gaps: str
+    missing_count: str
+
+
+def page_one(assessment: Assessment, shift: Shift) -> PageOne:
+    """Return page one of the handover."""
+    refs = references(assessment.actions)
+    ranked = _by_rank(item for item in assessment.items if item.rank is not None)
+    acting = [item for item in ranked if item.flag is Flag.ACTION]
+    unranked = [item for item in assessment.items if item.flag is Flag.ACTION and item.rank is None]
+    tasks = [action for action in assessment.actions if action.urgency is Urgency.NOW]
+    due, more_due = _due(assessment, shift, refs)
+    gaps = [sentence(item.label) for item in ranked if item.flag is Flag.NOT_RECORDED]
+    return PageOne(
+        actions=tuple(_key_row(item, shift) for item in acting[:MOST_LINES]),
+        more_actions="; ".join(_names([*acting[MOST_LINES:], *unranked])),
+        tasks=tuple(_task(action, shift, refs[action.key]) for action in tasks[:MOST_LINES]),
+        more_tasks=", ".join(refs[action.key] for action in tasks[MOST_LINES:]),
+        due=due,
+        more_due=more_due,
+        if_then=tuple(
+            IfThen(words(entry.get("if")), words(entry.get("then")))
+            for entry in entries(assessment.state.handover.get("if_then"))
+        ),
+        gaps="; ".join(gaps),
+        missing_count=plural(len(assessment.not_recorded), "entry is", "entries are"),
+    )
+
+
+def _by_rank(items: Iterable[Item]) -> list[Item]:
+    return sorted(items, key=lambda item: item.rank or 0)
+
+
+def _names(items: Sequence[Item]) -> list[str]:
+    return list(dict.fromkeys(sentence(item.label) for item in items))
+
+
+def _why(item: Item) -> str:
+    if item.cautions:
+        return item.cautions[0]
+    return item.working.rule if item.working else ""
+
+
+def _key_row(item: Item, shift: Shift) -> KeyRow:
+    time = shift.time(item.as_of) if item.as_of else ""
+    return KeyRow(sentence(item.label), shown(item), time, _why(item))
+
+
+def _task(action: Action, shift: Shift, ref: str) -> Task:
+    late = ""
+    if action.first_due and is_overdue(action, shift.start):
+        late = f" (overdue since {shift.time(action.first_due)})"
+    return Task(ref, f"{action.text}{late}", action.why)
+
+
+def _due(assessment: Assessment, shift: Shift, refs: dict[str, str]) -> tuple[tuple[KeyRow, ...], str]:
+    review = [item for item in assessment.items if item.flag is Flag.REVIEW]
+    ranked = _by_rank([item for item in review if item.rank is not None])
+    rest = [item for item in review if item.rank is None]
+    late = [action for action in assessment.actions if is_overdue(action, shift.start)]
+    late = sorted((action for action in late if action.urgency is not Urgency.NOW), key=_first_due)
+    named = [(_key_row(item, shift), sentence(item.label)) for item in ranked]
+    named += [(_late_row(action, shift, refs), refs[action.key]) for action in late]
+    named += [(_key_row(item, shift), sentence(item.label)) for item in rest]
+    more = "; ".join(name for _, name in named[MOST_LINES:])
+    return tuple(row for row, _ in named[:MOST_LINES]), more
+
+
+def _first_due(action: Action) -> datetime:
+    return action.first_due or datetime.max.replace(tzinfo=UTC)
+
+
+def _late_row(action: Action, shift: Shift, refs: dict[str, str]) -> KeyRow:
+    since = shift.time(action.first_due) if action.first_due else ""
+    return KeyRow(f"{refs[action.key]} overdue", action.text, since, action.why)

@@ -1,0 +1,93 @@
+"""Read a finished document and prove that every text that went in stands in it."""
+
+from __future__ import annotations
+
+from collections import Counter
+from collections.abc import Iterable, Mapping
+from io import BytesIO
+from typing import Any
+from zipfile import ZipFile
+
+from handoff.document.context import Data, texts
+from handoff.document.errors import DocumentError
+from handoff.document.names import WORD
+from handoff.document.sections import Mark
+
+_SHORT = 60
+
+
+def check_printed(content: bytes, printed: list[str], data: Mapping[str, Data]) -> None:
+    """Raise unless every text of ``data`` was printed and every printed text is in the document.
+
+    Args:
+        content: The finished .docx file.
+        printed: The texts in the order in which the template printed them.
+        data: What the template was filled with.
+
+    Raises:
+        DocumentError: A text is missing; names the field.
+    """
+    fields = list(texts(dict(data)))
+    times = Counter(printed)
+    for path, text in fields:
+        times[text] -= 1
+        if times[text] < 0:
+            raise DocumentError(f"the template does not print the field {path}; put it back into the template")
+    page = text_of(content)
+    place = 0
+    for text in printed:
+        if not text:
+            continue
+        found = page.find(text, place)
+        if found < 0:
+            path = next((path for path, value in fields if value == text), text[:_SHORT])
+            raise DocumentError(f"the text of the field {path} is not in the document; it was not written")
+        place = found + len(text)
+
+
+def check_marks(content: bytes, data: Data) -> None:
+    """Raise unless every tag of ``data`` marks a content control.
+
+    Raises:
+        DocumentError: A tag is missing; names it.
+    """
+    tags = {tag.get(f"{WORD}val") for root in _roots(content) for tag in root.iter(f"{WORD}tag", f"{WORD}alias")}
+    for mark in _marks(data):
+        if str(mark) not in tags:
+            raise DocumentError(f"the template has no content control for {mark}; put it back into the template")
+
+
+def text_of(content: bytes) -> str:
+    """Return the text of a .docx file: body, then headers, then footers, one paragraph a line."""
+    return "\n".join(_text(paragraph) for root in _roots(content) for paragraph in root.iter(f"{WORD}p"))
+
+
+def _roots(content: bytes) -> Iterable[Any]:
+    from lxml import etree
+
+    with ZipFile(BytesIO(content)) as file:
+        names = file.namelist()
+        for start in ("word/document", "word/header", "word/footer"):
+            for name in sorted(name for name in names if name.startswith(start) and name.endswith(".xml")):
+                yield etree.fromstring(file.read(name))
+
+
+def _text(paragraph: Any) -> str:
+    said = []
+    for node in paragraph.iter(f"{WORD}t", f"{WORD}br", f"{WORD}tab"):
+        if node.tag == f"{WORD}t":
+            said.append(node.text or "")
+        elif node.getparent().tag == f"{WORD}r":
+            said.append("\n" if node.tag == f"{WORD}br" else "\t")
+    return "".join(said)
+
+
+def _marks(data: Data) -> Iterable[Mark]:
+    if isinstance(data, Mark):
+        yield data
+    elif isinstance(data, dict):
+        for value in data.values():
+            yield from _marks(value)
+    elif isinstance(data, list):
+        for value in data:
+            yield from _marks(value)

@@ -1,0 +1,114 @@
+"""The pieces that documents are made of: frozen data of finished strings, ready to be printed."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+
+from handoff.assess import Assessment
+from handoff.plugin import Flag, Item
+
+NOT_RECORDED = "not recorded"
+
+CAUTION = (
+    "Check against patient, prescription and local policy. Computed rates are starting points to check, "
+    "not orders. Nothing here diagnoses or orders."
+)
+
+FLAG_WORDS = {Flag.ACTION: "ACTION", Flag.REVIEW: "REVIEW", Flag.NONE: "", Flag.NOT_RECORDED: NOT_RECORDED}
+"""How a flag is printed: a word, so that it reads without colour."""
+
+LEGEND = (
+    "ACTION: needs something now. REVIEW: due, overdue or old. No mark: no flag was raised at that time, "
+    "which does not say that the patient is well."
+)
+
+
+class Mark(str):
+    """A tag or a title of a content control: it goes into the file, not onto the page."""
+
+    __slots__ = ()
+
+
+@dataclass(frozen=True, slots=True)
+class Row:
+    """One value as it is printed: what, the value with its unit, its time, its flag."""
+
+    what: str
+    value: str
+    time: str
+    flag: str
+    is_action: bool
+
+
+@dataclass(frozen=True, slots=True)
+class Block:
+    """Rows under a heading of their own."""
+
+    title: str
+    rows: tuple[Row, ...]
+    cautions: str
+
+
+@dataclass(frozen=True, slots=True)
+class Section:
+    """One part of the handover: its rows, their cautions, and what is not recorded in it."""
+
+    rows: tuple[Row, ...]
+    cautions: str
+    missing: str
+
+
+@dataclass(frozen=True, slots=True)
+class Band:
+    """A warning at the top of a document."""
+
+    title: str
+    lines: tuple[str, ...]
+
+
+def sentence(text: str) -> str:
+    """Return ``text`` with a capital first letter and the rest as it is."""
+    return text[:1].upper() + text[1:]
+
+
+def shown(item: Item) -> str:
+    """Return how an item is printed; never empty."""
+    return item.shown or NOT_RECORDED
+
+
+def row(item: Item, assessment: Assessment) -> Row:
+    """Return an item as a row; its time is short where it is of the same day as the document."""
+    time = assessment.state.clock.time(item.as_of, assessment.now) if item.as_of else ""
+    return Row(sentence(item.label), shown(item), time, FLAG_WORDS[item.flag], item.flag is Flag.ACTION)
+
+
+def missing_line(items: Iterable[Item]) -> str:
+    """Return the labels of what is not recorded in one line; says so where nothing is missing."""
+    labels: list[str] = []
+    for item in items:
+        said = sentence(item.label)
+        if item.shown not in ("", NOT_RECORDED):
+            said += f" ({item.shown})"
+        if said not in labels:
+            labels.append(said)
+    return "; ".join(labels) if labels else "none of the entries of this section"
+
+
+def cautions_of(items: Iterable[Item]) -> str:
+    """Return the cautions of the items in one line, each once; an empty string for none."""
+    return " ".join(dict.fromkeys(caution for item in items for caution in item.cautions))
+
+
+def bands(assessment: Assessment) -> tuple[Band, ...]:
+    """Return what must be read first: what could not be computed, and unusual values not confirmed."""
+    found = []
+    if assessment.failures:
+        lines = tuple(f"{failure.title}: {failure.what}" for failure in assessment.failures)
+        found.append(Band("Could not be computed; work it out by hand", lines))
+    if assessment.warnings:
+        lines = tuple(
+            f"{fault.path}: {fault.what}; {fault.cure} (line {fault.line})" for fault in assessment.warnings
+        )
+        found.append(Band("Unusual and not confirmed; check at the bedside", lines))
+    return tuple(found)
