@@ -189,3 +189,78 @@ def difference_points(first_pct: float, second_pct: float) -> float:
     Source: definition.
     """
     return _finite("second_pct", second_pct) - _finite("first_pct", first_pct)
+
+
+def by_other_table_pct(area_pct: float, own_region_pct: float, other_region_pct: float) -> float:
+    """Return an area as another table would size it, in % of body surface.
+
+    The burned share of the smallest region that both tables hold is kept.
+
+    Args:
+        area_pct: The area by its own table, in % of body surface.
+        own_region_pct: That region in the table it was charted by, above 0.
+        other_region_pct: The same region in the other table.
+
+    Raises:
+        FormulaInputError: An argument is not finite or outside its range.
+
+    Source: definition.
+    """
+    if _finite("own_region_pct", own_region_pct) == 0:
+        raise FormulaInputError("the region has no size in its own table")
+    return _finite("area_pct", area_pct) * _finite("other_region_pct", other_region_pct) / own_region_pct
+
+
+def revised_baux_points(age_years: float, burned_area_pct: float, inhalation_points: float) -> float:
+    """Return the revised Baux sum in points: age, burned area and the points for inhalation injury.
+
+    Args:
+        age_years: Age in completed years.
+        burned_area_pct: Counted burn in % of body surface, 0 to 100.
+        inhalation_points: Points for inhalation injury, 0 where there is none.
+
+    Raises:
+        FormulaInputError: An argument is not finite or outside its range.
+
+    Source: ``revised_baux.inhalation`` in parameters.yaml.
+    """
+    area = _finite("burned_area_pct", burned_area_pct, 0, 100)
+    return _finite("age_years", age_years) + area + _finite("inhalation_points", inhalation_points)
+
+
+def band_points(value: float, width: float, at_most: float) -> float:
+    """Return one point for each begun band of ``width``, none for 0, at most ``at_most`` points.
+
+    Args:
+        value: Burned area in % of body surface, or another measure from 0.
+        width: Width of one band, above 0.
+        at_most: The most points that the bands give.
+
+    Raises:
+        FormulaInputError: An argument is not finite or outside its range.
+
+    Source: ``absi.bands`` in parameters.yaml; a fraction counts in the band that it has begun.
+    """
+    if _finite("width", width) == 0:
+        raise FormulaInputError("a band has no width")
+    return min(math.ceil(_finite("value", value) / width), _finite("at_most", at_most))
+
+
+def absi_points(
+    age_points: float, area_points: float, sex_points: float, inhalation_points: float, depth_points: float
+) -> float:
+    """Return the abbreviated burn severity index in points, as the sum of its five parts.
+
+    Args:
+        age_points: Points for age.
+        area_points: Points for burned area.
+        sex_points: Points for sex.
+        inhalation_points: Points for inhalation injury.
+        depth_points: Points for any full thickness burn.
+
+    Raises:
+        FormulaInputError: A part is not finite or below 0.
+
+    Source: ``absi.*`` in parameters.yaml.
+    """
+    return total_pct((age_points, area_points, sex_points, inhalation_points, depth_points))

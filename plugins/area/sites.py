@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from handoff.plugin import Case, Flag, Item, Part, System, Working, joined, number_text
 
 from .assessment import PLACES, Assessment, Burn
@@ -59,7 +61,6 @@ def _item(
     assessment: Assessment | None,
     *,
     flag: Flag = Flag.NONE,
-    rank: int | None = None,
     system: System = System.BURN,
     cautions: tuple[str, ...] = (),
 ) -> Item:
@@ -72,7 +73,6 @@ def _item(
         as_of=assessment.at if assessment else None,
         flag=flag,
         repeats=True,
-        rank=rank,
         cautions=cautions,
         line=assessment.line if assessment else 0,
     )
@@ -86,48 +86,41 @@ def _method(case: Case, assessment: Assessment) -> Item:
     return _item("area.method", "How the area was assessed", shown, assessment)
 
 
+def may_go_round(burn: Burn, burns: Sequence[Burn]) -> bool:
+    """Return whether nobody charted if a burn goes all round although it might: it spares no face."""
+    if burn.encircling_recorded or burn.region not in (*LIMBS, *TORSO):
+        return False
+    other = [one for one in burns if one.region == burn.region and one.face not in ("", burn.face)]
+    return not burn.face or bool(other)
+
+
 def _circumferential(assessment: Assessment) -> Item:
-    found = circumferential(assessment)
     said = [
-        f"{burn.region} ({burn.depth}{', nearly circumferential' if burn.near_circumferential else ''})"
-        for burn in found
+        f"{burn.region} ({burn.depth}{', nearly all round' if burn.near_circumferential else ''})"
+        for burn in circumferential(assessment)
     ]
-    unknown = [
-        burn.region
-        for burn in assessment.burns
-        if burn.deep and not burn.encircling_recorded and burn.region in (*LIMBS, *TORSO)
-    ]
-    label, shown = "Circumferential burns", joined(said)
-    if unknown:
-        not_said = f"not recorded for {joined(list(dict.fromkeys(unknown)))}"
-        shown = f"{shown}; {not_said}" if shown else not_said
-    if any(burn.deep or burn.counted is None for burn in found):
-        return _item(
-            "area.circumferential",
-            label,
-            shown,
-            assessment,
-            flag=Flag.ACTION,
-            rank=RANK_CIRCUMFERENTIAL,
-            system=System.LIMBS,
-        )
-    flag = Flag.REVIEW if found else Flag.NOT_RECORDED if unknown else Flag.NONE
-    return _item(
-        "area.circumferential", label, shown or "none charted", assessment, flag=flag, system=System.LIMBS
-    )
+    deep = [burn for burn in assessment.burns if burn.deep or burn.counted is None]
+    unknown = dict.fromkeys(burn.region for burn in deep if may_go_round(burn, deep))
+    parts = [joined(said), f"not recorded for {joined(list(unknown))}" if unknown else ""]
+    shown = "; ".join(part for part in parts if part) or "none charted"
+    flag = Flag.NOT_RECORDED if unknown else Flag.NONE
+    label = "Circumferential burns"
+    return _item("area.circumferential", label, shown, assessment, flag=flag, system=System.LIMBS)
 
 
 def _special(assessment: Assessment) -> Item:
-    said = []
-    for name in sites(assessment):
-        depths = [burn.depth for burn in assessment.burns if burn.counted and name in site_names(burn)]
-        said.append(f"{name} ({joined(list(dict.fromkeys(depths)))})")
+    said: dict[str, list[str]] = {}
+    for burn in assessment.burns:
+        for name in site_names(burn) if burn.counted is not False else ():
+            here = burn.region if name in ("hands", "feet") else name
+            said.setdefault(here, []).append(burn.depth)
     may = dict.fromkeys(
         f"{burn.where} may hold {held}"
         for burn in assessment.burns
-        if burn.counted and (held := may_hold_site(burn.region, burn.face))
+        if burn.counted is not False and (held := may_hold_site(burn.region, burn.face))
     )
-    shown = "; ".join([*said, *may]) or "none charted"
+    sites_said = [f"{name} ({joined(list(dict.fromkeys(depths)))})" for name, depths in said.items()]
+    shown = "; ".join([*sites_said, *may]) or "none charted"
     return _item("area.special_sites", "Special sites", shown, assessment)
 
 
