@@ -10,5 +10,6 @@ plugin = Plugin(
     title="Pain, sedation and analgesia",
     package="handoff.bundled.pain",
     compute=compute,
+    requires=("area",),
     check=check,
 )

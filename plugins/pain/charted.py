@@ -7,8 +7,8 @@ from datetime import datetime
 
 from handoff.plugin import Case, Input, Node, child, line_of, number_text, with_unit
 
-from .formula import HOURS_A_DAY
-from .given import MCG_IN_MG, PUMP, Given, given
+from .formula import HOURS_A_DAY, MCG_IN_MG
+from .given import PUMP, Given, given
 from .infusions import Run, runs
 from .names import Drug
 from .scores import Score, pain_scores

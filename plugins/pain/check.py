@@ -12,6 +12,7 @@ from handoff.plugin import (
     Map,
     Node,
     Problem,
+    Text,
     number,
     number_text,
     unit_of,
@@ -26,6 +27,7 @@ from .scores import Scale, item_points, scale_of
 Path = tuple[str | int, ...]
 BLOCK: Path = ("pain",)
 PLAIN_SCORES = ("itch", "anxiety")
+BARE_PAIN, BARE_LEVEL = "{scale: numeric, score: 6, during: rest}", "{scale: poss, score: 2}"
 
 
 def check(case: Case) -> tuple[Problem, ...]:
@@ -52,6 +54,8 @@ def _observations(case: Case) -> Iterator[Problem]:
             continue
         for time, written in times.items():
             for row, path in _living(written, ("observations", str(day), str(time))):
+                yield from _bare(row.get("pain"), (*path, "pain"), ("asleep", "not assessed"), BARE_PAIN)
+                yield from _bare(row.get("sedation"), (*path, "sedation"), ("not assessed",), BARE_LEVEL)
                 for entry, place in _living(row.get("pain"), (*path, "pain")):
                     yield from _score(case, entry, place)
                 for name in PLAIN_SCORES:
@@ -59,6 +63,12 @@ def _observations(case: Case) -> Iterator[Problem]:
                         yield from _plain_score(case, entry, place)
                 for entry, place in _living(row.get("sedation"), (*path, "sedation")):
                     yield from _sedation(case, entry, place)
+
+
+def _bare(node: Node | None, path: Path, allowed: tuple[str, ...], example: str) -> Iterator[Problem]:
+    """A score without its scale has no meaning: 5 of 8 and 5 of 10 differ."""
+    if isinstance(node, Text) and node not in allowed:
+        yield Problem(node, path, f"'{node}' has no scale", f"write {example}, or: {' or '.join(allowed)}")
 
 
 def _goal(case: Case) -> Iterator[Problem]:
@@ -184,7 +194,7 @@ def _infusions(case: Case) -> Iterator[Problem]:
 
 
 def _infusion(entry: Map, path: Path) -> Iterator[Problem]:
-    if not any(entry.get(name) is not None for name in ("from", "running", "stopped")):
+    if not any(entry.get(name) is not None for name in ("from", "running", "stopped", "rate")):
         yield Problem(entry, path, "the infusion has no time", "add from:, running: or stopped: with a time")
     if entry.get("rate") is not None and entry.get("from") is None:
         yield Problem(
@@ -200,7 +210,8 @@ def _line(case: Case, name: str, written: list[Map], paths: dict[int, Path]) -> 
     events = happenings(case, written)
     starts = [(moment, entry) for moment, order, entry in events if order == RATE]
     first = starts[0] if starts else None
-    if first is None or first[1].get("drug") is None:
+    rate_alone = any(entry.get("rate") is not None and entry.get("from") is None for entry in written)
+    if not rate_alone and (first is None or first[1].get("drug") is None):
         entry = first[1] if first else written[0]
         what = "has no drug" if first else "has no start"
         cure = "add drug:" if first else "add an entry with drug:, from: and rate:"

@@ -9,6 +9,7 @@ from handoff.plugin import FormulaInputError
 
 HOURS_A_DAY = 24
 MINUTES_AN_HOUR = 60
+MCG_IN_MG = 1000
 
 
 def _checked(name: str, value: float, lowest: float = 0, highest: float = math.inf) -> float:
@@ -86,6 +87,17 @@ def rate_mg_h(rate_mg_kg_h: float, mass_kg: float) -> float:
     if _checked("mass", mass_kg) == 0:
         raise FormulaInputError("the mass must be above 0 kg")
     return _checked("rate", rate_mg_kg_h) * mass_kg
+
+
+def rate_mcg_kg_min(rate_mg_h: float, mass_kg: float) -> float:
+    """Return the rate of an infusion in mcg/kg/min, from mg/h and the mass in kg.
+
+    Raises:
+        FormulaInputError: A negative rate, or no mass above 0.
+    """
+    if _checked("mass", mass_kg) == 0:
+        raise FormulaInputError("the mass must be above 0 kg")
+    return _checked("rate", rate_mg_h) * MCG_IN_MG / MINUTES_AN_HOUR / mass_kg
 
 
 def mass_in_volume_mg(volume_ml: float, concentration_mg_ml: float) -> float:

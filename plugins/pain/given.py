@@ -12,7 +12,6 @@ from . import formula
 from .names import Drug, drug_of, route_of
 
 DAY = timedelta(hours=formula.HOURS_A_DAY)
-MCG_IN_MG = 1000
 DOSE, BLOCK, PUMP = "dose", "block", "patient-controlled"
 OLDEST = datetime.min.replace(tzinfo=UTC)
 

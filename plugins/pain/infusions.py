@@ -24,7 +24,8 @@ class Run:
     """One rate of one infusion from ``start`` to ``end``, the last moment at which it is confirmed.
 
     ``open`` is True where nothing says that it stopped at ``end``. ``mg_h`` is None where the
-    rate cannot be turned into mg/h; ``missing`` says why. ``weight`` names the weight used.
+    rate cannot be turned into mg/h; ``missing`` says why. ``kg`` is the
+    weight of the patient, ``weight`` names it where the rate needed it.
     """
 
     line: str
@@ -36,6 +37,7 @@ class Run:
     mg_h: float | None
     written: str
     missing: str
+    kg: float | None
     weight: str
     node: Node
 
@@ -106,7 +108,8 @@ def _run(case: Case, line: str, moment: datetime, entry: Map, known: dict[str, N
     mg_h, missing, weight = _rate(case, entry.get("rate"), known)
     route = route_of(case, known.get("route")) or "IV"
     rate = words(entry.get("rate"))
-    return Run(line, drug, route, moment, moment, True, mg_h, rate, missing, weight, entry)
+    kg, _ = _weight(case, known.get("weight"))
+    return Run(line, drug, route, moment, moment, True, mg_h, rate, missing, kg, weight, entry)
 
 
 def _rate(case: Case, rate: Node | None, known: dict[str, Node]) -> tuple[float | None, str, str]:

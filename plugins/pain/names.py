@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from dataclasses import dataclass
 
 from handoff.plugin import Case, Map, Node, words
@@ -46,3 +47,19 @@ def _one_name(case: Case, table: str, written: str) -> str:
     if written in known:
         return written
     return next((name for name, entry in known.items() if written in entry.get("also", ())), "")
+
+
+def slug(text: str) -> str:
+    """Return ``text`` as part of a key."""
+    return "_".join("".join(char if char.isalnum() else " " for char in text.lower()).split()) or "unnamed"
+
+
+def unique_keys(names: Iterable[str]) -> tuple[str, ...]:
+    """Return one key part for each name, in order; names that would share one are told apart by a number."""
+    seen: dict[str, int] = {}
+    keys = []
+    for name in names:
+        key = slug(name)
+        seen[key] = seen.get(key, 0) + 1
+        keys.append(key if seen[key] == 1 else f"{key}_{seen[key]}")
+    return tuple(keys)

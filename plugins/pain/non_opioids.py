@@ -12,14 +12,13 @@ from handoff.plugin import (
     Part,
     System,
     Working,
-    child,
     number_text,
     with_unit,
-    yes,
 )
 
 from . import formula
 from .charted import Charted, Portion
+from .early import unasked
 from .limits import Limit, limit
 from .names import IBUPROFEN, PARACETAMOL
 
@@ -135,7 +134,7 @@ def _shown(case: Case, total: _Total) -> str:
 
 
 def _not_asked(case: Case) -> str:
-    return "" if yes(child(case.block, "home_doses_asked")) else f"; {NOT_ASKED}"
+    return f"; {NOT_ASKED}" if unasked(case) else ""
 
 
 def _working(total: _Total) -> Working:
@@ -154,10 +153,12 @@ def _rule(total: _Total) -> str:
 
 def _cautions(case: Case, total: _Total) -> tuple[str, ...]:
     said = []
-    if not yes(child(case.block, "home_doses_asked")):
+    if unasked(case):
         said.append("ask about doses at home, in the ambulance and in combination products")
     if total.limit.missing:
         said.append(f"not held against a limit: {total.limit.missing}")
+    if total.drug == IBUPROFEN:
+        said += [str(case.parameters[name].value) for name in ("ibuprofen.hold", "ibuprofen.burn_warning")]
     return tuple(said)
 
 

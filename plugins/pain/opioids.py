@@ -20,8 +20,8 @@ from handoff.plugin import (
 
 from . import formula
 from .charted import Charted, Portion
-from .given import MCG_IN_MG
 from .names import OPIOID, factor_heading
+from .pumps import pumps
 
 KEY = "pain.opioid_equivalent_24h"
 LABEL = "Opioid exposure in 24 h"
@@ -84,7 +84,7 @@ def _term(case: Case, table: Mapping[str, Any], portion: Portion) -> tuple[float
 def _in_unit(mg: float, suffix: str) -> float:
     if not suffix:
         return mg
-    return mg * MCG_IN_MG if suffix == "_per_mcg" else formula.mean_rate_mcg_h(mg * MCG_IN_MG)
+    return mg * formula.MCG_IN_MG if suffix == "_per_mcg" else formula.mean_rate_mcg_h(mg * formula.MCG_IN_MG)
 
 
 def _gap(portion: Portion, term: tuple[float, str] | None, called: str) -> str:
@@ -116,4 +116,7 @@ def _cautions(case: Case, charted: Charted) -> tuple[str, ...]:
         said.append(
             f"what ran on {joined(list(dict.fromkeys(open_lines)))} since it was last seen is not in the total"
         )
+    unread = [pump for pump in pumps(case) if pump.drug.group == OPIOID and pump.unread_since(case.now)]
+    if unread:
+        said.append("what a patient-controlled pump gave since it was last read is not in the total")
     return tuple(said)
