@@ -92,8 +92,7 @@ def _absorption(case: Case, charted: Charted) -> tuple[Item, ...]:
             part=Part.ASSESSMENT,
             system=System.PAIN,
             value=drugs,
-            shown=f"{drugs} given within {number_text(hours)} h of the burn ({size}): may be absorbed late or not at all, "
-            "and all at once later",
+            shown=f"{drugs} within {number_text(hours)} h of the burn ({size}): may be absorbed late or not at all",
             as_of=slow[-1].latest,
             flag=Flag.REVIEW if area_pct is not None else Flag.NONE,
             sources=tuple(

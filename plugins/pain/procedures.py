@@ -1,4 +1,4 @@
-"""The next painful procedure: by when to give what is prescribed, beside sedation and breathing, and the checks after."""
+"""The next painful procedure: by when to give what is prescribed, and the checks before and after."""
 
 from __future__ import annotations
 
