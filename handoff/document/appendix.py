@@ -6,9 +6,9 @@ from collections.abc import Iterable
 from dataclasses import dataclass
 
 from handoff.assess import Assessment
-from handoff.document.sections import NOT_RECORDED, Row, row, sentence, shown
+from handoff.document.sections import NOT_RECORDED, Row, cautions_of, row, sentence, shown
 from handoff.parameters import Source
-from handoff.plugin import Flag, Item
+from handoff.plugin import Flag, Item, Working
 
 
 class Citations:
@@ -50,6 +50,15 @@ class Figure:
 
 
 @dataclass(frozen=True, slots=True)
+class Note:
+    """A value that is no sum: the sources and cautions that stand behind it."""
+
+    what: str
+    cautions: str
+    sources: str
+
+
+@dataclass(frozen=True, slots=True)
 class Gap:
     """One thing that is not recorded, and how it is printed."""
 
@@ -64,6 +73,7 @@ class Appendix:
 
     made_by: str
     figures: tuple[Figure, ...]
+    notes: tuple[Note, ...]
     details: tuple[Row, ...]
     sources: tuple[Cited, ...]
     gaps: tuple[Gap, ...]
@@ -72,13 +82,13 @@ class Appendix:
 def appendix(assessment: Assessment) -> Appendix:
     """Return the appendix of the handover."""
     citations = Citations()
-    worked = [item for item in assessment.items if item.working or item.sources or item.cautions]
-    figures = tuple(_figure(item, citations) for item in worked if item.flag is not Flag.NOT_RECORDED)
-    details = [item for item in assessment.items if item.detail and item.flag is not Flag.NOT_RECORDED]
+    present = [item for item in assessment.items if item.flag is not Flag.NOT_RECORDED]
+    unworked = [item for item in present if not item.working]
     return Appendix(
         made_by=_made_by(assessment),
-        figures=figures,
-        details=tuple(row(item, assessment) for item in details if item not in worked),
+        figures=tuple(_figure(item, item.working, citations) for item in present if item.working),
+        notes=tuple(_note(item, citations) for item in unworked if item.sources or item.cautions),
+        details=tuple(row(item, assessment) for item in unworked if item.detail),
         sources=citations.cited(),
         gaps=tuple(
             Gap(sentence(item.label), shown(item), f"{item.part.value}, {item.system.value}")
@@ -95,17 +105,22 @@ def _made_by(assessment: Assessment) -> str:
     )
 
 
-def _figure(item: Item, citations: Citations) -> Figure:
-    working = item.working
-    inputs = working.inputs if working else ()
-    said = [f"{part.label} {part.shown or NOT_RECORDED}" + (f" (line {part.line})" if part.line else "") for part in inputs]
+def _note(item: Item, citations: Citations) -> Note:
+    return Note(sentence(item.label), cautions_of([item]), citations.cite(item.sources))
+
+
+def _figure(item: Item, working: Working, citations: Citations) -> Figure:
+    said = []
+    for part in working.inputs:
+        line = f" (line {part.line})" if part.line else ""
+        said.append(f"{part.label} {part.shown or NOT_RECORDED}{line}")
     return Figure(
         what=sentence(item.label),
         value=shown(item),
-        formula=working.formula if working else "",
-        sum=working.sum if working else "",
+        formula=working.formula,
+        sum=working.sum,
         inputs="; ".join(said),
-        rule=working.rule if working else "",
+        rule=working.rule,
         sources=citations.cite(item.sources),
-        cautions=" ".join(item.cautions),
+        cautions=cautions_of([item]),
     )

@@ -50,7 +50,9 @@ def burns(assessment: Assessment) -> tuple[Burn, ...]:
             around=_yes_no(around),
             line=str(line or ""),
         )
-        for region, face, depth, share, counted, around, line in _rows(assessment, "area", "burns", BURN_COLUMNS)
+        for region, face, depth, share, counted, around, line in _rows(
+            assessment, "area", "burns", BURN_COLUMNS
+        )
     )
 
 
@@ -66,7 +68,9 @@ def hours(assessment: Assessment) -> tuple[Hour, ...]:
             not_confirmed=_amount(unsure),
             urine=str(urine_text or _amount(urine)),
         )
-        for hour, start, due, given, unsure, urine, urine_text in _rows(assessment, "fluid", "hours", HOUR_COLUMNS)
+        for hour, start, due, given, unsure, urine, urine_text in _rows(
+            assessment, "fluid", "hours", HOUR_COLUMNS
+        )
     )
 
 

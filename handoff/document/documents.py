@@ -8,8 +8,6 @@ from handoff.document.context import Data, context
 from handoff.document.finish import Properties, finish
 from handoff.document.handover import handover
 from handoff.document.paper import Page
-from handoff.document.read_back import check_marks, check_printed
-from handoff.document.render import fill, template_bytes
 
 HANDOVER = "handover.docx"
 CARE_PLAN = "care-plan.docx"
@@ -31,11 +29,17 @@ def draft(assessment: Assessment, stem: str) -> dict[str, bytes]:
     turned = policy.care_plan_orientation == "landscape"
     return {
         f"{stem}-{HANDOVER}": _made(HANDOVER, context(handover(assessment)), assessment, Page(policy.paper)),
-        f"{stem}-{CARE_PLAN}": _made(CARE_PLAN, context(care_plan(assessment)), assessment, Page(policy.paper, turned)),
+        f"{stem}-{CARE_PLAN}": _made(
+            CARE_PLAN, context(care_plan(assessment)), assessment, Page(policy.paper, turned)
+        ),
     }
 
 
 def _made(template: str, data: dict[str, Data], assessment: Assessment, page: Page) -> bytes:
+    # The Word libraries are heavy; whoever only needs the sections or the references does not load them.
+    from handoff.document.read_back import check_marks, check_printed  # noqa: PLC0415
+    from handoff.document.render import fill, template_bytes  # noqa: PLC0415
+
     filled = fill(template_bytes(template), template, data)
     frame = data["frame"]
     title = f"{frame['title']}, made at {frame['made_at']}" if isinstance(frame, dict) else template

@@ -27,9 +27,22 @@ from handoff.document.timeline import Moment, Pending, pending, timeline
 from handoff.plugin import Flag, Item, Part, System, words
 
 ELSEWHERE = frozenset(
-    f"handover.{name}" for name in ("severity", "if_then", "requests", "pending", "to_do", "from", "to")
+    f"handover.{name}" for name in ("if_then", "requests", "pending", "to_do", "from", "to")
 )
-"""Items that have a place of their own on the page and are not repeated as rows."""
+"""Items that have a table of their own and are not repeated as rows."""
+
+IN_THE_BAND = frozenset(
+    (
+        "handover.severity",
+        "injury.at",
+        "injury.hours_since",
+        "patient.allergies",
+        "patient.isolation",
+        "patient.resuscitation",
+        "patient.weight",
+    )
+)
+"""Items that stand in the identity band; they are repeated as rows only where they carry a flag."""
 
 BEDSIDE_CHECKS = (
     ("identity", "Identity band read together: name, birth date, record number"),
@@ -98,7 +111,7 @@ def handover(assessment: Assessment) -> Handover:
         situation=_section(assessment, Part.SITUATION),
         background=_section(assessment, Part.BACKGROUND),
         systems=_systems(assessed, assessment),
-        assessment_missing=missing_line(item for item in assessed if item.flag is Flag.NOT_RECORDED),
+        assessment_missing=missing_line(assessed),
         recommendation=_section(assessment, Part.RECOMMENDATION),
         requests=state.texts(written.get("requests")),
         timeline=timeline(assessment, shift),
@@ -125,13 +138,14 @@ def _section(assessment: Assessment, part: Part) -> Section:
     return Section(
         rows=tuple(row(item, assessment) for item in printed),
         cautions=cautions_of(printed),
-        missing=missing_line(item for item in items if item.flag is Flag.NOT_RECORDED),
+        missing=missing_line(items),
     )
 
 
 def _printed(items: Iterable[Item]) -> Iterable[Item]:
     for item in items:
-        if item.flag is not Flag.NOT_RECORDED and not item.detail and item.key not in ELSEWHERE:
+        placed = item.key in ELSEWHERE or (item.key in IN_THE_BAND and item.flag is Flag.NONE)
+        if item.flag is not Flag.NOT_RECORDED and not item.detail and not placed:
             yield item
 
 

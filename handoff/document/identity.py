@@ -125,6 +125,8 @@ def _resuscitation(assessment: Assessment) -> str:
     by, at, scope = words(child(node, "by")), state.when(child(node, "at")), words(child(node, "scope"))
     parts = [decision, scope, by or "decider not recorded"]
     parts.append(state.clock.time(at, assessment.now) if at else "time not recorded")
+    seen = words(child(node, "form_seen"))
+    parts.append(f"form seen: {seen or NOT_RECORDED}")
     return ", ".join(part for part in parts if part)
 
 

@@ -6,14 +6,20 @@ a test proves that they are what this script makes.
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from datetime import datetime
 from io import BytesIO
 from pathlib import Path
 from typing import Any
 
+from docx import Document
+from docx.enum.section import WD_ORIENT
+from docx.oxml import parse_xml
+from docx.oxml.ns import qn
+from docx.shared import Twips
+
 from handoff.document.finish import TOOL, repacked
 from handoff.document.making import care_plan_template, handover_template
+from handoff.document.making.handover_parts import WIDTH
 from handoff.document.making.shared import page_footer, page_header
 from handoff.document.making.styles import styles_xml
 from handoff.document.paper import SIZES
@@ -32,23 +38,20 @@ KEPT = ("styles", "settings", "fontTable", "theme", "webSettings")
 def make_all() -> dict[str, bytes]:
     """Return the built-in templates by file name."""
     return {
-        "handover.docx": make(handover_template.body(), handover_template.WIDTH, landscape=False),
+        "handover.docx": make(handover_template.body(), WIDTH, landscape=False),
         "care-plan.docx": make(care_plan_template.body(), care_plan_template.WIDTH, landscape=True),
     }
 
 
 def make(body: str, width: int, *, landscape: bool) -> bytes:
     """Return a template with that body, ``width`` twentieths of a point wide, as the bytes of a .docx file."""
-    from docx import Document
-    from docx.oxml import parse_xml
-
     document = Document()
     part = document.part
     _keep_only(part, KEPT)
     _keep_only(document.part.package, ("officeDocument", "core-properties", "extended-properties"))
     _replace_children(document.styles.element, parse_xml(styles_xml()))
     _set_page(document.sections[0], landscape)
-    _set_settings(document.settings.element, parse_xml)
+    _set_settings(document.settings.element)
     section = document.sections[0]
     for place, text in ((section.header, page_header(width)), (section.footer, page_footer(width))):
         place.is_linked_to_previous = False
@@ -79,21 +82,25 @@ def _replace_children(element: Any, source: Any) -> None:
 
 
 def _set_page(section: Any, landscape: bool) -> None:
-    from docx.enum.section import WD_ORIENT
-    from docx.shared import Twips
-
     width, height = SIZES["A4"]
     section.orientation = WD_ORIENT.LANDSCAPE if landscape else WD_ORIENT.PORTRAIT
-    section.page_width, section.page_height = (Twips(height), Twips(width)) if landscape else (Twips(width), Twips(height))
+    section.page_width, section.page_height = (
+        (Twips(height), Twips(width)) if landscape else (Twips(width), Twips(height))
+    )
     section.left_margin = section.right_margin = Twips(680)
     section.top_margin, section.bottom_margin = Twips(1020), Twips(1020)
     section.header_distance, section.footer_distance = Twips(480), Twips(400)
 
 
-def _set_settings(settings: Any, parse_xml: Callable[[str], Any]) -> None:
-    from docx.oxml.ns import qn
-
-    for name in ("w:zoom", "w:proofState", "w:savePreviewPicture", "w:rsids", "w:doNotAutoCompressPictures", "w:shapeDefaults"):
+def _set_settings(settings: Any) -> None:
+    for name in (
+        "w:zoom",
+        "w:proofState",
+        "w:savePreviewPicture",
+        "w:rsids",
+        "w:doNotAutoCompressPictures",
+        "w:shapeDefaults",
+    ):
         for child in settings.findall(qn(name)):
             settings.remove(child)
     for compatibility in settings.iter(qn("w:compatSetting")):

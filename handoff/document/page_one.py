@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from datetime import UTC, datetime
@@ -12,8 +13,15 @@ from handoff.document.schedule import Shift, is_overdue
 from handoff.document.sections import sentence, shown
 from handoff.plugin import Action, Flag, Item, Urgency, entries, plural, words
 
-MOST_LINES = 7
-"""Lines of one table of page one; what is left is named below it and stands in full further on."""
+MOST_ACTIONS, MOST_TASKS, MOST_DUE = 6, 5, 5
+"""Lines of each table of page one; what is left is named below it and stands in full further on."""
+
+ENOUGH_LETTERS = 110
+"""A finding that has said so much is cut at the end of its clause, and says that it was."""
+
+
+_CLAUSE = re.compile(r"(?<=;)\s+|(?<=\w\w\w\.)\s+|\n+")
+"""Where a clause ends; the point of ``Dr B. Osei`` is not such a place."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -68,10 +76,10 @@ def page_one(assessment: Assessment, shift: Shift) -> PageOne:
     due, more_due = _due(assessment, shift, refs)
     gaps = [sentence(item.label) for item in ranked if item.flag is Flag.NOT_RECORDED]
     return PageOne(
-        actions=tuple(_key_row(item, shift) for item in acting[:MOST_LINES]),
-        more_actions="; ".join(_names([*acting[MOST_LINES:], *unranked])),
-        tasks=tuple(_task(action, shift, refs[action.key]) for action in tasks[:MOST_LINES]),
-        more_tasks=", ".join(refs[action.key] for action in tasks[MOST_LINES:]),
+        actions=tuple(_key_row(item, shift) for item in acting[:MOST_ACTIONS]),
+        more_actions="; ".join(_names([*acting[MOST_ACTIONS:], *unranked])),
+        tasks=tuple(_task(action, shift, refs[action.key]) for action in tasks[:MOST_TASKS]),
+        more_tasks=", ".join(refs[action.key] for action in tasks[MOST_TASKS:]),
         due=due,
         more_due=more_due,
         if_then=tuple(
@@ -99,7 +107,17 @@ def _why(item: Item) -> str:
 
 def _key_row(item: Item, shift: Shift) -> KeyRow:
     time = shift.time(item.as_of) if item.as_of else ""
-    return KeyRow(sentence(item.label), shown(item), time, _why(item))
+    return KeyRow(sentence(item.label), _in_short(shown(item)), time, _why(item))
+
+
+def _in_short(text: str) -> str:
+    clauses = _CLAUSE.split(text)
+    kept = [clauses[0]]
+    for clause in clauses[1:]:
+        if len(" ".join(kept)) >= ENOUGH_LETTERS:
+            return f"{' '.join(kept).rstrip(';')} (more further on)"
+        kept.append(clause)
+    return text
 
 
 def _task(action: Action, shift: Shift, ref: str) -> Task:
@@ -118,8 +136,8 @@ def _due(assessment: Assessment, shift: Shift, refs: dict[str, str]) -> tuple[tu
     named = [(_key_row(item, shift), sentence(item.label)) for item in ranked]
     named += [(_late_row(action, shift, refs), refs[action.key]) for action in late]
     named += [(_key_row(item, shift), sentence(item.label)) for item in rest]
-    more = "; ".join(name for _, name in named[MOST_LINES:])
-    return tuple(row for row, _ in named[:MOST_LINES]), more
+    more = "; ".join(name for _, name in named[MOST_DUE:])
+    return tuple(row for row, _ in named[:MOST_DUE]), more
 
 
 def _first_due(action: Action) -> datetime:

@@ -8,6 +8,8 @@ from io import BytesIO
 from typing import Any
 from zipfile import ZipFile
 
+from lxml import etree
+
 from handoff.document.context import Data, texts
 from handoff.document.errors import DocumentError
 from handoff.document.names import WORD
@@ -32,7 +34,9 @@ def check_printed(content: bytes, printed: list[str], data: Mapping[str, Data]) 
     for path, text in fields:
         times[text] -= 1
         if times[text] < 0:
-            raise DocumentError(f"the template does not print the field {path}; put it back into the template")
+            raise DocumentError(
+                f"the template does not print the field {path}; put it back into the template"
+            )
     page = text_of(content)
     place = 0
     for text in printed:
@@ -51,10 +55,14 @@ def check_marks(content: bytes, data: Data) -> None:
     Raises:
         DocumentError: A tag is missing; names it.
     """
-    tags = {tag.get(f"{WORD}val") for root in _roots(content) for tag in root.iter(f"{WORD}tag", f"{WORD}alias")}
+    tags = {
+        tag.get(f"{WORD}val") for root in _roots(content) for tag in root.iter(f"{WORD}tag", f"{WORD}alias")
+    }
     for mark in _marks(data):
         if str(mark) not in tags:
-            raise DocumentError(f"the template has no content control for {mark}; put it back into the template")
+            raise DocumentError(
+                f"the template has no content control for {mark}; put it back into the template"
+            )
 
 
 def text_of(content: bytes) -> str:
@@ -63,8 +71,6 @@ def text_of(content: bytes) -> str:
 
 
 def _roots(content: bytes) -> Iterable[Any]:
-    from lxml import etree
-
     with ZipFile(BytesIO(content)) as file:
         names = file.namelist()
         for start in ("word/document", "word/header", "word/footer"):

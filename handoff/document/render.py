@@ -5,15 +5,17 @@ from __future__ import annotations
 from collections.abc import Mapping
 from io import BytesIO
 from pathlib import Path
-from typing import TYPE_CHECKING, Any
+from typing import Any
+from xml.sax.saxutils import escape
+
+from docxtpl import DocxTemplate
+from jinja2 import StrictUndefined, TemplateError, pass_context
+from jinja2.sandbox import SandboxedEnvironment
+from markupsafe import Markup
 
 from handoff.document.context import Data
 from handoff.document.errors import DocumentError
 from handoff.document.sections import Mark
-
-if TYPE_CHECKING:
-    from docxtpl import DocxTemplate
-    from jinja2.sandbox import SandboxedEnvironment
 
 FILTERS = ("capitalize", "count", "default", "first", "join", "last", "length", "lower", "trim", "upper")
 """Filters that a template may use; none of them can bring markup in or cut text out of sight."""
@@ -38,15 +40,14 @@ def fill(template: bytes, name: str, data: Mapping[str, Data]) -> Filled:
     Raises:
         DocumentError: The template names a field that is not there, or a tag in it is not closed.
     """
-    from docxtpl import DocxTemplate
-    from jinja2 import TemplateError
-
     printed: list[str] = []
     document = DocxTemplate(BytesIO(template))
     try:
         document.render(dict(data), _environment(printed), autoescape=True)
     except TemplateError as error:
-        raise DocumentError(f"the template {name} cannot be filled: {error.message}; correct that field in it") from error
+        raise DocumentError(
+            f"the template {name} cannot be filled: {error.message}; correct that field in it"
+        ) from error
     return Filled(document, printed)
 
 
@@ -56,10 +57,6 @@ def template_bytes(name: str) -> bytes:
 
 
 def _environment(printed: list[str]) -> SandboxedEnvironment:
-    from jinja2 import StrictUndefined, pass_context
-    from jinja2.sandbox import SandboxedEnvironment
-    from markupsafe import Markup
-
     class KeysFirst(SandboxedEnvironment):
         """``{{ a.items }}`` means the key ``items``, never the method."""
 
@@ -74,7 +71,7 @@ def _environment(printed: list[str]) -> SandboxedEnvironment:
             return value
         if not isinstance(value, Mark):
             printed.append(str(value))
-        return Markup(_escaped(str(value)))
+        return Markup(_escaped(str(value)))  # noqa: S704 (every character of markup was escaped)
 
     environment = KeysFirst(undefined=StrictUndefined, finalize=print_text, autoescape=True)
     environment.filters = {name: environment.filters[name] for name in FILTERS}
@@ -83,8 +80,6 @@ def _environment(printed: list[str]) -> SandboxedEnvironment:
 
 def _escaped(text: str) -> str:
     """Return ``text`` as XML in which nothing is left that the filling could take for a tag of its own."""
-    from xml.sax.saxutils import escape
-
     text = escape(text, {'"': "&quot;", "{": "&#123;", "}": "&#125;"})
     text = text.replace("\n", '</w:t><w:br/><w:t xml:space="preserve">')
     return text.replace("\t", '</w:t><w:tab/><w:t xml:space="preserve">')

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 
 from handoff.assess import Assessment
@@ -68,13 +68,13 @@ class Band:
 
 
 def sentence(text: str) -> str:
-    """Return ``text`` with a capital first letter and the rest as it is."""
-    return text[:1].upper() + text[1:]
+    """Return ``text`` with a capital first letter; a name such as pH keeps its own."""
+    return text if text[1:2].isupper() else text[:1].upper() + text[1:]
 
 
 def shown(item: Item) -> str:
     """Return how an item is printed; never empty."""
-    return item.shown or NOT_RECORDED
+    return item.shown.strip() or NOT_RECORDED
 
 
 def row(item: Item, assessment: Assessment) -> Row:
@@ -83,21 +83,18 @@ def row(item: Item, assessment: Assessment) -> Row:
     return Row(sentence(item.label), shown(item), time, FLAG_WORDS[item.flag], item.flag is Flag.ACTION)
 
 
-def missing_line(items: Iterable[Item]) -> str:
-    """Return the labels of what is not recorded in one line; says so where nothing is missing."""
-    labels: list[str] = []
-    for item in items:
-        said = sentence(item.label)
-        if item.shown not in ("", NOT_RECORDED):
-            said += f" ({item.shown})"
-        if said not in labels:
-            labels.append(said)
+def missing_line(items: Sequence[Item]) -> str:
+    """Return in one line what is not recorded among ``items``; says so where nothing is missing."""
+    if not items:
+        return "no entry was worked out for this section; take it from the bedside"
+    labels = dict.fromkeys(sentence(item.label) for item in items if item.flag is Flag.NOT_RECORDED)
     return "; ".join(labels) if labels else "none of the entries of this section"
 
 
 def cautions_of(items: Iterable[Item]) -> str:
-    """Return the cautions of the items in one line, each once; an empty string for none."""
-    return " ".join(dict.fromkeys(caution for item in items for caution in item.cautions))
+    """Return the cautions of the items as sentences, each once; an empty string for none."""
+    said = dict.fromkeys(sentence(caution).rstrip(".") for item in items for caution in item.cautions)
+    return " ".join(f"{caution}." for caution in said)
 
 
 def bands(assessment: Assessment) -> tuple[Band, ...]:

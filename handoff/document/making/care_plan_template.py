@@ -4,11 +4,11 @@ from __future__ import annotations
 
 from handoff.document.making.markup import (
     BLANK,
+    Column,
     blank,
-    cell,
     each,
-    each_row,
     header_row,
+    listing,
     marked,
     paragraph,
     row,
@@ -17,7 +17,15 @@ from handoff.document.making.markup import (
     tick_box,
     when,
 )
-from handoff.document.making.shared import identity_band, labelled, signature_row, title, unit_line, warnings
+from handoff.document.making.shared import (
+    identity_band,
+    labelled,
+    signature_row,
+    sources,
+    title,
+    unit_line,
+    warnings,
+)
 
 WIDTH = 15478
 """Text width of the page in twentieths of a point."""
@@ -25,59 +33,63 @@ WIDTH = 15478
 
 def body() -> str:
     """Return the body of the template."""
-    period = paragraph("Subtitle", "For the shift from {{ start }} to {{ end }}. Tick when done; write the time done and initials beside it.")
+    period = "For the shift from {{ start }} to {{ end }}. Tick when done; write the time done and initials beside it."
+    nothing = "No task was worked out: write the plan by hand."
     return "".join(
         (
             title(),
-            unit_line(period),
+            unit_line(paragraph("Subtitle", period)),
             warnings(WIDTH),
             _band(),
+            paragraph("Gap"),
             when("now", paragraph("Key", run("DO NOW: ", "Strong"), run("{{ now }}", "Reference"))),
-            when("not areas", paragraph("Key", "No task was worked out: write the plan by hand.")),
+            when("not areas", paragraph("Key", nothing)),
             each("area in areas", paragraph("Heading1", "{{ area.title }}"), _tasks()),
             paragraph("Gap"),
             _signatures(),
-            _sources(),
+            when("sources", paragraph("Heading1", "Sources"), sources("sources", 800, WIDTH - 800)),
+            paragraph("Gap"),
         )
     )
 
 
 def _band() -> str:
-    quarter = WIDTH // 4
+    half = 2 * (WIDTH // 4)
     burn = row(
-        labelled(2 * quarter, "Time of burn", "{{ identity.burn }}", span=2),
-        labelled(WIDTH - 2 * quarter, "Since", "{{ identity.since }}", span=2),
+        labelled(half, "Time of burn", "{{ identity.burn }}", span=2),
+        labelled(WIDTH - half, "Since", "{{ identity.since }}", span=2),
     )
     return identity_band(WIDTH, burn)
 
 
 def _tasks() -> str:
-    widths = [700, 5200, 9578]
     reference = marked("{{ task.tag }}", "Row", run("{{ task.ref }}", "Reference"))
-    what = cell(
-        widths[1],
-        paragraph(
-            "Normal",
-            run("{%r if task.urgent %}"),
-            run("{{ task.urgent }}", "FlagAction"),
-            run(" "),
-            run("{%r endif %}"),
-            run("{{ task.text }}", "Strong"),
-        ),
-        paragraph("Small", "{{ task.why }}"),
-        when("task.note", paragraph("Small", "{{ task.note }}")),
+    task = paragraph(
+        "Normal",
+        run("{%r if task.urgent %}"),
+        run("{{ task.urgent }}", "FlagAction"),
+        run(" "),
+        run("{%r endif %}"),
+        run("{{ task.text }}", "Strong"),
     )
-    rhythm = when(
-        "task.when or task.late",
-        paragraph("Boxes", run("{{ task.when }}", "Quiet"), run("   "), _boxes("task.late")),
+    note = when("task.note", paragraph("Small", "{{ task.note }}"))
+    rhythm = paragraph(
+        "Boxes",
+        run("{%r if task.when %}"),
+        run("{{ task.when }}", "Quiet"),
+        run("   "),
+        run("{%r endif %}"),
+        _boxes("task.late"),
     )
-    return table(
+    return listing(
         "Tasks of one problem area",
-        widths,
-        header_row(widths, "Ref", "What to do, and why", "When due: tick, time done, initials"),
-        each_row(
-            "task in area.tasks",
-            row(cell(widths[0], paragraph("Key", reference)), what, cell(widths[2], rhythm, paragraph("Boxes", _boxes("task.boxes")))),
+        "task in area.tasks",
+        Column(700, "Ref", paragraph("Key", reference)),
+        Column(5200, "What to do, and why", task + paragraph("Small", "{{ task.why }}") + note),
+        Column(
+            9578,
+            "When due: tick, time done, initials",
+            when("task.when or task.late", rhythm) + paragraph("Boxes", _boxes("task.boxes")),
         ),
     )
 
@@ -104,22 +116,4 @@ def _signatures() -> str:
         signature_row(widths, "Nurse of this shift", "", "nurse"),
         signature_row(widths, "Second reader", "", "second"),
         signature_row(widths, "Nurse of the next shift", "", "next"),
-    )
-
-
-def _sources() -> str:
-    widths = [800, 14678]
-    return when(
-        "sources",
-        paragraph("Heading1", "Sources"),
-        table(
-            "Sources",
-            widths,
-            header_row(widths, "Mark", "Source"),
-            each_row(
-                "source in sources",
-                row(cell(widths[0], paragraph("Small", "{{ source.mark }}")), cell(widths[1], paragraph("Small", "{{ source.text }}"))),
-            ),
-        ),
-        paragraph("Gap"),
     )

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import dataclass
 from xml.sax.saxutils import escape
 
 SHADE = "E6E8EA"
@@ -74,12 +75,39 @@ def header_row(widths: Sequence[int], *labels: str, heading: str = "") -> str:
     return row(*cells, header=True)
 
 
+@dataclass(frozen=True, slots=True)
+class Column:
+    """A column of a listing: its width in twentieths of a point, its label, and what its cells hold."""
+
+    width: int
+    label: str
+    inside: str
+
+
+def column(width: int, label: str, field_name: str, style: str = "Normal", look: str = "") -> Column:
+    """Return a column that prints one field, in a paragraph style and a character style."""
+    return Column(width, label, paragraph(style, run(f"{{{{ {field_name} }}}}", look)))
+
+
+def listing(caption: str, loop: str, *columns: Column, heading: str = "") -> str:
+    """Return a table with a header row and one row for each step of ``loop`` (``row in rows``)."""
+    widths = [part.width for part in columns]
+    return table(
+        caption,
+        widths,
+        header_row(widths, *(part.label for part in columns), heading=heading),
+        each_row(loop, row(*(cell(part.width, part.inside) for part in columns))),
+    )
+
+
 def each_row(loop: str, *rows: str) -> str:
     """Return ``rows`` to be printed once for each step of ``loop``."""
     return _row_control(f"for {loop}") + "".join(rows) + _row_control("endfor")
 
 
-def table(caption: str, widths: Sequence[int], *rows: str, style: str = "HandoffRows", first_row: bool = True) -> str:
+def table(
+    caption: str, widths: Sequence[int], *rows: str, style: str = "HandoffRows", first_row: bool = True
+) -> str:
     """Return a table of fixed widths; ``caption`` is read out by a screen reader."""
     grid = "".join(f'<w:gridCol w:w="{width}"/>' for width in widths)
     return (
@@ -120,4 +148,5 @@ def _content(tag: str, title: str, kind: str, inside: str) -> str:
 
 
 def _row_control(tag: str) -> str:
-    return f"<w:tr><w:tc><w:tcPr><w:tcW w:w=\"0\" w:type=\"auto\"/></w:tcPr>{paragraph('Normal', f'{{%tr {tag} %}}')}</w:tc></w:tr>"
+    width = '<w:tcPr><w:tcW w:w="0" w:type="auto"/></w:tcPr>'
+    return f"<w:tr><w:tc>{width}{paragraph('Normal', f'{{%tr {tag} %}}')}</w:tc></w:tr>"

@@ -6,8 +6,10 @@ from handoff.document.making.markup import (
     BLANK,
     blank,
     cell,
+    column,
     each,
     field,
+    listing,
     paragraph,
     row,
     run,
@@ -103,17 +105,34 @@ def identity_band(width: int, *further: str) -> str:
         labelled(widths[3], "Isolation", "{{ identity.isolation }}"),
     )
     return table(
-        "Who the patient is", widths, row(name, numbers), facts, *further, style="HandoffBand", first_row=False
+        "Who the patient is",
+        widths,
+        row(name, numbers),
+        facts,
+        *further,
+        style="HandoffBand",
+        first_row=False,
     )
 
 
 def signature_row(widths: list[int], label: str, who: str, key: str) -> str:
-    """Return a row to be signed: who, signature, date and time."""
+    """Return a row to be signed: who, signature, date and time; without ``who`` the name is left blank."""
+    name = blank(f"sign:{key}:name", f"{label}: name and role", BLANK * 3)
     return row(
         cell(widths[0], paragraph("Boxes", run(label, "Strong"))),
-        cell(widths[1], paragraph("Boxes", who) if who else paragraph("Boxes", blank(f"sign:{key}:name", f"{label}: name and role"))),
+        cell(widths[1], paragraph("Boxes", who or name)),
         cell(widths[2], paragraph("Boxes", blank(f"sign:{key}:signature", f"{label}: signature", BLANK * 2))),
         cell(widths[3], paragraph("Boxes", blank(f"sign:{key}:time", f"{label}: date and time"))),
+    )
+
+
+def sources(name: str, mark_width: int, text_width: int) -> str:
+    """Return the list of sources with their marks."""
+    return listing(
+        "Sources",
+        f"source in {name}",
+        column(mark_width, "Mark", "source.mark", "Small"),
+        column(text_width, "Source", "source.text", "Small"),
     )
 
 

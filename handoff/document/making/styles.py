@@ -29,8 +29,16 @@ def _defaults() -> str:
 
 
 def _style(
-    kind: str, key: str, name: str, paragraph: str = "", run: str = "", *, based: str = "", following: str = "",
-    default: bool = False, extra: str = "",
+    kind: str,
+    key: str,
+    name: str,
+    paragraph: str = "",
+    run: str = "",
+    *,
+    based: str = "",
+    following: str = "",
+    default: bool = False,
+    extra: str = "",
 ) -> str:
     marks = ' w:default="1"' if default else ""
     body = f'<w:name w:val="{name}"/>'
@@ -62,11 +70,24 @@ def _paragraph_styles() -> list[str]:
 
     add("Title", "Title", keep + _space(0, 0), bold + accent + _size(32), "Subtitle")
     add("Subtitle", "Subtitle", _space(0, 80), grey + _size(17))
-    add("Heading1", "heading 1", keep + under + _space(140, 50) + '<w:outlineLvl w:val="0"/>', bold + accent + _size(25), "Normal")
-    add("Heading2", "heading 2", keep + _space(80, 20) + '<w:outlineLvl w:val="1"/>', bold + _size(20), "Normal")
+    add(
+        "Heading1",
+        "heading 1",
+        keep + under + _space(140, 50) + '<w:outlineLvl w:val="0"/>',
+        bold + accent + _size(25),
+        "Normal",
+    )
+    add(
+        "Heading2",
+        "heading 2",
+        keep + _space(80, 20) + '<w:outlineLvl w:val="1"/>',
+        bold + _size(20),
+        "Normal",
+    )
     add("Header", "header", under + _space(0, 60), _size(17))
     add("Footer", "footer", over + _space(0, 0), grey + _size(15))
-    add("Key", "Key", "", _size(22))
+    add("Key", "Key", "", _size(21))
+    add("Task", "Task", "", _size(20))
     add("KeyNote", "Key note", _space(20, 20), _size(19))
     add("Label", "Label", "<w:keepNext/>", grey + _size(15))
     add("BandName", "Band name", "", bold + _size(30))
@@ -85,19 +106,36 @@ def _character_styles() -> list[str]:
     bold = "<w:b/><w:bCs/>"
     looks = [
         ("Strong", "Strong", bold),
-        ("FlagAction", "Flag action", f'{bold}<w:color w:val="FFFFFF"/>{_size(16)}<w:shd w:val="clear" w:color="auto" w:fill="000000"/>'),
-        ("FlagReview", "Flag review", f'{bold}{_size(16)}<w:bdr w:val="single" w:sz="6" w:space="0" w:color="000000"/>'),
+        (
+            "FlagAction",
+            "Flag action",
+            f'{bold}<w:color w:val="FFFFFF"/>{_size(16)}<w:shd w:val="clear" w:color="auto" w:fill="000000"/>',
+        ),
+        (
+            "FlagReview",
+            "Flag review",
+            f'{bold}{_size(15)}<w:bdr w:val="single" w:sz="6" w:space="0" w:color="000000"/>',
+        ),
         ("Reference", "Reference", f'{bold}<w:color w:val="{ACCENT}"/>'),
         ("Quiet", "Quiet", f'<w:color w:val="{GREY}"/>{_size(17)}'),
         ("PlaceholderText", "Placeholder Text", f'<w:color w:val="{GREY}"/>'),
     ]
-    default = '<w:style w:type="character" w:default="1" w:styleId="DefaultParagraphFont"><w:name w:val="Default Paragraph Font"/></w:style>'
-    return [default, *(_style("character", key, name, run=look, based="DefaultParagraphFont") for key, name, look in looks)]
+    default = _style("character", "DefaultParagraphFont", "Default Paragraph Font", default=True)
+    return [
+        default,
+        *(
+            _style("character", key, name, run=look, based="DefaultParagraphFont")
+            for key, name, look in looks
+        ),
+    ]
 
 
 def _table_styles() -> list[str]:
     def margins(top: int, side: int) -> str:
-        sides = "".join(f'<w:{name} w:w="{w}" w:type="dxa"/>' for name, w in (("top", top), ("left", side), ("bottom", top), ("right", side)))
+        sides = "".join(
+            f'<w:{name} w:w="{w}" w:type="dxa"/>'
+            for name, w in (("top", top), ("left", side), ("bottom", top), ("right", side))
+        )
         return f'<w:tblInd w:w="0" w:type="dxa"/>{{}}<w:tblCellMar>{sides}</w:tblCellMar>'
 
     def line(name: str, size: int, colour: str) -> str:
@@ -108,8 +146,12 @@ def _table_styles() -> list[str]:
     band = "".join(line(name, 12, ACCENT) for name in ("top", "left", "bottom", "right"))
     band += line("insideH", 4, LINE) + line("insideV", 4, LINE)
     alarm = "".join(line(name, 24, "000000") for name in ("top", "left", "bottom", "right"))
-    looks = (("HandoffRows", "Handoff rows", hair, 10), ("HandoffGrid", "Handoff grid", grid, 25),
-             ("HandoffBand", "Handoff band", band, 30), ("HandoffAlarm", "Handoff alarm", alarm, 40))
+    looks = (
+        ("HandoffRows", "Handoff rows", hair, 10),
+        ("HandoffGrid", "Handoff grid", grid, 25),
+        ("HandoffBand", "Handoff band", band, 30),
+        ("HandoffAlarm", "Handoff alarm", alarm, 40),
+    )
     plain = (
         '<w:style w:type="table" w:default="1" w:styleId="TableNormal"><w:name w:val="Normal Table"/>'
         f"<w:tblPr>{margins(0, 70).format('')}</w:tblPr></w:style>"
@@ -117,6 +159,8 @@ def _table_styles() -> list[str]:
     )
     made = [plain]
     for key, name, borders, top in looks:
-        properties = f"<w:tblPr>{margins(top, 70).format(f'<w:tblBorders>{borders}</w:tblBorders>')}</w:tblPr>"
+        properties = (
+            f"<w:tblPr>{margins(top, 70).format(f'<w:tblBorders>{borders}</w:tblBorders>')}</w:tblPr>"
+        )
         made.append(_style("table", key, name, based="TableNormal", extra=properties))
     return made
