@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass, field
 from datetime import datetime
+from typing import NamedTuple
 
 from handoff.plugin import Case, Map, Row, amount, child, entries, number, number_text, words
 
@@ -38,10 +39,28 @@ class Burn:
     sum: str = ""
     halved: bool = False
 
+    def row(self) -> BurnRow:
+        """Return the burn as a plain row for others."""
+        return BurnRow(
+            self.region, self.face, self.depth, self.tbsa_pct, self.counted, self.circumferential, self.line
+        )
+
     @property
     def where(self) -> str:
         """The region with its face: ``trunk, back``."""
         return f"{self.region}, {self.face}" if self.face else self.region
+
+
+class BurnRow(NamedTuple):
+    """One burned region as other plugins and the document read it; the share in % of body surface."""
+
+    region: str
+    face: str
+    depth: str
+    tbsa_pct: float | None
+    counted: bool | None
+    circumferential: bool
+    line: int
 
 
 @dataclass(frozen=True, slots=True)

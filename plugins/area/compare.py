@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from handoff.plugin import Case, Flag, Item, Part, System, Working, number_text
+from handoff.plugin import Case, Flag, Input, Item, Part, System, Working, number_text
 
 from . import formula
 from .assessment import PLACES, Assessment, Burn
@@ -141,7 +141,7 @@ def _earlier(case: Case, one: Assessment, index: int) -> Item:
         working=Working(
             formula="size of the region x burned share, added region by region",
             sum="; ".join(f"{burn.where} {burn.sum} {burn.depth}" for burn in one.burns),
-            inputs=tuple(case.input(burn.where, None, burn.extent) for burn in one.burns),
+            inputs=tuple(Input(burn.where, burn.extent, burn.line) for burn in one.burns),
             rule=one.table.name if one.table else one.method,
         ),
         sources=one.table.sources if one.table else (case.parameters.source_of("depth.counted"),),

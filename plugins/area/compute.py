@@ -52,7 +52,7 @@ def _values(assessment: Assessment | None) -> dict[str, object]:
     limbs = [limb for burn in round_it if (limb := limb_of(burn.region))]
     return {
         **pct,
-        "burns": assessment.burns,
+        "burns": tuple(burn.row() for burn in assessment.burns),
         "circumferential_regions": tuple(dict.fromkeys(burn.region for burn in round_it)),
         "circumferential_limbs": tuple(dict.fromkeys(limbs)),
         "special_sites": sites.sites(assessment),

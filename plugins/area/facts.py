@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from handoff.plugin import Case, amount, child, entries, joined, number_text, words
+from handoff.plugin import Case, amount, child, entries, joined, number, number_text, words
 
 from . import formula
 from .assessment import Assessment, Burn
@@ -160,6 +160,7 @@ def _injury(case: Case) -> dict[str, Fact]:
         "smoke": _smoke(case),
         "trauma": _trauma(case),
         "inhalation_signs": _inhalation_signs(case),
+        "bronchoscopy": _bronchoscopy(case),
     }
 
 
@@ -210,15 +211,39 @@ def _trauma(case: Case) -> Fact:
 
 
 def _inhalation_signs(case: Case) -> Fact:
-    rows = case.state.dated(child(case.state.root.get("airway_watch"), "signs"))
+    """Signs that raise the suspicion of inhalation, or what a bronchoscopy found."""
+    seen = _bronchoscopy(case)
+    if seen.value is not None:
+        return seen
+    looked_for = case.parameters["inhalation.signs"].value
     present: dict[str, str] = {}
-    for row in rows:
-        for key, value in row.entry.items():
-            if words(value) == "present":
-                present[str(key)] = f"{key} at {case.clock.time(row.at, case.now)}"
+    looked = False
+    for row in case.state.dated(child(case.state.root.get("airway_watch"), "signs")):
+        for sign in looked_for:
+            said = words(row.entry.get(sign))
+            looked = looked or said in ("present", "absent")
+            if said == "present":
+                present[sign] = f"{sign} at {case.clock.time(row.at, case.now)}"
     if present:
         return Fact(True, shown=f"airway signs charted: {joined(list(present.values()))}")
-    return Fact(False) if rows else Fact(missing="airway signs not recorded")
+    return (
+        Fact(False, shown="no airway sign charted as present")
+        if looked
+        else Fact(missing="airway signs not recorded")
+    )
+
+
+def _bronchoscopy(case: Case) -> Fact:
+    """The grade that the endoscopist recorded: above 0 is inhalation injury seen; 0 is none seen."""
+    rows = case.state.dated(child(case.state.root.get("airway_watch"), "bronchoscopy"))
+    graded = [(row, grade) for row in rows if (grade := number(row.entry.get("grade"))) is not None]
+    if not graded:
+        return Fact(missing="bronchoscopy not recorded")
+    row, grade = graded[-1]
+    at = case.clock.time(row.at, case.now)
+    return Fact(
+        grade > 0, shown=f"bronchoscopy at {at}, grade {number_text(grade)} as recorded by the endoscopist"
+    )
 
 
 def _wound(case: Case, assessment: Assessment | None, wounds: Wounds | None) -> dict[str, Fact]:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import re
+
 SIDES = ("left", "right")
 FACES = ("front", "back")
 PAIRED = ("arm", "upper arm", "forearm", "hand", "leg", "thigh", "lower leg", "foot", "buttock")
@@ -72,6 +74,15 @@ def lies_within(region: str, whole: str, trunk_holds_buttocks: bool) -> bool:
 def touches(region: str, other: str) -> bool:
     """Return whether one of the two regions lies within the other."""
     return lies_within(region, other, True) or lies_within(other, region, True)
+
+
+def named_in(text: str) -> tuple[str, ...]:
+    """Return the regions that free text names: ``left forearm and hand`` names the left forearm and hand."""
+    said = text.lower()
+    sides = [side for side in SIDES if side in said]
+    found = [name for name in (*PAIRED, *SINGLE) if re.search(rf"\b{name}s?\b", said)]
+    named = [full_name(name, side) for name in found for side in (sides or SIDES)]
+    return tuple(dict.fromkeys(name for name in named if name in REGIONS))
 
 
 def limb_of(region: str) -> str:

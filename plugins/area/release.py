@@ -8,7 +8,7 @@ from handoff.plugin import Action, Case, Flag, Item, Part, Row, Source, System, 
 
 from .goal import is_comfort
 from .limbs import LimbCheck, checks_of
-from .regions import REGIONS
+from .regions import limb_of, named_in, touches
 from .sites import RANK_CIRCUMFERENTIAL
 
 DONE = ("escharotomy", "fasciotomy")
@@ -46,7 +46,10 @@ def _waits(case: Case, request: Row) -> bool:
 
 
 def _same(site: str, other: str) -> bool:
-    return not site or not other or site.lower() == other.lower()
+    """Whether two sites in the nurse's words may be one: equal, unnamed, or naming regions that touch."""
+    if not site or not other or site.lower() == other.lower():
+        return True
+    return any(touches(one, two) for one in named_in(site) for two in named_in(other))
 
 
 def _request(case: Case, row: Row, index: int) -> Item:
@@ -67,15 +70,20 @@ def _request(case: Case, row: Row, index: int) -> Item:
     )
 
 
+def _one_limb(region: str, other: str) -> bool:
+    """Whether two regions belong to one limb: blood from a forearm may be found at the hand."""
+    return touches(limb_of(region) or region, limb_of(other) or other)
+
+
 def _checks(case: Case, row: Row) -> list[LimbCheck]:
-    """The bleeding checks after a release; a site that is no region of the body takes every check."""
-    site = words(row.entry.get("site")).lower()
-    names = [site] if site in REGIONS else ["whole body"]
-    checks = [check for name in names for check in checks_of(case, name)]
+    """The bleeding checks after a release; a site that names no region of the body takes every check."""
+    named = named_in(words(row.entry.get("site")))
     return [
         check
-        for check in checks
-        if check.at >= row.at and words(check.entry.get("bleeding")) not in ("", "not assessed")
+        for check in checks_of(case, "whole body")
+        if check.at >= row.at
+        and words(check.entry.get("bleeding")) not in ("", "not assessed")
+        and (not named or any(_one_limb(check.region, name) for name in named))
     ]
 
 

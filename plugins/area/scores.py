@@ -5,10 +5,13 @@ from __future__ import annotations
 from handoff.plugin import Case, Flag, Item, Part, Source, System, Working, joined, number_text, words
 
 from . import formula
-from .assessment import Assessment
+from .assessment import PLACES, Assessment
 from .criteria import Facts
+from .totals import SHOWN_PLACES
 
 CAUTION = "a sum of points, not a chance of death; accuracy falls at high scores and children differ"
+BAUX = ("area.revised_baux", "Revised Baux sum")
+ABSI = ("area.absi", "Abbreviated burn severity index")
 
 
 def items(case: Case, facts: Facts, assessment: Assessment | None) -> tuple[Item, ...]:
@@ -24,103 +27,95 @@ def items(case: Case, facts: Facts, assessment: Assessment | None) -> tuple[Item
 
 def _inhalation(facts: Facts) -> tuple[bool | None, str]:
     """Signs are not a diagnosis: without them there is none to count, with them it is left open."""
-    fact = facts["inhalation_signs"]
-    if fact.value is False:
-        return False, "no airway sign charted"
-    return None, fact.shown or fact.missing
+    seen, signs = facts["bronchoscopy"], facts["inhalation_signs"]
+    if isinstance(seen.value, bool):
+        return seen.value, seen.shown
+    if signs.value is False:
+        return False, signs.shown
+    return None, signs.shown or signs.missing
 
 
-def _both(without: float, with_it: float, why: str) -> str:
-    both = f"{number_text(without, 1)} without and {number_text(with_it, 1)} with inhalation injury"
-    return f"{both} ({why}; signs are not a diagnosis)"
+def _missing(facts: Facts, *names: str) -> list[str]:
+    return [facts[name].missing for name in names if facts[name].value is None]
+
+
+def _number(facts: Facts, name: str) -> float:
+    return float(facts[name].value or 0)
 
 
 def _baux(case: Case, facts: Facts, assessment: Assessment | None) -> Item:
-    label, key = "Revised Baux sum", "area.revised_baux"
     sources = (case.parameters.source_of("revised_baux.inhalation"),)
-    missing = [facts[name].missing for name in ("age_years", "counted_pct") if facts[name].value is None]
+    missing = _missing(facts, "age_years", "counted_pct")
     if missing:
-        return _not_computed(key, label, joined(missing), assessment, sources)
-    age, area = float(facts["age_years"].value or 0), float(facts["counted_pct"].value or 0)
+        return _not_computed(BAUX, missing, assessment, sources)
+    age, area = _number(facts, "age_years"), _number(facts, "counted_pct")
     points = case.parameters.number("revised_baux.inhalation")
-    without = formula.revised_baux_points(age, area, 0)
-    with_it = formula.revised_baux_points(age, area, points)
-    sum_text = f"age {number_text(age)} + area {number_text(area, 2)}"
-    inhaled, why = _inhalation(facts)
-    if inhaled is None:
-        shown = _both(without, with_it, why)
-        return _sum(
-            key,
-            label,
-            None,
-            shown,
-            f"{sum_text}; + {number_text(points)} with inhalation injury",
-            assessment,
-            sources,
-        )
-    return _sum(
-        key,
-        label,
-        without,
-        f"{number_text(without, 1)} points ({why})",
-        f"{sum_text} = {number_text(without, 2)}",
-        assessment,
-        sources,
-    )
+    sums = [formula.revised_baux_points(age, area, more) for more in (0, points)]
+    parts = f"age {number_text(age)} + area {number_text(area, PLACES)}"
+    return _scored(BAUX, parts, sums, points, facts, assessment, sources)
 
 
 def _absi(case: Case, facts: Facts, assessment: Assessment | None) -> Item:
-    label, key = "Abbreviated burn severity index", "area.absi"
     sources = tuple(case.parameters.source_of(name) for name in ("absi.bands", "absi.points"))
     sex = words(case.state.patient.get("sex"))
-    missing = [
-        facts[name].missing for name in ("age_years", "counted_pct", "full_pct") if facts[name].value is None
-    ]
+    missing = _missing(facts, "age_years", "counted_pct", "full_pct")
     missing += ["sex not recorded as male or female"] if sex not in ("male", "female") else []
     if missing:
-        return _not_computed(key, label, joined(list(dict.fromkeys(missing))), assessment, sources)
+        return _not_computed(ABSI, missing, assessment, sources)
     bands, points = case.parameters.table("absi.bands"), case.parameters.table("absi.points")
-    age, area = float(facts["age_years"].value or 0), float(facts["counted_pct"].value or 0)
     # The youngest band begins at birth, so an age of 0 scores as the first begun band.
-    age_points = max(formula.band_points(age, bands["years_a_point"], bands["age_points_at_most"]), 1)
-    area_points = formula.band_points(area, bands["pct_a_point"], bands["area_points_at_most"])
-    sex_points = points["female"] if sex == "female" else 0
-    depth_points = points["full_thickness"] if facts["full_pct"].value else 0
+    years = formula.band_points(
+        _number(facts, "age_years"), bands["years_a_point"], bands["age_points_at_most"]
+    )
+    age = max(years, 1)
+    area = formula.band_points(
+        _number(facts, "counted_pct"), bands["pct_a_point"], bands["area_points_at_most"]
+    )
+    female = points["female"] if sex == "female" else 0
+    depth = points["full_thickness"] if facts["full_pct"].value else 0
+    sums = [formula.absi_points(age, area, female, more, depth) for more in (0, points["inhalation"])]
+    parts = f"age {number_text(age)} + area {number_text(area)} + sex {female} + full thickness {depth}"
+    return _scored(ABSI, parts, sums, points["inhalation"], facts, assessment, sources)
+
+
+def _scored(
+    named: tuple[str, str],
+    parts: str,
+    sums: list[float],
+    inhalation_points: float,
+    facts: Facts,
+    assessment: Assessment | None,
+    sources: tuple[Source, ...],
+) -> Item:
     inhaled, why = _inhalation(facts)
-    parts = f"age {number_text(age_points)} + area {number_text(area_points)} + sex {sex_points} + depth {depth_points}"
-    without = formula.absi_points(age_points, area_points, sex_points, 0, depth_points)
+    without, with_it = (number_text(value, SHOWN_PLACES) for value in sums)
+    more = number_text(inhalation_points)
     if inhaled is None:
-        with_it = formula.absi_points(age_points, area_points, sex_points, points["inhalation"], depth_points)
-        shown = _both(without, with_it, why)
-        return _sum(
-            key,
-            label,
-            None,
-            shown,
-            f"{parts}; + {points['inhalation']} with inhalation injury",
-            assessment,
-            sources,
-        )
-    return _sum(
-        key,
-        label,
-        without,
-        f"{number_text(without)} points ({why})",
-        f"{parts} = {number_text(without)}",
-        assessment,
-        sources,
+        shown = f"{without} without and {with_it} with inhalation injury ({why}; signs are not a diagnosis)"
+        return _item(named, None, shown, f"{parts} = {without}; + {more} = {with_it}", assessment, sources)
+    value = sums[1] if inhaled else sums[0]
+    added = f"{parts} + inhalation {more if inhaled else 0} = {number_text(value, PLACES)}"
+    return _item(
+        named, value, f"{with_it if inhaled else without} points ({why})", added, assessment, sources
     )
 
 
-def _sum(
-    key: str,
-    label: str,
+def _not_computed(
+    named: tuple[str, str], missing: list[str], assessment: Assessment | None, sources: tuple[Source, ...]
+) -> Item:
+    why = f"not computed: {joined(list(dict.fromkeys(missing)))}"
+    return _item(named, None, why, why, assessment, sources)
+
+
+def _item(
+    named: tuple[str, str],
     value: float | None,
     shown: str,
     sum_text: str,
     assessment: Assessment | None,
     sources: tuple[Source, ...],
 ) -> Item:
+    key, label = named
     return Item(
         key=key,
         label=label,
@@ -136,9 +131,3 @@ def _sum(
         cautions=(CAUTION,),
         line=assessment.line if assessment else 0,
     )
-
-
-def _not_computed(
-    key: str, label: str, why: str, assessment: Assessment | None, sources: tuple[Source, ...]
-) -> Item:
-    return _sum(key, label, None, f"not computed: {why}", f"not computed: {why}", assessment, sources)

@@ -14,8 +14,10 @@ from handoff.plugin import (
     Source,
     System,
     Working,
+    entries,
     joined,
     number_text,
+    words,
 )
 
 from . import formula
@@ -123,7 +125,7 @@ def _item(case: Case, assessment: Assessment, total: Total) -> Item:
         as_of=assessment.at,
         working=_working(assessment, burns, value),
         sources=_sources(case, assessment, burns),
-        cautions=_cautions(assessment, total, burns),
+        cautions=_cautions(case, assessment, total, burns),
         line=assessment.line,
     )
 
@@ -167,7 +169,7 @@ def _sources(case: Case, assessment: Assessment, burns: list[Burn]) -> tuple[Sou
     return tuple(sources)
 
 
-def _cautions(assessment: Assessment, total: Total, burns: list[Burn]) -> tuple[str, ...]:
+def _cautions(case: Case, assessment: Assessment, total: Total, burns: list[Burn]) -> tuple[str, ...]:
     found = list(assessment.table.cautions) if assessment.table else []
     if not assessment.method:
         found.append("method of the assessment not recorded")
@@ -183,4 +185,7 @@ def _cautions(assessment: Assessment, total: Total, burns: list[Burn]) -> tuple[
         found.append("the depth of some burn is not assessed and is not in this figure")
     if total.key == "counted":
         found.append("early estimates often run high: reassess once redness has settled")
+        kinds = [words(cause.get("kind")) for cause in entries(case.state.injury.get("causes"))]
+        if "electrical" in kinds or "lightning" in kinds:
+            found.append("electrical injury: the skin shows less than the muscle below it")
     return tuple(found)

@@ -5,7 +5,20 @@ from __future__ import annotations
 from dataclasses import dataclass
 from datetime import datetime
 
-from handoff.plugin import Case, Flag, Item, Part, Row, System, Working, amount, entries, number_text, words
+from handoff.plugin import (
+    Case,
+    Flag,
+    Input,
+    Item,
+    Part,
+    Row,
+    System,
+    Working,
+    amount,
+    entries,
+    number_text,
+    words,
+)
 
 from . import formula
 from .age import age_at_burn
@@ -86,7 +99,7 @@ def _item(case: Case, charted: tuple[Wounds, ...], latest: Wounds, state: str) -
         working = Working(
             formula="size of the region x share, added region by region",
             sum=f"{'; '.join(parts) or 'none charted'}; total {number_text(value, PLACES)} %",
-            inputs=tuple(case.input(area.where, None, area.extent) for area in areas),
+            inputs=tuple(Input(area.where, area.extent, area.line) for area in areas),
             rule=latest.table.name if latest.table else "as charted",
         )
     return Item(
