@@ -1,4 +1,4 @@
-"""Set everything up on a fresh machine and run one job: ``python3 -m handoff.start demo`` or ``tests``.
+"""Set everything up on a fresh machine and run one job: ``python3 -m handoff.start demo``, ``tests`` or ``checks``.
 
 Needs Python 3.11 or newer and nothing else: it makes ``.venv`` beside this checkout, installs
 what the lock file names (checked by hash) and runs the job in it. Standard library only.
@@ -17,14 +17,15 @@ ROOT = Path(__file__).resolve().parents[1]
 FOLDER = ROOT / ".venv"
 JOBS = {
     "demo": ("requirements.lock", ["-m", "handoff", "demo"]),
-    "tests": ("tests/requirements.lock", ["-m", "pytest"]),
+    "tests": ("tests/requirements.lock", ["-m", "pytest", "--numprocesses", "auto", "--dist", "loadgroup"]),
+    "checks": ("tests/requirements.lock", [".ci/checks.py"]),
 }
 
 
 def main(arguments: list[str]) -> int:
     """Run the job named first in ``arguments``, with the rest handed on; return its exit code."""
     if not arguments or arguments[0] not in JOBS:
-        print("usage: python3 -m handoff.start demo | tests [what to hand on]", file=sys.stderr)
+        print("usage: python3 -m handoff.start demo | tests | checks [what to hand on]", file=sys.stderr)
         return 2
     if sys.version_info < (3, 11):  # noqa: UP036  (this file is the one that an older Python may meet)
         print("Python 3.11 or newer is needed", file=sys.stderr)
