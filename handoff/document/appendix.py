@@ -19,8 +19,8 @@ class Citations:
 
     def cite(self, sources: Iterable[Source]) -> str:
         """Return the marks of ``sources``: ``[1] [3]``; an empty string for none."""
-        marks = [self._numbers.setdefault(source.shown(), len(self._numbers) + 1) for source in sources]
-        return " ".join(f"[{mark}]" for mark in dict.fromkeys(marks))
+        marks = {self._numbers.setdefault(source.shown(), len(self._numbers) + 1) for source in sources}
+        return " ".join(f"[{mark}]" for mark in sorted(marks))
 
     def cited(self) -> tuple[Cited, ...]:
         """Return every source cited so far with its mark."""

@@ -67,8 +67,8 @@ def _key_listing(caption: str, loop: str, label: str, time: str) -> str:
     return listing(
         caption,
         loop,
-        column(2700, label, "row.what", "Key", "Strong"),
-        Column(6700, "What was found, and why it matters", found),
+        column(2900, label, "row.what", "Key", "Strong"),
+        Column(6500, "What was found, and why it matters", found),
         column(1146, time, "row.time", "Key"),
     )
 
@@ -93,8 +93,8 @@ def _do_now() -> str:
         "What to do now",
         "task in page_one.tasks",
         column(1000, "DO NOW", "task.ref", "Key", "Reference"),
-        column(5900, "Task (reference of the care plan)", "task.text", "Task"),
-        column(3646, "Why", "task.why", "Small"),
+        column(6200, "Task (reference of the care plan)", "task.text"),
+        column(3346, "Why", "task.why", "Small"),
     )
     return when("page_one.tasks", paragraph("Gap"), tasks) + _more("page_one.more_tasks", "Also to do now")
 
