@@ -66,6 +66,7 @@ def test_no_more_than_a_whole_body() -> None:
 def test_one_face_and_both_faces() -> None:
     assert formula.face_pct(9, 50) == 4.5
     assert formula.face_pct(9, 100) == 9
+    assert formula.face_pct(9, 0) == 0
     assert formula.both_faces_pct(9.5) == 19
     with pytest.raises(FormulaInputError, match="face_share_pct"):
         formula.face_pct(9, 101)
@@ -94,6 +95,10 @@ def test_steps_refuse_what_is_no_number(bad: float) -> None:
         formula.head_at_age_pct(bad, 0, 1, 1)
     with pytest.raises(FormulaInputError, match="each_leg_pct"):
         formula.leg_at_age_pct(bad, 0, 1, 1)
+
+
+def test_a_step_may_be_more_than_one_point() -> None:
+    assert formula.head_at_age_pct(18, 3, 1, 2) == 14
 
 
 def test_a_head_may_step_down_to_nothing_and_no_further() -> None:
@@ -177,6 +182,7 @@ def test_revised_baux_is_a_sum() -> None:
     assert formula.revised_baux_points(60, 50, 17) == 127
     assert formula.revised_baux_points(60, 50, 0) == 110
     assert formula.revised_baux_points(25, 30, 0) == 55
+    assert formula.revised_baux_points(25, 0.5, 0) == 25.5
     assert formula.revised_baux_points(0, 100, 0) == 100
     for arguments, name in (
         ((-1, 1, 1), "age_years"),
