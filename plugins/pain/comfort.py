@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from handoff.plugin import Case, Flag, Item, Map, Part, System, line_of, number, number_text, words
+from handoff.plugin import Case, Flag, Item, Map, Node, Part, System, line_of, number, number_text, words
 
 from .scores import Scale, scale_of
 
@@ -14,9 +14,13 @@ def items(case: Case) -> tuple[Item, ...]:
     return tuple(_item(case, name) for name in ("itch", "anxiety"))
 
 
+def _struck(node: Node) -> bool:
+    return isinstance(node, Map) and "struck" in node
+
+
 def _item(case: Case, name: str) -> Item:
     key, label = f"pain.{name}", name.capitalize()
-    readings = case.state.series(name)
+    readings = [reading for reading in case.state.series(name) if not _struck(reading.node)]
     if not readings:
         return Item(
             key=key, label=label, part=Part.ASSESSMENT, system=System.PAIN, unit="score",

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from handoff.plugin import Case, Flag, Item, Map, Part, System, child, joined, line_of, words
+from handoff.plugin import Case, Flag, Item, Part, System, child, entries, joined, line_of, words
 
 from .charted import Charted
 from .names import unique_keys
@@ -100,10 +100,10 @@ def _position(score: Score) -> float:
 
 
 def _goal(case: Case, charted: Charted) -> Item:
-    node = child(case.block, "goal")
+    node = next(iter(entries(child(case.block, "goal"))), None)
     key, label = "pain.goal", "Pain goal"
-    scale = scale_of(case, node.get("scale")) if isinstance(node, Map) else None
-    if not isinstance(node, Map) or scale is None:
+    scale = scale_of(case, node.get("scale")) if node is not None else None
+    if node is None or scale is None:
         return Item(
             key=key, label=label, part=Part.ASSESSMENT, system=System.PAIN,
             shown="not recorded", flag=Flag.NOT_RECORDED, repeats=True,

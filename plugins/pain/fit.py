@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from handoff.plugin import Age, Case, Flag, Item, Map, Part, Source, System, child, line_of, words, yes
+from handoff.plugin import Age, Case, Flag, Item, Part, Source, System, child, entries, line_of, words, yes
 
 from .charted import Charted
 from .latest import latest_scores
@@ -67,9 +67,9 @@ def _source(case: Case, name: str) -> Source:
 
 
 def _state(case: Case, age: Age) -> _State:
-    node = child(case.block, "self_report")
+    node = next(iter(entries(child(case.block, "self_report"))), None)
     able = yes(child(node, "able"))
-    if isinstance(node, Map) and able is not None:
+    if node is not None and able is not None:
         why = words(node.get("why_not"))
         return _State(
             able, why, "can score own pain" if able else f"cannot score own pain{f' ({why})' if why else ''}"

@@ -8,6 +8,7 @@ from datetime import datetime, timedelta
 from handoff.plugin import Case, Map, child, entries, number_text, words, yes
 
 from .charted import Charted
+from .given import DAY
 from .names import OPIOID, Drug, drug_of, factor_heading, route_of
 
 
@@ -101,22 +102,20 @@ def premedications(case: Case, charted: Charted, at: datetime, procedure: Map) -
         if lead is not None:
             give_from = at - timedelta(minutes=lead.earliest)
             timed = Timed(give_from, at - timedelta(minutes=lead.latest), lead)
-        given_at = _given(charted, drug, route, at)
+        given_at = _given(case, charted, drug, route, at)
         found.append(Premedication(drug, route, words(entry.get("dose")), timed, given_at, entry))
     return tuple(
         sorted(found, key=lambda one: (one.timed.give_by if one.timed else at, one.drug.name, one.route))
     )
 
 
-def _given(charted: Charted, drug: Drug, route: str, at: datetime) -> datetime | None:
-    """When the last dose charted as given for a procedure went in, on the way to this one."""
-    day = timedelta(days=1)
+def _given(case: Case, charted: Charted, drug: Drug, route: str, at: datetime) -> datetime | None:
+    """When the last dose charted as given for a procedure went in, after the one before and on the way to this one."""
+    before = [earlier for earlier, _ in _procedures(case) if earlier < at]
+    since = max([at - DAY, *before])
     times = [
         one.latest
         for one in charted.given
-        if one.drug == drug
-        and one.route == route
-        and one.purpose == "procedure"
-        and at - day < one.latest <= at
+        if one.drug == drug and one.route == route and one.purpose == "procedure" and since < one.latest <= at
     ]
     return max(times, default=None)

@@ -14,6 +14,7 @@ from handoff.plugin import (
     System,
     Urgency,
     Working,
+    hours_text,
     line_of,
     number_text,
     words,
@@ -104,7 +105,11 @@ def _give_by(case: Case, at: datetime, before: tuple[Premedication, ...]) -> Ite
     if waiting:
         return _to_give(case, at, waiting)
     if given:
-        said = "; ".join(f"{one.prescribed()} given {case.clock.time(when, case.now)}" for one, when in given)
+        said = "; ".join(
+            f"{one.prescribed()} given {case.clock.time(when, case.now)}, "
+            f"{hours_text(case.hours_between(when, at))} before"
+            for one, when in given
+        )
         return Item(
             key=GIVE_BY, label=GIVE_LABEL, part=PART, system=SYSTEM,
             unit="time", shown=said, as_of=given[-1][1], repeats=True,

@@ -59,7 +59,9 @@ class Level:
 def latest_level(case: Case) -> Level | None:
     """Return the latest sedation level, or None."""
     readings = [
-        (reading, node) for reading in case.state.series("sedation") if isinstance(node := reading.node, Map)
+        (reading, node)
+        for reading in case.state.series("sedation")
+        if isinstance(node := reading.node, Map) and "struck" not in node
     ]
     if not readings:
         return None
