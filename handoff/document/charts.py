@@ -8,11 +8,13 @@ from datetime import datetime
 
 from handoff.assess import Assessment
 from handoff.document.sections import NOT_RECORDED, sentence
-from handoff.plugin import number_text
+from handoff.plugin import number_text, plural
 
 AREA_PLACES = 2
-BURN_COLUMNS = 7
-HOUR_COLUMNS = 7
+BURNS, HOURS = ("area", "burns"), ("fluid", "hours")
+"""The plugin that passes the rows of a table on, and under which name."""
+
+COLUMNS = {BURNS: 7, HOURS: 7}
 
 
 @dataclass(frozen=True, slots=True)
@@ -50,9 +52,7 @@ def burns(assessment: Assessment) -> tuple[Burn, ...]:
             around=_yes_no(around),
             line=str(line or ""),
         )
-        for region, face, depth, share, counted, around, line in _rows(
-            assessment, "area", "burns", BURN_COLUMNS
-        )
+        for region, face, depth, share, counted, around, line in _rows(assessment, BURNS)[0]
     )
 
 
@@ -68,18 +68,31 @@ def hours(assessment: Assessment) -> tuple[Hour, ...]:
             not_confirmed=_amount(unsure),
             urine=str(urine_text or _amount(urine)),
         )
-        for hour, start, due, given, unsure, urine, urine_text in _rows(
-            assessment, "fluid", "hours", HOUR_COLUMNS
-        )
+        for hour, start, due, given, unsure, urine, urine_text in _rows(assessment, HOURS)[0]
     )
 
 
-def _rows(assessment: Assessment, plugin: str, key: str, columns: int) -> list[Sequence[object]]:
+def lost_tables(assessment: Assessment) -> tuple[str, ...]:
+    """Return one line for each table whose rows were passed on in a form that cannot be printed."""
+    found = []
+    for table in COLUMNS:
+        count = _rows(assessment, table)[1]
+        if count:
+            found.append(
+                f"table '{table[1]}' of the plugin '{table[0]}': {plural(count, 'row')} cannot be printed"
+            )
+    return tuple(found)
+
+
+def _rows(assessment: Assessment, table: tuple[str, str]) -> tuple[list[Sequence[object]], int]:
+    """Return the rows that can be printed, and how many cannot."""
+    plugin, key = table
     found = assessment.findings.get(plugin)
-    rows = found.values.get(key) if found else None
+    rows = found.values.get(key, ()) if found else ()
     if not isinstance(rows, (tuple, list)):
-        return []
-    return [row for row in rows if isinstance(row, (tuple, list)) and len(row) == columns]
+        return [], 1
+    kept = [row for row in rows if isinstance(row, (tuple, list)) and len(row) == COLUMNS[table]]
+    return kept, len(rows) - len(kept)
 
 
 def _amount(value: object, places: int = 0) -> str:

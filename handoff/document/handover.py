@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 from handoff.assess import Assessment
 from handoff.document.appendix import Appendix, appendix
-from handoff.document.charts import Burn, Hour, burns, hours
+from handoff.document.charts import Burn, Hour, burns, hours, lost_tables
 from handoff.document.identity import Frame, Identity, frame, identity, person
 from handoff.document.page_one import PageOne, page_one
 from handoff.document.schedule import Shift
@@ -100,7 +100,7 @@ def handover(assessment: Assessment) -> Handover:
     severity, said = _severity(assessment)
     return Handover(
         frame=frame("Burn handover", assessment),
-        bands=bands(assessment),
+        bands=bands(assessment, lost_tables(assessment)),
         identity=identity(assessment),
         severity=severity,
         severity_said=said,

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from datetime import UTC, datetime
 
 from handoff.assess import Assessment
@@ -26,7 +26,7 @@ _CLAUSE = re.compile(r"(?<=;)\s+|(?<=\w\w\w\.)\s+|\n+")
 
 @dataclass(frozen=True, slots=True)
 class KeyRow:
-    """One line of page one: what, what was found, when, and why it matters."""
+    """One line of page one: what, what was found, when, and (where it needs action) why it matters."""
 
     what: str
     value: str
@@ -110,6 +110,10 @@ def _key_row(item: Item, shift: Shift) -> KeyRow:
     return KeyRow(sentence(item.label), _in_short(shown(item)), time, _why(item))
 
 
+def _review_row(item: Item, shift: Shift) -> KeyRow:
+    return replace(_key_row(item, shift), why="")
+
+
 def _in_short(text: str) -> str:
     clauses = _CLAUSE.split(text)
     kept = [clauses[0]]
@@ -124,7 +128,7 @@ def _task(action: Action, shift: Shift, ref: str) -> Task:
     late = ""
     if action.first_due and is_overdue(action, shift.start):
         late = f" (overdue since {shift.time(action.first_due)})"
-    return Task(ref, f"{action.text}{late}", action.why)
+    return Task(ref, f"{_in_short(action.text)}{late}", _in_short(action.why))
 
 
 def _due(assessment: Assessment, shift: Shift, refs: dict[str, str]) -> tuple[tuple[KeyRow, ...], str]:
@@ -133,9 +137,9 @@ def _due(assessment: Assessment, shift: Shift, refs: dict[str, str]) -> tuple[tu
     rest = [item for item in review if item.rank is None]
     late = [action for action in assessment.actions if is_overdue(action, shift.start)]
     late = sorted((action for action in late if action.urgency is not Urgency.NOW), key=_first_due)
-    named = [(_key_row(item, shift), sentence(item.label)) for item in ranked]
+    named = [(_review_row(item, shift), sentence(item.label)) for item in ranked]
     named += [(_late_row(action, shift, refs), refs[action.key]) for action in late]
-    named += [(_key_row(item, shift), sentence(item.label)) for item in rest]
+    named += [(_review_row(item, shift), sentence(item.label)) for item in rest]
     more = "; ".join(name for _, name in named[MOST_DUE:])
     return tuple(row for row, _ in named[:MOST_DUE]), more
 
@@ -146,4 +150,4 @@ def _first_due(action: Action) -> datetime:
 
 def _late_row(action: Action, shift: Shift, refs: dict[str, str]) -> KeyRow:
     since = shift.time(action.first_due) if action.first_due else ""
-    return KeyRow(f"{refs[action.key]} overdue", action.text, since, action.why)
+    return KeyRow(f"{refs[action.key]} overdue", action.text, since, "")

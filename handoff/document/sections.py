@@ -97,12 +97,15 @@ def cautions_of(items: Iterable[Item]) -> str:
     return " ".join(f"{caution}." for caution in said)
 
 
-def bands(assessment: Assessment) -> tuple[Band, ...]:
-    """Return what must be read first: what could not be computed, and unusual values not confirmed."""
+def bands(assessment: Assessment, lost: tuple[str, ...] = ()) -> tuple[Band, ...]:
+    """Return what must be read first: what could not be computed, and unusual values not confirmed.
+
+    ``lost`` names what was computed and cannot be printed.
+    """
     found = []
-    if assessment.failures:
-        lines = tuple(f"{failure.title}: {failure.what}" for failure in assessment.failures)
-        found.append(Band("Could not be computed; work it out by hand", lines))
+    failed = (*(f"{failure.title}: {failure.what}" for failure in assessment.failures), *lost)
+    if failed:
+        found.append(Band("Could not be computed; work it out by hand", failed))
     if assessment.warnings:
         lines = tuple(
             f"{fault.path}: {fault.what}; {fault.cure} (line {fault.line})" for fault in assessment.warnings

@@ -178,12 +178,25 @@ def test_failures_and_unusual_values_stand_at_the_top(handover: bytes) -> None:
     assert "fluid.given[2].volume: 9000 mL is unusual" in page
 
 
-def test_a_table_that_is_not_as_agreed_is_left_out_and_the_document_is_made() -> None:
+def test_a_table_that_is_not_as_agreed_is_named_at_the_top_and_the_document_is_made() -> None:
     given = assessment()
     broken = {
         name: replace(found, values={"burns": 3, "hours": ("x",)}) for name, found in given.findings.items()
     }
-    assert "Burn and fluid tables" not in headings(made(replace(given, findings=broken)), 1)
+    content = made(replace(given, findings=broken))
+    assert "Burn and fluid tables" not in headings(content, 1)
+    assert "table 'hours' of the plugin 'fluid': 1 row cannot be printed" in text_of(content)
+
+
+def test_a_month_of_hours_and_sixty_burns_all_stand_in_their_tables() -> None:
+    given = assessment()
+    burns, hours = given.findings["area"].values["burns"], given.findings["fluid"].values["hours"]
+    assert isinstance(burns, tuple)
+    assert isinstance(hours, tuple)
+    many = {"burns": burns[:1] * 60, "hours": hours[:1] * 720}
+    found = {name: replace(part, values=many) for name, part in given.findings.items()}
+    content = tables(made(replace(given, findings=found)))
+    assert (len(content["Region"][0]._tbl.tr_lst), len(content["Hour"][0]._tbl.tr_lst)) == (61, 721)
 
 
 def test_the_body_has_no_empty_heading(handover: bytes) -> None:

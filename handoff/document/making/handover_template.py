@@ -62,13 +62,13 @@ def _band() -> str:
     return identity_band(WIDTH, row(severity, burn), people)
 
 
-def _key_listing(caption: str, loop: str, label: str, time: str) -> str:
+def _key_listing(caption: str, loop: str, label: str, found_label: str, time: str) -> str:
     found = paragraph("Key", "{{ row.value }}") + when("row.why", paragraph("Small", "{{ row.why }}"))
     return listing(
         caption,
         loop,
         column(2900, label, "row.what", "Key", "Strong"),
-        Column(6500, "What was found, and why it matters", found),
+        Column(6500, found_label, found),
         column(1146, time, "row.time", "Key"),
     )
 
@@ -81,7 +81,13 @@ def _needs_action() -> str:
     nothing = "No entry is flagged ACTION at this time; that does not say that the patient is well."
     return "".join(
         (
-            _key_listing("What needs action", "row in page_one.actions", "NEEDS ACTION", "Time"),
+            _key_listing(
+                "What needs action",
+                "row in page_one.actions",
+                "NEEDS ACTION",
+                "What was found, and why it matters",
+                "Time",
+            ),
             when("not page_one.actions", paragraph("KeyNote", nothing)),
             _more("page_one.more_actions", "Also flagged ACTION"),
         )
@@ -100,7 +106,13 @@ def _do_now() -> str:
 
 
 def _due() -> str:
-    due = _key_listing("What is due or overdue", "row in page_one.due", "DUE OR OVERDUE", "Since")
+    due = _key_listing(
+        "What is due or overdue",
+        "row in page_one.due",
+        "DUE OR OVERDUE",
+        "What was found, or what to do",
+        "Since",
+    )
     return when("page_one.due", paragraph("Gap"), due) + _more("page_one.more_due", "Also due for review")
 
 
