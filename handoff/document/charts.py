@@ -91,7 +91,9 @@ def _rows(assessment: Assessment, table: tuple[str, str]) -> tuple[list[Sequence
     rows = found.values.get(key, ()) if found else ()
     if not isinstance(rows, (tuple, list)):
         return [], 1
-    kept = [row for row in rows if isinstance(row, (tuple, list)) and len(row) == COLUMNS[table]]
+    kept: list[Sequence[object]] = [
+        row for row in rows if isinstance(row, (tuple, list)) and len(row) == COLUMNS[table]
+    ]
     return kept, len(rows) - len(kept)
 
 
