@@ -42,7 +42,9 @@ def age_at_burn(case: Case) -> AgeAtBurn | None:
 def _moment(case: Case) -> tuple[datetime | None, str]:
     burn = case.state.burn_time
     if burn is not None:
-        return burn.earliest, ""
+        first, last = case.state.age_at(burn.earliest), case.state.age_at(burn.latest)
+        birthday = first is not None and last is not None and first.years != last.years
+        return burn.earliest, "a birthday falls within the uncertain time of the burn" if birthday else ""
     rows = case.state.dated(case.block)
     if rows:
         return rows[0].at, "time of the burn not recorded: age taken at the first assessment"
