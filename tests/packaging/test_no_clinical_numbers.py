@@ -1,0 +1,109 @@
+"""No clinical number in Python: numbers of the clinic lie in cited tables, where a reader can check them."""
+
+from __future__ import annotations
+
+import ast
+from collections.abc import Iterator
+from pathlib import Path
+
+import pytest
+
+from tests.packaging.project import named, python_files
+
+ANYWHERE = {0, 1, 2, 100, 60, 24, 12, 7, 1000, 3600}
+"""Counting, percent, and the units of time and of size: none of them is a finding."""
+
+IN_A_FORMULA = {0, 1, 100, 60, 24, 12, 7, 1000, 3600}
+IN_A_NAMED_FORMULA: dict[str, dict[float, str]] = {
+    "plugins/airway_watch/formula.py": {7.50062: "mmHg in a kPa", 2: "a half-life halves"},
+}
+
+LAYOUT = (
+    "handoff/document/making/*.py",
+    "handoff/document/make_templates.py",
+    "handoff/document/paper.py",
+)
+"""Measures of paper and type, in the units of the page."""
+
+EXCEPTIONS: dict[str, dict[float, str]] = {
+    "handoff/cli/edge.py": {3: "exit code", 4: "exit code"},
+    "handoff/cli/working.py": {3: "names offered", 0.4: "likeness of names"},
+    "handoff/document/finish.py": {1980: "the oldest year that a zip file knows"},
+    "handoff/document/page_one.py": {5: "lines on the page", 6: "lines on the page", 110: "letters in a line"},
+    "handoff/document/printable.py": {0xFFFE: "code point", 0xFDD0: "code point", 0xFDEF: "code point"},
+    "handoff/document/schedule.py": {14: "boxes in a row"},
+    "handoff/document/timeline.py": {3: "place in an order"},
+    "handoff/start.py": {3: "version of Python", 11: "version of Python"},
+    "handoff/state/keywords.py": {0.6: "likeness of names", 3: "parts of a number", 125: "years in a slip of the pen"},
+    "handoff/state/moments.py": {14: "hours between the ends of the time zones"},
+    "handoff/state/quantity.py": {3: "words in a list"},
+    "handoff/state/reader.py": {8_000_000: "bytes of a file", 1_000_000: "bytes in a megabyte"},
+    "handoff/state/schema.py": {200: "letters of a name", 4000: "letters of a note"},
+    "handoff/terminal.py": {80: "letters in a line"},
+    "plugins/airway_watch/carbon_monoxide.py": {3: "low, central and high"},
+    "plugins/area/check.py": {1e-9: "rounding of the machine"},
+    "plugins/area/criteria.py": {1e-9: "rounding of the machine"},
+    "plugins/early_warning/score.py": {3: "earlier scores shown"},
+    "plugins/overview/vitals.py": {4: "earlier values shown"},
+    "plugins/pain/check.py": {10: "upper end of a score whose name is its ends"},
+    "plugins/pain/comfort.py": {10: "upper end of a score whose name is its ends"},
+    "plugins/pain/course.py": {4: "earlier scores shown"},
+}
+"""By file: the number and what it is. What is clinical goes into parameters.yaml instead."""
+
+
+def is_layout(path: Path) -> bool:
+    return any(Path(named(path)).match(pattern) for pattern in LAYOUT)
+
+
+@pytest.mark.parametrize("path", [p for p in python_files("plugins") if p.name == "formula.py"], ids=named)
+def test_a_formula_holds_no_number_but_zero_one_hundred_and_unit_conversions(path: Path) -> None:
+    known = IN_A_FORMULA | set(IN_A_NAMED_FORMULA.get(named(path), {}))
+    for line, number in numbers(path):
+        assert number in known, f"{named(path)}:{line}: {number} belongs into parameters.yaml"
+
+
+@pytest.mark.parametrize(
+    "path",
+    [p for p in python_files("handoff", "plugins") if p.name not in ("formula.py", "units.py") and not is_layout(p)],
+    ids=named,
+)
+def test_no_clinical_number_stands_in_the_code(path: Path) -> None:
+    known = ANYWHERE | set(EXCEPTIONS.get(named(path), {}))
+    for line, number in numbers(path):
+        assert number in known, (
+            f"{named(path)}:{line}: {number} belongs into parameters.yaml, or into EXCEPTIONS with what it is"
+        )
+
+
+def test_every_exception_is_still_needed() -> None:
+    held = {(named(path), number) for path in python_files("handoff", "plugins") for _, number in numbers(path)}
+    for exceptions in (EXCEPTIONS, IN_A_NAMED_FORMULA):
+        listed = {(name, number) for name, ones in exceptions.items() for number in ones}
+        assert sorted(listed - held) == []
+
+
+def numbers(path: Path) -> Iterator[tuple[int, float]]:
+    """Yield each number with its line, without those that only say a place or a size."""
+    tree = ast.parse(path.read_text(encoding="utf-8"))
+    places = {id(below) for node in ast.walk(tree) for place in places_in(node) for below in ast.walk(place)}
+    for node in ast.walk(tree):
+        if isinstance(node, ast.Constant) and id(node) not in places:
+            value = node.value
+            if isinstance(value, int | float) and not isinstance(value, bool):
+                yield node.lineno, value
+
+
+def places_in(node: ast.AST) -> Iterator[ast.AST]:
+    """Yield what holds no finding: a place in a list, a rank on page one, digits after the point, a cache."""
+    if isinstance(node, ast.Subscript):
+        yield node.slice
+    elif isinstance(node, ast.keyword) and node.arg and node.arg.endswith(("rank", "maxsize", "places")):
+        yield node.value
+    elif isinstance(node, ast.Call) and isinstance(node.func, ast.Name):
+        digits = {"number_text": 1, "with_unit": 2, "round": 1}.get(node.func.id)
+        yield from node.args[digits:] if digits else ()
+    elif isinstance(node, ast.Assign):
+        names = [below.id for target in node.targets for below in ast.walk(target) if isinstance(below, ast.Name)]
+        if all("RANK" in name for name in names):
+            yield node.value
