@@ -19,8 +19,8 @@ LOOK_BACK = 12
 """How many earlier moments are tried for the trend; a long stay is not read from its start."""
 
 ASK = {
-    "emergency threshold": "Call now for emergency assessment by the team with critical-care and airway skills; "
-    "start continuous monitoring",
+    "emergency threshold": "Start continuous monitoring and call now for emergency assessment by the team with "
+    "critical-care and airway skills",
     "urgent threshold": "Tell the medical team at once and ask for an urgent assessment",
     "one sign scores 3": "Tell the medical team and ask them to review",
 }
