@@ -8,7 +8,7 @@ from datetime import datetime
 from handoff.plugin import Case, Input, Node, child, line_of, number_text, with_unit
 
 from .formula import HOURS_A_DAY, MCG_IN_MG
-from .given import PUMP, Given, given
+from .given import DOSE, HOME, PUMP, Given, given
 from .infusions import Run, runs
 from .names import Drug
 from .scores import Score, pain_scores
@@ -18,7 +18,9 @@ CHARTS_OF_DOSES = ("doses", "infusions", "patient_controlled", "blocks")
 
 @dataclass(frozen=True, slots=True)
 class Portion:
-    """What one dose, reading or run gave in the last 24 h; ``mg`` is None where ``missing`` says why."""
+    """What one dose, reading or run gave in the last 24 h; ``mg`` is None where ``missing`` says why.
+
+    ``certain`` marks a single dose whose time is known to the minute."""
 
     drug: Drug
     route: str
@@ -27,6 +29,7 @@ class Portion:
     said: str
     at: datetime
     node: Node
+    certain: bool = False
 
     def input(self) -> Input:
         """Return it as an input of a sum."""
@@ -74,11 +77,11 @@ def mg_text(mg: float) -> str:
 
 
 def _portions(case: Case, doses: tuple[Given, ...], ran: tuple[Run, ...]) -> tuple[Portion, ...]:
-    found = [
-        Portion(one.drug, one.route, one.mg, one.missing, _said(case, one), one.latest, one.node)
-        for one in doses
-        if one.in_day_to(case.now)
-    ]
+    found = []
+    for one in doses:
+        if one.in_day_to(case.now):
+            certain = one.how == DOSE and one.earliest == one.latest
+            found.append(_of_dose(case, one, certain))
     for run in ran:
         hours = run.hours_in_day_to(case.now)
         if hours > 0:
@@ -90,19 +93,26 @@ def _portions(case: Case, doses: tuple[Given, ...], ran: tuple[Run, ...]) -> tup
     return tuple(sorted(found, key=lambda one: (one.at, one.drug.name, one.route, one.said)))
 
 
+def _of_dose(case: Case, one: Given, certain: bool) -> Portion:
+    said = _said(case, one)
+    return Portion(one.drug, one.route, one.mg, one.missing, said, one.latest, one.node, certain)
+
+
 def _said(case: Case, one: Given) -> str:
-    said = f"{one.written or 'amount not recorded'} at {case.clock.time(one.latest, case.now)}"
+    product = f" in {one.product}" if one.product else ""
+    amount = one.written if one.mg is not None else one.written.replace("not known", "dose") or "dose"
+    said = f"{amount}{product} at {case.clock.time(one.latest, case.now)}"
     if one.how == PUMP:
         start = case.clock.time(one.earliest, case.now)
         said = f"{one.written} by pump from {start} to {case.clock.time(one.latest, case.now)}"
     elif one.earliest != one.latest:
-        said = f"{one.written} between {case.clock.time(one.earliest, case.now)} and "
+        said = f"{amount}{product} between {case.clock.time(one.earliest, case.now)} and "
         said += case.clock.time(one.latest, case.now)
-    return said if one.place == "ward" else f"{said} ({one.place})"
+    return said if one.place == "ward" else f"{said}, {one.place}"
 
 
 def _hours(case: Case, doses: tuple[Given, ...], ran: tuple[Run, ...]) -> float:
-    moments = [one.earliest for one in doses if one.place != "home"] + [run.start for run in ran]
+    moments = [one.earliest for one in doses if one.place != HOME] + [run.start for run in ran]
     # What was taken at home is told afterwards: it does not lengthen the time that the chart covers.
     moments += [row.at for row in case.state.rows]
     first = min(moments, default=case.now)

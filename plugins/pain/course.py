@@ -110,7 +110,8 @@ def _goal(case: Case, charted: Charted) -> Item:
         )  # fmt: skip
     points, during = points_of(scale, node), words(node.get("during"))
     wanted = words(node.get("score"))
-    said = f"{wanted} or less ({scale.called}, {scale.range_text()})"
+    agreed = words(node.get("agreed_with"))
+    said = f"{wanted} or less ({scale.called}, {scale.range_text()}){f', agreed with {agreed}' if agreed else ''}"
     same = [score for score in charted.scores if score.scale == scale and during in ("", score.during)]
     other = [score.scale.called for score in charted.scores if score.scale != scale]
     value, flag = None, Flag.NONE

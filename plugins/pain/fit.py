@@ -18,6 +18,7 @@ BY_REASON = {
     "cognitive impairment": ("revised flacc",),
     "dementia": ("painad",),
 }
+ICU_CAUTION = "scale_caution.icu"
 MONTHS_A_YEAR = 12
 
 
@@ -54,16 +55,18 @@ def item(case: Case, charted: Charted) -> Item:
         shown=said,
         as_of=case.now,
         flag=Flag.REVIEW if misfits and fitting and state.able is not None else Flag.NONE,
-        sources=tuple(_source(case, name) for name in fitting)
-        or (case.parameters.source_of("self_report_first"),),
-        cautions=_cautions(state, fitting),
+        sources=_sources(case, fitting),
+        cautions=_cautions(case, state, fitting),
         detail=True,
         line=line_of(child(case.block, "self_report")),
     )
 
 
-def _source(case: Case, name: str) -> Source:
-    return case.parameters.source_of(f"scale.{name}")
+def _sources(case: Case, fitting: tuple[str, ...]) -> tuple[Source, ...]:
+    names = ["self_report_first", *(f"scale.{name}" for name in fitting)]
+    if "cpot" in fitting or "bps" in fitting:
+        names.append(ICU_CAUTION)
+    return tuple(case.parameters.source_of(name) for name in names)
 
 
 def _state(case: Case, age: Age) -> _State:
@@ -110,10 +113,10 @@ def _of_age(case: Case, name: str, age: Age) -> bool:
     return bool("up_to_years" not in table or age.years <= table["up_to_years"])
 
 
-def _cautions(state: _State, fitting: tuple[str, ...]) -> tuple[str, ...]:
+def _cautions(case: Case, state: _State, fitting: tuple[str, ...]) -> tuple[str, ...]:
     said = ["vital signs are a cue to assess pain, not a score of it"]
     if state.able is not True and ("cpot" in fitting or "bps" in fitting):
-        said.append("CPOT and BPS still lack validation in burn intensive care and in brain injury")
+        said.append(case.parameters.text(ICU_CAUTION))
     if "wong-baker faces" in fitting:
         said.append("Wong-Baker FACES is scored by the patient, never by an observer")
     return tuple(said)

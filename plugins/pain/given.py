@@ -12,6 +12,7 @@ from . import formula
 from .names import Drug, drug_of, route_of
 
 DAY = timedelta(hours=formula.HOURS_A_DAY)
+HOME = "home"
 DOSE, BLOCK, PUMP = "dose", "block", "patient-controlled"
 OLDEST = datetime.min.replace(tzinfo=UTC)
 
@@ -34,6 +35,7 @@ class Given:
     place: str
     release: str
     purpose: str
+    product: str
     how: str
     node: Node
 
@@ -93,6 +95,7 @@ def _doses(case: Case) -> Iterator[Given]:
                     place=words(entry.get("place")) or "ward",
                     release=words(entry.get("release")),
                     purpose=words(entry.get("for")),
+                    product=words(entry.get("product")),
                     how=DOSE,
                     node=part,
                 )
@@ -111,7 +114,7 @@ def _blocks(case: Case) -> Iterator[Given]:
         mg, missing = mass_mg(entry.get("dose"), entry.get("concentration"))
         route = route_of(case, entry.get("route")) or "perineural"
         dose = words(entry.get("dose"))
-        yield Given(drug, route, at, at, mg, dose, missing, "ward", "", "", BLOCK, entry)
+        yield Given(drug, route, at, at, mg, dose, missing, "ward", "", "", "", BLOCK, entry)
 
 
 def _pumps(case: Case) -> Iterator[Given]:
@@ -126,4 +129,4 @@ def _pumps(case: Case) -> Iterator[Given]:
             if start is not None and end is not None:
                 mg, missing = mass_mg(reading.get("total"), entry.get("concentration"))
                 total = words(reading.get("total"))
-                yield Given(drug, route, start, end, mg, total, missing, "ward", "", "", PUMP, reading)
+                yield Given(drug, route, start, end, mg, total, missing, "ward", "", "", "", PUMP, reading)

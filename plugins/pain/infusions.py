@@ -25,7 +25,7 @@ class Run:
 
     ``open`` is True where nothing says that it stopped at ``end``. ``mg_h`` is None where the
     rate cannot be turned into mg/h; ``missing`` says why. ``kg`` is the
-    weight of the patient, ``weight`` names it where the rate needed it.
+    weight of the patient, ``weight`` names it where the rate needed it; ``why`` is why it began or stopped.
     """
 
     line: str
@@ -39,6 +39,7 @@ class Run:
     missing: str
     kg: float | None
     weight: str
+    why: str
     node: Node
 
     def hours_in_day_to(self, now: datetime) -> float:
@@ -92,7 +93,8 @@ def _runs_of(case: Case, line: str, written: list[Map]) -> Iterator[Run]:
             current = replace(current, end=moment) if current else None
             continue
         if current is not None:
-            yield replace(current, end=moment, open=False)
+            why = words(entry.get("why")) if order == STOP else current.why
+            yield replace(current, end=moment, open=False, why=why)
             current = None
         if order == RATE:
             known |= {name: node for name in INHERITED if (node := entry.get(name)) is not None}
@@ -109,7 +111,21 @@ def _run(case: Case, line: str, moment: datetime, entry: Map, known: dict[str, N
     route = route_of(case, known.get("route")) or "IV"
     rate = words(entry.get("rate"))
     kg, _ = _weight(case, known.get("weight"))
-    return Run(line, drug, route, moment, moment, True, mg_h, rate, missing, kg, weight, entry)
+    return Run(
+        line,
+        drug,
+        route,
+        moment,
+        moment,
+        True,
+        mg_h,
+        rate,
+        missing,
+        kg,
+        weight,
+        words(entry.get("why")),
+        entry,
+    )
 
 
 def _rate(case: Case, rate: Node | None, known: dict[str, Node]) -> tuple[float | None, str, str]:

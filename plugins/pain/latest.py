@@ -20,6 +20,11 @@ def item(case: Case, charted: Charted) -> Item:
             shown="not recorded", flag=Flag.NOT_RECORDED, repeats=True,
         )  # fmt: skip
     worst = worst_of_first_scale(latest)
+    asleep = [
+        reading.at
+        for reading in case.state.series("pain")
+        if reading.node == "asleep" and reading.at > worst.at
+    ]
     at = case.clock.time(worst.at, case.now)
     return Item(
         key=KEY,
@@ -28,7 +33,8 @@ def item(case: Case, charted: Charted) -> Item:
         system=System.PAIN,
         value=worst.value(),
         unit="score",
-        shown=f"{'; '.join(score.shown() for score in latest)}, {at}",
+        shown=f"{'; '.join(score.shown() for score in latest)}, {at}"
+        + (f"; asleep {case.clock.time(asleep[-1], case.now)}" if asleep else ""),
         as_of=worst.at,
         repeats=True,
         line=line_of(worst.node),

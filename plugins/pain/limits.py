@@ -17,13 +17,16 @@ LIVER = "liver disease"
 
 @dataclass(frozen=True, slots=True)
 class Limit:
-    """A limit in mg for 24 h and for one dose; ``daily_mg`` is None where ``missing`` says why."""
+    """A limit in mg for 24 h and for one dose; ``daily_mg`` is None where ``missing`` says why.
+
+    ``interval_h`` is the least time between two doses where the rule set has one."""
 
     identifier: str
     called: str
     row: str = ""
     daily_mg: float | None = None
     single_mg: float | None = None
+    interval_h: float | None = None
     missing: str = ""
     sum: str = ""
     weight: str = ""
@@ -129,6 +132,7 @@ def _limit(
         row=str(row["row"]),
         daily_mg=daily,
         single_mg=single,
+        interval_h=None if row.get("interval_h") is None else float(row["interval_h"]),
         sum=said,
         weight=f"{number_text(kg, 2)} kg {patient.weight.kind}" if patient.weight else "",
         inputs=patient.inputs,

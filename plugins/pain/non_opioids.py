@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from datetime import timedelta
+from itertools import pairwise
 
 from handoff.plugin import (
     Case,
@@ -50,6 +52,17 @@ class _Total:
         if single is None:
             return ()
         return tuple(one for one in self.portions if one.mg is not None and formula.exceeds(one.mg, single))
+
+    @property
+    def too_close(self) -> tuple[tuple[Portion, Portion], ...]:
+        """Two doses charted to the minute that lie closer together than the rule set has it."""
+        least = self.limit.interval_h
+        known = [portion for portion in self.portions if portion.certain]
+        return tuple(
+            (first, second)
+            for first, second in pairwise(known)
+            if least is not None and timedelta(0) < second.at - first.at < timedelta(hours=least)
+        )
 
 
 def items(case: Case, charted: Charted) -> tuple[Item, ...]:
@@ -111,7 +124,7 @@ def _total_item(case: Case, charted: Charted, total: _Total) -> Item:
 def _flag(total: _Total) -> Flag:
     if total.limit.decides and total.over:
         return Flag.ACTION
-    if total.limit.decides and total.over_single:
+    if total.limit.decides and (total.over_single or total.too_close):
         return Flag.REVIEW
     return Flag.NOT_RECORDED if total.unknown else Flag.NONE
 
@@ -119,7 +132,7 @@ def _flag(total: _Total) -> Flag:
 def _shown(case: Case, total: _Total) -> str:
     mg = with_unit(total.mg, "mg", 1)
     if total.unknown:
-        gaps = "; ".join(f"{portion.missing} ({portion.said})" for portion in total.unknown)
+        gaps = "; ".join(f"{portion.missing}: {portion.said}" for portion in total.unknown)
         said = f"not computed: {gaps}; at least {mg}"
     elif not total.portions:
         return f"0 mg: none charted in the last 24 h{_not_asked(case)}"
@@ -129,6 +142,11 @@ def _shown(case: Case, total: _Total) -> str:
         said += f", over the limit of {with_unit(total.limit.daily_mg, 'mg', 1)} ({total.limit.called})"
     for portion in total.over_single:
         said += f"; {portion.said} is above one dose of {with_unit(total.limit.single_mg or 0, 'mg', 1)}"
+    for first, second in total.too_close:
+        apart = f"less than {number_text(total.limit.interval_h or 0, 1)} h apart"
+        said += (
+            f"; {case.clock.time(first.at, case.now)} and {case.clock.time(second.at, case.now)} are {apart}"
+        )
     last = total.portions[-1]
     return f"{said}; last {last.said}{_not_asked(case)}"
 

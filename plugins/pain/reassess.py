@@ -20,7 +20,7 @@ from handoff.plugin import (
 )
 
 from .charted import Charted
-from .given import DOSE, Given
+from .given import DOSE, HOME, Given
 
 KEY = "pain.reassess_due"
 LABEL = "Pain to be reassessed"
@@ -73,7 +73,8 @@ def outstanding(case: Case, charted: Charted) -> tuple[Due, ...]:
     found = []
     for dose in charted.given:
         after = interval(case, dose.route, dose.release)
-        if dose.how != DOSE or dose.drug.group not in ANALGESICS or after is None:
+        # What was taken at home was taken for something else, or before anyone could look again.
+        if dose.how != DOSE or dose.place == HOME or dose.drug.group not in ANALGESICS or after is None:
             continue
         counts = dose.latest + timedelta(minutes=_counts_from(case, dose.route, after))
         if not any(time >= counts for time in times):

@@ -46,6 +46,7 @@ class Score:
     points: float | None
     written: str
     during: str
+    site: str
     node: Node
 
     def value(self) -> float | str:
@@ -55,7 +56,8 @@ class Score:
     def shown(self) -> str:
         """Return ``6 (numeric rating scale, 0 to 10), at rest``; never a bare number."""
         said = self.written if self.points is None else number_text(self.points, 1)
-        return f"{said} ({self.scale.called}, {self.scale.range_text()}){during_text(self.during)}"
+        where = f", {self.site}" if self.site else ""
+        return f"{said} ({self.scale.called}, {self.scale.range_text()}){during_text(self.during)}{where}"
 
 
 def during_text(during: str) -> str:
@@ -137,10 +139,10 @@ def _score(case: Case, at: datetime, node: Map) -> Score | None:
     scale = scale_of(case, node.get("scale"))
     if scale is None:
         return None
-    written = words(node.get("score"))
+    written, during, site = words(node.get("score")), words(node.get("during")), words(node.get("site"))
     if scale.words:
-        return Score(at, scale, None, written, words(node.get("during")), node) if written else None
+        return Score(at, scale, None, written, during, site, node) if written else None
     points = points_of(scale, node)
     if points is None:
         return None
-    return Score(at, scale, points, written or number_text(points, 1), words(node.get("during")), node)
+    return Score(at, scale, points, written or number_text(points, 1), during, site, node)

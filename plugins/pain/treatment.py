@@ -78,7 +78,7 @@ def _infusion(case: Case, key: str, run: Run) -> Item:
     end = clock.time(run.end, now)
     unconfirmed = run.open and run.end < now
     if not run.open:
-        said += f", stopped {end}"
+        said += f", stopped {end}{f': {run.why}' if run.why else ''}"
     elif run.end > run.start:
         said += f", last seen running {end}"
     else:

@@ -164,6 +164,11 @@ AT = "observations.2026-03-14.14:15"
             "pain.infusions[1].stopped: it stopped before it began; check both times",
         ),
         (
+            patient_state({"doses": [{**DOSE, "drug": "fentanyl", "dose": "25 mcg", "route": "patch"}]}),
+            "pain.doses[1].route: a patch has a rate and no single dose; "
+            "write it under infusions: with from: and rate: in mcg/h",
+        ),
+        (
             pump({}),
             f"{READING}[1]: the reading ends before it begins; check from: and to:",
         ),
@@ -179,6 +184,33 @@ AT = "observations.2026-03-14.14:15"
 )
 def test_a_fault_is_named_with_its_place_and_its_cure(state: dict[str, Any], expected: str) -> None:
     assert faults(state) == [expected]
+
+
+@pytest.mark.parametrize(
+    ("dose", "warning"),
+    [
+        ({"dose": "20 mg"}, ""),
+        ({"dose": "21 mg"}, "21 mg of morphine IV is unusual (above 20 mg)"),
+        ({"dose": "40 mg", "confirmed": "yes"}, ""),
+        ({"drug": "fentanyl", "dose": "1 mg"}, "1 mg of fentanyl IV is unusual (above 500 mcg)"),
+        ({"drug": "ketamine", "dose": "21 mg"}, ""),
+        ({"drug": "clonidine", "dose": "21 mg"}, ""),
+    ],
+)
+def test_a_dose_that_looks_ten_times_too_high_is_asked_about_once(dose: dict[str, str], warning: str) -> None:
+    found = assessed(patient_state({"doses": [{**DOSE, **dose}]}))
+    assert [fault.what for fault in found.warnings] == ([warning] if warning else [])
+    total = found.item("pain.opioid_equivalent_24h")
+    assert total is not None, "a warning does not stop the work"
+
+
+def test_an_unusual_part_of_a_combination_product_is_found() -> None:
+    parts = [{"drug": "codeine", "dose": "30 mg"}, {"drug": "paracetamol", "dose": "5 g"}]
+    entry = {"at": "2026-03-14 14:00", "contains": parts, "route": "oral"}
+    found = assessed(patient_state({"doses": [entry]}))
+    assert [(fault.path, fault.what) for fault in found.warnings] == [
+        ("pain.doses[1].contains[2].dose", "5 g of paracetamol oral is unusual (above 1,000 mg)")
+    ]
 
 
 def test_what_was_struck_out_is_neither_checked_nor_counted() -> None:

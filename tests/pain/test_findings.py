@@ -156,6 +156,20 @@ def test_a_rich_file_runs_through_the_whole_road() -> None:
     )
 
 
+def test_asleep_is_shown_beside_the_last_score_and_is_no_score() -> None:
+    rows = {
+        "14:00": {"pain": {"scale": "numeric", "score": "5", "during": "rest", "site": "left arm"}},
+        "15:00": {"pain": "asleep"},
+    }
+    found = item(computed(patient_state(None, {DAY: rows})), "pain.latest")
+    assert found.shown == "5 (numeric rating scale, 0 to 10), at rest, left arm, 14:00; asleep 15:00"
+
+
+def test_a_dose_taken_at_home_needs_no_reassessment() -> None:
+    home = dose("08:00", "paracetamol", "1 g", "oral", place="home")
+    assert item(computed(patient_state({"doses": [home]})), "pain.reassess_due").value is None
+
+
 def test_the_opioid_total_is_exposure_with_the_hours_charted_and_the_table() -> None:
     total = item(computed(RICH), "pain.opioid_equivalent_24h")
     # morphine 4 x 3, codeine 60 x 0.13, fentanyl 100 mcg x 0.2, pump 9 x 3; the patch was never seen in place
