@@ -37,6 +37,7 @@ class Burn:
     written_depth: str = ""
     extent: str = ""
     sum: str = ""
+    whole: bool = False
     halved: bool = False
 
     def row(self) -> BurnRow:
@@ -145,6 +146,7 @@ def read_burn(case: Case, entry: Map, table: RegionTable | None) -> Burn:
         written_depth=written,
         extent=extent,
         sum=sum_text,
+        whole=amount(entry.get("of_region"), "%") == 100,
         halved=table is not None and "of_region" in entry and table.is_halved(region, face),
     )
 

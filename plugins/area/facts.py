@@ -9,14 +9,15 @@ from handoff.plugin import Case, amount, child, entries, joined, number, number_
 from . import formula
 from .assessment import Assessment, Burn
 from .criteria import Fact, Facts
-from .regions import LIMBS, limb_of, may_hold_site, special_site
-from .sites import may_go_round
+from .regions import LIMBS, limb_of
+from .sites import may_go_round, site_names, sites_unsure
 from .totals import pct_text
 from .wounds import Wounds
 
 HOURS_A_DAY = 24
 MAJOR_JOINTS = ("shoulder", "elbow", "wrist", "hip", "knee", "ankle")
 SITE_NAMES = {"genitalia and perineum": ("genitalia", "perineum"), "fingers": ("hands",), "toes": ("feet",)}
+ROUND_PLACES = {"trunk": "chest", "head and neck": "neck"}
 PARTIAL = ("superficial partial", "mid partial", "deep partial", "partial thickness")
 
 
@@ -121,20 +122,19 @@ def _sites(burns: list[Burn]) -> Fact:
     unsure: dict[str, str] = {}
     for burn in burns:
         here = f"{burn.where} ({burn.depth})"
-        own = [special_site(burn.region, burn.face), *burn.sites, burn.region]
-        for name in own:
+        for name in (*site_names(burn), burn.region):
             for plain in SITE_NAMES.get(name, (name,)):
                 names.setdefault(plain, here)
         if burn.joint:
             names.setdefault("joint", f"{burn.joint}, {here}")
             if burn.joint in MAJOR_JOINTS:
                 names.setdefault("major joint", f"{burn.joint}, {here}")
-        elif burn.region in LIMBS:
-            unsure.setdefault("joint", f"whether {burn.where} crosses a joint not recorded")
-            unsure.setdefault("major joint", f"whether {burn.where} crosses a joint not recorded")
-        held = may_hold_site(burn.region, burn.face)
-        if held:
-            unsure.setdefault(held, f"whether {burn.where} holds the {held} not recorded")
+        elif burn.region in (*LIMBS, "whole body"):
+            for joint in ("joint", "major joint"):
+                unsure.setdefault(joint, f"whether {burn.where} crosses a joint not recorded")
+        for name in sites_unsure(burn):
+            for plain in SITE_NAMES.get(name, (name,)):
+                unsure.setdefault(plain, f"whether {burn.where} holds {name} not recorded")
     return Fact(names=names, unsure=unsure)
 
 
@@ -142,11 +142,13 @@ def _round(burns: list[Burn]) -> Fact:
     names: dict[str, str] = {}
     unsure: dict[str, str] = {}
     for burn in burns:
-        place = "limb" if limb_of(burn.region) else {"trunk": "chest"}.get(burn.region, burn.region)
+        place = "limb" if limb_of(burn.region) else ROUND_PLACES.get(burn.region, burn.region)
         if burn.circumferential:
             names.setdefault(place, f"{burn.region} all round")
         elif may_go_round(burn, burns):
             unsure.setdefault(place, f"whether {burn.where} goes all round not recorded")
+        elif burn.region == "whole body" and not burn.encircling_recorded:
+            unsure |= dict.fromkeys(("limb", "chest", "neck"), "whether it goes all round not recorded")
     return Fact(names=names, unsure=unsure)
 
 

@@ -101,10 +101,13 @@ def special_site(region: str, face: str) -> str:
     return _SITES.get(region.removeprefix("left ").removeprefix("right "), "")
 
 
-def may_hold_site(region: str, face: str) -> str:
-    """Return the special site that a larger region may hold without naming it, or an empty string."""
+def may_hold_site(region: str, face: str) -> tuple[str, ...]:
+    """Return the special sites that lie in a larger region which does not name them."""
     if (region == "head" and not face) or (region == "head and neck" and face != "back"):
-        return "face"
-    return {"arm": "hands", "leg": "feet", "whole body": "all special sites"}.get(
-        region.removeprefix("left ").removeprefix("right "), ""
-    )
+        return ("face",)
+    part = region.removeprefix("left ").removeprefix("right ")
+    return {
+        "arm": ("hands",),
+        "leg": ("feet",),
+        "whole body": ("face", "hands", "feet", "genitalia and perineum"),
+    }.get(part, ())

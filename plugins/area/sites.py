@@ -16,8 +16,15 @@ RANK_CIRCUMFERENTIAL = 40
 def site_names(burn: Burn) -> tuple[str, ...]:
     """Return the special sites that one burn touches, its joint included, without repeats."""
     own = special_site(burn.region, burn.face)
+    held = may_hold_site(burn.region, burn.face) if burn.whole else ()
     joint = f"{burn.joint} (joint)" if burn.joint else ""
-    return tuple(dict.fromkeys(name for name in (own, *burn.sites, joint) if name))
+    return tuple(dict.fromkeys(name for name in (own, *held, *burn.sites, joint) if name))
+
+
+def sites_unsure(burn: Burn) -> tuple[str, ...]:
+    """Return the special sites that a burn may touch although nobody charted whether it does."""
+    known = site_names(burn)
+    return tuple(name for name in may_hold_site(burn.region, burn.face) if name not in known)
 
 
 def sites(assessment: Assessment, deep_only: bool = False) -> tuple[str, ...]:
@@ -112,12 +119,12 @@ def _special(assessment: Assessment) -> Item:
     said: dict[str, list[str]] = {}
     for burn in assessment.burns:
         for name in site_names(burn) if burn.counted is not False else ():
-            here = burn.region if name in ("hands", "feet") else name
+            here = burn.region if name == special_site(burn.region, burn.face) != "face" else name
             said.setdefault(here, []).append(burn.depth)
     may = dict.fromkeys(
-        f"{burn.where} may hold {held}"
+        f"not recorded whether {burn.where} holds {joined(list(unsure), 'or')}"
         for burn in assessment.burns
-        if burn.counted is not False and (held := may_hold_site(burn.region, burn.face))
+        if burn.counted is not False and (unsure := sites_unsure(burn))
     )
     sites_said = [f"{name} ({joined(list(dict.fromkeys(depths)))})" for name, depths in said.items()]
     shown = "; ".join([*sites_said, *may]) or "none charted"

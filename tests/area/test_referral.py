@@ -244,7 +244,7 @@ def test_a_head_without_a_face_may_be_the_face_and_cannot_be_judged() -> None:
     findings = found(state_text([{"region": "head", "of_region": "10 %", "depth": "deep partial"}]))
     unknown = findings.item("area.referral_unknown")
     assert unknown is not None
-    assert "whether head holds the face not recorded" in unknown.shown
+    assert "whether head holds face not recorded" in unknown.shown
 
 
 def test_a_circumferential_burn_is_met_or_asked_about() -> None:
@@ -300,3 +300,24 @@ def test_comfort_care_asks_for_no_referral_and_no_limb_checks() -> None:
     findings = found(state_text(burns, patient=comfort))
     assert findings.actions == ()
     assert not any(item.flag is Flag.ACTION for item in findings.items)
+
+
+def test_a_whole_arm_holds_the_hand_and_half_an_arm_may() -> None:
+    arm = {"region": "left arm", "depth": "deep partial"}
+    whole = found(state_text([{**arm, "of_region": "100 %"}], method="rule of nines"))
+    half = found(state_text([{**arm, "of_region": "50 %"}], method="rule of nines"))
+    deep = "deep burn of face, hands, feet, genitalia, perineum or over a joint"
+    assert deep in met(whole)
+    assert deep not in met(half)
+    unknown = half.item("area.referral_unknown")
+    assert unknown is not None
+    assert "whether left arm holds hands not recorded" in unknown.shown
+
+
+def test_a_percentage_without_regions_leaves_sites_and_rings_open() -> None:
+    burns = [{"region": "whole body", "tbsa": "25 %", "depth": "deep partial"}]
+    findings = found(state_text(burns, method="direct"), setup=setup_with(referral="uk-2012"))
+    unknown = findings.item("area.referral_unknown")
+    assert unknown is not None
+    for missing in ("holds hands not recorded", "goes all round not recorded"):
+        assert missing in unknown.shown
