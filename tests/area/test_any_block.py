@@ -4,12 +4,12 @@ from __future__ import annotations
 
 from typing import Any
 
-from conftest import setup_of, state_text
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 
 from handoff.state.faults import StateFaults
 from handoff.work import assess_loaded, open_text
+from tests.area.build import setup_of, state_text
 
 BLOCK = setup_of().schema["properties"]["area"]["items"]["properties"]
 BURN = BLOCK["burns"]["items"]["properties"]

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 import pytest
-from conftest import assessed, faults, state_text
+
+from tests.area.build import assessed, faults, state_text
 
 
 def deep(region: str, **more: str) -> dict[str, str]:

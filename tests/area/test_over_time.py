@@ -5,10 +5,10 @@ from __future__ import annotations
 from typing import Any
 
 import pytest
-from conftest import assessed, setup_with, state_text
 
 from handoff.assess import Assessment
 from handoff.plugin import Flag, Item
+from tests.area.build import assessed, setup_with, state_text
 
 FIRST = {
     "at": "2026-03-14 14:00",
@@ -146,7 +146,7 @@ def test_a_wound_that_has_closed_is_shown_as_none_open() -> None:
 
 
 def test_wounds_of_one_region_may_not_be_more_than_the_region() -> None:
-    from conftest import faults
+    from tests.area.build import faults
 
     both = wound("2026-03-20 10:00", OPEN, {**OPEN, "state": "grafted", "of_region": "20 %"})
     (said,) = faults(state_text(area=[SECOND, both]), "2026-03-21 10:00")

@@ -5,9 +5,10 @@ from __future__ import annotations
 import random
 
 import pytest
-from conftest import found, state_text
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
+
+from tests.area.build import found, state_text
 
 REGIONS = (
     "head",

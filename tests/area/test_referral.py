@@ -11,9 +11,9 @@ from __future__ import annotations
 from typing import Any
 
 import pytest
-from conftest import assessed, found, setup_with, state_text
 
 from handoff.plugin import Findings, Flag
+from tests.area.build import assessed, found, setup_with, state_text
 
 NONE_ELSE = {
     "conditions": ["none of these"],

@@ -15,9 +15,9 @@ from handoff.bundled.area.age import AgeAtBurn
 from handoff.bundled.area.assessment import Assessment, read_burn
 from handoff.bundled.area.tables import table_for
 from handoff.bundled.area.totals import TOTALS, total_of
-from test_tables import case_with
 
 from handoff.plugin import Map, Text
+from tests.area.test_tables import case_with
 
 PATIENTS = 20_000
 HEAD = {0: 19, 1: 17, 5: 13, 10: 11, 15: 9, 99: 7}

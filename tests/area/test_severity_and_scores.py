@@ -5,9 +5,9 @@ from __future__ import annotations
 from typing import Any
 
 import pytest
-from conftest import assessed, found, setup_with, state_text
 
 from handoff.plugin import Flag, Item
+from tests.area.build import assessed, found, setup_with, state_text
 
 ADULT, CHILD = "1985-02-11", "2019-01-05"
 ELSE = {"other_injuries": "none found", "causes": [{"kind": "scald"}]}

@@ -11,7 +11,6 @@ from __future__ import annotations
 from datetime import UTC, datetime
 
 import pytest
-from conftest import setup_with, state_text
 from handoff.bundled.area import plugin
 from handoff.bundled.area.age import AgeAtBurn
 from handoff.bundled.area.regions import FACES, PAIRED, REGIONS, SINGLE
@@ -20,6 +19,7 @@ from handoff.bundled.area.tables import NoTableError, RegionTable, table_for
 from handoff.assess import case_of
 from handoff.plugin import Case
 from handoff.work import open_text
+from tests.area.build import setup_with, state_text
 
 COLUMNS = {"0": 0, "1": 1, "5": 5, "10": 10, "15": 16, "adult": 40}
 

@@ -9,13 +9,13 @@ from __future__ import annotations
 from typing import Any
 
 import pytest
-from conftest import NOW, assessed, found, setup_of, setup_with, state_text
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from handoff.assess import Assessment
 from handoff.plugin import Action, Flag, Item
 from handoff.registry import Setup
+from tests.area.build import NOW, assessed, found, setup_of, setup_with, state_text
 
 ROUND = {"region": "right forearm", "of_region": "100 %", "depth": "full thickness", "circumferential": "yes"}
 KEY = "area.perfusion.right_arm"

@@ -2,11 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Mapping, Sequence
 from functools import lru_cache
 from typing import Any
 
-import pytest
 import yaml
 from handoff.bundled.area import plugin
 
@@ -73,12 +72,3 @@ def faults(text: str, at: str = NOW, setup: Setup | None = None) -> list[str]:
     except StateFaults as refused:
         return [f"{fault.path}: {fault.what}; {fault.cure}" for fault in refused.faults]
     return [f"{fault.path}: {fault.what}; {fault.cure}" for fault in loaded.unusual]
-
-
-@pytest.fixture
-def pct() -> Callable[..., float | None]:
-    def measured(burns: Sequence[Burn], key: str = "area.counted", **more: Any) -> float | None:
-        setup = more.pop("setup", None)
-        return found(state_text(burns, **more), setup=setup).number(key)
-
-    return measured
