@@ -110,7 +110,7 @@ def test_a_reassessment_is_due_within_48_hours(at: str, flag: Flag) -> None:
 
 
 def test_a_charted_time_of_reassessment_comes_first() -> None:
-    burns = [{**SECOND["burns"][0], "reassess": "2026-03-15 09:00"}]  # type: ignore[index]
+    burns = [{**SECOND["burns"][0], "reassess": "2026-03-15 09:00"}]
     made = item(assessed(state_text(area=[{**SECOND, "burns": burns}])), "area.reassess_due")
     assert "15 Mar 2026 09:00" in made.shown
 
@@ -224,13 +224,13 @@ def test_what_other_plugins_read() -> None:
     assert values["circumferential_limbs"] == ("right arm",)
     assert values["special_sites"] == ("face",)
     assert values["deep_sites"] == ()
-    first, second, third = values["burns"]  # type: ignore[misc]
-    assert (first.region, first.depth, first.tbsa_pct, first.counted, first.circumferential) == (  # type: ignore[has-type]
+    first, second, third = values["burns"]
+    assert (first.region, first.depth, first.tbsa_pct, first.counted, first.circumferential) == (
         "right forearm",
         "full thickness",
         3,
         True,
         True,
     )
-    assert second.face == "front"  # type: ignore[has-type]
-    assert third.counted is False  # type: ignore[has-type]
+    assert second.face == "front"
+    assert third.counted is False

@@ -11,6 +11,7 @@ from __future__ import annotations
 from typing import Any
 
 import pytest
+from handoff.bundled.area.criteria import Fact, judge, meets
 
 from handoff.plugin import Findings, Flag
 from tests.area.build import assessed, found, setup_with, state_text
@@ -321,3 +322,27 @@ def test_a_percentage_without_regions_leaves_sites_and_rings_open() -> None:
     assert unknown is not None
     for missing in ("holds hands not recorded", "goes all round not recorded"):
         assert missing in unknown.shown
+
+
+@pytest.mark.parametrize(
+    ("pct", "signs", "expected"), [(25.0, True, False), (25.1, True, True), (25.1, False, False)]
+)
+def test_a_burn_centre_line_is_over_25_with_airway_signs(pct: float, signs: bool, expected: bool) -> None:
+    rows = setup_with().parameters["area"].table("referral.uk-adult-centre")["rows"]
+    facts = {"age_years": Fact(41.0), "counted_pct": Fact(pct), "inhalation_signs": Fact(signs)}
+    assert judge(rows[1]["when"], facts).met is expected
+
+
+def test_a_fact_that_is_so_is_not_hidden_by_one_that_is_missing() -> None:
+    known, missing = Fact(12.0, shown="burned 12 %TBSA"), Fact(missing="age not recorded")
+    facts = {"counted_pct": known, "age_years": missing}
+    assert judge([{"age_years": "< 2"}, {"counted_pct": "> 10"}], facts).met is True
+    assert judge({"age_years": "< 2", "counted_pct": "> 20"}, facts).met is False
+    assert judge({"age_years": "< 2", "counted_pct": "> 10"}, facts).missing == ("age not recorded",)
+
+
+def test_ten_made_of_binary_fractions_is_ten() -> None:
+    parts = 13 * 0.7 + 0.9
+    assert meets(parts, ">= 10")
+    assert not meets(parts, "> 10")
+    assert meets(10.001, "> 10")
