@@ -13,6 +13,7 @@ from handoff.document.page_one import PageOne, page_one
 from handoff.document.schedule import Shift
 from handoff.document.sections import (
     LEGEND,
+    NOT_RECORDED,
     Band,
     Block,
     Mark,
@@ -33,6 +34,7 @@ ELSEWHERE = frozenset(
 
 IN_THE_BAND = frozenset(
     (
+        "handover.concerns",
         "handover.severity",
         "injury.at",
         "injury.hours_since",
@@ -73,6 +75,7 @@ class Handover:
     identity: Identity
     severity: str
     severity_said: str
+    concerns: str
     given_by: str
     received_by: str
     page_one: PageOne
@@ -104,6 +107,7 @@ def handover(assessment: Assessment) -> Handover:
         identity=identity(assessment),
         severity=severity,
         severity_said=said,
+        concerns="; ".join(state.texts(written.get("concerns"))) or NOT_RECORDED,
         given_by=person(written.get("from")),
         received_by=person(written.get("to")),
         page_one=page_one(assessment, shift),

@@ -87,8 +87,14 @@ def missing_line(items: Sequence[Item]) -> str:
     """Return in one line what is not recorded among ``items``; says so where nothing is missing."""
     if not items:
         return "no entry was worked out for this section; take it from the bedside"
-    labels = dict.fromkeys(sentence(item.label) for item in items if item.flag is Flag.NOT_RECORDED)
+    labels = dict.fromkeys(named(item) for item in items if item.flag is Flag.NOT_RECORDED)
     return "; ".join(labels) if labels else "none of the entries of this section"
+
+
+def named(item: Item) -> str:
+    """Return the label of what is missing, with the reason where it could not be computed."""
+    reason = shown(item)
+    return sentence(item.label) if reason == NOT_RECORDED else f"{sentence(item.label)} ({reason})"
 
 
 def cautions_of(items: Iterable[Item]) -> str:

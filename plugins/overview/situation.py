@@ -56,9 +56,8 @@ def _burn_time(case: Case) -> Item:
 
 
 def hours_since(case: Case) -> Item:
-    """Return the hours since the burn, elapsed and not by the wall clock; no single value where the time is uncertain."""
+    """Return the hours since the burn, elapsed and not by the wall clock; a range where it is uncertain."""
     burn = case.state.burn_time
-    common = {"key": "injury.hours_since", "label": "Hours since burn", "part": Part.SITUATION}
     if burn is None:
         return Item(
             key="injury.hours_since",

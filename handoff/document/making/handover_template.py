@@ -55,11 +55,17 @@ def _band() -> str:
         span=2,
     )
     burn = labelled(WIDTH - half, "Time of burn", "{{ identity.burn }}", "{{ identity.since }}", span=2)
+    worries = cell(
+        WIDTH,
+        paragraph("Label", "What worries the nurse"),
+        paragraph("Key", "{{ concerns }}"),
+        span=4,
+    )
     people = row(
         labelled(half, "Given by", "{{ given_by }}", span=2, style="Normal"),
         labelled(WIDTH - half, "Received by", "{{ received_by }}", span=2, style="Normal"),
     )
-    return identity_band(WIDTH, row(severity, burn), people)
+    return identity_band(WIDTH, row(severity, burn), row(worries), people)
 
 
 def _key_listing(caption: str, loop: str, label: str, found_label: str, time: str) -> str:
