@@ -17,6 +17,9 @@ BURNS, HOURS = ("area", "burns"), ("fluid", "hours")
 COLUMNS = {BURNS: 7, HOURS: 7}
 
 
+_COUNTED = {True: "counted", False: "NOT counted", None: "not assessed"}
+
+
 @dataclass(frozen=True, slots=True)
 class Burn:
     """One burned region: where, how deep, how much of the body, and whether it counts."""
@@ -48,7 +51,7 @@ def burns(assessment: Assessment) -> tuple[Burn, ...]:
             region=sentence(", ".join(str(part) for part in (region, face) if part)),
             depth=str(depth or NOT_RECORDED),
             share=_amount(share, AREA_PLACES),
-            counted="counted" if counted else "NOT counted",
+            counted=_COUNTED[counted],
             around=_yes_no(around),
             line=str(line or ""),
         )

@@ -69,7 +69,8 @@ def _properties(validator: Any, properties: Schema, instance: Any, schema: Schem
         elif isinstance(others, Mapping):
             yield from validator.descend(value, others, path=str(key))
         elif not others:
-            yield Finding(f"unknown key '{key}'", nearest(key, properties), key=instance.key(key))
+            cure = schema.get("x-instead", {}).get(key) or nearest(key, properties)
+            yield Finding(f"unknown key '{key}'", cure, key=instance.key(key))
 
 
 def _required(validator: Any, required: list[str], instance: Any, schema: Schema) -> Found:
