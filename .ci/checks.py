@@ -45,7 +45,14 @@ def layout() -> bool:
 def types() -> bool:
     """Return whether the core, the plugins, the example plugins and the scripts pass the type checker."""
     lay_out_house()
-    mypy = ["-m", "mypy", "--config-file", str(ROOT / "pyproject.toml"), "--cache-dir", str(ROOT / ".mypy_cache")]
+    mypy = [
+        "-m",
+        "mypy",
+        "--config-file",
+        str(ROOT / "pyproject.toml"),
+        "--cache-dir",
+        str(ROOT / ".mypy_cache"),
+    ]
     house = _run([*mypy, "-p", "handoff"], HOUSE, _as_in_the_checkout)
     scripts = [_run([*mypy, str(ROOT / script)], HOUSE, _as_in_the_checkout) for script in SCRIPTS]
     outside = [
@@ -59,7 +66,9 @@ def types() -> bool:
 def imports() -> bool:
     """Return whether the core imports no plugin, and plugins import the contract alone."""
     lay_out_house()
-    command = "import sys; from importlinter.cli import lint_imports_command; sys.exit(lint_imports_command())"
+    command = (
+        "import sys; from importlinter.cli import lint_imports_command; sys.exit(lint_imports_command())"
+    )
     return _run(["-c", command, "--no-logo", "--no-cache", str(ROOT / "pyproject.toml")], HOUSE)
 
 

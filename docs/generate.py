@@ -36,7 +36,9 @@ def bundled() -> Setup:
 def stale(made: dict[str, str]) -> list[str]:
     """Return the names of the pages that do not hold what was ``made``."""
     paths = {name: FOLDER / name for name in made}
-    return [name for name, path in paths.items() if not path.exists() or path.read_text("utf-8") != made[name]]
+    return [
+        name for name, path in paths.items() if not path.exists() or path.read_text("utf-8") != made[name]
+    ]
 
 
 def main(arguments: list[str]) -> int:

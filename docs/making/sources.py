@@ -23,7 +23,7 @@ kind of truth, its source and the place in it. This page is made from those tabl
 | guideline | recommended in a published guideline or a service's written protocol |
 | study | measured or derived in a published study |
 | common practice | done widely; no source is claimed, local policy decides |
-| from memory | known to the authors; the source could not be read. Printed as such; decides no flag unless the policy picks it by name |
+| from memory | its source could not be read; printed as such, decides no flag unless the policy picks it |
 | local | set by the unit's policy file |
 
 "Read" says how much of the source the authors had before them: the whole, an excerpt, or nothing
@@ -126,7 +126,10 @@ def _plugin(plugin: Plugin, parameters: Parameters) -> str:
         held = by_source[key]
         heads = ("value", "is", "unit", "kind", "place")
         rows = [(code(one.id), *_value(one), one.kind, one.source.locator) for one in held]
-        parts += [f"### {plugin.name}: {key}" if key != "none" else f"### {plugin.name}: no source", _whole(held[0])]
+        parts += [
+            f"### {plugin.name}: {key}" if key != "none" else f"### {plugin.name}: no source",
+            _whole(held[0]),
+        ]
         parts.append(table(heads, rows))
     if not by_source:
         parts.append("No values.")

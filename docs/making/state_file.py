@@ -185,11 +185,11 @@ WAYS: tuple[tuple[Any, Any], ...] = (
     (lambda schema: "x-quantity" in schema, _quantity),
     (lambda schema: "x-instant" in schema, _instant),
     (lambda schema: "x-date" in schema, _date),
-    (lambda schema: "x-zone" in schema, lambda schema: "Time zone as `Area/City`."),
+    (lambda schema: "x-zone" in schema, lambda _: "Time zone as `Area/City`."),
     (lambda schema: schema.get("type") in ("integer", "number"), _number),
     (lambda schema: schema.get("type") == "array", _array),
     (lambda schema: schema.get("type") == "object", _object),
-    (lambda schema: schema.get("type") == "string", lambda schema: "Text."),
+    (lambda schema: schema.get("type") == "string", lambda _: "Text."),
 )
 """How each kind of key is described; the first that fits is used."""
 
@@ -201,7 +201,9 @@ def _entry() -> str:
 
 
 def _units() -> str:
-    kinds = [(kind.replace("_", " "), codes(unit or "no unit" for unit in units)) for kind, units in KINDS.items()]
+    kinds = [
+        (kind.replace("_", " "), codes(unit or "no unit" for unit in units)) for kind, units in KINDS.items()
+    ]
     same = [(code(spelling), code(unit)) for spelling, unit in ALIASES.items()]
     unsafe = [(code(spelling), code(unit)) for spelling, unit in UNSAFE.items()]
     return "\n\n".join(

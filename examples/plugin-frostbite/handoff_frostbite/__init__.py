@@ -79,7 +79,8 @@ def _since_thaw(case: Case) -> Item:
     elapsed_h = case.hours_between(at, case.now)
     window_h = case.parameters.number("thrombolysis_window")
     left_h = hours_left(window_h, elapsed_h)
-    open_for = f"open for {hours_text(left_h)} more" if left_h else "passed"
+    window = f"window of {with_unit(window_h, 'h')} for thrombolysis"
+    left = f"open for {hours_text(left_h)} more" if left_h else "passed"
     return Item(
         key=key,
         label=label,
@@ -87,7 +88,7 @@ def _since_thaw(case: Case) -> Item:
         system=System.LIMBS,
         value=elapsed_h,
         unit="h",
-        shown=f"{hours_text(elapsed_h)}; window of {with_unit(window_h, 'h')} for thrombolysis {open_for}, ask the receiving centre",
+        shown=f"{hours_text(elapsed_h)}; {window} {left}, ask the receiving centre",
         as_of=at,
         working=Working(
             formula="time left in a window",
