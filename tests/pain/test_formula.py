@@ -32,6 +32,8 @@ REFUSED: list[tuple[Callable[..., object], tuple[object, ...]]] = [
     (formula.overlap_h, (-math.inf, 2, 0, 5)),
     (formula.overlap_h, (1, math.inf, 0, 5)),
     (formula.overlap_h, (1, 2, 0, math.inf)),
+    (formula.overlap_h, (1, 2, math.nan, 5)),
+    (formula.overlap_h, (1, 2, -math.inf, 5)),
     (formula.delivered_mg, (-1, 1)),
     (formula.delivered_mg, (1, -1)),
     (formula.delivered_mg, (math.inf, 1)),
@@ -140,6 +142,8 @@ def test_rates_turn_into_each_other() -> None:
     assert formula.rate_mcg_kg_min(0.492, 82) == pytest.approx(0.1)
     assert formula.mean_rate_mcg_h(600) == 25
     assert formula.volume_ml(675, 10) == 67.5
+    assert formula.delivered_mg(3, 4) == 12
+    assert formula.opioid_equivalent_mg(40, 1.5) == 60
     assert formula.mass_in_volume_mg(67.5, 10) == 675
 
 
