@@ -16,8 +16,7 @@ from pathlib import Path
 
 ROOT = Path(__file__).resolve().parents[1]
 HOUSE = ROOT / "build" / "house"
-SCRIPTS = (".ci/checks.py", "docs/generate.py")
-NOT_CODE = shutil.ignore_patterns("__pycache__", "*.egg-info")
+NOT_CODE = shutil.ignore_patterns("__pycache__", "*.md", "pictures")
 
 
 def main() -> int:
@@ -43,24 +42,18 @@ def layout() -> bool:
 
 
 def types() -> bool:
-    """Return whether the core, the plugins, the example plugins and the scripts pass the type checker."""
+    """Return whether the core, the plugins, the scripts and the example plugins pass the type checker."""
     lay_out_house()
-    mypy = [
-        "-m",
-        "mypy",
-        "--config-file",
-        str(ROOT / "pyproject.toml"),
-        "--cache-dir",
-        str(ROOT / ".mypy_cache"),
-    ]
-    house = _run([*mypy, "-p", "handoff"], HOUSE, _as_in_the_checkout)
-    scripts = [_run([*mypy, str(ROOT / script)], HOUSE, _as_in_the_checkout) for script in SCRIPTS]
+    config = ["--config-file", str(ROOT / "pyproject.toml"), "--cache-dir", str(ROOT / ".mypy_cache")]
+    mypy = ["-m", "mypy", *config]
+    house = _run([*mypy, "-p", "handoff", "-p", "docs"], HOUSE, _as_in_the_checkout)
+    script = _run([*mypy, str(Path(__file__))], HOUSE)
     outside = [
-        _run([*mypy, "-p", folder.name], folder.parent, lambda said: said, path=str(HOUSE))
+        _run([*mypy, "-p", folder.name], folder.parent, path=str(HOUSE))
         for folder in sorted(ROOT.glob("examples/plugin-*/*/"))
         if (folder / "__init__.py").is_file()
     ]
-    return all([house, *scripts, *outside])
+    return all([house, script, *outside])
 
 
 def imports() -> bool:
@@ -80,6 +73,7 @@ def lay_out_house() -> Path:
     shutil.rmtree(HOUSE, ignore_errors=True)
     shutil.copytree(ROOT / "handoff", HOUSE / "handoff", ignore=NOT_CODE)
     shutil.copytree(ROOT / "plugins", HOUSE / "handoff" / "bundled", ignore=NOT_CODE, dirs_exist_ok=True)
+    shutil.copytree(ROOT / "docs", HOUSE / "docs", ignore=NOT_CODE)
     return HOUSE
 
 
