@@ -39,6 +39,10 @@ the place, and change `kind` in the table; to use another value meanwhile, put i
 """
 
 
+LONGEST = 600
+"""Letters of a value that are still read in a table; a longer one is read in its own file."""
+
+
 @dataclass(frozen=True, slots=True)
 class First:
     """What must be confirmed before anything else: what, why, and the values or examples concerned."""
@@ -151,11 +155,17 @@ def _cited(one: Parameter) -> str:
 
 
 def _value(one: Parameter) -> tuple[str, str]:
-    value = one.value
-    if isinstance(value, Mapping):
-        said = f"table of {len(value)}" if len(value) > 1 else "table"
-    elif isinstance(value, list):
-        said = ", ".join(str(part) for part in value) if len(value) < 7 else f"list of {len(value)}"
-    else:
-        said = str(value)
+    said = _said(one.value, outermost=True)
+    if len(said) > LONGEST:
+        said = f"{len(one.value)} entries, in the table itself"
     return said, one.unit
+
+
+def _said(value: Any, outermost: bool = False) -> str:
+    if isinstance(value, Mapping):
+        said = ", ".join(f"{key}: {_said(part)}" for key, part in value.items())
+        return said if outermost else f"({said})"
+    if isinstance(value, list):
+        said = ", ".join(_said(part) for part in value)
+        return said if outermost else f"({said})"
+    return {True: "yes", False: "no"}.get(value, str(value)) if isinstance(value, bool) else str(value)
