@@ -1,0 +1,135 @@
+"""Why the airway is watched: smoke, burns of face and neck, signs; and what is not recorded."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Protocol
+
+from handoff.plugin import Case, child, joined, line_of, plural, words
+
+from . import charted
+
+FIRE = ("flame", "flash", "explosion")
+CLOSED = ("enclosed space", "vehicle")
+FACE = ("head", "head and neck", "whole body")
+NECK = ("neck", "head and neck", "whole body")
+DEEP = ("deep partial", "full thickness", "deeper than full thickness")
+FULL = ("full thickness", "deeper than full thickness")
+COMFORT = "comfort care"
+
+
+class Burn(Protocol):
+    """A burned region, as the area plugin hands it over."""
+
+    @property
+    def region(self) -> str: ...
+    @property
+    def face(self) -> str: ...
+    @property
+    def depth(self) -> str: ...
+    @property
+    def counted(self) -> bool | None: ...
+    @property
+    def circumferential(self) -> bool: ...
+    @property
+    def line(self) -> int: ...
+
+
+@dataclass(frozen=True, slots=True)
+class Exposure:
+    """What is recorded of smoke, face and neck; ``reasons`` ask for the watch, ``missing`` is not recorded."""
+
+    smoke: tuple[str, ...]
+    face: tuple[Burn, ...]
+    neck: tuple[Burn, ...]
+    reasons: tuple[str, ...]
+    missing: tuple[str, ...]
+    comfort: bool
+
+    @property
+    def watched(self) -> bool:
+        """Whether the airway watch is asked for."""
+        return bool(self.reasons) and not self.comfort
+
+    @property
+    def smoke_recorded(self) -> bool:
+        """Whether smoke exposure is recorded."""
+        return bool(self.smoke)
+
+
+def exposure(case: Case) -> Exposure:
+    """Return why the airway is watched and what is not recorded about it."""
+    smoke = _smoke(case)
+    burns = _burns(case)
+    face = tuple(burn for burn in burns if burn.region in FACE and burn.face != "back")
+    neck = tuple(burn for burn in burns if burn.region in NECK)
+    found = [sign.name for sign in charted.signs(case) if sign.present]
+    reasons = list(smoke)
+    if face or _special_face(case):
+        reasons.append("burn of the face")
+    if neck:
+        reasons.append("burn of the neck")
+    if found:
+        reasons.append(f"{plural(len(found), 'airway sign')} present when last looked for")
+    if charted.levels(case) and not smoke:
+        reasons.append("carboxyhaemoglobin was measured")
+    if charted.tube(case).in_place or charted.tube(case).extubated:
+        reasons.append("tube in the airway, now or earlier")
+    if child(case.block, "watch", "start") is not None:
+        reasons.append("a watch was started")
+    decision = words(child(case.state.patient, "resuscitation", "decision"))
+    return Exposure(smoke, face, neck, tuple(reasons), _missing(case), decision == COMFORT)
+
+
+def _smoke(case: Case) -> tuple[str, ...]:
+    found = []
+    for cause in charted.causes(case):
+        kind, setting = words(cause.get("kind")), words(cause.get("setting"))
+        line = f" (line {line_of(cause)})"
+        if words(cause.get("smoke")) == "yes":
+            found.append(f"smoke breathed{line}")
+        if kind in FIRE and (setting in CLOSED or words(cause.get("trapped")) == "yes"):
+            where = f"in {'a vehicle' if setting == 'vehicle' else 'an enclosed space'}"
+            found.append(f"{kind} {where if setting in CLOSED else 'and trapped'}{line}")
+    return tuple(found)
+
+
+def _burns(case: Case) -> tuple[Burn, ...]:
+    burns = case.findings["area"].values.get("burns") if "area" in case.findings else None
+    found: tuple[Burn, ...] = burns if isinstance(burns, tuple) else ()
+    return tuple(burn for burn in found if burn.counted is not False)
+
+
+def burns_recorded(case: Case) -> bool:
+    """Return whether any burned region is recorded, epidermal ones included."""
+    return "area" in case.findings and bool(case.findings["area"].values.get("burns"))
+
+
+def counted_pct(case: Case) -> float | None:
+    """Return the counted burn in %TBSA, or None."""
+    pct = case.findings["area"].values.get("counted_pct") if "area" in case.findings else None
+    return float(pct) if isinstance(pct, (int, float)) else None
+
+
+def _special_face(case: Case) -> bool:
+    sites = case.findings["area"].values.get("special_sites") if "area" in case.findings else None
+    return isinstance(sites, tuple) and "face" in [str(site) for site in sites]
+
+
+def _missing(case: Case) -> tuple[str, ...]:
+    missing = []
+    causes = charted.causes(case)
+    if not causes:
+        missing.append("cause of the burn")
+    for cause in causes:
+        if words(cause.get("kind")) not in FIRE or words(cause.get("smoke")) in ("yes", "no"):
+            continue
+        gaps = [said for key, said in (("setting", "enclosed space or open air"), ("smoke", "smoke breathed or not"))
+                if words(cause.get(key)) in ("", "not known")]
+        if gaps:
+            missing.append(joined(gaps))
+    if not burns_recorded(case):
+        missing.append("burned regions")
+    if not charted.check_times(case):
+        missing.append("airway signs")
+    return tuple(dict.fromkeys(missing))

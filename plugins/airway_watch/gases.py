@@ -1,0 +1,288 @@
+"""Oxygenation: the saturation with its doubt, P/F, S/F and ROX."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from datetime import datetime
+
+from handoff.plugin import (
+    Case,
+    Flag,
+    Item,
+    Node,
+    Reading,
+    Row,
+    System,
+    Working,
+    amount,
+    line_of,
+    number_text,
+    with_unit,
+    words,
+)
+
+from . import charted, formula, oxygen, say
+from .carbon_monoxide import Monoxide, doubt_at, expected_at
+from .exposure import Exposure
+from .oxygen import Fraction
+
+RANK = 22
+NOT_ARDS = "A range of a ratio is not a diagnosis: that needs PEEP, imaging, timing and a doctor."
+OPEN_DEVICE = "The inspired oxygen is an estimate, so the ratio is too."
+
+
+@dataclass(frozen=True, slots=True)
+class Breathed:
+    """A measurement with the inspired oxygen that goes with it."""
+
+    at: datetime
+    value: float
+    node: Node
+    given: Fraction
+
+
+def given_at(case: Case, moment: datetime, row: Row | None = None) -> tuple[Fraction | None, str]:
+    """Return the inspired oxygen at ``moment`` (written beside the result, or charted), or what is missing."""
+    beside = amount(row.entry.get("fio2"), "%") if row is not None else None
+    if beside is not None:
+        return Fraction(beside, beside, False, "as written beside the result", None, say.pct(beside)), ""
+    held = oxygen.holding(case, moment)
+    if held is None:
+        return None, f"oxygen at {say.at(case, moment)}"
+    return oxygen.fraction(case, held)
+
+
+def items(case: Case, seen: Exposure, gas: Monoxide) -> tuple[Item, ...]:
+    """Return saturation, P/F, S/F and ROX."""
+    saturation = _latest_spo2(case)
+    doubt = doubt_text(case, seen, gas, saturation.at) if saturation else ""
+    return (
+        *_spo2(case, seen, gas, saturation, doubt),
+        _pf(case),
+        *_sf(case, saturation, doubt),
+        *_rox(case, saturation, doubt),
+    )
+
+
+def _latest_spo2(case: Case) -> Reading | None:
+    readings = [reading for reading in case.state.series("spo2") if amount(reading.node, "%") is not None]
+    return max(readings, key=lambda reading: (reading.at, -(amount(reading.node, "%") or 0)), default=None)
+
+
+def doubt_text(case: Case, seen: Exposure, gas: Monoxide, moment: datetime) -> str:
+    """Return the label of everything made from a saturation while carbon monoxide is unknown or raised."""
+    doubt = doubt_at(case, seen, gas.levels, moment)
+    return f"may read falsely high: {doubt}" if doubt else ""
+
+
+def _spo2(
+    case: Case, seen: Exposure, gas: Monoxide, reading: Reading | None, doubt: str
+) -> tuple[Item, ...]:
+    key, label = "spo2", "Oxygen saturation by oximeter"
+    if reading is None:
+        return (say.gap(key, label, unit="%", system=System.BREATHING),) if seen.watched else ()
+    pct = amount(reading.node, "%") or 0.0
+    shown = f"{say.pct(pct)} at {say.at(case, reading.at)}" + (f", {doubt}" if doubt else "")
+    cautions = ["It cannot tell carbon monoxide from oxygen: blood co-oximetry does."] if doubt else []
+    hidden = _hidden(case, gas, reading.at, pct) if doubt else ""
+    if hidden:
+        cautions.append(hidden)
+    return (
+        say.fact(
+            key,
+            label,
+            shown,
+            value=pct,
+            unit="%",
+            as_of=reading.at,
+            flag=Flag.REVIEW if doubt else Flag.NONE,
+            rank=RANK if doubt else None,
+            system=System.BREATHING,
+            sources=(case.parameters.source_of("oximeter"),) if doubt else (),
+            cautions=cautions,
+            line=line_of(reading.node),
+        ),
+    )
+
+
+def _hidden(case: Case, gas: Monoxide, moment: datetime, pct: float) -> str:
+    before = [level for level in gas.levels if level.at <= moment]
+    if not before:
+        return ""
+    level = expected_at(case, before[-1], moment).central
+    most = formula.oxyhaemoglobin_pct(pct, level)
+    return f"Carboxyhaemoglobin about {say.pct(level)} then: oxygenated haemoglobin at most about {say.pct(most)}."
+
+
+def _pf(case: Case) -> Item:
+    key, label = "pf_ratio", "P/F"
+    rows = [row for row in case.state.results if row.entry.get("pao2") is not None]
+    rows = [row for row in rows if words(row.entry.get("specimen")) in ("", "arterial")]
+    rows.sort(key=lambda row: (row.at, -(amount(row.entry.get("pao2"), "mmHg") or 0)))
+    pao2 = amount(rows[-1].entry.get("pao2"), "mmHg") if rows else None
+    if pao2 is None:
+        return say.gap(key, label, unit="mmHg", system=System.BREATHING)
+    row = rows[-1]
+    given, missing = given_at(case, row.at, row)
+    if given is None:
+        return say.gap(key, label, missing, unit="mmHg", system=System.BREATHING)
+    return _pf_item(case, row, pao2, given)
+
+
+def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
+    # With an estimated oxygen the highest estimate counts: it gives the lowest ratio.
+    value = formula.pf_ratio_mmhg(pao2, given.high)
+    best = formula.pf_ratio_mmhg(pao2, given.low)
+    said = f"{number_text(value)} mmHg ({number_text(formula.kilopascals(value), say.PLACES)} kPa)"
+    if best > value:
+        said = f"about {number_text(value)} to {number_text(best)} mmHg"
+    limits = [float(limit) for limit in case.parameters["berlin"].value]
+    band = pf_range(value, limits)
+    low = formula.at_or_below(value, limits)
+    sources = [case.parameters.source_of("berlin")] + ([given.source] if given.source else [])
+    pao2_said = words(row.entry.get("pao2"))
+    by = number_text(given.high / 100, 2)
+    equal = formula.room_air_equivalent_mmhg(value, case.parameters.number("fio2.room_air_handbook"))
+    return say.fact(
+        "pf_ratio",
+        "P/F",
+        f"{said}, P/F in the {band} range, at {say.at(case, row.at)} on {given.shown()}",
+        value=value,
+        unit="mmHg",
+        as_of=row.at,
+        flag=Flag.ACTION if low is not None and low < max(limits) else Flag.NONE,
+        rank=RANK if low is not None and low < max(limits) else None,
+        system=System.BREATHING,
+        working=Working(
+            formula="arterial oxygen pressure / inspired oxygen fraction",
+            sum=f"{number_text(pao2, say.PLACES)} mmHg / {by} = {number_text(value, say.PLACES)} mmHg",
+            inputs=(
+                case.input("Arterial oxygen pressure", row.entry.get("pao2"), pao2_said),
+                case.input("Inspired oxygen", row.entry.get("fio2"), given.shown()),
+            ),
+            rule=given.table,
+        ),
+        sources=sources,
+        cautions=(
+            NOT_ARDS,
+            *((OPEN_DEVICE,) if given.estimated else ()),
+            f"The same ratio on room air would be about {number_text(equal)} mmHg (handbook sum, 20 % oxygen).",
+        ),
+        line=row.line,
+    )
+
+
+def pf_range(value: float, limits: list[float]) -> str:
+    """Return the range of a P/F by its limits in mmHg: ``100 to 200``; a limit belongs to the range below it."""
+    edges = sorted(limits)
+    top = formula.at_or_below(value, edges)
+    if top is None:
+        return f"above {number_text(edges[-1])} mmHg"
+    below = [edge for edge in edges if edge < top]
+    if not below:
+        return f"{number_text(top)} mmHg or below"
+    return f"above {number_text(below[-1])} to {number_text(top)} mmHg"
+
+
+def _sf(case: Case, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
+    if reading is None:
+        return ()
+    key, label = "sf_ratio", "S/F"
+    pct = amount(reading.node, "%") or 0.0
+    given, missing = given_at(case, reading.at)
+    if given is None:
+        return (say.gap(key, label, missing, unit="1", system=System.BREATHING),)
+    highest = case.parameters.number("sf.highest_spo2")
+    value = formula.sf_ratio(pct, given.high, highest)
+    sources = [case.parameters.source_of("sf.highest_spo2")] + ([given.source] if given.source else [])
+    if value is None:
+        shown = f"withheld: saturation {say.pct(pct)} is above {say.pct(highest)}"
+        return (
+            say.fact(key, label, shown, unit="1", as_of=reading.at, system=System.BREATHING, sources=sources),
+        )
+    by = number_text(given.high / 100, 2)
+    cut_offs = case.parameters.table("sf.cut_offs")
+    near = " and ".join(f"{number_text(sf)} for P/F {number_text(float(pf))}" for pf, sf in cut_offs.items())
+    said = f"{number_text(value)} at {say.at(case, reading.at)} on {given.shown()}"
+    return (
+        say.fact(
+            key,
+            label,
+            said + (f", {doubt}" if doubt else ""),
+            value=value,
+            unit="1",
+            as_of=reading.at,
+            system=System.BREATHING,
+            detail=True,
+            working=Working(
+                formula="saturation / inspired oxygen fraction",
+                sum=f"{number_text(pct, say.PLACES)} / {by} = {number_text(value, say.PLACES)}",
+                inputs=(case.input("Saturation", reading.node), case.input("Inspired oxygen", None, given.shown())),
+                rule=given.table,
+            ),
+            sources=(*sources, case.parameters.source_of("sf.cut_offs")),
+            cautions=(
+                f"Stands in for P/F only where no arterial gas is to be had: published {near}.",
+                *((OPEN_DEVICE,) if given.estimated else ()),
+            ),
+        ),
+    )
+
+
+def _rox(case: Case, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
+    if reading is None or charted.tube(case).in_place:
+        return ()
+    held = oxygen.holding(case, reading.at)
+    if held is None or held.device in (oxygen.ROOM_AIR, oxygen.VENTILATOR):
+        return ()
+    key, label = "rox_index", "ROX index"
+    age = case.state.age_at(case.now)
+    if age is not None and age.years < case.parameters.number("adult_from"):
+        return ()
+    pct, breaths = amount(reading.node, "%") or 0.0, amount(reading.row.get("resp"), "/min")
+    given, missing = oxygen.fraction(case, held)
+    if not breaths:
+        missing = f"breaths a minute at {say.at(case, reading.at)}"
+    if given is None or not breaths:
+        return (say.gap(key, label, missing, unit="1/(breaths/min)", system=System.BREATHING),)
+    return (_rox_item(case, reading, held, given, pct, breaths, doubt),)
+
+
+def _rox_item(
+    case: Case, reading: Reading, held: oxygen.Oxygen, given: Fraction, pct: float, breaths: float, doubt: str
+) -> Item:
+    value = formula.rox_index(pct, given.high, breaths)
+    by = number_text(given.high / 100, 2)
+    lower = case.parameters.number("rox.lower_risk")
+    hours = case.hours_between(held.start, reading.at)
+    said = f"{number_text(value, 2)} at {say.at(case, reading.at)}"
+    if held.device == "high-flow nasal":
+        passed = [limit for after, limit in case.parameters["rox.failure"].value if hours >= after]
+        said += f", {'at or above' if value >= lower else 'below'} {number_text(lower, 2)}"
+        if passed and value < passed[-1]:
+            said += f" and below {number_text(passed[-1], 2)}: tell the doctor"
+    return say.fact(
+        "rox_index",
+        "ROX index",
+        said + (f", {doubt}" if doubt else ""),
+        value=value,
+        unit="1/(breaths/min)",
+        as_of=reading.at,
+        system=System.BREATHING,
+        detail=True,
+        working=Working(
+            formula="saturation / inspired oxygen fraction / breaths a minute",
+            sum=f"{number_text(pct, say.PLACES)} / {by} / {number_text(breaths)} = {number_text(value, 2)}",
+            inputs=(
+                case.input("Saturation", reading.node),
+                case.input("Inspired oxygen", None, given.shown()),
+                case.input("Breaths", reading.row.get("resp"), with_unit(breaths, "/min")),
+            ),
+            rule=given.table,
+        ),
+        sources=(case.parameters.source_of("rox.lower_risk"), *([given.source] if given.source else [])),
+        cautions=(
+            "Derived in adults with pneumonia on high-flow nasal oxygen, not in burns; the limits hold only there.",
+            *((OPEN_DEVICE,) if given.estimated else ()),
+        ),
+    )
