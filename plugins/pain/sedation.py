@@ -180,7 +180,7 @@ def _reduction(case: Case, charted: Charted, level: Level) -> Working | None:
         return None
     run, (low, high) = running[0], case.parameters["sedation.poss_reduction"].value
     return Working(
-        formula="published prompt at POSS 3: the opioid less 25 % to 50 %; the prescriber decides",
+        formula="published prompt at this level: less of the opioid; the prescriber decides",
         sum=_reduction_sum(run, float(low), float(high)),
         inputs=(case.input(f"{run.drug.name} {run.route}", run.node, run.written),),
         rule="sedation.poss",
@@ -225,7 +225,8 @@ def _breathing_item(case: Case, charted: Charted) -> Item:
     limit = case.parameters.number("respiration.hold_below")
     age = case.state.age_at(case.now)
     adult = age is not None and age.years >= case.parameters.number("adult_from")
-    cautions = list(_risks(case, charted, opioid))
+    risks = _risks(case, charted, opioid)
+    cautions = [f"raises the risk of slow breathing: {'; '.join(said for said, _ in risks)}"] if risks else []
     if opioid and adult and rate < limit:
         flag = Flag.REVIEW if comfort_care(case) else Flag.ACTION
         shown += f"; under {number_text(limit)} with an opioid given: "
@@ -242,7 +243,7 @@ def _breathing_item(case: Case, charted: Charted) -> Item:
         shown=shown,
         as_of=reading.at,
         flag=flag,
-        sources=(case.parameters.source_of("respiration.hold_below"),),
+        sources=(case.parameters.source_of("respiration.hold_below"), *(source for _, source in risks)),
         cautions=tuple(cautions),
         repeats=True,
         rank=RANK if flag is Flag.ACTION else None,
@@ -250,18 +251,19 @@ def _breathing_item(case: Case, charted: Charted) -> Item:
     )
 
 
-def _risks(case: Case, charted: Charted, opioid: datetime | None) -> tuple[str, ...]:
-    """What raises the risk of slow breathing under an opioid, as prompts and never as a score."""
+def _risks(case: Case, charted: Charted, opioid: datetime | None) -> tuple[tuple[str, Source], ...]:
+    """What raises the risk of slow breathing under an opioid, as prompts with their sources, never as a score."""
     if opioid is None:
         return ()
     said = []
     firsts = [one.earliest for one in charted.given if one.drug.group == OPIOID]
     firsts += [run.start for run in charted.runs if run.drug.group == OPIOID]
     if case.hours_between(min(firsts), case.now) <= case.parameters.number("opioid_risk.first_hours"):
-        said.append("first day of an opioid")
+        said.append(("first day of an opioid", case.parameters.source_of("opioid_risk.first_hours")))
     sedatives = sorted({portion.drug.name for portion in charted.of(SEDATIVE)})
     if sedatives:
-        said.append(f"sedatives given too: {', '.join(sedatives)}")
+        names = f"sedatives given too: {', '.join(sedatives)}"
+        said.append((names, case.parameters.source_of("opioid_risk.sedatives")))
     if "kidney disease" in case.state.texts(case.state.patient.get("conditions")):
-        said.append("kidney disease")
-    return (f"raises the risk of slow breathing: {'; '.join(said)}",) if said else ()
+        said.append(("kidney disease", case.parameters.source_of("opioid_risk.kidney")))
+    return tuple(said)
