@@ -32,16 +32,24 @@ def main(arguments: list[str]) -> int:
         return 2
     lock, command = JOBS[arguments[0]]
     python = _python()
-    _install(python, ROOT / lock)
+    try:
+        _install(python, ROOT / lock)
+    except subprocess.CalledProcessError:
+        print("the packages could not be installed; what pip said stands above. Try again online", file=sys.stderr)
+        return 2
     return subprocess.run([str(python), *command, *arguments[1:]], cwd=ROOT, check=False).returncode  # noqa: S603
 
 
 def _python() -> Path:
     python = FOLDER / ("Scripts/python.exe" if os.name == "nt" else "bin/python")
     if not python.exists():
-        print(f"making {FOLDER}")
-        venv.create(FOLDER, with_pip=True, symlinks=os.name != "nt")
+        print(f"making {FOLDER}", flush=True)
+        _make()
     return python
+
+
+def _make() -> None:
+    venv.create(FOLDER, with_pip=True, symlinks=os.name != "nt")
 
 
 def _install(python: Path, lock: Path) -> None:
@@ -50,6 +58,8 @@ def _install(python: Path, lock: Path) -> None:
     if mark.exists() and mark.read_text() == digest:
         return
     print(f"installing what {lock.relative_to(ROOT)} names", flush=True)
+    if subprocess.run([str(python), "-m", "pip", "--version"], capture_output=True, check=False).returncode:  # noqa: S603
+        _make()  # the first attempt was cut short
     pip = [str(python), "-m", "pip", "install", "--quiet", "--disable-pip-version-check"]
     subprocess.run([*pip, "--require-hashes", "-r", str(lock)], check=True)  # noqa: S603
     subprocess.run([*pip, "--no-deps", "--no-build-isolation", "--editable", str(ROOT)], check=True)  # noqa: S603
