@@ -36,19 +36,11 @@ class Source:
 
     def shown(self) -> str:
         """Return the citation with its place; facts from memory and without a source say so."""
-        cited = self.citation
-        if self.edition:
-            cited += f" Edition: {self.edition}."
-        if self.doi:
-            cited += f" doi:{self.doi}."
-        if self.locator:
-            cited += f" {self.locator}"
-        cited = cited.strip().rstrip(".") + "."
-        if self.kind == "from memory":
-            return f"{cited} From memory: confirm before use."
-        if self.kind == "common practice":
-            return f"{cited} Common practice, no source."
-        return cited
+        parts = [self.citation, f"Edition: {self.edition}" if self.edition else ""]
+        parts += [f"doi:{self.doi}" if self.doi else "", self.locator]
+        cited = " ".join(f"{part.strip().rstrip('.')}." for part in parts if part.strip())
+        notes = {"from memory": "From memory: confirm before use.", "common practice": "Common practice, no source."}
+        return f"{cited} {notes.get(self.kind, '')}".strip()
 
 
 @dataclass(frozen=True, slots=True)
