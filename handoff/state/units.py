@@ -87,6 +87,7 @@ KINDS: dict[str, dict[str, Unit]] = {
     "protein_mass": {"g/L": _PLAIN, "g/dL": Unit(10)},
     "c_reactive": {"mg/L": _PLAIN},
     "cyanide": {"umol/L": _PLAIN, "mg/L": Unit(1000 / 26.017)},
+    "procalcitonin": {"mcg/L": _PLAIN, "ng/mL": _PLAIN},
 }
 
 ALIASES = {
