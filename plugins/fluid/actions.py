@@ -1,0 +1,105 @@
+"""What the care plan asks for: urine by the hour, lines seen running, and who to tell."""
+
+from __future__ import annotations
+
+from datetime import timedelta
+
+from handoff.plugin import Action, System, Urgency, joined
+
+from .course import Course
+from .say import ml_h
+from .targets import Target
+
+AREA = "Fluid and urine"
+
+
+def actions(course: Course) -> tuple[Action, ...]:
+    """Return the actions of fluid and urine; none where comfort is the goal of care."""
+    if course.comfort:
+        return ()
+    return (*_urine(course), *_lines(course), *_low(course), *_no_order(course))
+
+
+def _urine(course: Course) -> tuple[Action, ...]:
+    if course.plan is None and course.urine.catheter is None and not course.published:
+        return ()
+    if course.plan is None and course.no_plan and course.urine.catheter is None:
+        return ()
+    every = timedelta(hours=course.number("urine.check_every"))
+    last = course.urine.last
+    aimed = course.target
+    goal = f"target {aimed.shown}" if isinstance(aimed, Target) else aimed.shown
+    colour = " and colour" if course.person.is_electrical or course.pigmented else ""
+    return (
+        Action(
+            key="fluid.urine_hourly",
+            area=AREA,
+            text=f"Urine{colour}: measure, write mL and the interval; {goal}",
+            why="urine leads the rate",
+            system=System.FLUID,
+            first_due=last.at + every if last else course.now,
+            every=every,
+            urgency=Urgency.TIMED,
+            sources=(course.source("urine.check_every"),),
+        ),
+    )
+
+
+def _lines(course: Course) -> tuple[Action, ...]:
+    if not course.given.running:
+        return ()
+    every = timedelta(hours=course.number("line.check_every"))
+    names = [
+        f"{line.name or line.fluid or line.purpose} ({ml_h(line.ml_h)}, {line.purpose})"
+        for line in course.given.running
+    ]
+    return (
+        Action(
+            key="fluid.lines_running",
+            area=AREA,
+            text=f"See running and chart it: {joined(names)}; look at the site",
+            why="only what was seen running counts as given",
+            system=System.FLUID,
+            first_due=min(line.seen for line in course.given.running) + every,
+            every=every,
+            urgency=Urgency.TIMED,
+            sources=(course.source("line.check_every"),),
+        ),
+    )
+
+
+def _low(course: Course) -> tuple[Action, ...]:
+    last = course.urine.last
+    aimed = course.target
+    if last is None or course.judged(last) != "below" or not isinstance(aimed, Target) or not aimed.may_flag:
+        return ()
+    return (
+        Action(
+            key="fluid.urine_low",
+            area=AREA,
+            text=(
+                "Urine below its target: check catheter or pad, pulse, pressure and perfusion; "
+                "tell the prescriber and ask about the rate"
+            ),
+            why=f"last urine {last.shown()} at {course.time(last.at)}, target {aimed.shown}",
+            system=System.FLUID,
+            urgency=Urgency.NOW,
+            sources=aimed.sources,
+        ),
+    )
+
+
+def _no_order(course: Course) -> tuple[Action, ...]:
+    if course.plan is not None or course.no_plan or not course.published:
+        return ()
+    return (
+        Action(
+            key="fluid.ask_order",
+            area=AREA,
+            text="Ask the prescriber for a fluid order and a urine target; none is recorded",
+            why=course.start_said,
+            system=System.FLUID,
+            urgency=Urgency.NOW,
+            sources=(course.source(f"start.{course.case.chosen('start').name}"),),
+        ),
+    )

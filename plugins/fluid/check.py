@@ -1,0 +1,186 @@
+"""Faults of the fluid block that a schema cannot see: what does not say when, how much or on which line."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from datetime import datetime
+
+from handoff.plugin import Case, List, Map, Problem, child, words
+
+from .portions import rate_of
+
+Path = tuple[str | int, ...]
+SAYS_SOMETHING = ("rate", "drops", "volume", "ice", "before_arrival", "running", "stopped")
+SETS = ("formula", "coefficient", "rate", "urine_target", "urine_target_per_kg", "ended")
+
+
+def check(case: Case) -> tuple[Problem, ...]:
+    """Return the faults of the fluid block and of the weight, in the order of the file."""
+    return (*_orders(case), *_given(case), *_lines(case))
+
+
+def _rows(case: Case, name: str) -> Iterator[tuple[Map, Path]]:
+    node = child(case.block, name)
+    if isinstance(node, List):
+        for index, entry in enumerate(node):
+            if isinstance(entry, Map) and "struck" not in entry:
+                yield entry, ("fluid", name, index)
+
+
+def _orders(case: Case) -> Iterator[Problem]:
+    seen: dict[tuple[datetime, str], Path] = {}
+    for entry, path in _rows(case, "orders"):
+        if not any(key in entry for key in SETS):
+            yield Problem(
+                entry, path, "the order orders nothing", "add formula:, coefficient:, rate: or urine_target:"
+            )
+        if words(entry.get("formula")) == "local" and not {"coefficient", "rate"} & set(entry):
+            yield Problem(
+                entry["formula"],
+                (*path, "formula"),
+                "a local formula has no figure",
+                "add coefficient: or rate:",
+            )
+        if "urine_target" in entry and "urine_target_per_kg" in entry:
+            yield Problem(
+                entry["urine_target"],
+                (*path, "urine_target"),
+                "two urine targets stand in one order",
+                "keep urine_target: or urine_target_per_kg:",
+            )
+        at = case.when(entry.get("at"))
+        for kind in ("fluid", "urine"):
+            names = SETS[:3] if kind == "fluid" else SETS[3:5]
+            if at is None or not any(name in entry for name in names):
+                continue
+            if (at, kind) in seen:
+                yield Problem(
+                    entry["at"],
+                    (*path, "at"),
+                    f"two orders of {kind} stand at the same minute",
+                    "strike one out, or write the minute at which the later one came",
+                )
+            seen[at, kind] = path
+
+
+def _given(case: Case) -> Iterator[Problem]:
+    for entry, path in _rows(case, "given"):
+        if not any(key in entry for key in SAYS_SOMETHING):
+            yield Problem(
+                entry, path, "it does not say how much went in", "add volume: with at:, or rate: with from:"
+            )
+        if ("rate" in entry or "drops" in entry) and "from" not in entry:
+            key = "rate" if "rate" in entry else "drops"
+            yield Problem(entry[key], (*path, key), "the rate has no start", "add from: with date and time")
+        if "rate" in entry and "drops" in entry:
+            yield Problem(
+                entry["drops"], (*path, "drops"), "rate and drops stand together", "keep one of them"
+            )
+        if "drops" in entry and "drop_factor" not in entry:
+            yield Problem(
+                entry["drops"],
+                (*path, "drops"),
+                "drops without the drop factor are no volume",
+                "add drop_factor: as printed on the giving set, for example 20 drops/mL",
+            )
+        yield from _single(case, entry, path)
+        if "line" not in entry and "from" not in entry:
+            for key in ("running", "stopped"):
+                if key in entry:
+                    yield Problem(
+                        entry[key],
+                        (*path, key),
+                        "it does not say which line",
+                        "add line: as in the entry that began it",
+                    )
+
+
+def _single(case: Case, entry: Map, path: Path) -> Iterator[Problem]:
+    for key in ("volume", "ice"):
+        timed = "at" in entry or (key == "volume" and "from" in entry and "to" in entry)
+        if key in entry and not timed:
+            yield Problem(
+                entry[key], (*path, key), "it does not say when it was given", "add at:, or from: and to:"
+            )
+    singles = [key for key in ("volume", "ice", "before_arrival") if key in entry]
+    if singles and "purpose" not in entry:
+        yield Problem(
+            entry[singles[0]],
+            (*path, singles[0]),
+            "it does not say what it was for",
+            "add purpose: resuscitation, colloid, maintenance, drug carrier, flush, feed, oral, blood product or other",
+        )
+    if "volume" in entry and ("rate" in entry or "drops" in entry):
+        yield Problem(
+            entry["volume"],
+            (*path, "volume"),
+            "a volume and a rate stand in one entry",
+            "keep one, or make two entries",
+        )
+    start, end = case.when(entry.get("from")), case.when(entry.get("to"))
+    if start and end and end <= start:
+        yield Problem(entry["to"], (*path, "to"), "it ends before it began", "check both times")
+
+
+def _lines(case: Case) -> Iterator[Problem]:
+    """Entries of one line that contradict each other."""
+    lines: dict[str, list[tuple[Map, Path]]] = {}
+    for entry, path in _rows(case, "given"):
+        name = words(entry.get("line"))
+        if any(key in entry for key in ("rate", "drops", "running", "stopped")):
+            lines.setdefault(name or f"\0{path}", []).append((entry, path))
+    for rows in lines.values():
+        yield from _line(case, rows)
+
+
+def _line(case: Case, rows: list[tuple[Map, Path]]) -> Iterator[Problem]:
+    starts: list[tuple[datetime, Map, Path]] = []
+    for entry, path in rows:
+        at = case.when(entry.get("from"))
+        if at is None or rate_of(entry) is None:
+            continue
+        if any(at == other for other, _, _ in starts):
+            yield Problem(
+                entry["from"],
+                (*path, "from"),
+                "two rates begin at the same minute on one line",
+                "strike one out; another line beside it needs a name of its own",
+            )
+        starts.append((at, entry, path))
+    starts.sort(key=lambda found: found[0])
+    if starts and "purpose" not in starts[0][1]:
+        _, entry, path = starts[0]
+        yield Problem(
+            entry,
+            path,
+            "the first entry of a line does not say what it is for",
+            "add purpose: resuscitation, colloid, maintenance, drug carrier, feed or other",
+        )
+    stops = sorted(at for entry, _ in rows if (at := case.when(entry.get("stopped"))) is not None)
+    for entry, path in rows:
+        yield from _marks(case, entry, path, [at for at, _, _ in starts], stops)
+
+
+def _marks(
+    case: Case, entry: Map, path: Path, starts: list[datetime], stops: list[datetime]
+) -> Iterator[Problem]:
+    own = case.when(entry.get("from"))
+    for key in ("running", "stopped"):
+        at = case.when(entry.get(key))
+        if at is None:
+            continue
+        began = [start for start in starts if start <= at]
+        if not began or (own is not None and at <= own and key == "stopped"):
+            yield Problem(
+                entry[key],
+                (*path, key),
+                "it comes before the line began",
+                "check the time, or add the entry that began it",
+            )
+        elif key == "running" and any(began[-1] < stop < at for stop in stops):
+            yield Problem(
+                entry[key],
+                (*path, key),
+                "the line was stopped before and not begun again",
+                "add the entry that began it again: from: and rate:",
+            )

@@ -1,0 +1,43 @@
+"""What the fluid plugin returns: plan, given, urine, balance, and what to do about them."""
+
+from __future__ import annotations
+
+from handoff.plugin import Case, Findings
+
+from . import balance_items, given_items, index_items, plan_items, urine_items
+from .actions import actions
+from .course import Course, read_course
+from .hours import hour_rows
+
+
+def compute(case: Case) -> Findings:
+    """Return the items and actions of fluid; ``values`` holds the course by the hour and what others read."""
+    course = read_course(case)
+    return Findings(
+        items=(
+            *plan_items.items(course),
+            *given_items.items(course),
+            *urine_items.items(course),
+            *index_items.items(course),
+            *balance_items.items(course),
+        ),
+        actions=actions(course),
+        values=_values(course),
+    )
+
+
+def _values(course: Course) -> dict[str, object]:
+    """What other plugins and the documents read; None where it is not known."""
+    volume = course.plan.volume if course.plan else None
+    weight = course.person.weight
+    return {
+        "hours": hour_rows(course),
+        "plan_total_ml": volume.due_ml(course.period_h) if volume and volume.total_ml is not None else None,
+        "weight_kg": weight.kg if weight else None,
+        "weight_name": weight.name if weight else "",
+        "urine_in_target": course.urine_in_target,
+        "given_ml": course.given.total_ml(course.counted),
+        "not_confirmed_ml": course.given.total_ml(course.counted, confirmed=False),
+        "pigmented": course.pigmented,
+        "comfort": course.comfort,
+    }

@@ -1,0 +1,150 @@
+"""The plan in force: the order that counts at this moment, its rates, and what is due by it."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from datetime import datetime, timedelta
+
+from handoff.plugin import Case, Map, Row, amount, child, number_text, words
+
+from . import formula
+from .bands import Facts
+from .person import Person
+from .rules import COEFFICIENT_PLACES, NoVolume, Volume, by_coefficient, by_rule
+from .say import ml_h
+
+HOUR = timedelta(hours=1)
+SETS_FLUID = ("formula", "coefficient", "rate")
+LOCAL = "local"
+
+
+@dataclass(frozen=True, slots=True)
+class OrderedRate:
+    """A rate that an order set, from its moment on."""
+
+    at: datetime
+    ml_h: float
+    line: int
+
+
+@dataclass(frozen=True, slots=True)
+class Plan:
+    """What is due: the volume of an order or a named formula from the burn, then any rates ordered since."""
+
+    said: str
+    by_order: bool
+    at: datetime | None
+    line: int
+    volume: Volume | None
+    rates: tuple[OrderedRate, ...] = ()
+    problem: NoVolume | None = None
+
+    def due_ml(self, burn: datetime, moment: datetime) -> float | None:
+        """Return what is due from the burn to ``moment``, in mL; None where the plan is no volume over time."""
+        if self.volume is None and not self.rates:
+            return None
+        if self.volume is not None and self.volume.total_ml is None:
+            return None
+        parts = []
+        until = min(moment, self.rates[0].at) if self.rates else moment
+        if self.volume is not None:
+            parts.append(self.volume.due_ml(max(0.0, (until - burn) / HOUR)))
+        for index, rate in enumerate(self.rates):
+            end = self.rates[index + 1].at if index + 1 < len(self.rates) else moment
+            parts.append(formula.infusion_ml(rate.ml_h, max(0.0, (min(end, moment) - rate.at) / HOUR)))
+        return math.fsum(parts)
+
+    def rate_ml_h(self, burn: datetime, moment: datetime) -> float | None:
+        """Return the rate of the plan at ``moment``, in mL/h; None when its schedule has ended."""
+        ordered = [rate for rate in self.rates if rate.at <= moment]
+        if ordered:
+            return ordered[-1].ml_h
+        if self.volume is None:
+            return None
+        hours = (moment - burn) / HOUR
+        ended = self.volume.rate_ml_h is None and hours >= self.volume.schedule.ends_h[-1]
+        return None if ended else self.volume.rate_at(hours)
+
+
+def orders(case: Case) -> tuple[Row, ...]:
+    """Return the orders on the file in time order."""
+    return case.state.dated(child(case.block, "orders"))
+
+
+def order_in_force(case: Case) -> Row | None:
+    """Return the latest order that sets fluid; None where there is none or it was ended."""
+    setting = [row for row in orders(case) if any(name in row.entry for name in SETS_FLUID)]
+    if not setting:
+        return None
+    ended = case.when(setting[-1].entry.get("ended"))
+    return None if ended is not None and ended <= case.now else setting[-1]
+
+
+def ordered_plan(case: Case, person: Person, facts: Facts) -> Plan | None:
+    """Return the plan of the order in force, with the rates ordered since; None without an order."""
+    force = order_in_force(case)
+    if force is None:
+        return None
+    setting = [row for row in orders(case) if any(name in row.entry for name in SETS_FLUID)]
+    bases = [row for row in setting if "formula" in row.entry or "coefficient" in row.entry]
+    base = bases[-1] if bases else None
+    volume: Volume | NoVolume | None = None
+    if base is not None:
+        volume = _volume_of(case, person, base.entry, facts)
+    rates = [
+        OrderedRate(row.at, rate, row.line)
+        for row in setting
+        if (base is None or row.at >= base.at) and (rate := amount(row.entry.get("rate"), "mL/h")) is not None
+    ]
+    if isinstance(volume, Volume) and volume.rate_ml_h is not None and base is not None:
+        rates = [OrderedRate(base.at, volume.rate_ml_h, base.line), *(r for r in rates if r.at > base.at)]
+    return Plan(
+        said=_said(case, force),
+        by_order=True,
+        at=force.at,
+        line=force.line,
+        volume=volume if isinstance(volume, Volume) else None,
+        rates=tuple(rates),
+        problem=volume if isinstance(volume, NoVolume) else None,
+    )
+
+
+def _volume_of(case: Case, person: Person, entry: Map, facts: Facts) -> Volume | NoVolume | None:
+    written = words(entry.get("formula"))
+    name = written.replace(" ", "-")
+    coefficient = amount(entry.get("coefficient"), "mL/kg/%")
+    if coefficient is not None:
+        return by_coefficient(case, person, name or "coefficient as ordered", coefficient)
+    return None if name == LOCAL else by_rule(case, person, name, facts)
+
+
+def _said(case: Case, row: Row) -> str:
+    """The order in words: ``order of 14:30: parkland, 4 mL/kg/%, by Dr A. Quill``."""
+    entry = row.entry
+    parts = [words(entry.get("formula"))]
+    coefficient = amount(entry.get("coefficient"), "mL/kg/%")
+    if coefficient is not None:
+        parts.append(f"{number_text(coefficient, COEFFICIENT_PLACES)} mL/kg/%")
+    rate = amount(entry.get("rate"), "mL/h")
+    if rate is not None:
+        parts.append(ml_h(rate))
+    by = words(entry.get("by"))
+    parts.append(f"by {by}" if by else "prescriber not recorded")
+    return f"order of {case.clock.time(row.at, case.now)}: {', '.join(part for part in parts if part)}"
+
+
+def policy_plan(case: Case, person: Person, facts: Facts) -> Plan | None:
+    """Return the plan of the rule that the policy named, where nothing is ordered; None otherwise."""
+    chosen = case.chosen("starting_rate")
+    if not chosen.by_policy:
+        return None
+    made = by_rule(case, person, chosen.name, facts)
+    return Plan(
+        said=f"rule named by the policy: {made.said if isinstance(made, Volume) else chosen.name}",
+        by_order=False,
+        at=None,
+        line=0,
+        volume=made if isinstance(made, Volume) else None,
+        problem=made if isinstance(made, NoVolume) else None,
+    )

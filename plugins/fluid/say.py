@@ -1,0 +1,73 @@
+"""How items are made and figures printed, so that every module says the same thing the same way."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+from typing import Any
+
+from handoff.plugin import Flag, Input, Item, Part, Source, System, joined, number_text
+
+NOT_RECORDED = "not recorded"
+RATE_PLACES = 0
+INDEX_PLACES = 2
+PER_KG_PLACES = 2
+
+
+def ml(value: float) -> str:
+    """Return a volume as printed: ``10,988 mL``."""
+    return f"{number_text(value)} mL"
+
+
+def ml_h(value: float) -> str:
+    """Return a rate as printed: ``687 mL/h``."""
+    return f"{number_text(value, RATE_PLACES)} mL/h"
+
+
+def ml_kg_h(value: float) -> str:
+    """Return urine by weight as printed: ``0.44 mL/kg/h``."""
+    return f"{number_text(value, PER_KG_PLACES)} mL/kg/h"
+
+
+def span(low: str, high: str) -> str:
+    """Return ``low to high`` of two printed figures, once where they are the same, the unit only once."""
+    if low == high:
+        return low
+    number, _, unit = low.partition(" ")
+    return f"{number} to {high}" if unit and high.endswith(f" {unit}") else f"{low} to {high}"
+
+
+def why_not(missing: Sequence[str]) -> str:
+    """Return how a figure that cannot be worked out is printed, with what is missing."""
+    names = list(dict.fromkeys(missing))
+    return f"not computed: missing {joined(names)}" if names else NOT_RECORDED
+
+
+def figure(key: str, label: str, **more: Any) -> Item:
+    """Return an item of the assessment under fluid and urine."""
+    return Item(
+        key=f"fluid.{key}",
+        label=label,
+        part=more.pop("part", Part.ASSESSMENT),
+        system=more.pop("system", System.FLUID),
+        **more,
+    )
+
+
+def absent(key: str, label: str, shown: str = NOT_RECORDED, **more: Any) -> Item:
+    """Return the item of a figure that is not there; it says so."""
+    return figure(key, label, shown=shown, flag=Flag.NOT_RECORDED, repeats=True, **more)
+
+
+def unflagged(key: str, label: str, shown: str, **more: Any) -> Item:
+    """Return the item of a figure that does not apply: nothing is missing, and it says why."""
+    return figure(key, label, shown=shown, repeats=True, **more)
+
+
+def once(sources: Iterable[Source]) -> tuple[Source, ...]:
+    """Return the sources, each once, in their order."""
+    return tuple(dict.fromkeys(sources))
+
+
+def inputs_of(*found: Input | None) -> tuple[Input, ...]:
+    """Return the inputs that are there."""
+    return tuple(one for one in found if one is not None)
