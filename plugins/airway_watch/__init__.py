@@ -2,6 +2,7 @@
 
 from handoff.plugin import Plugin
 
+from .check import check
 from .compute import compute
 
 plugin = Plugin(
@@ -10,4 +11,5 @@ plugin = Plugin(
     package="handoff.bundled.airway_watch",
     compute=compute,
     requires=("area",),
+    check=check,
 )

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Protocol
 
-from handoff.plugin import Case, child, joined, line_of, plural, words
+from handoff.plugin import Case, child, joined, plural, words
 
 from . import charted
 
@@ -85,13 +85,12 @@ def _smoke(case: Case) -> tuple[str, ...]:
     found = []
     for cause in charted.causes(case):
         kind, setting = words(cause.get("kind")), words(cause.get("setting"))
-        line = f" (line {line_of(cause)})"
         if words(cause.get("smoke")) == "yes":
-            found.append(f"smoke breathed{line}")
+            found.append("smoke breathed")
         if kind in FIRE and (setting in CLOSED or words(cause.get("trapped")) == "yes"):
             where = f"in {'a vehicle' if setting == 'vehicle' else 'an enclosed space'}"
-            found.append(f"{kind} {where if setting in CLOSED else 'and trapped'}{line}")
-    return tuple(found)
+            found.append(f"{kind} {where if setting in CLOSED else 'and trapped'}")
+    return tuple(dict.fromkeys(found))
 
 
 def _burns(case: Case) -> tuple[Burn, ...]:
@@ -124,8 +123,11 @@ def _missing(case: Case) -> tuple[str, ...]:
     for cause in causes:
         if words(cause.get("kind")) not in FIRE or words(cause.get("smoke")) in ("yes", "no"):
             continue
-        gaps = [said for key, said in (("setting", "enclosed space or open air"), ("smoke", "smoke breathed or not"))
-                if words(cause.get(key)) in ("", "not known")]
+        gaps = [
+            said
+            for key, said in (("setting", "enclosed space or open air"), ("smoke", "smoke breathed or not"))
+            if words(cause.get(key)) in ("", "not known")
+        ]
         if gaps:
             missing.append(joined(gaps))
     if not burns_recorded(case):

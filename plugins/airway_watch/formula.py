@@ -14,6 +14,7 @@ HALF = 1 / 2
 FlowRow: TypeAlias = Sequence[float]
 """One row of an oxygen table: lowest and highest flow in L/min, lowest and highest oxygen in %."""
 
+
 def _positive(value: float, name: str) -> float:
     if not math.isfinite(value) or value <= 0:
         raise FormulaInputError(f"{name} must be a finite number above 0")
@@ -73,21 +74,6 @@ def backdated_pct(
     return min(before, 100.0), before > 100
 
 
-def displayed_saturation_pct(oxyhaemoglobin_pct: float, carboxyhaemoglobin_pct: float) -> float:
-    """Return the saturation in % that a two-wavelength oximeter shows, approximately, at most 100.
-
-    Args:
-        oxyhaemoglobin_pct: Oxygenated haemoglobin in %, 0 to 100.
-        carboxyhaemoglobin_pct: Carboxyhaemoglobin in %, 0 to 100.
-
-    Raises:
-        FormulaInputError: A value is outside its range.
-    """
-    _within(oxyhaemoglobin_pct, "oxyhaemoglobin", 0, 100)
-    _within(carboxyhaemoglobin_pct, "carboxyhaemoglobin", 0, 100)
-    return min(oxyhaemoglobin_pct + carboxyhaemoglobin_pct, 100.0)
-
-
 def oxyhaemoglobin_pct(spo2_pct: float, carboxyhaemoglobin_pct: float) -> float:
     """Return the upper estimate of oxygenated haemoglobin in % behind a displayed saturation.
 
@@ -113,7 +99,11 @@ def pf_ratio_mmhg(pao2_mmhg: float, fio2_pct: float) -> float:
     Raises:
         FormulaInputError: A value is outside its range.
     """
-    return _positive(pao2_mmhg, "oxygen pressure") * 100 / _within(_positive(fio2_pct, "oxygen"), "oxygen", 0, 100)
+    return (
+        _positive(pao2_mmhg, "oxygen pressure")
+        * 100
+        / _within(_positive(fio2_pct, "oxygen"), "oxygen", 0, 100)
+    )
 
 
 def room_air_equivalent_mmhg(pf_mmhg: float, room_air_pct: float) -> float:
@@ -283,3 +273,23 @@ def is_outside(value: float, low: float, high: float) -> bool:
     if not math.isfinite(value):
         raise FormulaInputError("a finite number is needed")
     return value < low or value > high
+
+
+def swelling_phase(hours: float, peak_from: float, peak_to: float, rising_until: float) -> str:
+    """Return the phase of swelling: ``building``, ``peak``, ``may rise`` or ``later``.
+
+    Args:
+        hours: Hours since the burn, 0 or more.
+        peak_from: Hour at which the usual peak begins; it belongs to the peak.
+        peak_to: Hour at which it ends; it belongs to the peak.
+        rising_until: Last hour in which swelling is said to rise.
+
+    Raises:
+        FormulaInputError: The hours are outside their range.
+    """
+    _within(hours, "hours", 0, math.inf)
+    if hours < peak_from:
+        return "building"
+    if hours <= peak_to:
+        return "peak"
+    return "may rise" if hours <= rising_until else "later"

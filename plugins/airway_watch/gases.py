@@ -22,7 +22,7 @@ from handoff.plugin import (
 )
 
 from . import charted, formula, oxygen, say
-from .carbon_monoxide import Monoxide, doubt_at, expected_at
+from .decay import Monoxide, doubt_at, expected_at
 from .exposure import Exposure
 from .oxygen import Fraction
 
@@ -75,9 +75,7 @@ def doubt_text(case: Case, seen: Exposure, gas: Monoxide, moment: datetime) -> s
     return f"may read falsely high: {doubt}" if doubt else ""
 
 
-def _spo2(
-    case: Case, seen: Exposure, gas: Monoxide, reading: Reading | None, doubt: str
-) -> tuple[Item, ...]:
+def _spo2(case: Case, seen: Exposure, gas: Monoxide, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
     key, label = "spo2", "Oxygen saturation by oximeter"
     if reading is None:
         return (say.gap(key, label, unit="%", system=System.BREATHING),) if seen.watched else ()
@@ -96,7 +94,7 @@ def _spo2(
             unit="%",
             as_of=reading.at,
             flag=Flag.REVIEW if doubt else Flag.NONE,
-            rank=RANK if doubt else None,
+            rank=RANK if doubt and gas.doubt else None,
             system=System.BREATHING,
             sources=(case.parameters.source_of("oximeter"),) if doubt else (),
             cautions=cautions,
@@ -217,7 +215,10 @@ def _sf(case: Case, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
             working=Working(
                 formula="saturation / inspired oxygen fraction",
                 sum=f"{number_text(pct, say.PLACES)} / {by} = {number_text(value, say.PLACES)}",
-                inputs=(case.input("Saturation", reading.node), case.input("Inspired oxygen", None, given.shown())),
+                inputs=(
+                    case.input("Saturation", reading.node),
+                    case.input("Inspired oxygen", None, given.shown()),
+                ),
                 rule=given.table,
             ),
             sources=(*sources, case.parameters.source_of("sf.cut_offs")),

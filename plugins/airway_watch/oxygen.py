@@ -91,11 +91,7 @@ def _rows(case: Case) -> tuple[Row, ...]:
 def holding(case: Case, moment: datetime) -> Oxygen | None:
     """Return the oxygen charted for ``moment``, or None."""
     return next(
-        (
-            part
-            for part in timeline(case)
-            if part.start <= moment and (part.end is None or moment < part.end)
-        ),
+        (part for part in timeline(case) if part.start <= moment and (part.end is None or moment < part.end)),
         None,
     )
 
@@ -142,7 +138,9 @@ def kind_of(case: Case, part: Oxygen) -> str:
         return AIR if part.set_pct <= case.parameters.number("fio2.room_air") else PART
     if part.device == ROOM_AIR:
         return AIR
-    if part.device in table["devices"] and (part.flow_l_min is None or part.flow_l_min >= table["least flow"]):
+    if part.device in table["devices"] and (
+        part.flow_l_min is None or part.flow_l_min >= table["least flow"]
+    ):
         return FULL
     return PART
 

@@ -20,7 +20,7 @@ from handoff.plugin import (
 )
 
 from . import charted, say, timetable
-from .charted import Sign, Tube
+from .charted import Tube
 from .exposure import Exposure
 
 RANK = 11
@@ -46,10 +46,14 @@ def schedule_of(case: Case) -> Schedule:
     name = case.chosen("schedule").name
     parameter = case.parameters[f"schedule.{name}"]
     table = parameter.value
-    phases = tuple((float(every), None if until is None else float(until)) for every, until in table["phases"])
+    phases = tuple(
+        (float(every), None if until is None else float(until)) for every, until in table["phases"]
+    )
     if not phases:
         local = case.parameters["watch.one_interval"]
-        return Schedule(table["title"], f"every {local.value:g} min", ((float(local.value), None),), local.source)
+        return Schedule(
+            table["title"], f"every {local.value:g} min", ((float(local.value), None),), local.source
+        )
     return Schedule(table["title"], table["said"], phases, parameter.source)
 
 
@@ -285,12 +289,3 @@ def actions(case: Case, seen: Exposure, run: Watch) -> tuple[Action, ...]:
             cautions=("Worse or new sign: call for senior airway help at once.",),
         ),
     )
-
-
-def aged(case: Case, sign: Sign, run: Watch) -> str:
-    """Return how one sign prints; an old absence never prints as absent."""
-    when = f"{say.at(case, sign.at)}{say.person(sign.by)}"
-    old = run.is_old(sign.at)
-    if sign.present:
-        return f"{sign.name} present {when}" + (", not reassessed since" if old else "")
-    return f"{sign.name} not reassessed since {say.at(case, sign.at)}" if old else f"{sign.name} absent {when}"

@@ -7,7 +7,7 @@ from handoff.plugin import Case, Flag, Input, Item, Working, plural
 from . import charted, say
 from .charted import SUSPICION_SIGNS, Sign
 from .exposure import Exposure
-from .schedule import Watch, aged
+from .schedule import Watch
 
 NO_ALL_CLEAR = "Absence of signs does not exclude inhalation injury."
 WEAK = "Single signs predict inhalation injury poorly; they ask for a senior look, they decide nothing."
@@ -30,7 +30,9 @@ def _count(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> I
     if not present and old:
         # A count of 0 would say "absent" of signs that nobody has looked for since.
         shown = f"not reassessed since {say.at(case, max(sign.at for sign in old))}"
-        return say.fact(key, label, shown, unit="count", as_of=last, flag=Flag.REVIEW, cautions=(NO_ALL_CLEAR,))
+        return say.fact(
+            key, label, shown, unit="count", as_of=last, flag=Flag.REVIEW, cautions=(NO_ALL_CLEAR,)
+        )
     looked = plural(len(signs), "sign") + " looked for"
     shown = f"{len(present)} of {looked}"
     if present:
@@ -77,4 +79,15 @@ def _list(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> It
         flag=flag,
         cautions=(NO_ALL_CLEAR,),
         line=signs[-1].line if signs else 0,
+    )
+
+
+def aged(case: Case, sign: Sign, run: Watch) -> str:
+    """Return how one sign prints; an old absence never prints as absent."""
+    when = f"{say.at(case, sign.at)}{say.person(sign.by)}"
+    old = run.is_old(sign.at)
+    if sign.present:
+        return f"{sign.name} present {when}" + (", not reassessed since" if old else "")
+    return (
+        f"{sign.name} not reassessed since {say.at(case, sign.at)}" if old else f"{sign.name} absent {when}"
     )
