@@ -7,8 +7,10 @@ from datetime import timedelta
 from handoff.plugin import Action, System, Urgency, joined
 
 from .course import Course
+from .index_items import over_line
 from .say import ml_h
 from .targets import Target
+from .watch_items import kinase_due
 
 AREA = "Fluid and urine"
 
@@ -17,7 +19,14 @@ def actions(course: Course) -> tuple[Action, ...]:
     """Return the actions of fluid and urine; none where comfort is the goal of care."""
     if course.comfort:
         return ()
-    return (*_urine(course), *_lines(course), *_low(course), *_no_order(course))
+    return (
+        *_urine(course),
+        *_lines(course),
+        *_low(course),
+        *_no_order(course),
+        *_pigment(course),
+        *_too_much(course),
+    )
 
 
 def _urine(course: Course) -> tuple[Action, ...]:
@@ -101,5 +110,43 @@ def _no_order(course: Course) -> tuple[Action, ...]:
             system=System.FLUID,
             urgency=Urgency.NOW,
             sources=(course.source(f"start.{course.case.chosen('start').name}"),),
+        ),
+    )
+
+
+def _pigment(course: Course) -> tuple[Action, ...]:
+    if not course.pigmented:
+        return ()
+    last, every = kinase_due(course)
+    said = f"last {last.shown}" if last else "none recorded"
+    return (
+        Action(
+            key="fluid.creatine_kinase",
+            area=AREA,
+            text=f"Ask for creatine kinase and potassium while the urine is pigmented ({said})",
+            why="muscle breakdown harms kidney and heart",
+            system=System.FLUID,
+            every=every,
+            urgency=Urgency.TIMED,
+            sources=(course.source("creatine_kinase.check_every"),),
+        ),
+    )
+
+
+def _too_much(course: Course) -> tuple[Action, ...]:
+    if not over_line(course):
+        return ()
+    return (
+        Action(
+            key="fluid.too_much",
+            area=AREA,
+            text=(
+                "Tell the prescriber that fluid reaches, or at this rate would reach, a warning line; "
+                "look at belly, breathing and limbs"
+            ),
+            why="too much fluid swells airway, belly and limbs",
+            system=System.FLUID,
+            urgency=Urgency.SHIFT,
+            sources=(course.source("line.per_kg"), course.source("line.index")),
         ),
     )

@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from datetime import datetime, timedelta
 
-from handoff.plugin import Case, Flag, Item, System, Working, amount, child, number_text
+from handoff.plugin import Case, Flag, Item, Working, amount, child, number_text
 
 from . import formula
 from .bands import pick
@@ -191,7 +191,7 @@ def _evaporation(course: Course) -> Item:
     missing += [] if pct is not None else [course.person.pct_missing]
     missing += [] if body or not weight else ["height"]
     if weight is None or pct is None or body is None:
-        return absent(key, label, why_not(missing), detail=True, system=System.FLUID)
+        return unflagged(key, label, why_not(missing), detail=True)
     constant = course.number(f"evaporation.{name}")
     value = formula.evaporation_ml_h(constant, pct, body.m2)
     since = f"; about {ml(value * course.hours)} since the burn" if course.hours is not None else ""

@@ -8,6 +8,7 @@ from datetime import datetime
 from handoff.plugin import Case, List, Map, Problem, child, words
 
 from .portions import rate_of
+from .weight_check import check_weights
 
 Path = tuple[str | int, ...]
 SAYS_SOMETHING = ("rate", "drops", "volume", "ice", "before_arrival", "running", "stopped")
@@ -16,7 +17,7 @@ SETS = ("formula", "coefficient", "rate", "urine_target", "urine_target_per_kg",
 
 def check(case: Case) -> tuple[Problem, ...]:
     """Return the faults of the fluid block and of the weight, in the order of the file."""
-    return (*_orders(case), *_given(case), *_lines(case))
+    return (*check_weights(case), *_orders(case), *_given(case), *_lines(case))
 
 
 def _rows(case: Case, name: str) -> Iterator[tuple[Map, Path]]:

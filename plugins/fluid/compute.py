@@ -4,7 +4,21 @@ from __future__ import annotations
 
 from handoff.plugin import Case, Findings
 
-from . import balance_items, given_items, index_items, plan_items, urine_items
+from . import (
+    abdomen_items,
+    balance_items,
+    feeding,
+    given_items,
+    index_items,
+    plan_items,
+    pressure_items,
+    rate_items,
+    second_day,
+    titration_items,
+    tubes,
+    urine_items,
+    watch_items,
+)
 from .actions import actions
 from .course import Course, read_course
 from .hours import hour_rows
@@ -16,12 +30,26 @@ def compute(case: Case) -> Findings:
     return Findings(
         items=(
             *plan_items.items(course),
+            *rate_items.items(course),
             *given_items.items(course),
             *urine_items.items(course),
+            *titration_items.items(course),
+            *pressure_items.items(course),
             *index_items.items(course),
             *balance_items.items(course),
+            *abdomen_items.items(course),
+            *watch_items.items(course),
+            *second_day.items(course),
+            *feeding.items(course),
+            *tubes.items(course),
         ),
-        actions=actions(course),
+        actions=(
+            *actions(course),
+            *abdomen_items.actions(course),
+            *second_day.actions(course),
+            *feeding.actions(course),
+            *tubes.actions(course),
+        ),
         values=_values(course),
     )
 

@@ -17,7 +17,14 @@ from .formula_balance import (
     per_day_range,
     systolic_floor_mmhg,
 )
-from .formula_body import body_mass_index, burned_surface_m2, mosteller_m2, power_surface_m2, z_score
+from .formula_body import (
+    at_z_score,
+    body_mass_index,
+    burned_surface_m2,
+    mosteller_m2,
+    power_surface_m2,
+    z_score,
+)
 from .formula_course import (
     delivered_index,
     drops_rate_ml_h,
@@ -45,6 +52,7 @@ from .formula_plan import (
 __all__ = [
     "abdominal_perfusion_mmhg",
     "area_based_24h_ml",
+    "at_z_score",
     "balance_ml",
     "body_mass_index",
     "burned_surface_m2",

@@ -110,3 +110,28 @@ def z_score(value: float, power: float, median: float, spread: float) -> float:
         return math.log(value / median) / spread
     raised: float = (value / median) ** power
     return (raised - 1) / (power * spread)
+
+
+def at_z_score(z: float, power: float, median: float, spread: float) -> float:
+    """Return the measure that lies ``z`` standard deviations from the median of a growth table.
+
+    Args:
+        z: Standard deviations, below 0 for less than the median.
+        power: L of the table; 0 stands for the logarithm.
+        median: M of the table, greater than 0.
+        spread: S of the table, greater than 0.
+
+    Raises:
+        FormulaInputError: An argument is not finite or not above 0, or the table has no such measure.
+
+    Source: the LMS method (Cole 1990); the tables are ``growth.*`` in parameters.yaml.
+    """
+    need("z", z, low=-math.inf)
+    need_positive("median", median)
+    need_positive("spread", spread)
+    if power == 0:
+        return median * math.exp(spread * z)
+    inner = 1 + power * spread * z
+    need_positive("1 + L S z", inner)
+    raised: float = inner ** (1 / power)
+    return median * raised

@@ -9,6 +9,7 @@ from .course import COMFORT, Course
 from .portions import Portion
 from .say import absent, figure, ml, ml_h, once, span, unflagged, why_not
 
+COUNTED = "rate x hours to the stop, the next rate on the line or when last seen running; single volumes"
 URINE_LEADS = "Urine and perfusion come first; this difference alone changes no rate."
 OTHERS = ("colloid", "blood product", "maintenance", "drug carrier", "flush", "feed", "oral", "other")
 
@@ -59,7 +60,7 @@ def _given(course: Course) -> Item:
         shown=shown,
         as_of=course.given.seen(course.counted),
         working=Working(
-            formula="rate x hours to the stop, the next rate on the line or when it was last seen running; single volumes",
+            formula=COUNTED,
             sum=_sum(confirmed, total),
             inputs=tuple(_input(course, portion) for portion in confirmed),
             rule=", ".join(sorted(course.counted)),
@@ -121,7 +122,7 @@ def _against(course: Course) -> Item:
         missing = list(course.missing())
         if course.plan is None and not missing:
             return unflagged("against_plan", label, "no order recorded: nothing to set it against")
-        return absent("against_plan", label, why_not(missing))
+        return unflagged("against_plan", label, why_not(missing), detail=True)
     given = course.given.total_ml(course.counted)
     low, high = (formula.surplus_ml(due, given) for due in reversed(bounds))
     is_one = low == high

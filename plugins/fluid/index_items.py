@@ -94,6 +94,25 @@ def _projection(course: Course) -> tuple[float, float, float] | None:
     return formula.projected_ml(gone, rate, (end - course.now) / HOUR), rate, gone
 
 
+def over_line(course: Course) -> bool:
+    """Return whether a warning line is reached, or would be within the first 24 h at the present rate."""
+    found, end = _projection(course), _end(course)
+    if found is None or end is None or course.person.weight is None:
+        return False
+    value, _, _ = found
+    return any(value >= line_ml for _, line_ml in _lines(course))
+
+
+def _lines(course: Course) -> list[tuple[str, float]]:
+    """The warning lines by name, in mL for this patient."""
+    weight, pct = course.person.weight, course.person.pct
+    if weight is None:
+        return []
+    per_kg, index = course.number("line.per_kg"), course.number("line.index")
+    lines = [(f"{number_text(per_kg)} mL/kg", per_kg * weight.kg)]
+    return [*lines, (f"{number_text(index)} mL/kg/%", index * weight.kg * pct)] if pct else lines
+
+
 def _projected(course: Course) -> Item:
     key, label = PROJECTED
     missing = () if course.burn else ("time of the burn",)
@@ -136,16 +155,8 @@ def _certain(course: Course) -> bool:
 
 def _crossings(course: Course, gone: float, rate: float, end: datetime) -> list[tuple[str, bool]]:
     """When each warning line is crossed at the present rate, and whether that is within the first 24 h."""
-    weight, pct = course.person.weight, course.person.pct
-    if weight is None:
-        return []
-    per_kg = course.number("line.per_kg")
-    lines = [(f"{number_text(per_kg)} mL/kg", per_kg * weight.kg)]
-    if pct:
-        index = course.number("line.index")
-        lines.append((f"{number_text(index)} mL/kg/%", index * weight.kg * pct))
     found = []
-    for name, line_ml in lines:
+    for name, line_ml in _lines(course):
         hours = formula.hours_until_line(gone, rate, line_ml)
         if hours == 0:
             found.append((f"{name} ({ml(line_ml)}) is reached", True))

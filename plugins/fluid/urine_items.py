@@ -52,6 +52,8 @@ def _rate(course: Course) -> Item:
     aimed = course.target
     words_for = {"below": "below the target", "above": "above the target", "in": "within the target"}
     against = f"; {words_for[judged]} of {aimed.shown}" if judged else f"; {aimed.shown}"
+    run = _run_hours(course, judged) if judged in ("below", "above") else 0.0
+    against += f" for {hours_text(run)} without a break" if run > (last.hours or 0.0) else ""
     return figure(
         key,
         label,
@@ -145,7 +147,7 @@ def _target(course: Course) -> Item:
     key, label = "urine_target", "Urine target"
     aimed = course.target
     if not isinstance(aimed, Target):
-        return absent(key, label, aimed.shown)
+        return unflagged(key, label, aimed.shown, detail=True)
     return figure(
         key,
         label,
@@ -176,11 +178,6 @@ def _run(course: Course) -> tuple[Item, ...]:
         if not hours:
             continue
         in_run = [one for one in course.urine.measured if course.judged(one) == side]
-        is_low = side == "below"
-        flag = Flag.NONE
-        if course.target.may_flag:
-            long = hours >= course.number("urine.low_run")
-            flag = course.flagged(Flag.ACTION if is_low and long else Flag.REVIEW)
         return (
             figure(
                 "urine_run",
@@ -189,9 +186,8 @@ def _run(course: Course) -> tuple[Item, ...]:
                 unit="h",
                 shown=f"{hours_text(hours)} up to {course.time(in_run[-1].at)}",
                 as_of=in_run[-1].at,
-                flag=flag,
                 sources=once((course.source("urine.low_run"), *course.target.sources)),
-                cautions=("Check catheter, pressure and perfusion; ask the prescriber.",) if is_low else (),
+                detail=True,
             ),
         )
     return ()

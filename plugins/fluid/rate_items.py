@@ -1,0 +1,189 @@
+"""The rate of the plan now and what is due by now; a range where the burn time or the order is not there."""
+
+from __future__ import annotations
+
+from datetime import datetime
+
+from handoff.plugin import Flag, Item, Source, Working, number_text
+
+from .course import Course
+from .plan import Plan
+from .plan_items import inputs, no_figure, range_said, weight_caution
+from .say import figure, ml, ml_h, once, span, unflagged
+
+RATE = ("rate_now", "Planned rate now, formula estimate")
+DUE = ("due_by_now", "Due by now, formula estimate")
+RANK_NO_ORDER = 34
+
+
+def items(course: Course) -> tuple[Item, ...]:
+    """Return the rate now and what is due by now; each says what is missing where it cannot be worked out."""
+    return (_rate_now(course), _due(course))
+
+
+def _rate_now(course: Course) -> Item:
+    key, label = RATE
+    nothing = no_figure(course, key, label, burn_needed=True)
+    if nothing is not None:
+        return nothing
+    plan = course.plan
+    if plan is None:
+        return _rate_range(course, key, label)
+    moments = _burn_moments(course)
+    if not moments:  # a rate that was ordered needs no time of the burn
+        moments = (course.now,)
+    rates = [plan.rate_ml_h(moment, course.now) for moment in moments]
+    known = [rate for rate in rates if rate is not None]
+    if not known:
+        period = number_text(course.period_h)
+        return unflagged(
+            key, label, f"the formula ends at {period} h; no rate by it now", sources=_plan_sources(plan)
+        )
+    is_one = len(known) == len(rates) and min(known) == max(known)
+    said = ml_h(known[0]) if is_one else span(ml_h(min(known)), ml_h(max(known)))
+    if len(known) < len(rates):
+        said = f"{span(ml_h(min(known)), ml_h(max(known)))}, or none: the plan may have ended"
+    return figure(
+        key,
+        label,
+        value=known[0] if is_one else None,
+        unit="mL/h",
+        shown=f"{said}{_until(course, plan)} (formula estimate; {plan.said})",
+        as_of=course.now,
+        working=Working(
+            formula="volume of the period / hours of the period, counted from the burn; an ordered rate replaces it",
+            sum=_rate_sum(course, plan, said),
+            inputs=inputs(course, with_burn=True),
+            rule=plan.said,
+        ),
+        sources=_plan_sources(plan),
+        cautions=tuple(dict.fromkeys((*course.cautions, *_uncertain(course), *weight_caution(course)))),
+    )
+
+
+def _plan_sources(plan: Plan) -> tuple[Source, ...]:
+    return once(plan.volume.sources) if plan.volume else ()
+
+
+def _rate_sum(course: Course, plan: Plan, said: str) -> str:
+    ordered = [rate for rate in plan.rates if rate.at <= course.now]
+    if ordered:
+        return f"ordered at {course.time(ordered[-1].at)}: {ml_h(ordered[-1].ml_h)}"
+    if plan.volume is None:
+        return said
+    periods, start = [], 0.0
+    for end, share in zip(plan.volume.schedule.ends_h, plan.volume.schedule.shares, strict=True):
+        rate = ml_h(plan.volume.rate_at(start))
+        part = (plan.volume.total_ml or 0.0) * share
+        periods.append(
+            f"{number_text(start)} to {number_text(end)} h: "
+            f"{ml(part)} / {number_text(end - start)} h = {rate}"
+        )
+        start = end
+    hours = [number_text(_since(course, moment), 2) for moment in _burn_moments(course)]
+    return f"{'; '.join(periods)}; now {' to '.join(dict.fromkeys(hours))} h since the burn: {said}"
+
+
+def _since(course: Course, burn: datetime) -> float:
+    return course.case.hours_between(burn, course.now)
+
+
+def _burn_moments(course: Course) -> tuple[datetime, ...]:
+    if course.burn is None:
+        return ()
+    both = (course.burn.earliest, course.burn.latest)
+    return both[:1] if course.burn.certain else both
+
+
+def _uncertain(course: Course) -> tuple[str, ...]:
+    if course.burn is None or course.burn.certain:
+        return ()
+    return ("The time of the burn is uncertain: this is a range.",)
+
+
+def _until(course: Course, plan: Plan) -> str:
+    if plan.rates or plan.volume is None or course.burn is None or not course.burn.certain:
+        return ""
+    hours = _since(course, course.burn.earliest)
+    ends = [end for end in plan.volume.schedule.ends_h if end > hours]
+    if not ends:
+        return ""
+    left = ends[0] - hours
+    moment = course.now + (course.now - course.burn.earliest) * (left / hours) if hours else course.now
+    return f" until {course.time(moment)}" if hours else ""
+
+
+def _rate_range(course: Course, key: str, label: str) -> Item:
+    moments = _burn_moments(course)
+    rates = [
+        volume.rate_at(_since(course, moment))
+        for volume in (course.published[0], course.published[-1])
+        for moment in moments
+    ]
+    period = number_text(course.period_h)
+    if max(rates) == 0:
+        return unflagged(key, label, f"no order recorded; the formulas end at {period} h")
+    said = span(ml_h(min(rates)), ml_h(max(rates)))
+    return figure(
+        key,
+        label,
+        unit="mL/h",
+        shown=f"no order recorded; {said} by the published coefficients ({range_said(course)})",
+        as_of=course.now,
+        flag=Flag.REVIEW,
+        rank=RANK_NO_ORDER,
+        working=Working(
+            formula="lowest and highest rate of the published coefficients at this time since the burn",
+            sum=f"{course.published[0].sum} and {course.published[-1].sum} in 24 h: {said} now",
+            inputs=inputs(course, with_burn=True),
+            rule="no order in force: a range, no single rate",
+        ),
+        sources=once((*course.published[0].sources, *course.published[-1].sources)),
+        cautions=tuple(dict.fromkeys((*course.cautions, *_uncertain(course), *weight_caution(course)))),
+    )
+
+
+def _due(course: Course) -> Item:
+    key, label = DUE
+    nothing = no_figure(course, key, label, burn_needed=True)
+    if nothing is not None:
+        return nothing
+    moments = _burn_moments(course)
+    plan = course.plan
+    if plan is None:
+        dues: list[float | None] = [
+            volume.due_ml(_since(course, moment))
+            for volume in (course.published[0], course.published[-1])
+            for moment in moments
+        ]
+        prefix, rule = "no order recorded; ", "no order in force: a range, no single figure"
+        sources = once((*course.published[0].sources, *course.published[-1].sources))
+    else:
+        dues = [plan.due_ml(moment, course.now) for moment in moments or (course.now,)]
+        prefix, rule, sources = "", plan.said, _plan_sources(plan)
+    known = [due for due in dues if due is not None]
+    if not known:
+        return unflagged(key, label, f"not computed: {plan.said if plan else ''} sets a rate, not a volume")
+    is_one = plan is not None and min(known) == max(known)
+    said = span(ml(min(known)), ml(max(known)))
+    return figure(
+        key,
+        label,
+        value=known[0] if is_one else None,
+        unit="mL",
+        shown=f"{prefix}{said} (formula estimate)",
+        as_of=course.now,
+        working=Working(
+            formula="share of each period gone by since the burn x its volume; an ordered rate x its hours",
+            sum=f"{_due_sum(course)}{said}",
+            inputs=inputs(course, with_burn=True),
+            rule=rule,
+        ),
+        sources=sources or (course.source("plan.period"),),
+        cautions=tuple(dict.fromkeys((*course.cautions, *_uncertain(course), *weight_caution(course)))),
+    )
+
+
+def _due_sum(course: Course) -> str:
+    hours = [number_text(_since(course, moment), 2) for moment in _burn_moments(course)]
+    return f"{' to '.join(dict.fromkeys(hours))} h since the burn: " if hours else ""
