@@ -113,7 +113,7 @@ def _first(setup: Setup, first: list[First]) -> str:
             if name not in named[plugin]:
                 raise KeyError(f"{plugin} has no worked example '{name}'")
         concerned = [*(code(key) for key in one.values), *(f'example "{key}"' for key in one.examples)]
-        lines.append(f"{number}. **{one.what}.** {one.why} ({', '.join(concerned)})")
+        lines.append(f"{number}. **{one.what}.** {' '.join([one.why, ', '.join(concerned)]).strip()}")
     return "\n".join(lines)
 
 
