@@ -1,0 +1,13 @@
+"""Dressings, grafts and donor sites, tetanus, position by burned site, eyes, ears, mouth, pressure areas."""
+
+from handoff.plugin import Plugin
+
+from .compute import compute
+
+plugin = Plugin(
+    name="wounds",
+    title="Wounds, position and skin",
+    package="handoff.bundled.wounds",
+    compute=compute,
+    requires=("area",),
+)
