@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import shutil
 import textwrap
 from collections.abc import Iterator
 
@@ -67,6 +68,14 @@ def working_lines(item: Item, assessment: Assessment) -> Iterator[str]:
         yield from _wrapped(f"source: {source.shown()}", "")
     for caution in item.cautions:
         yield from _wrapped(f"caution: {caution}", "")
+
+
+def fitted(line: str, to_terminal: bool) -> str:
+    """Return ``line`` broken at the width of the terminal; unbroken for a file or another program."""
+    if not to_terminal:
+        return line
+    width = shutil.get_terminal_size((WIDTH, 1)).columns
+    return "\n".join(textwrap.wrap(line, width, subsequent_indent="    ")) or line
 
 
 def _wrapped(text: str, indent: str) -> list[str]:

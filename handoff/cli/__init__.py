@@ -7,6 +7,7 @@ import typer
 from handoff.cli.check import check
 from handoff.cli.demo import demo
 from handoff.cli.draft import draft
+from handoff.cli.due import due
 from handoff.cli.plugins import plugins
 from handoff.cli.schema import schema
 from handoff.cli.show import show
@@ -20,7 +21,7 @@ app = typer.Typer(
     pretty_exceptions_enable=False,
     add_completion=True,
 )
-for command in (demo, check, draft, show, working, plugins, schema):
+for command in (demo, check, draft, due, show, working, plugins, schema):
     app.command()(command)
 
 
