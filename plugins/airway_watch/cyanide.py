@@ -16,6 +16,7 @@ from handoff.plugin import (
     Urgency,
     Working,
     amount,
+    line_of,
     number_text,
     pressure_pair,
     with_unit,
@@ -58,8 +59,9 @@ def pointers(case: Case, seen: Exposure, run: Watch) -> Pointers | None:
 def items(case: Case, seen: Exposure, run: Watch) -> tuple[Item, ...]:
     """Return the findings that point to cyanide, where smoke exposure is recorded."""
     found = pointers(case, seen, run)
+    measured = _measured(case)
     if found is None:
-        return ()
+        return measured
     missing = [name for name, fact in found.entries if fact.met is None]
     met = [name for name, fact in found.entries if fact.met]
     given = _antidote(case)
@@ -71,6 +73,7 @@ def items(case: Case, seen: Exposure, run: Watch) -> tuple[Item, ...]:
         shown += f"; {given}"
     parameter = case.parameters[f"cyanide.{case.chosen('cyanide').name}"]
     return (
+        *measured,
         say.fact(
             "cyanide",
             "Cyanide after smoke, findings to weigh",
@@ -88,6 +91,29 @@ def items(case: Case, seen: Exposure, run: Watch) -> tuple[Item, ...]:
             ),
             sources=(parameter.source, case.parameters.source_of("cyanide.lactate_above")),
             cautions=(*_limits(case), BLOOD_FIRST),
+        ),
+    )
+
+
+def _measured(case: Case) -> tuple[Item, ...]:
+    readings = case.state.result_series("cyanide")
+    if not readings:
+        return ()
+    last = readings[-1]
+    level, mass = amount(last.node, "umol/L"), amount(last.node, "mg/L")
+    if level is None or mass is None:
+        return ()
+    said = f"{with_unit(level, 'umol/L', say.PLACES)} ({with_unit(mass, 'mg/L', 2)})"
+    return (
+        say.fact(
+            "cyanide_measured",
+            "Blood cyanide, measured",
+            f"{said} at {say.at(case, last.at)}",
+            value=level,
+            unit="umol/L",
+            as_of=last.at,
+            system=System.BREATHING,
+            line=line_of(last.node),
         ),
     )
 

@@ -62,10 +62,10 @@ class Record:
         return first(self._ever(name) for name in names)
 
     def _ever(self, name: str) -> Fact:
-        states = [(row.at, words(row.entry.get(name))) for row in charted.block_rows(self.case, "signs")]
-        seen = [at for at, state in states if state == PRESENT]
+        states = [(row, words(row.entry.get(name))) for row in charted.block_rows(self.case, "signs")]
+        seen = [row for row, state in states if state == PRESENT]
         if seen:
-            return Fact(True, f"{name} ({say.at(self.case, seen[-1])})", seen[0])
+            return Fact(True, f"{name} ({say.at(self.case, seen[-1].at)})", seen[0].at, seen[-1].line)
         return NOT_SO if any(state == ABSENT for _, state in states) else UNKNOWN
 
 

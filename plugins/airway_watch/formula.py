@@ -172,19 +172,18 @@ def sf_from_pf(pf_mmhg: float, intercept: float, slope: float) -> float:
     return intercept + slope * _positive(pf_mmhg, "P/F")
 
 
-def sf_cut_off(pf_mmhg: float, cut_offs: Mapping[float, float]) -> float:
-    """Return the published S/F that stands for a P/F limit in mmHg.
+def pf_limit_for(sf: float, cut_offs: Mapping[float, float]) -> float | None:
+    """Return the P/F limit in mmHg that the published cut-offs put in place of an S/F; None above them all.
 
     Args:
-        pf_mmhg: One of the limits in the table.
-        cut_offs: P/F limit in mmHg -> S/F.
+        sf: S/F, 0 or more.
+        cut_offs: P/F limit in mmHg -> S/F at or below which it counts as reached.
 
     Raises:
-        FormulaInputError: The table has no such limit.
+        FormulaInputError: S/F is outside its range.
     """
-    if pf_mmhg not in cut_offs:
-        raise FormulaInputError("no such P/F limit in the table")
-    return cut_offs[pf_mmhg]
+    _within(sf, "S/F", 0, math.inf)
+    return min((pf for pf, limit in cut_offs.items() if sf <= limit), default=None)
 
 
 def rox_index(spo2_pct: float, fio2_pct: float, breaths_per_min: float) -> float:

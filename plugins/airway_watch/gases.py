@@ -17,18 +17,16 @@ from handoff.plugin import (
     amount,
     line_of,
     number_text,
-    with_unit,
     words,
 )
 
-from . import charted, formula, oxygen, say
+from . import charted, formula, oxygen, rox, say
 from .decay import Monoxide, doubt_at, expected_at
 from .exposure import Exposure
-from .oxygen import Fraction
+from .oxygen import OPEN_DEVICE, Fraction
 
 RANK = 22
 NOT_ARDS = "A range of a ratio is not a diagnosis: that needs PEEP, imaging, timing and a doctor."
-OPEN_DEVICE = "The inspired oxygen is an estimate, so the ratio is too."
 
 
 @dataclass(frozen=True, slots=True)
@@ -60,7 +58,7 @@ def items(case: Case, seen: Exposure, gas: Monoxide) -> tuple[Item, ...]:
         *_spo2(case, seen, gas, saturation, doubt),
         _pf(case),
         *_sf(case, saturation, doubt),
-        *_rox(case, saturation, doubt),
+        *rox.items(case, saturation, doubt),
     )
 
 
@@ -144,7 +142,7 @@ def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
     return say.fact(
         "pf_ratio",
         "P/F",
-        f"{said}, P/F in the {band} range, at {say.at(case, row.at)} on {given.shown()}",
+        f"{said}, P/F {band}, at {say.at(case, row.at)} on {given.shown()}",
         value=value,
         unit="mmHg",
         as_of=row.at,
@@ -163,6 +161,7 @@ def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
         sources=sources,
         cautions=(
             NOT_ARDS,
+            _peep(case, row.at),
             *((OPEN_DEVICE,) if given.estimated else ()),
             f"The same ratio on room air would be about {number_text(equal)} mmHg (handbook sum, 20 % oxygen).",
         ),
@@ -171,15 +170,24 @@ def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
 
 
 def pf_range(value: float, limits: list[float]) -> str:
-    """Return the range of a P/F by its limits in mmHg: ``100 to 200``; a limit belongs to the range below it."""
-    edges = sorted(limits)
+    """Return where a P/F in mmHg lies: ``in the 100 to 200 mmHg range``; a limit belongs below itself."""
+    edges = [0.0, *sorted(limits)]
     top = formula.at_or_below(value, edges)
     if top is None:
-        return f"above {number_text(edges[-1])} mmHg"
-    below = [edge for edge in edges if edge < top]
-    if not below:
-        return f"{number_text(top)} mmHg or below"
-    return f"above {number_text(below[-1])} to {number_text(top)} mmHg"
+        return f"in the range above {number_text(edges[-1])} mmHg"
+    return f"in the {number_text(edges[edges.index(top) - 1])} to {number_text(top)} mmHg range"
+
+
+def _peep(case: Case, moment: datetime) -> str:
+    """What is charted of the pressure that the definition behind the ranges asks for."""
+    least = number_text(case.parameters.number("berlin.peep"))
+    read = [
+        value
+        for row in charted.block_rows(case, "ventilator")
+        if row.at <= moment and (value := amount(row.entry.get("peep"), "cmH2O")) is not None
+    ]
+    charted_as = f"{number_text(read[-1], say.PLACES)} cmH2O charted" if read else "not recorded"
+    return f"The ranges were defined with PEEP or CPAP of {least} cmH2O or more; PEEP {charted_as}."
 
 
 def _sf(case: Case, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
@@ -199,9 +207,16 @@ def _sf(case: Case, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
             say.fact(key, label, shown, unit="1", as_of=reading.at, system=System.BREATHING, sources=sources),
         )
     by = number_text(given.high / 100, 2)
-    cut_offs = case.parameters.table("sf.cut_offs")
-    near = " and ".join(f"{number_text(sf)} for P/F {number_text(float(pf))}" for pf, sf in cut_offs.items())
-    said = f"{number_text(value)} at {say.at(case, reading.at)} on {given.shown()}"
+    cut_offs = {float(pf): float(sf) for pf, sf in case.parameters.table("sf.cut_offs").items()}
+    line = case.parameters.table("sf.equation")
+    near = " and ".join(
+        f"{number_text(sf)} for P/F {number_text(pf)} "
+        f"(the equation gives {number_text(formula.sf_from_pf(pf, line['intercept'], line['slope']))})"
+        for pf, sf in cut_offs.items()
+    )
+    limit = formula.pf_limit_for(value, cut_offs)
+    stands = f"stands for P/F {number_text(limit)} mmHg or below" if limit else "above the published cut-offs"
+    said = f"{number_text(value)} at {say.at(case, reading.at)} on {given.shown()}, {stands}"
     return (
         say.fact(
             key,
@@ -226,64 +241,5 @@ def _sf(case: Case, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
                 f"Stands in for P/F only where no arterial gas is to be had: published {near}.",
                 *((OPEN_DEVICE,) if given.estimated else ()),
             ),
-        ),
-    )
-
-
-def _rox(case: Case, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
-    if reading is None or charted.tube(case).in_place:
-        return ()
-    held = oxygen.holding(case, reading.at)
-    if held is None or held.device in (oxygen.ROOM_AIR, oxygen.VENTILATOR):
-        return ()
-    key, label = "rox_index", "ROX index"
-    age = case.state.age_at(case.now)
-    if age is not None and age.years < case.parameters.number("adult_from"):
-        return ()
-    pct, breaths = amount(reading.node, "%") or 0.0, amount(reading.row.get("resp"), "/min")
-    given, missing = oxygen.fraction(case, held)
-    if not breaths:
-        missing = f"breaths a minute at {say.at(case, reading.at)}"
-    if given is None or not breaths:
-        return (say.gap(key, label, missing, unit="1/(breaths/min)", system=System.BREATHING),)
-    return (_rox_item(case, reading, held, given, pct, breaths, doubt),)
-
-
-def _rox_item(
-    case: Case, reading: Reading, held: oxygen.Oxygen, given: Fraction, pct: float, breaths: float, doubt: str
-) -> Item:
-    value = formula.rox_index(pct, given.high, breaths)
-    by = number_text(given.high / 100, 2)
-    lower = case.parameters.number("rox.lower_risk")
-    hours = case.hours_between(held.start, reading.at)
-    said = f"{number_text(value, 2)} at {say.at(case, reading.at)}"
-    if held.device == "high-flow nasal":
-        passed = [limit for after, limit in case.parameters["rox.failure"].value if hours >= after]
-        said += f", {'at or above' if value >= lower else 'below'} {number_text(lower, 2)}"
-        if passed and value < passed[-1]:
-            said += f" and below {number_text(passed[-1], 2)}: tell the doctor"
-    return say.fact(
-        "rox_index",
-        "ROX index",
-        said + (f", {doubt}" if doubt else ""),
-        value=value,
-        unit="1/(breaths/min)",
-        as_of=reading.at,
-        system=System.BREATHING,
-        detail=True,
-        working=Working(
-            formula="saturation / inspired oxygen fraction / breaths a minute",
-            sum=f"{number_text(pct, say.PLACES)} / {by} / {number_text(breaths)} = {number_text(value, 2)}",
-            inputs=(
-                case.input("Saturation", reading.node),
-                case.input("Inspired oxygen", None, given.shown()),
-                case.input("Breaths", reading.row.get("resp"), with_unit(breaths, "/min")),
-            ),
-            rule=given.table,
-        ),
-        sources=(case.parameters.source_of("rox.lower_risk"), *([given.source] if given.source else [])),
-        cautions=(
-            "Derived in adults with pneumonia on high-flow nasal oxygen, not in burns; the limits hold only there.",
-            *((OPEN_DEVICE,) if given.estimated else ()),
         ),
     )

@@ -26,6 +26,7 @@ from . import charted, formula, say
 ROOM_AIR = "room air"
 HYPERBARIC = "hyperbaric chamber"
 VENTILATOR = "ventilator"
+OPEN_DEVICE = "The inspired oxygen is an estimate, so the ratio is too."
 SET_DEVICES = ("high-flow nasal", "CPAP", "BiPAP", VENTILATOR)
 FULL, AIR, PART, CHAMBER, UNCHARTED = "100 % oxygen", "room air", "part oxygen", "hyperbaric", "not recorded"
 
@@ -72,9 +73,13 @@ def timeline(case: Case) -> tuple[Oxygen, ...]:
         if row.entry.get("fio2") is not None
     ]
     begun.sort(key=lambda part: part[:2])
+    extubated = charted.tube(case).extubated
     found: list[Oxygen] = []
     for index, (at, _, device, entry) in enumerate(begun):
         following = begun[index + 1][0] if index + 1 < len(begun) else None
+        if device == VENTILATOR and extubated is not None and at <= extubated:
+            # What the patient breathes after the tube is out is not what the ventilator gave.
+            following = min(following or extubated, extubated)
         stopped = case.when(entry.get("stopped"))
         if stopped is not None and (following is None or stopped < following):
             found.append(Oxygen(at, stopped, device, entry))
