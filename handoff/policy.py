@@ -84,7 +84,7 @@ def read_policy(text: str, file: str) -> Policy:
         raise PolicyError([fault.said(file) for fault in error.faults]) from None
     schema = load_schema("policy.schema.json")
     common = load_schema("common.schema.json")["$defs"]
-    faults: list[Fault] = [*found, *check(root, expand(schema, common), datetime.now(UTC))]
+    faults: list[Fault] = [*found, *check(root, expand(schema, common), datetime.now(UTC), found)]
     if faults:
         raise PolicyError([fault.said(file) for fault in faults])
     kept = without_blanks(root)

@@ -11,7 +11,8 @@ from handoff.state.nodes import List, Map, Node, Text
 from handoff.state.quantity import QuantityError
 from handoff.state.units import ALIASES, KINDS
 
-_NUMBER_AND_UNIT = re.compile(r"([+-]?\d+(?:\.\d+)?)(?:/(\d+))? *(.*)")
+_NUMBER_AND_UNIT = re.compile(r"([+-]?[0-9]+(?:\.[0-9]+)?)(?:/([0-9]+))? *(.*)")
+_BARE = re.compile(r"[+-]?[0-9]+(?:\.[0-9]+)?")
 
 
 def entries(node: Node | None) -> tuple[Map, ...]:
@@ -92,10 +93,8 @@ def unit_of(node: Node | None) -> str:
 
 def number(node: Node | None) -> float | None:
     """Return the bare number at ``node`` (a score, a count), or None."""
-    try:
-        return float(words(node))
-    except ValueError:
-        return None
+    text = words(node)
+    return float(text) if _BARE.fullmatch(text) else None
 
 
 def pressure_pair(node: Node | None) -> tuple[float, float] | None:

@@ -8,6 +8,7 @@ write it.
 from __future__ import annotations
 
 import re
+from calendar import monthrange
 from dataclasses import dataclass
 from datetime import UTC, date, datetime, timedelta
 from functools import lru_cache
@@ -17,11 +18,11 @@ MONTHS = ("Jan", "Feb", "Mar", "Apr", "May", "Jun", "Jul", "Aug", "Sep", "Oct", 
 DAYS = ("Mon", "Tue", "Wed", "Thu", "Fri", "Sat", "Sun")
 
 _INSTANT = re.compile(
-    r"(\d{4})-(\d{2})-(\d{2})[T ](\d{2}):(\d{2})(?: ?(Z|[+-]\d{2}:\d{2}))?"
+    r"([0-9]{4})-([0-9]{2})-([0-9]{2})[T ]([0-9]{2}):([0-9]{2})(?: ?(Z|[+-][0-9]{2}:[0-9]{2}))?"
 )
-_TIME = re.compile(r"(\d{2}):(\d{2})(?: ?(Z|[+-]\d{2}:\d{2}))?")
-_DATE = re.compile(r"(\d{4})-(\d{2})-(\d{2})")
-_PART = re.compile(r"(\d{4})(?:-(\d{2}))?")
+_TIME = re.compile(r"([0-9]{2}):([0-9]{2})(?: ?(Z|[+-][0-9]{2}:[0-9]{2}))?")
+_DATE = re.compile(r"([0-9]{4})-([0-9]{2})-([0-9]{2})")
+_PART = re.compile(r"([0-9]{4})(?:-([0-9]{2}))?")
 
 
 class ClockError(ValueError):
@@ -50,8 +51,7 @@ class PartialDate:
         if self.day is not None:
             return date(self.year, self.month or 12, self.day)
         month = self.month or 12
-        following = date(self.year + month // 12, month % 12 + 1, 1)
-        return following - timedelta(days=1)
+        return date(self.year, month, monthrange(self.year, month)[1])
 
     def shown(self) -> str:
         """Return it with the month spelled: ``3 Jun 2012``, ``Jun 2012`` or ``2012``."""
@@ -76,7 +76,9 @@ def read_date(text: str, partial: bool = False) -> PartialDate:
             found = date(int(part[1]), int(part[2] or 1), 1)
             return PartialDate(found.year, found.month if part[2] else None, None)
     except ValueError:
-        raise ClockError(f"'{text}' is not a date of the calendar", "write year-month-day: 2026-03-14") from None
+        raise ClockError(
+            f"'{text}' is not a date of the calendar", "write year-month-day: 2026-03-14"
+        ) from None
     cure = "write year-month-day: 2026-03-14"
     raise ClockError(f"'{text}' is not a date", cure + (", or 2026-03, or 2026" if partial else ""))
 
@@ -114,7 +116,9 @@ class Clock:
         """
         match = _INSTANT.fullmatch(text)
         if match is None:
-            raise ClockError(f"'{text}' is not a date and time", "write 2026-03-14 14:30, on the 24-hour clock")
+            raise ClockError(
+                f"'{text}' is not a date and time", "write 2026-03-14 14:30, on the 24-hour clock"
+            )
         year, month, day, hour, minute, offset = match.groups()
         try:
             local = datetime(int(year), int(month), int(day), int(hour), int(minute))

@@ -5,6 +5,9 @@ from __future__ import annotations
 from dataclasses import dataclass
 from enum import StrEnum
 
+LONGEST = 600
+"""Characters of a message, file name and place not counted."""
+
 
 class Severity(StrEnum):
     """Whether a finding stops the work or is shown in the document."""
@@ -28,7 +31,13 @@ class Fault:
         """Return the fault as ``file:line:col: path: what is wrong; what to do``."""
         where = f"{file}:{self.line}:{self.column}: "
         middle = f"{self.path}: " if self.path else ""
-        return f"{where}{middle}{self.what}; {self.cure}"
+        return where + _on_one_line(f"{middle}{self.what}; {self.cure}")
+
+
+def _on_one_line(text: str) -> str:
+    """Return ``text`` without line breaks and codes; a long value that it quotes is cut in the middle."""
+    line = "".join(char if char.isprintable() else "?" for char in " ".join(text.split()))
+    return line if len(line) <= LONGEST else f"{line[: LONGEST // 2]} ... {line[-LONGEST // 2 :]}"
 
 
 class StateFaults(Exception):

@@ -12,11 +12,12 @@ from typing import Any, TypeAlias
 
 from jsonschema import Draft202012Validator, TypeChecker, ValidationError, validators
 
-from handoff.state.clock import Clock, ClockError, read_date
 from handoff.state.faults import Severity
-from handoff.state.moments import Finding, Moments
+from handoff.state.findings import Finding, closed, is_blank, kind_of
+from handoff.state.moments import Moments
 from handoff.state.nodes import List, Map, Text
 from handoff.state.quantity import Quantity, QuantityError, read_quantity
+from handoff.state.time_keywords import TimeKeywords
 
 Schema: TypeAlias = Mapping[str, Any]
 Found: TypeAlias = Iterator[ValidationError]
@@ -24,7 +25,7 @@ Found: TypeAlias = Iterator[ValidationError]
 
 def nearest(word: str, known: Iterable[str]) -> str:
     """Return the cure for an unknown word: the nearest known one, or what is allowed."""
-    names = [name for name in known]
+    names = list(known)
     close = difflib.get_close_matches(word.lower(), names, n=1, cutoff=0.6)
     if close:
         return f"did you mean '{close[0]}'?"
@@ -32,17 +33,13 @@ def nearest(word: str, known: Iterable[str]) -> str:
     return f"allowed here: {shown}"
 
 
-def is_blank(node: object) -> bool:
-    return isinstance(node, Text) and not node
-
-
-def _kind_of(node: object) -> str:
-    if isinstance(node, Map):
-        return "a group of keys"
-    return "a list" if isinstance(node, List) else "text"
-
-
-_DUE = {"object": "a group of keys", "array": "a list", "string": "text", "integer": "a whole number", "number": "a number"}
+_DUE = {
+    "object": "a group of keys",
+    "array": "a list",
+    "string": "text",
+    "integer": "a whole number",
+    "number": "a number",
+}
 _TYPE_CURES = {
     "object": "write keys and values below it, each on its own line",
     "array": "write each entry on its own line, beginning with '- '",
@@ -54,8 +51,10 @@ _TYPE_CURES = {
 
 def _type(validator: Any, due: str, instance: Any, schema: Schema) -> Found:
     if not validator.is_type(instance, due):
-        shown = f"'{instance}'" if isinstance(instance, Text) else _kind_of(instance)
-        yield Finding(f"{shown} stands where {_DUE[due]} is due", _TYPE_CURES[due])
+        if isinstance(instance, Text):
+            yield closed(instance, f"'{instance}' stands where {_DUE[due]} is due", _TYPE_CURES[due])
+        else:
+            yield Finding(f"{kind_of(instance)} stands where {_DUE[due]} is due", _TYPE_CURES[due])
 
 
 def _properties(validator: Any, properties: Schema, instance: Any, schema: Schema) -> Found:
@@ -78,7 +77,8 @@ def _required(validator: Any, required: list[str], instance: Any, schema: Schema
         for key in required:
             if key not in instance or is_blank(instance[key]):
                 hint = schema["properties"].get(key, {}).get("description", "")
-                yield Finding(f"'{key}' is missing", f"add it ({hint[0].lower()}{hint[1:]})" if hint else f"add '{key}:'")
+                cure = f"add it ({hint[0].lower()}{hint[1:]})" if hint else f"add '{key}:'"
+                yield Finding(f"'{key}' is missing", cure)
 
 
 def _items(validator: Any, items: Schema, instance: Any, schema: Schema) -> Found:
@@ -92,33 +92,45 @@ def _items(validator: Any, items: Schema, instance: Any, schema: Schema) -> Foun
 
 def _enum(validator: Any, enum: list[str], instance: Any, schema: Schema) -> Found:
     if isinstance(instance, Text) and str(instance) not in enum:
-        yield Finding(f"'{instance}' is not a word for this", nearest(instance, enum))
+        yield closed(instance, f"'{instance}' is not a word for this", nearest(instance, enum))
     elif not isinstance(instance, Text):
-        yield Finding(f"{_kind_of(instance)} stands where a word is due", nearest("", enum))
+        yield Finding(f"{kind_of(instance)} stands where a word is due", nearest("", enum))
 
 
 def _number(instance: object) -> float | None:
-    try:
-        return float(str(instance))
-    except ValueError:
-        return None
+    return float(str(instance)) if _is_number(None, instance) else None
 
 
 def _minimum(validator: Any, limit: float, instance: Any, schema: Schema) -> Found:
     value = _number(instance)
     if value is not None and value < limit:
-        yield Finding(f"{instance} is below {limit}", f"write a number from {limit} to {schema.get('maximum', '...')}")
+        yield Finding(
+            f"{instance} is below {limit}", f"write a number from {limit} to {schema.get('maximum', '...')}"
+        )
 
 
 def _maximum(validator: Any, limit: float, instance: Any, schema: Schema) -> Found:
     value = _number(instance)
     if value is not None and value > limit:
-        yield Finding(f"{instance} is above {limit}", f"write a number from {schema.get('minimum', '...')} to {limit}")
+        yield Finding(
+            f"{instance} is above {limit}", f"write a number from {schema.get('minimum', '...')} to {limit}"
+        )
 
 
 def _max_length(validator: Any, limit: int, instance: Any, schema: Schema) -> Found:
     if isinstance(instance, Text) and len(instance) > limit:
         yield Finding(f"{len(instance)} characters long", f"shorten it to {limit}")
+
+
+_NO_NAMES = frozenset({"yes", "no", "true", "false", "on", "off", "null", "none", "nil", "~"})
+
+
+def _name(validator: Any, rule: bool, instance: Any, schema: Schema) -> Found:
+    if isinstance(instance, Text) and instance.plain and instance.lower() in _NO_NAMES:
+        yield Finding(
+            f"'{instance}' stands where a name, a place or a number is due",
+            f'leave it empty if it is not recorded; if it is the name, put it in quotes: "{instance}"',
+        )
 
 
 def _condition(validator: Any, condition: Schema, instance: Any, schema: Schema) -> Found:
@@ -162,7 +174,8 @@ def _quantity(validator: Any, kind: str, instance: Any, schema: Schema) -> Found
     impossible, unusual = schema.get("x-impossible"), schema.get("x-unusual")
     if impossible and _outside(quantity, impossible, kind):
         yield Finding(
-            f"{instance} is not possible here ({impossible[0]} to {impossible[1]})", "check the figure and the unit"
+            f"{instance} is not possible here ({impossible[0]} to {impossible[1]})",
+            "check the figure and the unit",
         )
     elif unusual and _outside(quantity, unusual, kind):
         yield Finding(
@@ -172,105 +185,66 @@ def _quantity(validator: Any, kind: str, instance: Any, schema: Schema) -> Found
         )
 
 
+KEYWORDS: dict[str, Any] = {
+    "type": _type,
+    "properties": _properties,
+    "required": _required,
+    "items": _items,
+    "enum": _enum,
+    "minimum": _minimum,
+    "maximum": _maximum,
+    "maxLength": _max_length,
+    "if": _condition,
+    "x-name": _name,
+    "x-quantity": _quantity,
+}
+
+
 def make_validator(moments: Moments) -> Any:
     """Return the validator class for one file, whose times are limited by ``moments``."""
+    made: Any = validators.create(
+        meta_schema=Draft202012Validator.META_SCHEMA,
+        validators={**KEYWORDS, **TimeKeywords(moments).by_name()},
+        type_checker=_TYPES,
+    )
+    # The library makes a new validator for every value below; without references one is enough.
+    made.descend = _descend
+    made.is_type = _is_type
+    return made
 
-    def x_instant(validator: Any, rule: Schema, instance: Any, schema: Schema) -> Found:
-        if moments.clock is None or not isinstance(instance, Text):
-            return
-        try:
-            refused = moments.refuse(moments.clock.read(instance), rule)
-        except ClockError as error:
-            refused = Finding(error.what, error.cure)
-        if refused is not None:
-            yield refused
 
-    def x_date(validator: Any, rule: Schema, instance: Any, schema: Schema) -> Found:
-        if not isinstance(instance, Text):
-            return
-        try:
-            first = read_date(instance, partial=rule.get("partial", False)).earliest()
-        except ClockError as error:
-            yield Finding(error.what, error.cure)
-            return
-        today = moments.clock.local(moments.now).date() if moments.clock else moments.now.date()
-        if first > today and not rule.get("future", False):
-            yield Finding(f"{instance} is later than today", "check the year")
-        elif today.year - first.year > 125:
-            yield Finding(f"{instance} is more than 125 years ago", "check the year")
+def _descend(
+    validator: Any, instance: Any, schema: Schema, path: Any = None, schema_path: Any = None
+) -> Found:
+    checks = validator.VALIDATORS
+    for keyword, value in schema.items():
+        check = checks.get(keyword)
+        if check is None:
+            continue
+        for error in check(validator, value, instance, schema) or ():
+            if path is not None:
+                error.relative_path.appendleft(path)
+            yield error
 
-    def x_zone(validator: Any, rule: bool, instance: Any, schema: Schema) -> Found:
-        try:
-            Clock(str(instance))
-        except ClockError as error:
-            yield Finding(error.what, error.cure)
 
-    def x_rows(validator: Any, rule: bool, instance: Any, schema: Schema) -> Found:
-        if not isinstance(instance, Map):
-            yield Finding(f"{_kind_of(instance)} stands where dates are due", "write a date, and times below it")
-            return
-        for day, times in instance.items():
-            try:
-                read_date(day)
-            except ClockError as error:
-                yield Finding(error.what, error.cure, key=instance.key(day))
-                continue
-            if isinstance(times, Map):
-                for error in _times(validator, day, times, schema["x-row"]):
-                    error.relative_path.appendleft(str(day))
-                    yield error
-            elif not is_blank(times):
-                yield Finding(
-                    f"{_kind_of(times)} stands where times are due", "write 14:30: {...} below the date", key=instance.key(day)
-                )
+def _is_type(validator: Any, instance: Any, due: str) -> bool:
+    return _TYPES.is_type(instance, due)
 
-    def _times(validator: Any, day: str, times: Map, row: Schema) -> Found:
-        for time, entry in times.items():
-            if moments.clock is not None:
-                try:
-                    refused = moments.refuse(moments.clock.read_time(day, time), {})
-                except ClockError as error:
-                    refused = Finding(error.what, error.cure)
-                if refused is not None:
-                    refused.key = times.key(time)
-                    yield refused
-            if is_blank(entry):
-                continue
-            due = {"type": "array", "items": row} if isinstance(entry, List) else row
-            yield from validator.descend(entry, due, path=str(time))
 
-    keywords = {
-        "type": _type,
-        "properties": _properties,
-        "required": _required,
-        "items": _items,
-        "enum": _enum,
-        "minimum": _minimum,
-        "maximum": _maximum,
-        "maxLength": _max_length,
-        "if": _condition,
-        "x-quantity": _quantity,
-        "x-instant": x_instant,
-        "x-date": x_date,
-        "x-zone": x_zone,
-        "x-rows": x_rows,
-    }
-    return validators.create(
-        meta_schema=Draft202012Validator.META_SCHEMA, validators=keywords, type_checker=_TYPES
+def _is_number(checker: TypeChecker | None, instance: object) -> bool:
+    digits = str(instance).removeprefix("-").split(".")
+    return (
+        isinstance(instance, Text)
+        and len(digits) < 3
+        and all(part.isascii() and part.isdigit() for part in digits)
     )
 
 
-def _is_number(checker: TypeChecker, instance: object) -> bool:
-    digits = str(instance).removeprefix("-").split(".")
-    return isinstance(instance, Text) and len(digits) < 3 and all(part.isascii() and part.isdigit() for part in digits)
-
-
-_TYPES = TypeChecker(
-    {
-        "object": lambda checker, instance: isinstance(instance, Map),
-        "array": lambda checker, instance: isinstance(instance, List),
-        "string": lambda checker, instance: isinstance(instance, Text),
-        "number": _is_number,
-        "integer": lambda checker, instance: _is_number(checker, instance) and "." not in str(instance),
-    }
-)
+_CHECKS: dict[str, Any] = {
+    "object": lambda checker, instance: isinstance(instance, Map),
+    "array": lambda checker, instance: isinstance(instance, List),
+    "string": lambda checker, instance: isinstance(instance, Text),
+    "number": _is_number,
+    "integer": lambda checker, instance: _is_number(checker, instance) and "." not in str(instance),
+}
+_TYPES = TypeChecker(_CHECKS)

@@ -57,7 +57,7 @@ def load_text(text: str, file: str, at: str, schema: Mapping[str, Any], checks: 
     """
     root, found = read_nodes(text, file)
     now = _moment(at, root)
-    found += check(root, schema, now)
+    found += check(root, schema, now, found)
     faults = [fault for fault in found if fault.severity is Severity.FAULT]
     if faults:
         raise StateFaults(file, faults)

@@ -1,4 +1,4 @@
-"""What one check found, and the moments that limit every time of a file: now, birth and burn."""
+"""The moments that limit every time of a file: now, birth and burn."""
 
 from __future__ import annotations
 
@@ -6,23 +6,9 @@ from collections.abc import Callable, Mapping
 from datetime import UTC, datetime, timedelta
 from typing import Any
 
-from jsonschema import ValidationError
-
 from handoff.state.clock import Clock, ClockError, read_date
-from handoff.state.faults import Severity
+from handoff.state.findings import Finding
 from handoff.state.nodes import Map, Text
-
-
-class Finding(ValidationError):
-    """An error with its cure; ``key`` is the key at fault where it is a key."""
-
-    def __init__(
-        self, what: str, cure: str, severity: Severity = Severity.FAULT, key: Text | None = None
-    ) -> None:
-        super().__init__(what)
-        self.cure = cure
-        self.severity = severity
-        self.key = key
 
 
 class Moments:
@@ -37,15 +23,16 @@ class Moments:
             self.clock = Clock(str(root.get("clock", "")))
         except ClockError:
             return
-        self.birth = self._try(lambda: self._birth(root))
-        self.burn = self._try(lambda: self._burn(root))
+        self.birth = self._limit(lambda: self._birth(root))
+        self.burn = self._limit(lambda: self._burn(root))
 
-    @staticmethod
-    def _try(read: Callable[[], datetime | None]) -> datetime | None:
+    def _limit(self, read: Callable[[], datetime | None]) -> datetime | None:
         try:
-            return read()
+            found = read()
         except (ClockError, ValueError, OverflowError):
             return None
+        # One that lies ahead is a fault of its own, and would make one of every time in the file.
+        return found if found is not None and found <= self.now else None
 
     def _birth(self, root: Map) -> datetime | None:
         patient = root.get("patient")
@@ -72,7 +59,8 @@ class Moments:
         if moment > self.now and not rule.get("future", False):
             now = clock.day_and_time(self.now)
             return Finding(
-                f"{said} is later than {now}, the moment this is read for", "check the date and the time, or --at"
+                f"{said} is later than {now}, the moment this is read for",
+                "check the date and the time, or --at",
             )
         limit = rule.get("not_before", "burn")
         if limit != "none" and self.birth is not None and moment < self.birth:

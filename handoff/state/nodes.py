@@ -91,8 +91,8 @@ class Map(dict[str, "Node"]):
     def _read_only(self, *_: object, **__: object) -> NoReturn:
         raise TypeError("the patient state is read only")
 
-    __setitem__ = __delitem__ = update = setdefault = pop = popitem = clear = _read_only  # type: ignore[assignment]
-    __ior__ = _read_only  # type: ignore[assignment,misc]
+    __setitem__ = __delitem__ = update = setdefault = pop = popitem = clear = _read_only
+    __ior__ = _read_only
 
 
 Node: TypeAlias = Text | List | Map

@@ -199,7 +199,9 @@ class PatientState:
 
     def events(self, what: str) -> tuple[Row, ...]:
         """Return the events whose ``what`` is ``what``, in time order."""
-        return tuple(row for row in self.dated(self.root.get("events")) if words(row.entry.get("what")) == what)
+        return tuple(
+            row for row in self.dated(self.root.get("events")) if words(row.entry.get("what")) == what
+        )
 
     @cached_property
     def handover(self) -> Map:
@@ -216,7 +218,9 @@ class PatientState:
     def identifiers(self) -> tuple[tuple[str, str], ...]:
         """The identifiers as (kind, number), in written order."""
         node = self.patient.get("identifiers")
-        return tuple((str(kind), words(value)) for kind, value in node.items()) if isinstance(node, Map) else ()
+        return (
+            tuple((str(kind), words(value)) for kind, value in node.items()) if isinstance(node, Map) else ()
+        )
 
     def at_path(self, *names: str) -> Node | None:
         """Return what stands at ``names`` below the root, or None."""

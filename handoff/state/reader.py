@@ -10,14 +10,21 @@ from __future__ import annotations
 import re
 from dataclasses import dataclass, field
 from pathlib import Path
+from typing import Any
 
 import yaml
 
+from handoff.state.characters import refused_characters
 from handoff.state.faults import Fault, StateFaults
 from handoff.state.nodes import List, Map, Node, Text, path_text
+from handoff.state.parser_words import parser_fault
+from handoff.state.scalars import Refusal, plain_refused, quoted_refused, split_number, without_colon
 
 MAX_BYTES = 8_000_000
 MAX_DEPTH = 24
+
+MANY = 80
+"""Characters before a key among which a sign that belongs to it is sought."""
 
 _Loader = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
 
@@ -37,22 +44,32 @@ def read_text(path: Path) -> str:
         if path.is_dir():
             raise NotAStateFile(f"{path} is a folder; name the patient's .yaml file in it")
         size = path.stat().st_size
-        if size > MAX_BYTES:
-            raise NotAStateFile(
-                f"{path} is {size // 1_000_000} MB; a patient-state file is at most {MAX_BYTES // 1_000_000} MB"
-            )
-        data = path.read_bytes()
+        with path.open("rb") as file:
+            # The size is not known of everything that can be opened, so no more is read than may be.
+            data = file.read(MAX_BYTES + 1) if size <= MAX_BYTES else b""
     except FileNotFoundError:
         raise NotAStateFile(f"{path} is not there; check the name and the folder") from None
     except OSError as error:
-        raise NotAStateFile(f"{path} cannot be read ({error.strerror}); close it elsewhere and try again") from None
-    if data.startswith((b"PK\x03\x04", b"%PDF", b"\xd0\xcf\x11\xe0")):
-        raise NotAStateFile(f"{path} is a document, not a patient-state file; name the .yaml file it was made from")
+        raise NotAStateFile(
+            f"{path} cannot be read ({error.strerror}); close it elsewhere and try again"
+        ) from None
+    if max(size, len(data)) > MAX_BYTES:
+        said = f"{size // 1_000_000} MB" if size > MAX_BYTES else "too large"
+        raise NotAStateFile(f"{path} is {said}; a patient-state file is at most {MAX_BYTES // 1_000_000} MB")
+    if data.startswith((b"PK\x03\x04", b"%PDF", b"\xd0\xcf\x11\xe0", b"{\\rtf")):
+        raise NotAStateFile(
+            f"{path} is a document, not a patient-state file; name the .yaml file it was made from"
+        )
     try:
+        if b"\0" in data:
+            raise UnicodeDecodeError("utf-8", data, data.index(b"\0"), len(data), "a zero byte")
         return data.decode("utf-8-sig")
     except UnicodeDecodeError as error:
-        line = data.count(b"\n", 0, error.start) + 1
-        raise NotAStateFile(f"{path}:{line}: not UTF-8 text; save the file as UTF-8") from None
+        before = data[: error.start]
+        line, column = before.count(b"\n") + 1, error.start - before.rfind(b"\n")
+        raise NotAStateFile(
+            f"{path}:{line}:{column}: not UTF-8 text; save it again as plain text with the encoding UTF-8"
+        ) from None
 
 
 def read_nodes(text: str, file: str) -> tuple[Map, list[Fault]]:
@@ -87,6 +104,15 @@ class _Open:
     values: list[Node] = field(default_factory=list)
     keys: dict[str, Text] = field(default_factory=dict)
     key: Text | None = None
+    rest_of_number: int = -1
+    drop: bool = False
+
+
+class _Stop(Exception):
+    """What follows cannot be read in any sensible way; the fault is noted."""
+
+
+_EXPLICIT_KEY = re.compile(r"[\r\n{\[,-] *\? +$")
 
 
 class _Reading:
@@ -95,9 +121,11 @@ class _Reading:
         self.faults: list[Fault] = []
         self._open: list[_Open] = []
         self._root: Node | None = None
+        self._upset_to = -1
+        self._has_explicit_keys = "? " in text
 
     def root(self) -> Node | None:
-        self._refuse_tabs()
+        self.faults += refused_characters(self.text)
         if self.faults:
             return None
         documents = 0
@@ -106,61 +134,69 @@ class _Reading:
                 if isinstance(event, yaml.DocumentStartEvent):
                     documents += 1
                     if documents > 1:
-                        self._fault(event, "a second document begins here", "keep one patient in one file; delete '---'")
-                        break
+                        self._stop(
+                            event,
+                            "a second document begins here",
+                            "keep one patient in one file; delete '---'",
+                        )
                     if event.version or event.tags:
                         self._fault(event, "a YAML directive", "delete the line that begins with %")
                 else:
                     self._take(event)
-                if len(self._open) > MAX_DEPTH:
-                    self._fault(event, f"nested more than {MAX_DEPTH} deep", "a patient state needs less; check the brackets")
-                    break
         except yaml.YAMLError as error:
-            self.faults.append(_parser_fault(error, self.text))
+            self._parser_stopped(parser_fault(error))
+        except _Stop:
+            pass
         except RecursionError:
             self.faults.append(Fault(1, 1, "", "nested too deep", "check the brackets"))
         return self._root
 
-    def _refuse_tabs(self) -> None:
-        for match in re.finditer(r"\t+", self.text):
-            start = match.start()
-            begin = self.text.rfind("\n", 0, start) + 1
-            if "#" in self.text[begin:start] and re.search(r"(^|\s)#", self.text[begin:start]):
-                continue
-            line = self.text.count("\n", 0, start) + 1
-            self.faults.append(Fault(line, start - begin + 1, "", "a tab", "use spaces"))
+    def _parser_stopped(self, fault: Fault) -> None:
+        # A text that was cut short by what is already refused is the usual reason why the parser stops.
+        if not self._upset_to <= fault.line <= self._upset_to + 1:
+            self.faults.append(fault)
 
     def _path(self) -> str:
         steps: list[str | int] = []
         for level in self._open:
-            if level.is_map:
-                if level.key is not None:
-                    steps.append(str(level.key))
-            else:
+            if not level.is_map:
                 steps.append(len(level.values))
+            elif level.key is not None:
+                steps.append(str(level.key))
         return path_text(steps)
 
     def _fault(self, event: yaml.Event, what: str, cure: str) -> None:
-        mark = event.start_mark
+        mark: Any = event.start_mark
         self.faults.append(Fault(mark.line + 1, mark.column + 1, self._path(), what, cure))
 
+    def _stop(self, event: yaml.Event, what: str, cure: str) -> None:
+        self._fault(event, what, cure)
+        raise _Stop
+
     def _take(self, event: yaml.Event) -> None:
-        if isinstance(event, yaml.ScalarEvent):
+        if type(event) is yaml.ScalarEvent:
             self._scalar(event)
         elif isinstance(event, (yaml.MappingStartEvent, yaml.SequenceStartEvent)):
             self._begin(event)
         elif isinstance(event, (yaml.MappingEndEvent, yaml.SequenceEndEvent)):
-            self._end(event.end_mark.index)
+            end: Any = event.end_mark
+            self._end(end.index)
         elif isinstance(event, yaml.AliasEvent):
-            self._fault(event, "'*' begins an alias", "write the value out, or put it in quotes")
-            self._put(Text.at("", event.start_mark.line + 1, event.start_mark.column + 1))
+            self._stop(event, "'*' begins an alias", "write the value out, or put it in quotes")
 
     def _begin(self, event: yaml.MappingStartEvent | yaml.SequenceStartEvent) -> None:
-        self._refuse_marks(event)
-        mark = event.start_mark
+        if event.anchor is not None or event.tag is not None:
+            self._refuse_marks(event)
+        mark: Any = event.start_mark
         is_map = isinstance(event, yaml.MappingStartEvent)
-        if self._expects_key():
-            self._fault(event, "a list or mapping stands where a key is due", "begin the line with a key and a colon")
+        if self._open and self._open[-1].is_map and self._open[-1].key is None:
+            self._stop(
+                event, "a list or mapping stands where a key is due", "begin the line with a key and a colon"
+            )
+        if len(self._open) == MAX_DEPTH:
+            self._stop(
+                event, f"nested more than {MAX_DEPTH} deep", "a patient state needs less; check the brackets"
+            )
         self._open.append(_Open(is_map, mark.line + 1, mark.column + 1, mark.index, bool(event.flow_style)))
 
     def _end(self, end: int) -> None:
@@ -171,49 +207,67 @@ class _Reading:
     def _refuse_marks(self, event: yaml.NodeEvent) -> None:
         if event.anchor is not None:
             self._fault(event, f"'&{event.anchor}' is an anchor", "put text that begins with & in quotes")
-        tag = getattr(event, "tag", None)
-        if tag is not None:
-            self._fault(event, f"'{tag}' is a tag", "put text that begins with ! in quotes")
-
-    def _expects_key(self) -> bool:
-        return bool(self._open) and self._open[-1].is_map and self._open[-1].key is None
+        else:
+            self._fault(
+                event, f"'{getattr(event, 'tag', '')}' is a tag", "put text that begins with ! in quotes"
+            )
 
     def _scalar(self, event: yaml.ScalarEvent) -> None:
-        self._refuse_marks(event)
-        start, end = event.start_mark, event.end_mark
-        is_plain = event.style is None or event.style == ""
+        if event.anchor is not None or event.tag is not None:
+            self._refuse_marks(event)
+        start: Any = event.start_mark
+        end: Any = event.end_mark
+        is_plain = not event.style
         text = Text.at(event.value, start.line + 1, start.column + 1, start.index, end.index, is_plain)
-        if is_plain and event.value:
-            self._refuse_plain(event)
-        if self._expects_key():
-            self._key(event, text)
+        if not is_plain:
+            refusal = quoted_refused(self.text, event, self._indent())
+        elif start.line == end.line and self.text[end.index : end.index + 1] not in " ," and text.isascii():
+            refusal = None
+        else:
+            refusal = plain_refused(self.text, event)
+        if refusal is not None:
+            self._refuse(event, refusal, end.line)
+        if not self._open:
+            self._root = text
             return
-        inside = self._open[-1] if self._open else None
-        if inside is not None and inside.is_map and inside.flow and is_plain and not event.value:
-            self._missing_colon(event, inside)
-        self._put(text)
-
-    def _refuse_plain(self, event: yaml.ScalarEvent) -> None:
-        end = event.end_mark.index
-        if event.end_mark.line != event.start_mark.line:
-            self._fault(
-                event,
-                "the text runs on over the next line",
-                "check the indentation below it, or put a long text after '|' on lines of its own",
-            )
-        elif self.text[end : end + 2] == " #":
-            self._fault(
-                event,
-                "one space and '#' after a value: the rest would be lost as a comment",
-                "put the whole text in quotes, or put two spaces before a comment",
-            )
-
-    def _key(self, event: yaml.ScalarEvent, text: Text) -> None:
         inside = self._open[-1]
+        if inside.flow:
+            self._in_braces(event, inside, text)
+        if inside.is_map and inside.key is None:
+            self._key(event, text, inside)
+        else:
+            self._put(text)
+
+    def _indent(self) -> int:
+        return next((level.column for level in reversed(self._open) if not level.flow), 0)
+
+    def _refuse(self, event: yaml.ScalarEvent, refusal: Refusal, last_line: int) -> None:
+        self._fault(event, refusal.what, refusal.cure)
+        if refusal.upsets:
+            self._upset_to = last_line + 1
+
+    def _in_braces(self, event: yaml.ScalarEvent, inside: _Open, text: Text) -> None:
+        if text.start == inside.rest_of_number:
+            inside.drop = True
+            return
+        is_key = inside.is_map and inside.key is None
+        if not text.plain or is_key:
+            return
+        split = split_number(self.text, event) if self.text[text.end : text.end + 1] == "," else None
+        if split is not None:
+            self._fault(event, split.what, split.cure)
+            inside.rest_of_number = text.end + 1
+        elif inside.key is not None and not event.value and not inside.drop:
+            what, cure, _ = without_colon(inside.key)
+            self.faults.append(Fault(inside.key.line, inside.key.column, self._path(), what, cure))
+
+    def _key(self, event: yaml.ScalarEvent, text: Text, inside: _Open) -> None:
         if text == "<<":
             self._fault(event, "'<<' merges another entry", "write the values out")
+        elif self._has_explicit_keys and _EXPLICIT_KEY.search(self._just_before(text)):
+            self._fault(event, "'?' begins a key", "put text that begins with ? in quotes")
         known = inside.keys.get(text)
-        if known is not None:
+        if known is not None and not inside.drop:
             self._fault(
                 event,
                 f"the key '{text}' stands twice here (also on line {known.line})",
@@ -222,56 +276,18 @@ class _Reading:
         inside.keys[str(text)] = text
         inside.key = text
 
-    def _missing_colon(self, event: yaml.ScalarEvent, inside: _Open) -> None:
-        key = inside.key
-        if key is None:
-            return
-        before = inside.pairs[-1] if inside.pairs else None
-        if before and re.match(r"\d", key) and isinstance(before[1], Text) and re.fullmatch(r"[+-]?\d+", before[1]):
-            number, rest = str(before[1]), str(key)
-            cure = f"write a decimal point: {number}.{rest}"
-            what = f"a comma in '{number},{rest}' splits the number"
-        else:
-            what = f"'{key}' has no value: a comma ends an entry inside {{ }}"
-            cure = "put text with a comma in quotes, or write 'key: value'"
-        self.faults.append(Fault(key.line, key.column, self._path(), what, cure))
+    def _just_before(self, text: Text) -> str:
+        return "\n" * (text.start < MANY) + self.text[max(text.start - MANY, 0) : text.start]
 
     def _put(self, node: Node) -> None:
         if not self._open:
             self._root = node
             return
         inside = self._open[-1]
-        if not inside.is_map:
+        if inside.drop:
+            inside.drop, inside.key = False, None
+        elif not inside.is_map:
             inside.values.append(node)
         elif inside.key is not None:
             inside.pairs.append((inside.key, node))
             inside.key = None
-
-
-_PARSER_CURES = (
-    ("did not find expected key", "check the indentation, and that the line above is closed"),
-    ("could not find expected ':'", "write 'key: value', with a space after the colon"),
-    ("mapping values are not allowed", "put text that holds ': ' in quotes, and check the indentation"),
-    ("did not find expected ',' or ']'", "close the list with ]; put text with brackets in quotes"),
-    ("did not find expected ',' or '}'", "close the entry with }; put text with brackets in quotes"),
-    ("found character that cannot start any token", "put the text in quotes (it begins with @, ` or %)"),
-    ("found unexpected end of stream", "close the quotes or the bracket"),
-    ("control characters are not allowed", "delete the unprintable character"),
-    ("block sequence entries are not allowed", "put the list on lines of its own, each beginning with '- '"),
-    ("exceeded max", "a patient state needs less nesting; check the brackets"),
-)
-
-
-def _parser_fault(error: yaml.YAMLError, text: str) -> Fault:
-    problem = str(getattr(error, "problem", None) or getattr(error, "reason", None) or "not readable as YAML")
-    mark = getattr(error, "problem_mark", None)
-    if mark is None or "end of stream" in problem:
-        mark = getattr(error, "context_mark", None) or mark
-    if mark is not None:
-        line, column = mark.line + 1, mark.column + 1
-    else:
-        position = min(getattr(error, "position", 0) or 0, len(text))
-        line = text.count("\n", 0, position) + 1
-        column = position - text.rfind("\n", 0, position)
-    cure = next((cure for known, cure in _PARSER_CURES if known in problem), "check the spelling of this line")
-    return Fault(line, column, "", f"the line cannot be read ({problem})", cure)

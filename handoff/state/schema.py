@@ -21,7 +21,7 @@ DATE = r"\d{4}-\d{2}-\d{2}"
 TIME = r"\d{2}:\d{2}( ?(Z|[+-]\d{2}:\d{2}))?"
 
 ENTRY: Schema = {
-    "by": {"type": "string", "maxLength": 200, "description": "Who charted it"},
+    "by": {"type": "string", "maxLength": 200, "x-name": True, "description": "Who charted it"},
     "written": {"x-instant": {"not_before": "birth"}, "description": "When it was written, if later"},
     "note": {"type": "string", "maxLength": 4000, "description": "Anything else, in words"},
     "confirmed": {"enum": ["yes", "no"], "description": "yes: an unusual value was checked and is right"},
@@ -31,7 +31,7 @@ ENTRY: Schema = {
         "required": ["value", "by", "at", "why"],
         "properties": {
             "value": {"type": "string", "maxLength": 4000, "description": "The entry before"},
-            "by": {"type": "string", "maxLength": 200, "description": "Who changed it"},
+            "by": {"type": "string", "maxLength": 200, "x-name": True, "description": "Who changed it"},
             "at": {"x-instant": {"not_before": "birth"}, "description": "When it was changed"},
             "why": {"type": "string", "maxLength": 4000, "description": "Why"},
         },
@@ -41,7 +41,7 @@ ENTRY: Schema = {
         "description": "Entered in error: kept readable, counted nowhere",
         "required": ["by", "at", "why"],
         "properties": {
-            "by": {"type": "string", "maxLength": 200, "description": "Who struck it out"},
+            "by": {"type": "string", "maxLength": 200, "x-name": True, "description": "Who struck it out"},
             "at": {"x-instant": {"not_before": "birth"}, "description": "When"},
             "why": {"type": "string", "maxLength": 4000, "description": "Why, for example: wrong patient"},
         },
@@ -75,7 +75,7 @@ def merged_schema(parts: Iterable[tuple[str, Mapping[str, Any]]]) -> Schema:
     """
     core = load_schema("patient-state.schema.json")
     defs = {**load_schema("common.schema.json")["$defs"], **core.pop("$defs")}
-    schema = expand(core, defs)
+    schema: Schema = expand(core, defs)
     properties = schema["properties"]
     row = properties["observations"]["x-row"]["properties"]
     result = properties["results"]["items"]["properties"]
@@ -194,7 +194,8 @@ def editor_schema(schema: Any) -> Any:
             )
         elif not key.startswith("x-"):
             found[key] = editor_schema(value)
-    if found.get("type") == "string" and "x-instant" not in schema and "x-date" not in schema:
+    has_pattern = "x-instant" in schema or "x-date" in schema or schema.get("x-quantity", "fraction") != "fraction"
+    if found.get("type") == "string" and not has_pattern:
         found["type"] = ["string", "number"]
     if "enum" in found:
         found["enum"] = [*found["enum"], *(int(word) for word in found["enum"] if str(word).isdigit())]

@@ -132,3 +132,9 @@ UNSAFE = {
     "µg/kg/min": "mcg/kg/min",
 }
 """Abbreviations that published safety lists advise against, and the safe form."""
+
+WHOLE = frozenset({"mL", "mL/h", "mL/min", "drops/min", "/min", "mmHg", "cm", "mm", "V", "U/L"})
+"""Units in which nobody measures to a thousandth: ``1.200 mL`` is 1200 mL where a point parts thousands."""
+
+DOSES = frozenset({"mg", "mcg", "units"})
+"""Units in which a third decimal that is zero (``1.250 mg``) is as likely a point between thousands."""

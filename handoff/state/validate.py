@@ -2,37 +2,54 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from datetime import datetime
 from typing import Any
 
 from handoff.state.faults import Fault, Severity
-from handoff.state.keywords import is_blank, make_validator
+from handoff.state.findings import is_blank
+from handoff.state.keywords import make_validator
 from handoff.state.moments import Moments
 from handoff.state.nodes import List, Map, Node, path_text
 
 
-def check(root: Map, schema: Mapping[str, Any], now: datetime) -> list[Fault]:
-    """Return every fault and every unusual, unconfirmed value of ``root``, in the order of the file."""
+def check(root: Map, schema: Mapping[str, Any], now: datetime, refused: Iterable[Fault] = ()) -> list[Fault]:
+    """Return every fault and every unusual, unconfirmed value of ``root``, in the order of the file.
+
+    Args:
+        root: The file as it was read.
+        schema: The merged schema.
+        now: The moment the file is read for.
+        refused: What the reader refused; nothing more is said of those places.
+    """
     validator = make_validator(Moments(root, now))(schema)
     faults = []
+    done = {(fault.line, fault.column) for fault in refused}
     for error in validator.iter_errors(root):
         path = list(error.absolute_path)
         node, parent = _at(root, path)
-        if error.severity is Severity.UNUSUAL and isinstance(parent, Map) and parent.get("confirmed") == "yes":
+        if (
+            error.severity is Severity.UNUSUAL
+            and isinstance(parent, Map)
+            and parent.get("confirmed") == "yes"
+        ):
             continue
         place = error.key if error.key is not None else node
         if error.key is not None:
             path.append(str(error.key))
-        faults.append(Fault(place.line, place.column, path_text(path), error.message, error.cure, error.severity))
+        if (place.line, place.column) in done:
+            continue
+        faults.append(
+            Fault(place.line, place.column, path_text(path), error.message, error.cure, error.severity)
+        )
     return sorted(faults)
 
 
 def _at(root: Node, path: list[str | int]) -> tuple[Node, Node | None]:
     parent: Node | None = None
-    node = root
+    node: Any = root
     for step in path:
-        parent, node = node, node[step]  # type: ignore[index,call-overload]
+        parent, node = node, node[step]
     return node, parent
 
 
