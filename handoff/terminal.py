@@ -1,4 +1,4 @@
-"""The assessment as plain lines for a terminal: readable without colour, at 80 columns."""
+"""Plain lines for a terminal: readable without colour, at 80 columns."""
 
 from __future__ import annotations
 
@@ -7,46 +7,9 @@ import textwrap
 from collections.abc import Iterator
 
 from handoff.assess import Assessment
-from handoff.plugin import Flag, Item, Part, System
+from handoff.plugin import Item
 
 WIDTH = 80
-_MARKS = {Flag.ACTION: "ACTION", Flag.REVIEW: "REVIEW", Flag.NONE: "", Flag.NOT_RECORDED: ""}
-
-
-def screen(assessment: Assessment) -> Iterator[str]:
-    """Yield the lines of one patient: what needs action first, then each part by system."""
-    clock = assessment.state.clock
-    yield f"as of {clock.day_and_time(assessment.now)} ({clock.zone}); policy: {assessment.policy.name}"
-    for failure in assessment.failures:
-        yield from _wrapped(f"NOT COMPUTED: {failure.title}: {failure.what}", "")
-    for fault in assessment.warnings:
-        yield from _wrapped(f"UNUSUAL: line {fault.line}: {fault.path}: {fault.what}", "")
-    for part in Part:
-        items = [item for item in assessment.items if item.part is part and not item.detail]
-        if items:
-            yield ""
-            yield part.value.upper()
-            yield from _part(items, assessment)
-    missing = assessment.not_recorded
-    if missing:
-        yield ""
-        yield f"NOT RECORDED ({len(missing)})"
-        yield from _wrapped("; ".join(item.label for item in missing), "  ")
-
-
-def _part(items: list[Item], assessment: Assessment) -> Iterator[str]:
-    for system in System:
-        of_system = [item for item in items if item.system is system and item.flag is not Flag.NOT_RECORDED]
-        if of_system:
-            yield f" {system.value}"
-        for item in of_system:
-            yield from _wrapped(_line(item, assessment), "  ")
-
-
-def _line(item: Item, assessment: Assessment) -> str:
-    mark = f"[{_MARKS[item.flag]}] " if _MARKS[item.flag] else ""
-    when = f" ({assessment.state.clock.time(item.as_of, assessment.now)})" if item.as_of else ""
-    return f"{mark}{item.label}: {item.shown}{when}"
 
 
 def working_lines(item: Item, assessment: Assessment) -> Iterator[str]:

@@ -46,8 +46,8 @@ def due(
         if read:
             say("")
             say(f"{group.title.upper()} ({len(of_group)})")
-        for line in of_group:
-            say(fitted(line.said(), sys.stdout.isatty()))
+        for one_due in of_group:
+            say(fitted(one_due.said(), sys.stdout.isatty()))
     ongoing = sum(one.made.made.ongoing for one in read)
     later = sum(one.made.made.later for one in read)
     if ongoing or later:

@@ -6,6 +6,7 @@ import sys
 import traceback
 from collections.abc import Callable
 from enum import IntEnum
+from io import TextIOWrapper
 from pathlib import Path
 from typing import TYPE_CHECKING, Annotated, NoReturn
 
@@ -131,6 +132,7 @@ def guarded(run: Callable[[], object]) -> None:
     debug = "--debug" in sys.argv
     if debug:
         sys.argv.remove("--debug")
+    _never_stop_on_a_letter()
     try:
         run()
     except KeyboardInterrupt:
@@ -145,3 +147,10 @@ def guarded(run: Callable[[], object]) -> None:
         else:
             complain("run it again with --debug and pass on what it prints; it holds no patient data")
         raise SystemExit(int(Exit.SETUP)) from None
+
+
+def _never_stop_on_a_letter() -> None:
+    """Let a letter that a console cannot show be printed by its number, in place of a crash."""
+    for stream in (sys.stdout, sys.stderr):
+        if isinstance(stream, TextIOWrapper):
+            stream.reconfigure(errors="backslashreplace")

@@ -6,6 +6,7 @@ import re
 from collections.abc import Callable, Iterable, Iterator, Sequence
 from concurrent.futures import ProcessPoolExecutor
 from dataclasses import dataclass
+from functools import lru_cache, partial
 from pathlib import Path
 from typing import Generic, TypeVar
 
@@ -94,21 +95,18 @@ def read_each(
         for path in paths:
             yield _one(path, request, setup)
         return
-    with ProcessPoolExecutor(min(jobs, len(paths)), initializer=_begin, initargs=(request,)) as pool:
-        yield from pool.map(_elsewhere, paths)
+    with ProcessPoolExecutor(min(jobs, len(paths))) as pool:
+        yield from pool.map(partial(_elsewhere, request), paths)
 
 
-_begun: list[tuple[Request[object], Setup]] = []
-"""What a reading process was started with."""
+@lru_cache(maxsize=1)
+def _setup(policy: Path | None, bundled_only: bool) -> Setup:
+    """Return what a reading process makes once for all its files."""
+    return make_setup(policy, bundled_only)
 
 
-def _begin(request: Request[object]) -> None:
-    _begun.append((request, make_setup(request.policy, request.bundled_only)))
-
-
-def _elsewhere(path: Path) -> Read[T] | Unread:
-    request, setup = _begun[-1]
-    return _one(path, request, setup)  # type: ignore[return-value]  # the process was begun with this request
+def _elsewhere(request: Request[T], path: Path) -> Read[T] | Unread:
+    return _one(path, request, _setup(request.policy, request.bundled_only))
 
 
 def _one(path: Path, request: Request[T], setup: Setup) -> Read[T] | Unread:

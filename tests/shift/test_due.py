@@ -21,7 +21,7 @@ HOUR = timedelta(hours=1)
 def listed(**given: object) -> list[tuple[Group, str]]:
     def compute(case: object) -> Findings:
         offset = given.pop("minutes", None)
-        first = None if offset is None else case.now + timedelta(minutes=offset)  # type: ignore[attr-defined]
+        first = None if offset is None else case.now + timedelta(minutes=int(str(offset)))  # type: ignore[attr-defined]
         return Findings(actions=(action("one.a", first_due=first, **given),))
 
     made = due_list(assessment_of(plugin_of("one", compute)))
