@@ -79,8 +79,10 @@ def _inside(path: Path) -> Path:
 def _sync_folder(folder: Path) -> None:
     if os.name == "nt":
         return
-    handle = os.open(folder, os.O_RDONLY)
-    try:
-        os.fsync(handle)
-    finally:
-        os.close(handle)
+    # Some network folders cannot be synced; the file itself was, and is in its place by now.
+    with contextlib.suppress(OSError):
+        handle = os.open(folder, os.O_RDONLY)
+        try:
+            os.fsync(handle)
+        finally:
+            os.close(handle)

@@ -4,18 +4,24 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from decimal import ROUND_HALF_UP, Decimal
+from decimal import ROUND_HALF_UP, Context, Decimal
+
+_ALL_PLACES = Context(prec=400, rounding=ROUND_HALF_UP)
+"""Enough digits for every float, so that rounding itself never fails."""
 
 
 def number(value: float, places: int = 0) -> str:
     """Return ``value`` rounded half up to ``places``, without trailing zeros, commas from 1,000."""
-    if not math.isfinite(value):
-        raise ValueError("only a finite number can be printed")
-    rounded = Decimal(repr(float(value))).quantize(Decimal(1).scaleb(-places), rounding=ROUND_HALF_UP)
-    text = f"{rounded:,f}"
+    text = f"{_rounded(value, places):,f}"
     if "." in text:
         text = text.rstrip("0").rstrip(".")
     return "0" if text in ("-0", "") else text
+
+
+def _rounded(value: float, places: int) -> Decimal:
+    if not math.isfinite(value):
+        raise ValueError("only a finite number can be printed")
+    return Decimal(repr(float(value))).quantize(Decimal(1).scaleb(-places), context=_ALL_PLACES)
 
 
 def with_unit(value: float, unit: str, places: int = 0) -> str:
@@ -25,7 +31,7 @@ def with_unit(value: float, unit: str, places: int = 0) -> str:
 
 def hours(value: float) -> str:
     """Return hours as hours and minutes: ``6 h 10 min``; a negative value keeps its sign."""
-    minutes = round(abs(value) * 60)
+    minutes = int(_rounded(abs(value) * 60, 0))
     whole, rest = divmod(minutes, 60)
     said = f"{whole} h {rest} min" if rest and whole else f"{rest} min" if rest else f"{whole} h"
     return f"-{said}" if value < 0 and minutes else said
