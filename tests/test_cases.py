@@ -45,7 +45,7 @@ def assessment_of(case: dict[str, Any]) -> Assessment:
     return assess_loaded(open_text(text, "case", setup, str(case["at"])), setup)
 
 
-@pytest.mark.parametrize(("plugin", "case"), all_cases())
+@pytest.mark.parametrize(("plugin", "case"), list(all_cases()))
 def test_a_worked_example_comes_out_as_its_source_prints_it(plugin: Plugin, case: dict[str, Any]) -> None:
     assert case["kind"] in KINDS
     if case["kind"] == "published":

@@ -13,7 +13,7 @@ from handoff.document.schedule import Shift, is_overdue
 from handoff.document.sections import sentence, shown
 from handoff.plugin import Action, Flag, Item, Urgency, entries, plural, words
 
-MOST_ACTIONS, MOST_TASKS, MOST_DUE = 6, 5, 5
+MOST_ACTIONS, MOST_TASKS, MOST_DUE = 5, 5, 4
 """Lines of each table of page one; what is left is named below it and stands in full further on."""
 
 ENOUGH_LETTERS = 110

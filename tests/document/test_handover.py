@@ -35,8 +35,8 @@ def test_systems_are_second_level_headings_in_the_order_of_the_contract(handover
 
 def test_page_one_comes_before_the_situation(handover: bytes) -> None:
     page = text_of(handover)
-    order = ["Could not be computed", "Tomas Ferrandel", "sick, may worsen", "NEEDS ACTION", "DUE OR OVERDUE"]
-    order += ["WHAT TO DO IF", "NOT RECORDED AND NEEDED FIRST", "5 entries are not recorded", "Situation"]
+    order = ["Could not be computed", "Tomas Ferrandel", "sick, may worsen", "NEEDS ACTION", "WHAT TO DO IF"]
+    order += ["NOT RECORDED AND NEEDED FIRST", "5 entries are not recorded", "DUE OR OVERDUE", "Situation"]
     places = [page.index(words) for words in order]
     assert places == sorted(places)
 
@@ -68,9 +68,8 @@ def test_an_overdue_action_stands_under_due_with_its_reference(handover: bytes) 
 
 
 def test_what_does_not_fit_page_one_is_named_there(handover: bytes) -> None:
-    assert "Also due for review: Oxygen saturation by pulse oximeter; Given since the burn" in text_of(
-        handover
-    )
+    (line,) = [line for line in text_of(handover).splitlines() if line.startswith("Also due for review: ")]
+    assert line.endswith("Oxygen saturation by pulse oximeter; Given since the burn")
 
 
 def test_a_long_finding_is_cut_at_a_clause_on_page_one_and_whole_further_on() -> None:
