@@ -11,7 +11,6 @@ from handoff.plugin import (
     Case,
     Flag,
     Item,
-    Map,
     Node,
     Part,
     Reading,
@@ -29,14 +28,15 @@ VITALS = (
     ("pulse", "Pulse", System.CIRCULATION),
     ("bp", "Blood pressure", System.CIRCULATION),
     ("map", "Mean arterial pressure, measured", System.CIRCULATION),
-    ("consciousness", "Consciousness", System.DISABILITY),
-    ("gcs", "Coma scale", System.DISABILITY),
     ("pupils", "Pupils", System.DISABILITY),
-    ("temp", "Temperature", System.EXPOSURE),
-    ("room", "Room temperature", System.EXPOSURE),
 )
-ASKED = ("resp", "spo2", "pulse", "bp", "consciousness", "temp")
-"""Vital signs whose absence is said; the others are shown where they were charted."""
+ASKED = ("resp", "spo2", "pulse", "bp")
+"""Vital signs whose absence is said; the others are shown where they were charted.
+
+Consciousness and temperature have plugins of their own (``early_warning``, ``infection``)."""
+
+FULL_ROW = (*ASKED, "consciousness", "temp")
+"""What the check of vital signs looks at."""
 
 GASES = ("ph", "pao2", "paco2", "base_excess", "bicarbonate")
 TREND_LENGTH = 4
@@ -54,13 +54,6 @@ def vital_items(case: Case) -> tuple[Item, ...]:
 
 
 def _said(node: Node) -> str:
-    if isinstance(node, Map) and "value" not in node:
-        parts = [(key, words(node.get(key))) for key in ("eye", "verbal", "motor")]
-        said = ", ".join(f"{key} {value or 'not recorded'}" for key, value in parts)
-        points = [value for _, value in parts]
-        if all(value.isdigit() for value in points):
-            return f"{said}, sum {sum(int(value) for value in points)}"
-        return f"{said}, no sum"
     said = words(node)
     site = words(child(node, "site"))
     return f"{said} ({site})" if site else said
@@ -142,7 +135,7 @@ def _results(case: Case) -> list[Item]:
 def vital_actions(case: Case) -> tuple[Action, ...]:
     """Return the check of vital signs, due from the last full row by the check interval."""
     interval = timedelta(minutes=case.parameters.number("vital.check_interval"))
-    times = [readings[-1].at for name in ASKED if (readings := case.state.series(name))]
+    times = [readings[-1].at for name in FULL_ROW if (readings := case.state.series(name))]
     first = min(times) + interval if times else case.now
     return (
         Action(
