@@ -23,6 +23,9 @@ STRONG, QUIET = "bold", "dim"
 MARK = "bold reverse"
 """How a flag looks beside the word that says it."""
 
+NAME_WIDTH, LABEL_WIDTH, REFERENCE_WIDTH, TIME_WIDTH = 13, 26, 4, 6
+"""Letters of a column."""
+
 
 def width_for(console: Console) -> int:
     """Return the width to print at: the terminal's own, or that of a page for a file or a program."""
@@ -69,7 +72,7 @@ def _who(assessment: Assessment, console: Console) -> None:
         ("resuscitation", band.resuscitation),
         ("isolation", band.isolation),
     ]
-    _grid(console, [(name, text, "") for name, text in facts], (13, 0))
+    _grid(console, [(name, text, "") for name, text in facts], (NAME_WIDTH, 0))
 
 
 def _page(page: PageOne, console: Console) -> None:
@@ -80,14 +83,14 @@ def _page(page: PageOne, console: Console) -> None:
     _more(console, "also flagged ACTION", page.more_actions)
     if page.tasks:
         _head(console, "do now (reference in the care plan)")
-        _grid(console, [(task.ref, task.text, "") for task in page.tasks], (4, 0))
+        _grid(console, [(task.ref, task.text, "") for task in page.tasks], (REFERENCE_WIDTH, 0))
     _more(console, "also to do now", page.more_tasks)
     if page.due:
         _head(console, "due or overdue")
         _rows(console, page.due)
     _more(console, "also due for review", page.more_due)
     _head(console, "what to do if")
-    _grid(console, [(line.event, line.answer, "") for line in page.if_then], (26, 0))
+    _grid(console, [(line.event, line.answer, "") for line in page.if_then], (LABEL_WIDTH, 0))
     if not page.if_then:
         _line(console, "not recorded by the nurse: agree it at the bedside")
     _head(console, "not recorded and needed first")
@@ -107,13 +110,13 @@ def _part(part: Part, items: Sequence[Item], assessment: Assessment, console: Co
             _grid(
                 console,
                 [(f"{one.what}{f' [{one.flag}]' if one.flag else ''}", one.value, one.time) for one in rows],
-                (26, 6),
+                (LABEL_WIDTH, TIME_WIDTH),
             )
 
 
 def _rows(console: Console, rows: Iterable[KeyRow]) -> None:
     found = [(one.what, one.value + (f" - {one.why}" if one.why else ""), one.time) for one in rows]
-    _grid(console, found, (26, 6))
+    _grid(console, found, (LABEL_WIDTH, TIME_WIDTH))
 
 
 def _grid(console: Console, rows: Sequence[tuple[str, str, str]], widths: tuple[int, int]) -> None:

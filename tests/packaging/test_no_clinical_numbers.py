@@ -42,13 +42,6 @@ EXCEPTIONS: dict[str, dict[float, str]] = {
     "handoff/document/finish.py": {1980: "the oldest year that a zip file knows"},
     "handoff/document/printable.py": {0xFFFE: "code point", 0xFDD0: "code point", 0xFDEF: "code point"},
     "handoff/document/timeline.py": {3: "place in an order"},
-    "handoff/shift/alike.py": {4: "letters of a name", 0.85: "likeness of names"},
-    "handoff/shift/screen.py": {
-        4: "letters of a column",
-        6: "letters of a column",
-        13: "letters of a column",
-        26: "letters of a column",
-    },
     "handoff/start.py": {3: "version of Python", 11: "version of Python"},
     "handoff/state/keywords.py": {0.6: "likeness of names", 3: "parts of a number"},
     "handoff/state/moments.py": {14: "hours between the ends of the time zones"},
