@@ -55,6 +55,12 @@ class Lines:
         return self._starts[line - 1] if line <= len(self._starts) else None
 
 
+def line_of(text: str, line: int) -> str:
+    """Return the text of ``line``, counted from 1."""
+    lines = Lines(text)
+    return text[lines.start(line) : lines.start(line + 1)]
+
+
 def refused_characters(text: str) -> list[Fault]:
     """Return what may stand nowhere in a file, the first of each line; a tab may stand in a comment."""
     if _REFUSED.search(text) is None:

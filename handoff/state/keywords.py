@@ -129,7 +129,7 @@ def _name(validator: Any, rule: bool, instance: Any, schema: Schema) -> Found:
     if isinstance(instance, Text) and instance.plain and instance.lower() in _NO_NAMES:
         yield Finding(
             f"'{instance}' stands where a name, a place or a number is due",
-            f'leave it empty if it is not recorded; if it is the name, put it in quotes: "{instance}"',
+            f'leave it empty if it is not recorded, or put it in quotes if that is the name: "{instance}"',
         )
 
 

@@ -2,8 +2,11 @@
 
 from __future__ import annotations
 
+import re
+
 import yaml
 
+from handoff.state.characters import SPACES, line_of
 from handoff.state.faults import Fault
 
 _CURES = (
@@ -38,14 +41,20 @@ _CURES = (
     ("exceeded max", "a patient state needs less nesting; check the brackets"),
 )
 _FROM_ITS_BEGINNING = ("end of stream", "could not find expected ':'", "unexpected document indicator")
+_NO_BREAK = re.compile(f"[{SPACES}]")
 
 
-def parser_fault(error: yaml.YAMLError) -> Fault:
-    """Return the fault that stopped the parser; what was opened and not closed is named where it opens."""
+def parser_fault(error: yaml.YAMLError, text: str) -> Fault:
+    """Return the fault that stopped the parser on ``text``; what was left open is named where it opens."""
     problem = str(getattr(error, "problem", None) or "not readable as YAML")
-    mark = getattr(error, "problem_mark", None)
+    mark, opened = getattr(error, "problem_mark", None), getattr(error, "context_mark", None)
     if mark is None or any(known in problem for known in _FROM_ITS_BEGINNING):
-        mark = getattr(error, "context_mark", None) or mark
+        mark = opened or mark
+    elif opened is not None and "expected ','" in problem and mark.line > opened.line:
+        problem, mark = f"{problem} up to line {mark.line + 1}", opened
     line, column = (mark.line + 1, mark.column + 1) if mark is not None else (1, 1)
     cure = next((cure for known, cure in _CURES if known in problem), "check the spelling of this line")
+    odd = _NO_BREAK.search(line_of(text, line))
+    if odd:
+        column, cure = odd.start() + 1, "type an ordinary space where a no-break space stands"
     return Fault(line, column, "", f"the line cannot be read ({problem})", cure)

@@ -144,7 +144,7 @@ class _Reading:
                 else:
                     self._take(event)
         except yaml.YAMLError as error:
-            self._parser_stopped(parser_fault(error))
+            self._parser_stopped(parser_fault(error, self.text))
         except _Stop:
             pass
         except RecursionError:
@@ -224,7 +224,7 @@ class _Reading:
         elif start.line == end.line and self.text[end.index : end.index + 1] not in " ," and text.isascii():
             refusal = None
         else:
-            refusal = plain_refused(self.text, event)
+            refusal = plain_refused(self.text, event, bool(self._open) and self._open[-1].flow)
         if refusal is not None:
             self._refuse(event, refusal, end.line)
         if not self._open:

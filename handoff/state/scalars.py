@@ -30,19 +30,27 @@ def _marks(event: yaml.ScalarEvent) -> tuple[Any, Any]:
     return event.start_mark, event.end_mark
 
 
-def plain_refused(text: str, event: yaml.ScalarEvent) -> Refusal | None:
-    """Return what is wrong with a value written without quotes."""
+def plain_refused(text: str, event: yaml.ScalarEvent, in_brackets: bool) -> Refusal | None:
+    """Return what is wrong with a value written without quotes, alone or inside brackets."""
     first, last = _marks(event)
     end = last.index
     if last.line != first.line:
         return Refusal(
             "the text runs on over the next line",
-            "check the indentation below it, or put a long text after '|' on lines of its own",
+            "check that the bracket is closed, or put a long text in quotes"
+            if in_brackets
+            else "check the indentation below it, or put a long text after '|' on lines of its own",
         )
     if text.startswith((" #", ", #"), end):
-        after = "a comma" if text[end] == "," else "a value" if event.value else "nothing"
+        place = (
+            "after a comma"
+            if text[end] == ","
+            else "after a value"
+            if event.value
+            else "where a value is due"
+        )
         return Refusal(
-            f"one space and '#' after {after}: the rest would be lost as a comment",
+            f"one space and '#' {place}: the rest would be lost as a comment",
             "put the whole text in quotes, or put two spaces before a comment",
         )
     if not event.value.isascii() and (odd := _ODD_SPACE.search(event.value)):

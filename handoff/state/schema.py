@@ -194,7 +194,9 @@ def editor_schema(schema: Any) -> Any:
             )
         elif not key.startswith("x-"):
             found[key] = editor_schema(value)
-    has_pattern = "x-instant" in schema or "x-date" in schema or schema.get("x-quantity", "fraction") != "fraction"
+    has_pattern = (
+        "x-instant" in schema or "x-date" in schema or schema.get("x-quantity", "fraction") != "fraction"
+    )
     if found.get("type") == "string" and not has_pattern:
         found["type"] = ["string", "number"]
     if "enum" in found:
