@@ -7,6 +7,7 @@ entry is refused by line.
 
 from __future__ import annotations
 
+import codecs
 import re
 from dataclasses import dataclass, field
 from pathlib import Path
@@ -54,22 +55,28 @@ def read_text(path: Path) -> str:
             f"{path} cannot be read ({error.strerror}); close it elsewhere and try again"
         ) from None
     if max(size, len(data)) > MAX_BYTES:
-        said = f"{size // 1_000_000} MB" if size > MAX_BYTES else "too large"
+        said = f"{-(-size // 1_000_000)} MB" if size > MAX_BYTES else "too large"
         raise NotAStateFile(f"{path} is {said}; a patient-state file is at most {MAX_BYTES // 1_000_000} MB")
     if data.startswith((b"PK\x03\x04", b"%PDF", b"\xd0\xcf\x11\xe0", b"{\\rtf")):
         raise NotAStateFile(
             f"{path} is a document, not a patient-state file; name the .yaml file it was made from"
         )
+    return _decoded(data.removeprefix(codecs.BOM_UTF8), path)
+
+
+def _decoded(data: bytes, path: Path) -> str:
     try:
-        if b"\0" in data:
-            raise UnicodeDecodeError("utf-8", data, data.index(b"\0"), len(data), "a zero byte")
-        return data.decode("utf-8-sig")
+        text, wrong = data.decode("utf-8"), data.find(b"\0")
     except UnicodeDecodeError as error:
-        before = data[: error.start]
-        line, column = before.count(b"\n") + 1, error.start - before.rfind(b"\n")
-        raise NotAStateFile(
-            f"{path}:{line}:{column}: not UTF-8 text; save it again as plain text with the encoding UTF-8"
-        ) from None
+        text, wrong = "", error.start
+    if wrong < 0:
+        return text
+    before = data[:wrong]
+    line = before.count(b"\n") + 1
+    column = len(before[before.rfind(b"\n") + 1 :].decode("utf-8", "replace")) + 1
+    raise NotAStateFile(
+        f"{path}:{line}:{column}: not UTF-8 text; save it again as plain text with the encoding UTF-8"
+    )
 
 
 def read_nodes(text: str, file: str) -> tuple[Map, list[Fault]]:
