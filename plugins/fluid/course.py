@@ -157,3 +157,11 @@ def _line(who: str, bands: list[dict[str, object]]) -> str:
     if "from_pct" in band:
         return f"{who}, from {band['from_pct']} %"
     return f"{who}, above {band['above_pct']} %"
+
+
+def burn_moments(course: Course) -> tuple[datetime, ...]:
+    """Return the moments that the burn may have happened at: none, one, or the earliest and the latest."""
+    if course.burn is None:
+        return ()
+    both = (course.burn.earliest, course.burn.latest)
+    return both[:1] if course.burn.certain else both

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from handoff.plugin import Flag, Input, Item, Working, child, entries, number_text, words
+from handoff.plugin import Flag, Input, Item, Working, number_text
 
 from . import formula
 from .course import COMFORT, Course
@@ -11,12 +11,16 @@ from .say import absent, figure, ml, ml_h, once, span, unflagged, why_not
 
 COUNTED = "rate x hours to the stop, the next rate on the line or when last seen running; single volumes"
 URINE_LEADS = "Urine and perfusion come first; this difference alone changes no rate."
-OTHERS = ("colloid", "blood product", "maintenance", "drug carrier", "flush", "feed", "oral", "other")
 
 
 def items(course: Course) -> tuple[Item, ...]:
     """Return the items of what was given."""
-    return (_given(course), _not_confirmed(course), _against(course), _catch_up(course), *_others(course))
+    return (_given(course), _not_confirmed(course), _against(course), _catch_up(course))
+
+
+def charted(course: Course) -> bool:
+    """Return whether anything that went in is recorded: blank is not zero."""
+    return bool(course.given.portions or course.given.running)
 
 
 def _portions(course: Course, confirmed: bool) -> tuple[Portion, ...]:
@@ -25,7 +29,8 @@ def _portions(course: Course, confirmed: bool) -> tuple[Portion, ...]:
     )
 
 
-def _input(course: Course, portion: Portion) -> Input:
+def input_of(course: Course, portion: Portion) -> Input:
+    """Return a portion as the input of a sum, with its line."""
     where = "before arrival" if portion.before_arrival else portion.name or portion.fluid or portion.purpose
     if portion.end > portion.start:
         when = f"{course.time(portion.start)} to {course.time(portion.end)}"
@@ -34,14 +39,15 @@ def _input(course: Course, portion: Portion) -> Input:
     return Input(f"{where}, {when}", ml(portion.ml), portion.line)
 
 
-def _sum(portions: tuple[Portion, ...], total: float) -> str:
+def sum_of(portions: tuple[Portion, ...], total: float) -> str:
+    """Return the sum of the portions as printed."""
     parts = [number_text(portion.ml, 1) for portion in portions]
     return f"{' + '.join(parts) or '0'} = {ml(total)}"
 
 
 def _given(course: Course) -> Item:
     label = "Resuscitation fluid given since the burn, confirmed"
-    if not course.given.portions and not course.given.running:
+    if not charted(course):
         return absent("given", label)
     confirmed = _portions(course, confirmed=True)
     total = course.given.total_ml(course.counted)
@@ -61,8 +67,8 @@ def _given(course: Course) -> Item:
         as_of=course.given.seen(course.counted),
         working=Working(
             formula=COUNTED,
-            sum=_sum(confirmed, total),
-            inputs=tuple(_input(course, portion) for portion in confirmed),
+            sum=sum_of(confirmed, total),
+            inputs=tuple(input_of(course, portion) for portion in confirmed),
             rule=", ".join(sorted(course.counted)),
         ),
         sources=(course.source("line.seen_running"),),
@@ -72,7 +78,7 @@ def _given(course: Course) -> Item:
 
 def _not_confirmed(course: Course) -> Item:
     label = "Resuscitation fluid not confirmed"
-    if not course.given.portions and not course.given.running:
+    if not charted(course):
         return absent("not_confirmed", label)
     portions = _portions(course, confirmed=False)
     total = course.given.total_ml(course.counted, confirmed=False)
@@ -92,8 +98,8 @@ def _not_confirmed(course: Course) -> Item:
         flag=course.flagged(Flag.REVIEW) if total else Flag.NONE,
         working=Working(
             formula="rate x hours since the line was last seen running",
-            sum=_sum(portions, total),
-            inputs=tuple(_input(course, portion) for portion in portions),
+            sum=sum_of(portions, total),
+            inputs=tuple(input_of(course, portion) for portion in portions),
         ),
         sources=(course.source("line.seen_running"),),
         cautions=("Not counted as given: see the line running and chart it.",) if total else (),
@@ -117,6 +123,8 @@ def _against(course: Course) -> Item:
         return unflagged("against_plan", label, COMFORT)
     if course.plan is None and course.no_plan:
         return unflagged("against_plan", label, course.no_plan)
+    if not charted(course) and course.plan is not None:
+        return unflagged("against_plan", label, "nothing given is recorded: blank is not zero")
     bounds = _bounds(course)
     if bounds is None:
         missing = list(course.missing())
@@ -170,7 +178,7 @@ def _catch_up(course: Course) -> Item:
     plan = course.plan
     if course.comfort:
         return unflagged(key, label, COMFORT, detail=True)
-    if plan is None:
+    if plan is None or not plan.by_order:
         if course.no_plan:
             return unflagged(key, label, course.no_plan, detail=True)
         missing = course.missing()
@@ -186,10 +194,11 @@ def _catch_up(course: Course) -> Item:
         if plan.problem:
             return absent(key, label, why_not(plan.problem.missing) or plan.problem.shown, detail=True)
         return unflagged(key, label, "none: a rate is ordered", detail=True)
-    if course.burn is None:
-        return absent(key, label, why_not(course.missing()), detail=True)
     if plan.volume.schedule.ends_h[0] != hours_to:
         return unflagged(key, label, "none: this formula has no first 8 h half", detail=True)
+    if course.burn is None or not charted(course):
+        lacking = [*course.missing(), *([] if charted(course) else ["what was given"])]
+        return absent(key, label, why_not(lacking), detail=True)
     return _catch_up_figure(course, hours_to)
 
 
@@ -209,7 +218,8 @@ def _catch_up_figure(course: Course, hours_to: float) -> Item:
         return unflagged(
             key,
             label,
-            f"none: {end} h have passed and no published rule follows; {said}, with what was given up to now",
+            f"none: {end} h {'have' if min(gone) >= hours_to else 'may have'} passed and no published rule "
+            f"follows; {said}, with what was given up to now",
             sources=sources,
             detail=True,
         )
@@ -245,48 +255,3 @@ def _catch_up_figure(course: Course, hours_to: float) -> Item:
         cautions=tuple(dict.fromkeys((*cautions, *course.cautions))),
         detail=True,
     )
-
-
-def _others(course: Course) -> list[Item]:
-    """Everything else that went in, each purpose apart."""
-    found = []
-    for purpose in OTHERS:
-        if purpose in course.counted:
-            continue
-        portions = [p for p in course.given.portions if p.purpose == purpose]
-        if not portions:
-            continue
-        total = course.given.total_ml((purpose,))
-        open_ml = course.given.total_ml((purpose,), confirmed=False)
-        fluids = ", ".join(dict.fromkeys(p.fluid for p in portions if p.fluid))
-        shown = ml(total) + (f" ({fluids})" if fluids else "")
-        if open_ml:
-            shown += f"; {ml(open_ml)} more not confirmed"
-        shown += _reactions(course, purpose)
-        found.append(
-            figure(
-                f"given_{purpose.replace(' ', '_')}",
-                f"{purpose.capitalize()} given since the burn, not set against the plan",
-                value=total,
-                unit="mL",
-                shown=shown,
-                as_of=course.given.seen((purpose,)),
-                working=Working(
-                    formula="rate x hours confirmed; single volumes",
-                    sum=_sum(tuple(p for p in portions if p.confirmed and p.ml), total),
-                    inputs=tuple(_input(course, p) for p in portions if p.confirmed and p.ml),
-                ),
-                sources=(course.source("line.seen_running"),),
-                detail=purpose in ("flush", "other"),
-            )
-        )
-    return found
-
-
-def _reactions(course: Course, purpose: str) -> str:
-    if purpose != "blood product":
-        return ""
-
-    rows = [row for row in entries(child(course.case.block, "given")) if words(row.get("purpose")) == purpose]
-    said = [words(row.get("reaction")) or "reaction not recorded" for row in rows]
-    return f"; reaction: {', '.join(dict.fromkeys(said))}" if said else ""

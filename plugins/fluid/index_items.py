@@ -123,7 +123,7 @@ def _projected(course: Course) -> Item:
         return nothing or absent(key, label)
     value, rate, gone = found
     over = course.now >= end
-    shown = f"{ml(value)}; the first 24 h have passed" if over else f"{ml(value)} if {ml_h(rate)} runs on"
+    shown = f"{ml(value)}; the first 24 h have passed" if over else _if_it_runs(value, rate)
     crossings = [] if over else _crossings(course, gone, rate, end)
     flag = Flag.REVIEW if any(crossed for _, crossed in crossings) else Flag.NONE
     said = "; ".join(text for text, _ in crossings)
@@ -147,6 +147,10 @@ def _projected(course: Course) -> Item:
             *(("The time of the burn is uncertain: the earliest is used.",) if not _certain(course) else ()),
         ),
     )
+
+
+def _if_it_runs(value: float, rate: float) -> str:
+    return f"{ml(value)} if {ml_h(rate)} runs on" if rate else f"{ml(value)}: no resuscitation line runs now"
 
 
 def _certain(course: Course) -> bool:

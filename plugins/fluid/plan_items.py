@@ -5,7 +5,7 @@ from __future__ import annotations
 from handoff.plugin import Flag, Input, Item, Source, Working, number_text
 
 from . import formula
-from .course import COMFORT, Course
+from .course import COMFORT, Course, burn_moments
 from .plan import Plan
 from .rules import NoVolume, Volume
 from .say import absent, figure, inputs_of, ml, ml_h, once, span, unflagged, why_not
@@ -50,7 +50,9 @@ def no_figure(course: Course, key: str, label: str, burn_needed: bool) -> Item |
     if course.comfort:
         return unflagged(key, label, COMFORT)
     if course.plan is None and course.no_plan:
-        return unflagged(key, label, course.no_plan, sources=_start_sources(course))
+        return unflagged(
+            key, label, course.no_plan, sources=_start_sources(course), cautions=_small_burn(course)
+        )
     problem = course.plan.problem if course.plan else None
     if problem is not None and not (course.plan and course.plan.rates):
         shown = why_not(problem.missing) if problem.missing else f"not computed: {problem.shown}"
@@ -58,9 +60,21 @@ def no_figure(course: Course, key: str, label: str, burn_needed: bool) -> Item |
     missing = course.missing() if burn_needed else course.missing()[0 if course.burn else 1 :]
     if missing and (course.plan is None or course.plan.volume is not None):
         return absent(key, label, why_not(missing))
+    if (course.plan is None or not course.plan.by_order) and burn_needed and not course.published:
+        return absent(key, label, f"not computed: {_formula_said(course)}")
     if course.plan is None and not course.published:
         return absent(key, label, f"not computed: {_formula_said(course)}")
     return None
+
+
+def _small_burn(course: Course) -> tuple[str, ...]:
+    """What a small burned area does not show."""
+    found = []
+    if course.person.is_electrical:
+        found.append("Electrical injury: the skin does not show how much is burned below it.")
+    if course.person.inhalation:
+        found.append("Inhalation injury: some rules start fluid at a smaller burn.")
+    return tuple(found)
 
 
 def _formula_said(course: Course) -> str:
@@ -168,16 +182,21 @@ def _beside(course: Course) -> Item:
     made = course.formula
     if isinstance(made, NoVolume):
         if made.between:
-            return unflagged(key, label, made.shown, sources=(course.source(f"starting_rate.{made.rule}"),))
+            return unflagged(
+                key,
+                label,
+                f"{made.shown}{_between_said(course)}",
+                sources=(course.source(f"starting_rate.{made.rule}"),),
+            )
         return unflagged(key, label, why_not(made.missing), detail=True)
     total = made.due_ml(course.period_h) if made.total_ml is not None else None
-    rate = made.rate_at(course.hours) if course.hours is not None else None
+    rates = [made.rate_at(course.case.hours_between(one, course.now)) for one in burn_moments(course)]
     parts = [f"{ml(total)} in {number_text(course.period_h)} h"] if total is not None else []
-    parts += [f"{ml_h(rate)} now"] if rate else []
+    parts += [f"{span(ml_h(min(rates)), ml_h(max(rates)))} now"] if any(rates) else []
     return figure(
         key,
         label,
-        value=total if total is not None else rate,
+        value=total if total is not None else rates[0] if rates else None,
         unit="mL" if total is not None else "mL/h",
         shown=f"{made.said}: {', '.join(parts)} (formula estimate){_difference(course, total)}",
         working=Working(
@@ -186,6 +205,18 @@ def _beside(course: Course) -> Item:
         sources=once(made.sources),
         cautions=tuple(dict.fromkeys((*course.cautions, *made.cautions, *weight_caution(course)))),
     )
+
+
+def _between_said(course: Course) -> str:
+    """The lowest and highest figure of the bands that the patient falls between."""
+    bands = course.case.parameters[f"starting_rate.{course.formula.rule}"].value
+    coefficients = [float(band["crystalloid"]) for band in bands if set(band) & {"crystalloid"}]
+    weight, pct = course.person.weight, course.person.pct
+    if weight is None or pct is None or not coefficients:
+        return ""
+    ends = (min(coefficients), max(coefficients))
+    low, high = (formula.crystalloid_24h_ml(weight.kg, pct, one) for one in ends)
+    return f"; {span(ml(low), ml(high))} in {number_text(course.period_h)} h, no single figure"
 
 
 def _difference(course: Course, total: float | None) -> str:

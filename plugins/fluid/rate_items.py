@@ -6,7 +6,7 @@ from datetime import datetime
 
 from handoff.plugin import Flag, Item, Source, Working, number_text
 
-from .course import Course
+from .course import Course, burn_moments
 from .plan import Plan
 from .plan_items import inputs, no_figure, range_said, weight_caution
 from .say import figure, ml, ml_h, once, span, unflagged
@@ -27,9 +27,9 @@ def _rate_now(course: Course) -> Item:
     if nothing is not None:
         return nothing
     plan = course.plan
-    if plan is None:
+    if plan is None or not plan.by_order:
         return _rate_range(course, key, label)
-    moments = _burn_moments(course)
+    moments = burn_moments(course)
     if not moments:  # a rate that was ordered needs no time of the burn
         moments = (course.now,)
     rates = [plan.rate_ml_h(moment, course.now) for moment in moments]
@@ -37,18 +37,23 @@ def _rate_now(course: Course) -> Item:
     if not known:
         period = number_text(course.period_h)
         return unflagged(
-            key, label, f"the formula ends at {period} h; no rate by it now", sources=_plan_sources(plan)
+            key,
+            label,
+            f"the formula ends at {period} h; no rate by it now",
+            sources=_plan_sources(course, plan),
         )
     is_one = len(known) == len(rates) and min(known) == max(known)
     said = ml_h(known[0]) if is_one else span(ml_h(min(known)), ml_h(max(known)))
     if len(known) < len(rates):
         said = f"{span(ml_h(min(known)), ml_h(max(known)))}, or none: the plan may have ended"
+    ordered = any(rate.at <= course.now for rate in plan.rates)
+    estimate = "" if ordered else "formula estimate; "
     return figure(
         key,
-        label,
+        "Planned rate now, as ordered" if ordered else label,
         value=known[0] if is_one else None,
         unit="mL/h",
-        shown=f"{said}{_until(course, plan)} (formula estimate; {plan.said})",
+        shown=f"{said}{_until(course, plan)} ({estimate}{plan.said})",
         as_of=course.now,
         working=Working(
             formula="volume of the period / hours of the period, counted from the burn; an ordered rate replaces it",
@@ -56,13 +61,14 @@ def _rate_now(course: Course) -> Item:
             inputs=inputs(course, with_burn=True),
             rule=plan.said,
         ),
-        sources=_plan_sources(plan),
+        sources=_plan_sources(course, plan),
         cautions=tuple(dict.fromkeys((*course.cautions, *_uncertain(course), *weight_caution(course)))),
     )
 
 
-def _plan_sources(plan: Plan) -> tuple[Source, ...]:
-    return once(plan.volume.sources) if plan.volume else ()
+def _plan_sources(course: Course, plan: Plan) -> tuple[Source, ...]:
+    volumes = plan.volume.sources if plan.volume else ()
+    return once((*volumes, *([course.source("order.in_force")] if plan.by_order else [])))
 
 
 def _rate_sum(course: Course, plan: Plan, said: str) -> str:
@@ -80,19 +86,12 @@ def _rate_sum(course: Course, plan: Plan, said: str) -> str:
             f"{ml(part)} / {number_text(end - start)} h = {rate}"
         )
         start = end
-    hours = [number_text(_since(course, moment), 2) for moment in _burn_moments(course)]
+    hours = [number_text(_since(course, moment), 2) for moment in burn_moments(course)]
     return f"{'; '.join(periods)}; now {' to '.join(dict.fromkeys(hours))} h since the burn: {said}"
 
 
 def _since(course: Course, burn: datetime) -> float:
     return course.case.hours_between(burn, course.now)
-
-
-def _burn_moments(course: Course) -> tuple[datetime, ...]:
-    if course.burn is None:
-        return ()
-    both = (course.burn.earliest, course.burn.latest)
-    return both[:1] if course.burn.certain else both
 
 
 def _uncertain(course: Course) -> tuple[str, ...]:
@@ -114,7 +113,7 @@ def _until(course: Course, plan: Plan) -> str:
 
 
 def _rate_range(course: Course, key: str, label: str) -> Item:
-    moments = _burn_moments(course)
+    moments = burn_moments(course)
     rates = [
         volume.rate_at(_since(course, moment))
         for volume in (course.published[0], course.published[-1])
@@ -128,7 +127,7 @@ def _rate_range(course: Course, key: str, label: str) -> Item:
         key,
         label,
         unit="mL/h",
-        shown=f"no order recorded; {said} by the published coefficients ({range_said(course)})",
+        shown=f"no order recorded; {said} by the published coefficients ({range_said(course)}){_policy_said(course)}",
         as_of=course.now,
         flag=Flag.REVIEW,
         rank=RANK_NO_ORDER,
@@ -143,12 +142,20 @@ def _rate_range(course: Course, key: str, label: str) -> Item:
     )
 
 
+def _policy_said(course: Course) -> str:
+    plan = course.plan
+    if plan is None or plan.volume is None:
+        return ""
+    rates = [plan.volume.rate_at(_since(course, moment)) for moment in burn_moments(course)]
+    return f"; {plan.said} would start from {span(ml_h(min(rates)), ml_h(max(rates)))}"
+
+
 def _due(course: Course) -> Item:
     key, label = DUE
     nothing = no_figure(course, key, label, burn_needed=True)
     if nothing is not None:
         return nothing
-    moments = _burn_moments(course)
+    moments = burn_moments(course)
     plan = course.plan
     if plan is None:
         dues: list[float | None] = [
@@ -160,7 +167,7 @@ def _due(course: Course) -> Item:
         sources = once((*course.published[0].sources, *course.published[-1].sources))
     else:
         dues = [plan.due_ml(moment, course.now) for moment in moments or (course.now,)]
-        prefix, rule, sources = "", plan.said, _plan_sources(plan)
+        prefix, rule, sources = "", plan.said, _plan_sources(course, plan)
     known = [due for due in dues if due is not None]
     if not known:
         return unflagged(key, label, f"not computed: {plan.said if plan else ''} sets a rate, not a volume")
@@ -179,11 +186,11 @@ def _due(course: Course) -> Item:
             inputs=inputs(course, with_burn=True),
             rule=rule,
         ),
-        sources=sources or (course.source("plan.period"),),
+        sources=sources,
         cautions=tuple(dict.fromkeys((*course.cautions, *_uncertain(course), *weight_caution(course)))),
     )
 
 
 def _due_sum(course: Course) -> str:
-    hours = [number_text(_since(course, moment), 2) for moment in _burn_moments(course)]
+    hours = [number_text(_since(course, moment), 2) for moment in burn_moments(course)]
     return f"{' to '.join(dict.fromkeys(hours))} h since the burn: " if hours else ""

@@ -53,7 +53,8 @@ def _rate(course: Course) -> Item:
     words_for = {"below": "below the target", "above": "above the target", "in": "within the target"}
     against = f"; {words_for[judged]} of {aimed.shown}" if judged else f"; {aimed.shown}"
     run = _run_hours(course, judged) if judged in ("below", "above") else 0.0
-    against += f" for {hours_text(run)} without a break" if run > (last.hours or 0.0) else ""
+    against = "" if course.comfort else against
+    against += f" for {hours_text(run)} without a break" if against and run > (last.hours or 0.0) else ""
     return figure(
         key,
         label,
