@@ -17,7 +17,7 @@ ROOT = Path(__file__).resolve().parents[1]
 FOLDER = ROOT / ".venv"
 JOBS = {
     "demo": ("requirements.lock", ["-m", "handoff", "demo"]),
-    "tests": ("tests/requirements.lock", ["-m", "pytest", "--numprocesses", "auto", "--dist", "loadgroup"]),
+    "tests": ("tests/requirements.lock", ["-m", "pytest", "--numprocesses", "auto", "--dist", "worksteal"]),
     "checks": ("tests/requirements.lock", [".ci/checks.py"]),
 }
 
@@ -35,7 +35,10 @@ def main(arguments: list[str]) -> int:
     try:
         _install(python, ROOT / lock)
     except subprocess.CalledProcessError:
-        print("the packages could not be installed; what pip said stands above. Try again online", file=sys.stderr)
+        print(
+            "the packages could not be installed; what pip said stands above. Try again online",
+            file=sys.stderr,
+        )
         return 2
     return subprocess.run([str(python), *command, *arguments[1:]], cwd=ROOT, check=False).returncode  # noqa: S603
 

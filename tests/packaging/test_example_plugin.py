@@ -30,8 +30,6 @@ frostbite:
 """
 AT = ("--at", "2026-03-14 19:30")
 
-in_the_clean_place = pytest.mark.xdist_group("wheel")
-
 
 @pytest.fixture
 def frostbite(monkeypatch: pytest.MonkeyPatch) -> Plugin:
@@ -73,7 +71,6 @@ def test_its_table_is_cited(frostbite: Plugin) -> None:
     assert parameters_of(frostbite).source_of("bath_range.wms-2011").citation
 
 
-@in_the_clean_place
 def test_it_runs_where_the_policy_names_it(with_frostbite: CleanPlace, ward: Path) -> None:
     done = with_frostbite.run(
         "handoff", "show", "andal.yaml", "--json", *AT, "--policy", "unit-policy.yaml", folder=ward
@@ -86,7 +83,6 @@ def test_it_runs_where_the_policy_names_it(with_frostbite: CleanPlace, ward: Pat
     assert "frostbite.check" in {action["key"] for action in shown["actions"]}
 
 
-@in_the_clean_place
 def test_its_findings_reach_the_documents(with_frostbite: CleanPlace, ward: Path) -> None:
     done = with_frostbite.run(
         "handoff", "draft", "andal.yaml", *AT, "--policy", "unit-policy.yaml", folder=ward
@@ -96,13 +92,11 @@ def test_its_findings_reach_the_documents(with_frostbite: CleanPlace, ward: Path
     assert "frostbite.bath" in (ward / "andal.items.json").read_text(encoding="utf-8")
 
 
-@in_the_clean_place
 def test_the_list_of_plugins_says_that_it_comes_from_outside(with_frostbite: CleanPlace, ward: Path) -> None:
     done = with_frostbite.run("handoff", "plugins", "--policy", "unit-policy.yaml", folder=ward)
     assert re.search(r"^frostbite: Frostbite .*outside plugin", done.stdout, flags=re.MULTILINE)
 
 
-@in_the_clean_place
 @pytest.mark.parametrize("arguments", [(), ("--policy", "unit-policy.yaml", "--bundled-only")])
 def test_it_does_not_run_unnamed_or_with_bundled_only(
     with_frostbite: CleanPlace, ward: Path, arguments: tuple[str, ...]
@@ -113,7 +107,6 @@ def test_it_does_not_run_unnamed_or_with_bundled_only(
     assert "frostbite" not in with_frostbite.run("handoff", "plugins", *arguments, folder=ward).stdout
 
 
-@in_the_clean_place
 def test_its_block_is_an_unknown_key_where_it_does_not_run(with_frostbite: CleanPlace, ward: Path) -> None:
     done = with_frostbite.run("handoff", "check", "andal.yaml", *AT, folder=ward)
     assert done.returncode == 1

@@ -7,12 +7,8 @@ import tarfile
 import zipfile
 from pathlib import Path, PurePosixPath
 
-import pytest
-
 from tests.packaging.conftest import CleanPlace
 from tests.packaging.project import BUNDLED, ROOT, named, project
-
-pytestmark = pytest.mark.xdist_group("wheel")
 
 HELD = (
     "handoff/**.py",
