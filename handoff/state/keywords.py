@@ -123,10 +123,16 @@ def _max_length(validator: Any, limit: int, instance: Any, schema: Schema) -> Fo
 
 
 _NO_NAMES = frozenset({"yes", "no", "true", "false", "on", "off", "null", "none", "nil", "~"})
+_INITIALS = ("NO", "ON")
 
 
 def _name(validator: Any, rule: bool, instance: Any, schema: Schema) -> Found:
-    if isinstance(instance, Text) and instance.plain and instance.lower() in _NO_NAMES:
+    if (
+        isinstance(instance, Text)
+        and instance.plain
+        and instance.lower() in _NO_NAMES
+        and instance not in _INITIALS
+    ):
         yield Finding(
             f"'{instance}' stands where a name, a place or a number is due",
             f'leave it empty if it is not recorded, or put it in quotes if that is the name: "{instance}"',

@@ -92,7 +92,7 @@ def test_a_file_that_may_not_be_read_is_named(tmp_path: Path, monkeypatch: pytes
         raise PermissionError(errno.EACCES, "Permission denied")
 
     monkeypatch.setattr(Path, "open", locked)
-    with pytest.raises(NotAStateFile, match="cannot be read .Permission denied.; close it elsewhere"):
+    with pytest.raises(NotAStateFile, match=r"cannot be read .Permission denied.; close it elsewhere"):
         read_text(path)
 
 
