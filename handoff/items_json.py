@@ -9,7 +9,7 @@ from typing import Any
 from handoff import __version__
 from handoff.assess import Assessment
 from handoff.parameters import Source
-from handoff.plugin import Action, Item, Working
+from handoff.plugin import Action, Item, PatientState, Working, words
 from handoff.state.clock import Clock
 
 
@@ -20,6 +20,7 @@ def as_data(assessment: Assessment) -> dict[str, Any]:
         "handoff": __version__,
         "digest": assessment.state.digest,
         "at": clock.iso(assessment.now),
+        "patient": _patient(assessment.state),
         "policy": assessment.policy.name,
         "plugins": [plugin.name for plugin in assessment.plugins],
         "items": [item_data(item, clock) for item in assessment.items],
@@ -36,6 +37,16 @@ def as_data(assessment: Assessment) -> dict[str, Any]:
 def as_json(assessment: Assessment) -> str:
     """Return :func:`as_data` as text; the same assessment gives the same bytes."""
     return json.dumps(as_data(assessment), ensure_ascii=False, indent=1) + "\n"
+
+
+def _patient(state: PatientState) -> dict[str, Any]:
+    """Return what tells this patient from another, so that no program joins two patients."""
+    return {
+        "name": state.name,
+        "born": words(state.patient.get("born")) or None,
+        "identifiers": dict(state.identifiers),
+        "earlier_names": list(state.texts(state.patient.get("earlier_names"))),
+    }
 
 
 def item_data(item: Item, clock: Clock) -> dict[str, Any]:

@@ -13,17 +13,23 @@ from handoff.cli.edge import (
     Exit,
     FileArgument,
     PolicyOption,
-    assessed,
     complain,
     leave,
+    open_or_stop,
     say,
+    setup_or_stop,
     stop,
     who,
 )
+from handoff.cli.since import changes_or_stop
 
 OutOption = Annotated[
     Path | None,
     typer.Option("--out", metavar="DIR", help="Folder for the documents; beside the file if left out"),
+]
+EarlierOption = Annotated[
+    Path | None,
+    typer.Option("--since", metavar="OTHER", help="The items.json or the state file of the last handover"),
 ]
 
 
@@ -33,8 +39,9 @@ def draft(
     out: OutOption = None,
     policy: PolicyOption = None,
     bundled_only: BundledOption = False,
+    since: EarlierOption = None,
 ) -> None:
-    """Draft the handover, the care plan and items.json.
+    """Draft the handover, the care plan and items.json; with --since what changed as well.
 
     Example: handoff draft ferrandel.yaml --at "2026-03-14 19:30" --out documents
     """
@@ -42,10 +49,13 @@ def draft(
     from handoff.document import draft as draft_documents
     from handoff.files import CannotWrite, write_all
     from handoff.items_json import as_json
+    from handoff.work import assess_loaded
 
-    assessment = assessed(file, at, policy, bundled_only)
+    setup = setup_or_stop(policy, bundled_only)
+    assessment = assess_loaded(open_or_stop(file, setup, at), setup)
+    changes = changes_or_stop(assessment, setup, since) if since else None
     try:
-        documents = draft_documents(assessment, file.stem)
+        documents = draft_documents(assessment, file.stem, changes)
     except DocumentError as error:
         stop(Exit.SETUP, f"the documents could not be made: {error}")
     documents[f"{file.stem}.items.json"] = as_json(assessment).encode()

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from handoff.assess import Assessment
 from handoff.document.care_plan import care_plan
+from handoff.document.changes import Changes
 from handoff.document.context import Data, context
 from handoff.document.finish import Properties, finish
 from handoff.document.handover import handover
@@ -13,7 +14,7 @@ HANDOVER = "handover.docx"
 CARE_PLAN = "care-plan.docx"
 
 
-def draft(assessment: Assessment, stem: str) -> dict[str, bytes]:
+def draft(assessment: Assessment, stem: str, changes: Changes | None = None) -> dict[str, bytes]:
     """Return the handover and the care plan of ``assessment`` by file name.
 
     The same assessment gives the same bytes. Nothing is written to the disk.
@@ -21,6 +22,7 @@ def draft(assessment: Assessment, stem: str) -> dict[str, bytes]:
     Args:
         assessment: What is known of the patient at the moment of the documents.
         stem: What the file names begin with.
+        changes: What changed since an earlier document, for the handover.
 
     Raises:
         DocumentError: A template is at fault, or a text would have been lost.
@@ -28,7 +30,7 @@ def draft(assessment: Assessment, stem: str) -> dict[str, bytes]:
     policy = assessment.policy
     turned = policy.care_plan_orientation == "landscape"
     return {
-        f"{stem}-{HANDOVER}": _made(HANDOVER, context(handover(assessment)), assessment, Page(policy.paper)),
+        f"{stem}-{HANDOVER}": _made(HANDOVER, context(handover(assessment, changes)), assessment, Page(policy.paper)),
         f"{stem}-{CARE_PLAN}": _made(
             CARE_PLAN, context(care_plan(assessment)), assessment, Page(policy.paper, turned)
         ),

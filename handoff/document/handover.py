@@ -7,6 +7,7 @@ from dataclasses import dataclass
 
 from handoff.assess import Assessment
 from handoff.document.appendix import Appendix, appendix
+from handoff.document.changes import Changes
 from handoff.document.charts import Burn, Hour, burns, hours, lost_tables
 from handoff.document.identity import Frame, Identity, frame, identity, person
 from handoff.document.page_one import PageOne, page_one
@@ -79,6 +80,7 @@ class Handover:
     given_by: str
     received_by: str
     page_one: PageOne
+    changes: Changes
     legend: str
     situation: Section
     background: Section
@@ -94,8 +96,8 @@ class Handover:
     appendix: Appendix
 
 
-def handover(assessment: Assessment) -> Handover:
-    """Return the handover of an assessment as finished strings."""
+def handover(assessment: Assessment, changes: Changes | None = None) -> Handover:
+    """Return the handover of an assessment as finished strings, with what changed since an earlier one."""
     state = assessment.state
     written = state.handover
     shift = Shift(assessment.now, assessment.now + assessment.policy.shift_length, state.clock)
@@ -111,6 +113,7 @@ def handover(assessment: Assessment) -> Handover:
         given_by=person(written.get("from")),
         received_by=person(written.get("to")),
         page_one=page_one(assessment, shift),
+        changes=changes or Changes(),
         legend=LEGEND,
         situation=_section(assessment, Part.SITUATION),
         background=_section(assessment, Part.BACKGROUND),

@@ -85,10 +85,6 @@ def _page(page: PageOne, console: Console) -> None:
         _head(console, "do now (reference in the care plan)")
         _grid(console, [(task.ref, task.text, "") for task in page.tasks], (REFERENCE_WIDTH, 0))
     _more(console, "also to do now", page.more_tasks)
-    if page.due:
-        _head(console, "due or overdue")
-        _rows(console, page.due)
-    _more(console, "also due for review", page.more_due)
     _head(console, "what to do if")
     _grid(console, [(line.event, line.answer, "") for line in page.if_then], (LABEL_WIDTH, 0))
     if not page.if_then:
@@ -96,6 +92,10 @@ def _page(page: PageOne, console: Console) -> None:
     _head(console, "not recorded and needed first")
     _line(console, page.gaps or "none of the entries that can kill first is missing")
     _line(console, f"{page.missing_count} not recorded; the list is at the end")
+    if page.due:
+        _head(console, "due or overdue")
+        _rows(console, page.due)
+    _more(console, "also due for review", page.more_due)
 
 
 def _part(part: Part, items: Sequence[Item], assessment: Assessment, console: Console) -> None:

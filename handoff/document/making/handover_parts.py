@@ -56,6 +56,31 @@ def section(name: str) -> str:
     )
 
 
+def changes() -> str:
+    """Return what changed since an earlier document: values by system, then the tasks of the care plan."""
+    rows = listing(
+        "What changed in one system",
+        "row in system.rows",
+        column(2650, "What", "row.what"),
+        column(3150, "Before", "row.before"),
+        column(3300, "Now", "row.now"),
+        column(1446, "Change", "row.how", look="Strong"),
+        heading="{{ system.title }}",
+    )
+    return when(
+        "changes.title",
+        paragraph("Heading1", "{{ changes.title }}"),
+        each("note in changes.notes", paragraph("KeyNote", "{{ note }}")),
+        each("system in changes.systems", rows, paragraph("Gap")),
+        _tasks("changes.new_tasks", "New in the care plan"),
+        _tasks("changes.ended_tasks", "No longer in the care plan"),
+    )
+
+
+def _tasks(source: str, label: str) -> str:
+    return when(source, listing(label, f"task in {source}", column(WIDTH, label, "task")), paragraph("Gap"))
+
+
 def systems() -> str:
     """Return the assessment: one table for each system, its heading repeated where the page turns."""
     return "".join(

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from handoff.document.making.handover_appendix import appendix, charts
-from handoff.document.making.handover_parts import WIDTH, recommendation, section, systems
+from handoff.document.making.handover_parts import WIDTH, changes, recommendation, section, systems
 from handoff.document.making.markup import (
     Column,
     cell,
@@ -31,6 +31,7 @@ def body() -> str:
             _if_then(),
             _gaps(),
             _due(),
+            changes(),
             paragraph("Heading1", "Situation"),
             section("situation"),
             paragraph("Heading1", "Background"),
