@@ -11,6 +11,7 @@ from handoff.cli.due import due
 from handoff.cli.plugins import plugins
 from handoff.cli.schema import schema
 from handoff.cli.show import show
+from handoff.cli.since import since
 from handoff.cli.working import working
 
 app = typer.Typer(
@@ -21,7 +22,7 @@ app = typer.Typer(
     pretty_exceptions_enable=False,
     add_completion=True,
 )
-for command in (demo, check, draft, due, show, working, plugins, schema):
+for command in (demo, check, draft, due, show, since, working, plugins, schema):
     app.command()(command)
 
 
