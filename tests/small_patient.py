@@ -21,6 +21,13 @@ NOW = "2026-03-14 19:30"
 DAY = "2026-03-14"
 
 
+class _NoAliases(yaml.SafeDumper):
+    """The reader refuses anchors, so none are written for a value that stands twice."""
+
+    def ignore_aliases(self, data: Any) -> bool:
+        return True
+
+
 @lru_cache(maxsize=64)
 def setup_of(names: tuple[str, ...], choices: tuple[tuple[str, str], ...] = ()) -> Setup:
     """Return the setup of some bundled plugins with choices of a policy."""
@@ -48,7 +55,7 @@ def state_text(
     state["injury"] = {key: value for key, value in state["injury"].items() if value is not None}
     if rows:
         state["observations"] = {DAY: dict(rows)}
-    return yaml.safe_dump(state, sort_keys=False, allow_unicode=True, width=10**6)
+    return yaml.dump(state, Dumper=_NoAliases, sort_keys=False, allow_unicode=True, width=10**6)
 
 
 def assessed(

@@ -117,6 +117,17 @@ def actions(case: Case) -> tuple[Action, ...]:
     rest = [name for name in missing if name != BACK]
     source = case.parameters.source_of("steps")
     made = []
+    if all(step.entry is None for step in found):
+        return (
+            Action(
+                key="first_hours.finish",
+                area="First-hours survey",
+                text=f"Do and chart the survey: {', '.join(missing)} (log-roll with enough hands)",
+                why="no step of it is charted",
+                system=System.GENERAL,
+                sources=(source,),
+            ),
+        )
     if rest:
         made.append(
             Action(

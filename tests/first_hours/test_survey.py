@@ -55,6 +55,12 @@ def test_the_back_is_asked_about_by_itself() -> None:
     assert action(found, "first_hours.inspect_back").urgency is Urgency.SHIFT
 
 
+def test_a_survey_not_begun_is_one_line_of_the_care_plan() -> None:
+    found = made()
+    assert action_keys(found) == ["first_hours.finish"]
+    assert "back (log-roll with enough hands)" in action(found, "first_hours.finish").text
+
+
 def test_a_step_left_with_a_reason_is_not_done() -> None:
     left = {"back": {"at": "2026-03-14 09:00", "not_done": "spine not yet cleared"}}
     found = made(*STEPS[:-1], steps=left)

@@ -1,0 +1,221 @@
+"""Electrocardiogram and rhythm monitoring: done, running, asked for by the named list."""
+
+from __future__ import annotations
+
+from datetime import datetime, timedelta
+
+from handoff.plugin import (
+    Action,
+    Case,
+    Flag,
+    Item,
+    Row,
+    System,
+    Urgency,
+    Working,
+    child,
+    hours_text,
+    joined,
+    words,
+)
+
+from .injury import Injury, ecgs
+from .say import fact
+
+RANK_RHYTHM, RANK_MONITOR, RANK_ECG = 33, 34, 35
+NO_PROOF = "Creatine kinase, its heart fraction too, does not tell whether the heart is hurt."
+
+
+def _list(case: Case) -> tuple[str, str, list[str]]:
+    name = f"monitoring.{case.chosen('monitoring').name}"
+    table = case.parameters.table(name)
+    return name, str(table["title"]), [str(row) for row in table["rows"]]
+
+
+def met(case: Case, found: Injury) -> list[str]:
+    """Return the criteria of the chosen list that are met."""
+    return [row for row in _list(case)[2] if found.facts[row]]
+
+
+def unknown(case: Case, found: Injury) -> list[str]:
+    """Return the criteria of the chosen list that nothing says anything about."""
+    return [row for row in _list(case)[2] if found.facts[row] is None]
+
+
+def _spans(case: Case) -> tuple[Row, ...]:
+    return case.state.dated(child(case.block, "monitoring"), "from")
+
+
+def running(case: Case) -> datetime | None:
+    """Return since when the rhythm is monitored without a break; None where it is not as charted."""
+    spans = _spans(case)
+    return spans[-1].at if spans and "until" not in spans[-1].entry else None
+
+
+def items(case: Case, found: Injury) -> tuple[Item, ...]:
+    """Return arrhythmias, the electrocardiogram, and the monitoring."""
+    return (*_rhythms(case, found), _ecg(case, found), _monitoring(case, found))
+
+
+def _rhythms(case: Case, found: Injury) -> tuple[Item, ...]:
+    if not found.rhythms:
+        return ()
+    last = found.rhythms[-1]
+    recent = case.hours_between(last.at, case.now) <= case.parameters.number("monitoring.hours")
+    said = [
+        f"{words(row.entry.get('what'))} at {case.clock.time(row.at, case.now)}"
+        + (f": {words(row.entry.get('said'))}" if words(row.entry.get("said")) else "")
+        for row in found.rhythms
+    ]
+    asks = recent and not found.comfort
+    return (
+        fact(
+            "rhythm",
+            "Arrhythmia after electrical injury",
+            "; ".join(said),
+            system=System.ELECTRICAL,
+            value=len(found.rhythms),
+            unit="events",
+            as_of=last.at,
+            flag=Flag.ACTION if asks else Flag.NONE,
+            sources=(case.parameters.source_of("monitoring.aba-2006"),),
+            rank=RANK_RHYTHM if asks else None,
+            line=last.entry.line,
+        ),
+    )
+
+
+def _ecg(case: Case, found: Injury) -> Item:
+    rows, source = ecgs(case), case.parameters.source_of("ecg.all")
+    label = "12-lead electrocardiogram"
+    if not rows:
+        return fact(
+            "ecg",
+            label,
+            "not recorded",
+            system=System.ELECTRICAL,
+            flag=Flag.NOT_RECORDED if found.comfort else Flag.ACTION,
+            sources=(source,),
+            rank=None if found.comfort else RANK_ECG,
+        )
+    last = rows[-1]
+    said = words(last.entry.get("said")) or words(last.entry.get("ecg")) or "what it showed is not recorded"
+    called = {"yes": ", called abnormal", "not read yet": ", not read yet"}.get(
+        words(last.entry.get("abnormal")), ""
+    )
+    return fact(
+        "ecg",
+        label,
+        f"{said}{called}",
+        system=System.ELECTRICAL,
+        value=len(rows),
+        unit="recorded",
+        as_of=last.at,
+        flag=Flag.REVIEW if "not read" in called else Flag.NONE,
+        sources=(source,),
+        cautions=(NO_PROOF,),
+        line=last.entry.line,
+    )
+
+
+def _monitoring(case: Case, found: Injury) -> Item:
+    name, title, _ = _list(case)
+    have, lack = met(case, found), unknown(case, found)
+    since, hours = running(case), case.parameters.number("monitoring.hours")
+    end = since + timedelta(hours=hours) if since else None
+    asks = bool(have) and since is None and not _done(case, hours) and not found.comfort
+    said = [_state(case, since, end)]
+    said.append(f"asked for by {joined(have)} ({title})" if have else f"no criterion of {title} met")
+    said += [f"cannot be judged: {joined(lack)}"] if lack else []
+    flag = Flag.ACTION if asks else Flag.NONE
+    if end is not None and end < case.now and not found.comfort:
+        flag = Flag.REVIEW
+    elif not asks and since is None and lack and not have and not _spans(case):
+        flag = Flag.NOT_RECORDED
+    return fact(
+        "monitoring",
+        "Rhythm monitoring",
+        "; ".join(said),
+        system=System.ELECTRICAL,
+        value=end,
+        unit="time",
+        as_of=since,
+        flag=flag,
+        working=Working(
+            formula="any criterion of the list; start of monitoring + hours used in studies",
+            sum=f"{joined(have) or 'none met'}"
+            + (f"; {case.clock.day_and_time(since)} + {hours_text(hours)}" if since else ""),
+            inputs=(case.input("cause", found.cause, f"{words(found.cause.get('kind'))}, {found.voltage}"),),
+            rule=title,
+        ),
+        sources=(case.parameters.source_of(name), case.parameters.source_of("monitoring.hours")),
+        rank=RANK_MONITOR if asks else None,
+    )
+
+
+def _state(case: Case, since: datetime | None, end: datetime | None) -> str:
+    if since is not None and end is not None:
+        reached = "24 h reached, ask whether it may end" if end < case.now else "to at least"
+        if end < case.now:
+            return f"running since {case.clock.day_and_time(since)}; {reached}"
+        return f"running since {case.clock.day_and_time(since)}, {reached} {case.clock.day_and_time(end)}"
+    spans = _spans(case)
+    if spans:
+        ended = case.when(spans[-1].entry.get("until"))
+        by = words(spans[-1].entry.get("decided_by")) or "not recorded by whom"
+        return f"ended {case.clock.day_and_time(ended)} ({by})" if ended else "ended"
+    return "not recorded"
+
+
+def _done(case: Case, hours: float) -> bool:
+    spans = [(row.at, case.when(row.entry.get("until"))) for row in _spans(case)]
+    return any(end is not None and case.hours_between(start, end) >= hours for start, end in spans)
+
+
+def actions(case: Case, found: Injury) -> tuple[Action, ...]:
+    """Return the electrocardiogram and the monitoring that are missing, and the watch on the monitor."""
+    if found.comfort:
+        return ()
+    made = []
+    if not ecgs(case):
+        made.append(
+            Action(
+                key="electrical.take_ecg",
+                area="Electrical injury",
+                text="12-lead electrocardiogram now; have it read and chart what the reader says",
+                why="every electrical injury has one, and none is recorded",
+                system=System.ELECTRICAL,
+                urgency=Urgency.NOW,
+                sources=(case.parameters.source_of("ecg.all"),),
+            )
+        )
+    name, title, _ = _list(case)
+    have = met(case, found)
+    since = running(case)
+    if have and since is None and not _done(case, case.parameters.number("monitoring.hours")):
+        made.append(
+            Action(
+                key="electrical.start_monitoring",
+                area="Electrical injury",
+                text="Connect the rhythm monitor now, alarms on, and chart from when; tell the doctor",
+                why=f"{joined(have)} ({title})",
+                system=System.ELECTRICAL,
+                urgency=Urgency.NOW,
+                sources=(case.parameters.source_of(name),),
+            )
+        )
+    elif since is not None:
+        hours = case.parameters.number("monitoring.hours")
+        made.append(
+            Action(
+                key="electrical.keep_monitoring",
+                area="Electrical injury",
+                text="Keep the rhythm monitor on, on transfer and in the scanner too; ask before it is ended",
+                why=joined(have) or "started after an electrical injury",
+                system=System.ELECTRICAL,
+                first_due=since + timedelta(hours=hours),
+                urgency=Urgency.TIMED,
+                sources=(case.parameters.source_of("monitoring.hours"),),
+            )
+        )
+    return tuple(made)
