@@ -135,7 +135,7 @@ def _differs(before: Seen, now: Seen) -> bool:
 def _direction(before: Seen, now: Seen) -> str:
     one, other = _number(before), _number(now)
     if one is None or other is None or one[1] != other[1] or one[0] == other[0]:
-        return "" if one and other else "changed"
+        return "changed"
     return "up" if other[0] > one[0] else "down"
 
 
