@@ -39,7 +39,8 @@ def _drained_ml(course: Course, start: datetime) -> float:
 
 
 def _charted(course: Course) -> bool:
-    return bool(course.given.portions or course.urine.measured or losses_ml(course.case))
+    charted = course.given.portions or course.urine.measured or course.urine.drained_ml
+    return bool(charted or losses_ml(course.case))
 
 
 def _balance(course: Course) -> Item:

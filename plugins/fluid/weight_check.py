@@ -59,7 +59,7 @@ def check_weights(case: Case) -> Iterator[Problem]:
         yield Problem(
             entry["value"],
             ("patient", "weights", index, "value"),
-            f"{kg_text(kg)} is far outside {expected.table} "
+            f"{words(entry.get('value'))} is far outside {expected.table} "
             f"({number_text(expected.low_kg, 1)} to {kg_text(expected.high_kg)}){_fits(kg, expected)}",
             CURE if height_cm(case) is not None else f"{CURE}, and add the height",
             Severity.UNUSUAL,
@@ -111,14 +111,23 @@ def _range(case: Case, sex: str, months: float) -> Range:
     if height is not None and _reaches(case, "bmi_for_age", sex, months):
         low, high = _limits(case, "bmi_for_age", sex, months)
         square = 1 / formula.body_mass_index(1, height)
-        return Range(low * square, high * square, f"the WHO table of BMI for age at {_said(height)}")
+        return Range(
+            low * square, high * square, f"BMI for age at {_said(height)} ({_edition(case, months)})"
+        )
     if _reaches(case, "weight_for_age", sex, months):
         low, high = _limits(case, "weight_for_age", sex, months)
-        return Range(low, high, "the WHO table of weight for age")
+        return Range(low, high, f"weight for age ({_edition(case, months)})")
     low, high = _limits(case, "bmi_for_age", sex, months)
     _, median, _ = _lms(case, "height_for_age", sex, months)
     square = 1 / formula.body_mass_index(1, median)
-    return Range(low * square, high * square, "the WHO tables of BMI and height for age")
+    return Range(low * square, high * square, f"BMI and height for age ({_edition(case, months)})")
+
+
+def _edition(case: Case, months: float) -> str:
+    """The published table by name and edition."""
+    if months <= case.parameters.number("growth.first_table_to"):
+        return "WHO Child Growth Standards, 2006"
+    return "WHO growth reference, 2007"
 
 
 def _said(height: float) -> str:
