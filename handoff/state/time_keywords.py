@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
+from datetime import datetime
 from typing import Any, TypeAlias
 
 from jsonschema import ValidationError
@@ -33,7 +34,7 @@ class TimeKeywords:
         if clock is None or not isinstance(instance, Text):
             return
         try:
-            refused = self._moments.refuse(clock.read(instance), rule)
+            refused = self._refuse(clock, clock.read(instance), rule)
         except ClockError as error:
             refused = closed(instance, error.what, error.cure)
         if refused is not None:
@@ -99,6 +100,11 @@ class TimeKeywords:
         if clock is None:
             return None
         try:
-            return self._moments.refuse(clock.read_time(day, time), {})
+            return self._refuse(clock, clock.read_time(day, time), {})
         except ClockError as error:
             return closed(time, error.what, error.cure)
+
+    def _refuse(self, clock: Clock, moment: datetime, rule: Schema) -> Finding | None:
+        if self._moments.now.year - moment.year > OLDEST_YEARS:
+            return Finding(f"{clock.day(moment)} is more than {OLDEST_YEARS} years ago", "check the year")
+        return self._moments.refuse(moment, rule)
