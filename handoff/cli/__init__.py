@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import typer
 
+from handoff.cli.chart import chart
 from handoff.cli.check import check
 from handoff.cli.demo import demo
 from handoff.cli.draft import draft
@@ -22,7 +23,7 @@ app = typer.Typer(
     pretty_exceptions_enable=False,
     add_completion=True,
 )
-for command in (demo, check, draft, due, show, since, working, plugins, schema):
+for command in (demo, chart, check, draft, due, show, since, working, plugins, schema):
     app.command()(command)
 
 

@@ -4,7 +4,8 @@ from __future__ import annotations
 
 import pytest
 
-from handoff.chart.insertion import CannotInsert, Entry, Layout, applied, flow, scalar
+from handoff.chart.insertion import Entry, applied, flow, scalar
+from handoff.chart.layout import CannotInsert, Layout
 from handoff.state.nodes import List, Map, plain
 from handoff.state.reader import read_nodes
 
@@ -45,7 +46,7 @@ def test_an_entry_is_added_at_the_end_of_its_list(text: str) -> None:
     before = root.get("pain")
     doses = before.get("doses") if isinstance(before, Map) else None
     old = [plain(dose) for dose in doses] if isinstance(doses, List) else []
-    new_text = applied(text, [Layout(text, root).into_list(("pain", "doses"), ENTRY)])
+    new_text = applied(text, Layout(text, root).into_list(("pain", "doses"), ENTRY))
     new, faults = read_nodes(new_text, "f")
     assert not faults
     assert plain(new["pain"])["doses"] == [*old, ENTRY]  # type: ignore[index]

@@ -1,0 +1,111 @@
+"""Put a new value where an old one stands: around it where that can be read, else beside the old entry."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import Any
+
+from handoff.chart import shape
+from handoff.chart.describing import describe_key, same
+from handoff.chart.drafting import Draft
+from handoff.chart.entries import ROWS, with_confirmed
+from handoff.chart.insertion import Entry, Value
+from handoff.chart.layout import CannotInsert
+from handoff.chart.shape import Schema
+from handoff.chart.standing import Standing
+from handoff.state.nodes import Map, Text, plain
+
+_NOT_CARRIED = ("struck", "corrects", "confirmed")
+_LONGEST = 4000
+
+
+@dataclass(frozen=True)
+class Restating:
+    """The draft, who changes it when and why, and whether an unusual new value was confirmed."""
+
+    draft: Draft
+    marks: Mapping[str, str]
+    confirm: bool
+
+    def strike(self, one: Standing) -> None:
+        """Strike an entry out; it stays readable."""
+        self.draft.extend(one.path, {"struck": dict(self.marks)})
+
+    def value(self, one: Standing, key: str, new: Value, form: Schema) -> None:
+        """Put ``new`` around the value of a row, or strike the row and write it anew beside."""
+        if not self._in_place(one, key, new, form):
+            self.row(one, key, new, form)
+
+    def row(self, one: Standing, key: str, new: Value | None, form: Schema) -> None:
+        """Strike a row out and write its rest anew, with the new value if there is one, and what it corrects."""
+        old = tree_of(one.entry)
+        rest = {name: value for name, value in old.items() if name not in _NOT_CARRIED and value != ""}
+        signed: dict[str, Value] = {name: rest[name] for name in ("at", "by") if name in rest}
+        corrects = {"value": describe_key(key, old[key])[:_LONGEST], **self.marks}
+        self.strike(one)
+        checked = with_confirmed(new, form) if new is not None and self.confirm else new
+        if checked is not None:
+            self._beside(one, {**rest, key: checked, "corrects": corrects})
+            return
+        del rest[key]
+        if set(rest) - set(signed):
+            self._beside(one, {**rest, "corrects": corrects})
+        if new is not None:  # a mark that speaks for a whole entry must not speak for the rest of the row
+            self._beside(one, {**signed, key: new, "confirmed": "yes", "corrects": corrects})
+
+    def entry(self, one: Standing, new: Entry, was: str) -> dict[str, Any]:
+        """Strike an entry of a list out and add one with the values of ``new`` and whatever else it held."""
+        old = {
+            key: value for key, value in tree_of(one.entry).items() if key not in _NOT_CARRIED and value != ""
+        }
+        restated = {**old, **new, "corrects": {"value": was[:_LONGEST], **self.marks}}
+        if self.confirm:
+            restated["confirmed"] = "yes"
+        self.strike(one)
+        self.draft.append(tuple(one.place.split(".")), restated)
+        return {**old, **new}
+
+    def _in_place(self, one: Standing, key: str, new: Value, form: Schema) -> bool:
+        keys = shape.keys_of(form)
+        group: Entry | None = None
+        if isinstance(new, Mapping):
+            group = new
+        elif isinstance(new, str) and "value" in keys:
+            group = {"value": new}
+        if group is None or "corrects" not in keys:
+            return False
+        if self.confirm:
+            group = {**group, "confirmed": "yes"}
+        old = one.entry[key]
+        try:
+            if isinstance(old, Map) and _keeps_its_group(old, group):
+                self.draft.correct_inside((*one.path, key), str(group["value"]), self.marks)
+            else:
+                self.draft.correct((*one.path, key), group, self.marks)
+        except CannotInsert:
+            return False
+        return True
+
+    def _beside(self, one: Standing, entry: Entry) -> None:
+        if one.place == ROWS:
+            self.draft.beside(one.path[:3], entry)
+        else:
+            self.draft.append(tuple(one.place.split(".")), entry)
+
+
+def _keeps_its_group(old: Map, new: Entry) -> bool:
+    """Whether only the ``value`` of a group changes, and nothing in it speaks for the old value alone."""
+    others = {key: value for key, value in new.items() if key != "value"}
+    return (
+        old.flow
+        and isinstance(old.get("value"), Text)
+        and "value" in new
+        and not any(key in old for key in ("corrects", "confirmed"))
+        and all(key in old and same(plain(old[key]), value) for key, value in others.items())
+    )
+
+
+def tree_of(entry: Map) -> dict[str, Any]:
+    """Return an entry as plain data."""
+    return {str(key): plain(value) for key, value in entry.items()}
