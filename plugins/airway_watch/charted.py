@@ -84,15 +84,14 @@ def signs(case: Case) -> tuple[Sign, ...]:
 
     "Not assessed" leaves the earlier assessment standing. Of two entries in one minute, present wins.
     """
-    rows = block_rows(case, "signs")
-    found = []
-    for name in SIGNS:
-        seen = [(row, words(row.entry.get(name))) for row in rows]
-        seen = [(row, state) for row, state in seen if state in (PRESENT, ABSENT)]
-        seen.sort(key=lambda pair: (pair[0].at, pair[1] == PRESENT))
-        if seen:
-            found.append(_latest(name, seen))
-    return tuple(found)
+    seen: dict[str, list[tuple[Row, str]]] = {}
+    for row in block_rows(case, "signs"):
+        for name, node in row.entry.items():
+            if node in (PRESENT, ABSENT):
+                seen.setdefault(str(name), []).append((row, str(node)))
+    for charted in seen.values():
+        charted.sort(key=lambda pair: (pair[0].at, pair[1] == PRESENT))
+    return tuple(_latest(name, seen[name]) for name in SIGNS if name in seen)
 
 
 def _latest(name: str, seen: list[tuple[Row, str]]) -> Sign:
@@ -103,6 +102,13 @@ def _latest(name: str, seen: list[tuple[Row, str]]) -> Sign:
             break
         since = earlier.at
     return Sign(name, state, row.at, words(row.entry.get("by")), since, row.line)
+
+
+def worse_at(case: Case) -> datetime | None:
+    """Return when a sign was last charted as worse than before, or None."""
+    return max(
+        (row.at for row in block_rows(case, "signs") if words(row.entry.get("worse")) == "yes"), default=None
+    )
 
 
 def check_times(case: Case) -> tuple[datetime, ...]:
@@ -153,16 +159,21 @@ class Tube:
 
 
 def tube(case: Case) -> Tube:
-    """Return whether a tube is in place, from the tubes of the block and the events of the file."""
+    """Return whether a tube is in place, from the tubes of the block and the events of the file.
+
+    A tube that is changed within one minute leaves the new one in place.
+    """
     rows = block_rows(case, "tube", "placed")
-    placed = [row.at for row in rows] + [row.at for row in case.state.events("intubation")]
-    out = [row.at for row in case.state.events("extubation")]
-    out += [at for row in rows if (at := case.when(row.entry.get("removed"))) is not None]
-    last_in, last_out = max(placed, default=None), max(out, default=None)
-    entry = rows[-1].entry if rows else None
-    if last_in is None or (last_out is not None and last_out >= last_in):
-        return Tube(None, entry, last_out)
-    return Tube(last_in, entry, last_out)
+    extubations = [row.at for row in case.state.events("extubation")]
+    removals = [at for row in rows if (at := case.when(row.entry.get("removed"))) is not None]
+    out = [*extubations, *removals]
+    standing = [
+        row for row in rows if "removed" not in row.entry and not any(at > row.at for at in extubations)
+    ]
+    begun = [row.at for row in standing]
+    begun += [row.at for row in case.state.events("intubation") if not any(at >= row.at for at in out)]
+    entry = standing[-1].entry if standing else None
+    return Tube(max(begun, default=None), entry, max(out, default=None))
 
 
 def gcs_total(row: Row) -> int | None:

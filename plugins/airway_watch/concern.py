@@ -71,25 +71,29 @@ def _deciding(case: Case, found: tuple[Listed, ...]) -> list[Listed]:
 
 @dataclass(frozen=True, slots=True)
 class Review:
-    """What asks for a senior look: how soon, the entries that are met, and the last review."""
+    """What asks for a senior look: how soon, the entries that are met, what got worse, the last review."""
 
     flag: Flag
     rank: int | None
     met: tuple[tuple[str, Fact], ...]
     last: tuple[datetime, str] | None
+    worse: str
 
     def said(self) -> str:
-        """Return the entries as one phrase, what cannot wait first."""
+        """Return what got worse and the entries as one phrase, what cannot wait first."""
         ordered = sorted(self.met, key=lambda entry: entry[0] not in AT_ONCE)
-        return say.and_list(tuple(dict.fromkeys(fact.said for _, fact in ordered)))
+        worse = (f"worse at {self.worse}",) if self.worse else ()
+        return say.and_list((*worse, *dict.fromkeys(fact.said for _, fact in ordered)))
 
 
 def review(case: Case, found: tuple[Listed, ...]) -> Review:
     """Return how soon the published lists ask for a senior look at the airway."""
     met = {name: fact for listed in _deciding(case, found) for name, fact in listed.met}
     last = _last_review(case)
-    flag, rank = _urgency(case, found, last[0] if last else None) if met else (Flag.NONE, None)
-    return Review(flag, rank, tuple(met.items()), last)
+    reviewed, worse = last[0] if last else None, charted.worse_at(case)
+    flag, rank = _urgency(case, found, reviewed, worse) if met else (Flag.NONE, None)
+    newer = worse is not None and (reviewed is None or worse > reviewed)
+    return Review(flag, rank, tuple(met.items()), last, say.at(case, worse) if worse and newer else "")
 
 
 def _review(case: Case, run: Watch, found: tuple[Listed, ...]) -> Item:
@@ -131,14 +135,17 @@ def _last_review(case: Case) -> tuple[datetime, str] | None:
     return rows[-1].at, f"{say.at(case, rows[-1].at)}{who}" + (f": {said}" if said else "")
 
 
-def _urgency(case: Case, found: tuple[Listed, ...], reviewed: datetime | None) -> tuple[Flag, int]:
+def _urgency(
+    case: Case, found: tuple[Listed, ...], reviewed: datetime | None, worse: datetime | None
+) -> tuple[Flag, int]:
     specific = [
         entry
         for listed in _deciding(case, found)
         if listed.parameter.id != LESS_SPECIFIC
         for entry in listed.met
     ]
-    if any(name in AT_ONCE for name, _ in specific):
+    newer = worse is not None and (reviewed is None or worse > reviewed)
+    if newer or any(name in AT_ONCE for name, _ in specific):
         return Flag.ACTION, RANK
     everything = [entry for listed in _deciding(case, found) for entry in listed.met]
     if reviewed is not None and all(fact.since is None or fact.since <= reviewed for _, fact in everything):

@@ -10,12 +10,18 @@ from handoff.plugin import Case, child, joined, plural, words
 from . import charted
 
 FIRE = ("flame", "flash", "explosion")
+SMOKY = ("flame", "explosion")
+"""Fires that fill a closed space with smoke; an electrical or gas flash alone need not."""
+
 CLOSED = ("enclosed space", "vehicle")
 FACE = ("head", "head and neck", "whole body")
 NECK = ("neck", "head and neck", "whole body")
 DEEP = ("deep partial", "full thickness", "deeper than full thickness")
+SHALLOW = ("superficial partial", "mid partial")
 FULL = ("full thickness", "deeper than full thickness")
 COMFORT = "comfort care"
+CAUSE, SETTING, SMOKE = "cause of the burn", "enclosed space or open air", "smoke breathed or not"
+CAUSE_GAPS = (CAUSE, SETTING, f"{SETTING} and {SMOKE}")
 
 
 class Burn(Protocol):
@@ -52,6 +58,11 @@ class Exposure:
         return bool(self.reasons) and not self.comfort
 
     @property
+    def lethal_gap(self) -> bool:
+        """Whether nothing asks for the watch only because it is not recorded what burned, or where."""
+        return not self.reasons and not self.comfort and any(name in CAUSE_GAPS for name in self.missing)
+
+    @property
     def smoke_recorded(self) -> bool:
         """Whether smoke exposure is recorded."""
         return bool(self.smoke)
@@ -67,12 +78,15 @@ def exposure(case: Case) -> Exposure:
     reasons = list(smoke)
     if face or _special_face(case):
         reasons.append("burn of the face")
-    if neck:
-        reasons.append("burn of the neck")
+    # A shallow splash on the neck does not narrow the airway; a deep or encircling burn may.
+    if any(burn.circumferential or burn.depth not in SHALLOW for burn in neck):
+        reasons.append("burn of the neck, deep, encircling or of unknown depth")
     if found:
         reasons.append(f"{plural(len(found), 'airway sign')} present when last looked for")
-    if charted.levels(case) and not smoke:
-        reasons.append("carboxyhaemoglobin was measured")
+    limit = case.parameters.number(f"raised.{case.chosen('raised').name}")
+    # A blood gas prints the level of every patient: only a raised one asks for the watch.
+    if any(level.pct > limit for level in charted.levels(case)):
+        reasons.append("raised carboxyhaemoglobin")
     if charted.tube(case).in_place or charted.tube(case).extubated:
         reasons.append("tube in the airway, now or earlier")
     if child(case.block, "watch", "start") is not None:
@@ -87,7 +101,7 @@ def _smoke(case: Case) -> tuple[str, ...]:
         kind, setting = words(cause.get("kind")), words(cause.get("setting"))
         if words(cause.get("smoke")) == "yes":
             found.append("smoke breathed")
-        if kind in FIRE and (setting in CLOSED or words(cause.get("trapped")) == "yes"):
+        if kind in SMOKY and (setting in CLOSED or words(cause.get("trapped")) == "yes"):
             where = f"in {'a vehicle' if setting == 'vehicle' else 'an enclosed space'}"
             found.append(f"{kind} {where if setting in CLOSED else 'and trapped'}")
     return tuple(dict.fromkeys(found))
@@ -119,13 +133,13 @@ def _missing(case: Case) -> tuple[str, ...]:
     missing = []
     causes = charted.causes(case)
     if not causes:
-        missing.append("cause of the burn")
+        missing.append(CAUSE)
     for cause in causes:
         if words(cause.get("kind")) not in FIRE or words(cause.get("smoke")) in ("yes", "no"):
             continue
         gaps = [
             said
-            for key, said in (("setting", "enclosed space or open air"), ("smoke", "smoke breathed or not"))
+            for key, said in (("setting", SETTING), ("smoke", SMOKE))
             if words(cause.get(key)) in ("", "not known")
         ]
         if gaps:

@@ -134,7 +134,9 @@ def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
         said = f"about {number_text(value)} to {number_text(best)} mmHg"
     limits = [float(limit) for limit in case.parameters["berlin"].value]
     band = pf_range(value, limits)
-    low = formula.at_or_below(value, limits)
+    if band != pf_range(best, limits):
+        band += " or above it"
+    flag = _pf_flag(value, best, limits)
     sources = [case.parameters.source_of("berlin")] + ([given.source] if given.source else [])
     pao2_said = words(row.entry.get("pao2"))
     by = number_text(given.high / 100, 2)
@@ -146,8 +148,8 @@ def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
         value=value,
         unit="mmHg",
         as_of=row.at,
-        flag=Flag.ACTION if low is not None and low < max(limits) else Flag.NONE,
-        rank=RANK if low is not None and low < max(limits) else None,
+        flag=flag,
+        rank=RANK if flag is Flag.ACTION else None,
         system=System.BREATHING,
         working=Working(
             formula="arterial oxygen pressure / inspired oxygen fraction",
@@ -167,6 +169,14 @@ def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
         ),
         line=row.line,
     )
+
+
+def _pf_flag(lowest: float, highest: float, limits: list[float]) -> Flag:
+    """The two lower ranges ask for action; where only the cautious estimate lies there, for a look."""
+    middle = sorted(limits)[-2]
+    if highest <= middle:
+        return Flag.ACTION
+    return Flag.REVIEW if lowest <= middle else Flag.NONE
 
 
 def pf_range(value: float, limits: list[float]) -> str:
@@ -195,9 +205,9 @@ def _sf(case: Case, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
         return ()
     key, label = "sf_ratio", "S/F"
     pct = amount(reading.node, "%") or 0.0
-    given, missing = given_at(case, reading.at)
+    given, _ = given_at(case, reading.at)
     if given is None:
-        return (say.gap(key, label, missing, unit="1", system=System.BREATHING),)
+        return ()
     highest = case.parameters.number("sf.highest_spo2")
     value = formula.sf_ratio(pct, given.high, highest)
     sources = [case.parameters.source_of("sf.highest_spo2")] + ([given.source] if given.source else [])

@@ -26,8 +26,9 @@ from . import charted, formula, say
 ROOM_AIR = "room air"
 HYPERBARIC = "hyperbaric chamber"
 VENTILATOR = "ventilator"
+HIGH_FLOW = "high-flow nasal"
 OPEN_DEVICE = "The inspired oxygen is an estimate, so the ratio is too."
-SET_DEVICES = ("high-flow nasal", "CPAP", "BiPAP", VENTILATOR)
+SET_DEVICES = (HIGH_FLOW, "CPAP", "BiPAP", VENTILATOR)
 FULL, AIR, PART, CHAMBER, UNCHARTED = "100 % oxygen", "room air", "part oxygen", "hyperbaric", "not recorded"
 
 
@@ -73,7 +74,9 @@ def timeline(case: Case) -> tuple[Oxygen, ...]:
         if row.entry.get("fio2") is not None
     ]
     begun.sort(key=lambda part: part[:2])
-    extubated = charted.tube(case).extubated
+    tube = charted.tube(case)
+    changed = tube.since is not None and tube.since == tube.extubated
+    extubated = None if changed else tube.extubated
     found: list[Oxygen] = []
     for index, (at, _, device, entry) in enumerate(begun):
         following = begun[index + 1][0] if index + 1 < len(begun) else None
@@ -201,13 +204,13 @@ def _by_table(case: Case, part: Oxygen) -> tuple[Fraction | None, str]:
     title = str(parameter.value["title"])
     rows = parameter.value.get(part.device)
     if rows is None:
-        return None, f"the {title} has no {part.device}; chart the oxygen in % where it is measured"
+        return None, f"no {part.device} in the {title}; chart the oxygen in % where it is measured"
     if part.flow_l_min is None:
         return None, f"flow of the {part.device} since {say.at(case, part.start)}"
     pct = formula.fio2_range_pct(part.flow_l_min, rows)
     if pct is None:
         flow = with_unit(part.flow_l_min, "L/min", say.PLACES)
-        return None, f"the {title} has no {part.device} at {flow}"
+        return None, f"no {part.device} at {flow} in the {title}"
     return Fraction(pct[0], pct[1], True, title, parameter.source, part.said()), ""
 
 

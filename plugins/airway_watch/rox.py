@@ -9,11 +9,14 @@ from .oxygen import OPEN_DEVICE, Fraction
 
 
 def items(case: Case, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
-    """Return the index for an adult who breathes oxygen without a tube; ``doubt`` labels the saturation."""
+    """Return the index for an adult on high-flow nasal oxygen, the only device that it was derived on.
+
+    ``doubt`` labels the saturation that it is made from.
+    """
     if reading is None or charted.tube(case).in_place:
         return ()
     held = oxygen.holding(case, reading.at)
-    if held is None or held.device in (oxygen.ROOM_AIR, oxygen.VENTILATOR):
+    if held is None or held.device != oxygen.HIGH_FLOW:
         return ()
     key, label = "rox_index", "ROX index"
     age = case.state.age_at(case.now)
@@ -36,11 +39,10 @@ def _item(
     lower = case.parameters.number("rox.lower_risk")
     hours = case.hours_between(held.start, reading.at)
     said = f"{number_text(value, 2)} at {say.at(case, reading.at)}"
-    if held.device == "high-flow nasal":
-        passed = [limit for after, limit in case.parameters["rox.failure"].value if hours >= after]
-        said += f", {'at or above' if value >= lower else 'below'} {number_text(lower, 2)}"
-        if passed and value < passed[-1]:
-            said += f" and below {number_text(passed[-1], 2)}: tell the doctor"
+    passed = [limit for after, limit in case.parameters["rox.failure"].value if hours >= after]
+    said += f", {'at or above' if value >= lower else 'below'} {number_text(lower, 2)}"
+    if passed and value < passed[-1]:
+        said += f" and below {number_text(passed[-1], 2)}: tell the doctor"
     return say.fact(
         "rox_index",
         "ROX index",

@@ -23,7 +23,7 @@ from . import charted, say, timetable
 from .charted import Tube
 from .exposure import Exposure
 
-RANK = 11
+RANK, RANK_UNKNOWN = 11, 13
 
 
 @dataclass(frozen=True, slots=True)
@@ -119,6 +119,8 @@ def watch(case: Case, seen: Exposure) -> Watch:
     next_due: datetime | None = None
     every: timedelta | None = None
     missed: tuple[datetime, ...] = ()
+    if seen.watched and ended is None and start is None:
+        every = timedelta(minutes=schedule.phases[0][0])
     if seen.watched and ended is None and start is not None:
         counted = [charted.minutes(check - start) for check in checks if check >= start - early]
         now = charted.minutes(case.now - start)
@@ -181,11 +183,13 @@ def _why(seen: Exposure, run: Watch) -> Item:
         shown = f"asked for by {say.and_list(seen.reasons)}{missing}"
     else:
         shown = (
-            "not asked for by what is recorded: no smoke exposure, burn of face or neck, or airway sign"
-            f"{missing}"
+            "not asked for by what is recorded: no smoke exposure, burn of the face, "
+            f"deep burn of the neck, or airway sign{missing}"
         )
     flag = Flag.NOT_RECORDED if seen.missing and not seen.reasons else Flag.NONE
-    return say.fact("watch", "Airway watch", shown, as_of=run.start if seen.watched else None, flag=flag)
+    since = run.start if seen.watched else None
+    rank = RANK_UNKNOWN if seen.lethal_gap else None
+    return say.fact("watch", "Airway watch", shown, as_of=since, flag=flag, rank=rank)
 
 
 def _next(case: Case, seen: Exposure, run: Watch) -> Item:
