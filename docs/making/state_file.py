@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Callable, Iterator, Mapping
 from typing import Any, NamedTuple, TypeAlias
 
 from docs.making.text import code, codes, page, table
@@ -120,10 +120,7 @@ def _written(schema: Schema) -> str:
     if "then" in schema:
         both = [schema[branch] for branch in ("else", "then") if branch in schema]
         return " Or: ".join(_written(one) for one in both)
-    for matches, said in WAYS:
-        if matches(schema):
-            return said(schema)
-    return "Anything."
+    return next((said(schema) for matches, said in WAYS if matches(schema)), "Anything.")
 
 
 def _quantity(schema: Schema) -> str:
@@ -180,7 +177,7 @@ def _object(schema: Schema) -> str:
     return f"A group{' by name' if named else ''}. {CARRIES if _is_entry(schema) else ''}".strip()
 
 
-WAYS: tuple[tuple[Any, Any], ...] = (
+WAYS: tuple[tuple[Callable[[Schema], bool], Callable[[Schema], str]], ...] = (
     (lambda schema: "enum" in schema, lambda schema: f"One of {codes(schema['enum'])}."),
     (lambda schema: "x-quantity" in schema, _quantity),
     (lambda schema: "x-instant" in schema, _instant),

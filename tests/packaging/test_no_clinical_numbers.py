@@ -19,11 +19,11 @@ ROUNDING = 1e-9
 
 IN_A_FORMULA = {0, 1, 100, ROUNDING, *CONVERSIONS}
 ANYWHERE = {*IN_A_FORMULA, 2}
-OF_THE_PAGE = re.compile(
-    r"RANK|PLACES|TREND|SHOWN|EARLIER|BACK|LETTERS|WIDTH|LONGEST|BYTES|BOXES|ALIKE|"
+NOT_OF_THE_PATIENT = re.compile(
+    r"RANK|PLACES|TREND|SHOWN|EARLIER|BACK|LETTERS|WIDTH|LONGEST|BYTES|BOXES|ALIKE|TRIES|PAUSE|AFTER_S|"
     r"MOST_(ACTIONS|TASKS|DUE|FAULTS|LINES)"
 )
-"""Names of numbers that are about the page and not about the patient."""
+"""Names of numbers that are about the page or the machine, and not about the patient."""
 
 IN_A_NAMED_FORMULA: dict[str, dict[float, str]] = {
     "plugins/airway_watch/formula.py": {7.50062: "mmHg in a kPa", 2: "a half-life halves"},
@@ -38,6 +38,13 @@ LAYOUT = (
 """Measures of paper and type, in the units of the page."""
 
 EXCEPTIONS: dict[str, dict[float, str]] = {
+    "handoff/chart/charting.py": {1_000_000: "bytes in a megabyte"},
+    "handoff/chart/locking.py": {0o600: "rights of a file", 8: "bytes of a random word"},
+    "handoff/chart/phrases.py": {
+        3: "words at most, weights",
+        4: "weight of a word",
+        0.7: "likeness of names",
+    },
     "handoff/cli/working.py": {3: "names offered", 0.4: "likeness of names"},
     "handoff/document/finish.py": {1980: "the oldest year that a zip file knows"},
     "handoff/document/printable.py": {0xFFFE: "code point", 0xFDD0: "code point", 0xFDEF: "code point"},
@@ -119,5 +126,5 @@ def places_in(node: ast.AST) -> Iterator[ast.AST]:
         yield node
     elif isinstance(node, ast.Assign):
         names = [below.id for to in node.targets for below in ast.walk(to) if isinstance(below, ast.Name)]
-        if names and all(OF_THE_PAGE.search(name) for name in names):
+        if names and all(NOT_OF_THE_PATIENT.search(name) for name in names):
             yield node.value

@@ -14,7 +14,7 @@ HELD = (
     "handoff/**.py",
     "handoff/py.typed",
     "handoff/document/templates/*.docx",
-    "handoff/bundled/*/schema.json",
+    "handoff/bundled/*/*.json",
     "handoff/bundled/*/*.yaml",
     "handoff/bundled/*/README.md",
     "handoff/schemas/*.schema.json",
