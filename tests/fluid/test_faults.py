@@ -103,7 +103,7 @@ def test_two_orders_at_one_minute_are_refused_and_a_struck_one_is_not_counted() 
         (burned(given=[{"at": "2026-03-14 13:00", "volume": "1 mL", "purpose": "oral"}]), "is later than"),
         (burned(given=[{"at": GIVEN, "volume": "500", "purpose": "oral"}]), "no unit"),
         (
-            burned(given=[{"at": GIVEN, "volume": "500 mL", "purpose": "resus"}]),
+            burned(given=[{"at": GIVEN, "volume": "500 mL", "purpose": "resuscitatoin"}]),
             "did you mean 'resuscitation'",
         ),
         (burned(given=[{"at": GIVEN, "volum": "500 mL", "purpose": "oral"}]), "did you mean 'volume'"),

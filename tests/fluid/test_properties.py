@@ -76,7 +76,8 @@ def test_more_burn_weight_or_coefficient_never_lowers_a_volume(
         "pct": (kg, min(100, pct + 7.3), ml),
         "coefficient": (kg, pct, ml + 1.1),
     }
-    after = volumes(*(round(part, 4) for part in grown[more]), at)
+    more_kg, more_pct, more_ml = (round(part, 4) for part in grown[more])
+    after = volumes(more_kg, more_pct, more_ml, at)
     assert all(new >= old for new, old in zip(after, before, strict=True))
 
 

@@ -2,15 +2,17 @@
 
 from __future__ import annotations
 
+import importlib
 from typing import Any
 
 import pytest
 import yaml
-from handoff.bundled.fluid import formula, plugin
 
 from handoff.registry import part_of
 
-from .build import burned, computed, faults, item, order
+from .build import bundled, burned, computed, faults, item, order
+
+formula = importlib.import_module("handoff.bundled.fluid.formula")
 
 
 def charted(kg: str, born: str, **patient: Any) -> list[str]:
@@ -73,7 +75,7 @@ def test_without_an_age_no_table_is_applied() -> None:
 
 
 def tables() -> list[tuple[str, dict[str, Any]]]:
-    data = yaml.safe_load(part_of(plugin, "parameters.yaml") or "")
+    data = yaml.safe_load(part_of(bundled("fluid"), "parameters.yaml") or "")
     return [
         (name, entry["value"])
         for name, entry in data["parameters"].items()
@@ -84,8 +86,6 @@ def tables() -> list[tuple[str, dict[str, Any]]]:
 def test_every_kept_value_is_that_of_the_published_table() -> None:
     """The whole tables are carried by a package of the registry; it is needed here only."""
     by_day = pytest.importorskip("pygrowup.tables.by_day.wfa")
-    import importlib
-
     modules = {
         ("weight_for_age", "2006"): by_day,
         ("weight_for_age", "2007"): importlib.import_module("pygrowup.tables.by_month.wfa"),
