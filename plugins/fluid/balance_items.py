@@ -129,7 +129,7 @@ def _between(course: Course, key: str, label: str, start: datetime) -> Item:
 
 
 def _maintenance(course: Course) -> Item:
-    key, label = "maintenance_rate", "Child maintenance, beside the burn fluid, formula estimate"
+    key, label = "maintenance_rate", "Child maintenance, beside the burn fluid"
     rule = course.case.chosen("maintenance_for").name
     picked = pick(course.case.parameters[f"maintenance_for.{rule}"].value, course.facts)
     rule_source = course.source(f"maintenance_for.{rule}")

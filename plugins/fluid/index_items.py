@@ -196,4 +196,5 @@ def _per_kg(course: Course) -> Item:
             inputs=(weight.input,),
         ),
         sources=(course.source("line.per_kg"),),
+        detail=value < line,
     )

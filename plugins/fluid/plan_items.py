@@ -10,8 +10,8 @@ from .plan import Plan
 from .rules import NoVolume, Volume
 from .say import absent, figure, inputs_of, ml, ml_h, once, span, unflagged, why_not
 
-TOTAL = ("total_24h", "Resuscitation fluid in 24 h, formula estimate")
-FIRST = ("first_8h", "First 8 h from the burn, formula estimate")
+TOTAL = ("total_24h", "Resuscitation fluid in 24 h")
+FIRST = ("first_8h", "First 8 h from the burn")
 
 
 def items(course: Course) -> tuple[Item, ...]:

@@ -11,8 +11,8 @@ from .plan import Plan
 from .plan_items import inputs, no_figure, range_said, weight_caution
 from .say import figure, ml, ml_h, once, span, unflagged
 
-RATE = ("rate_now", "Planned rate now, formula estimate")
-DUE = ("due_by_now", "Due by now, formula estimate")
+RATE = ("rate_now", "Planned rate now")
+DUE = ("due_by_now", "Due by now")
 RANK_NO_ORDER = 34
 
 

@@ -12,7 +12,7 @@ from .say import absent, figure, ml, ml_h, span, unflagged, why_not
 
 HOUR = timedelta(hours=1)
 HOURS_A_DAY = 24
-KEY, LABEL = "second_day_colloid", "Colloid of the second 24 h by the printed bands, formula estimate"
+KEY, LABEL = "second_day_colloid", "Colloid of the second 24 h by the printed bands"
 
 
 def items(course: Course) -> tuple[Item, ...]:
@@ -53,7 +53,7 @@ def _colloid(course: Course) -> Item:
         LABEL,
         value=volumes[0] if len(volumes) == 1 else None,
         unit="mL",
-        shown=f"{said} in 24 h, {rates}{overlap}; confirm with prescriber",
+        shown=f"{said} in 24 h, {rates}{overlap} (formula estimate); confirm with prescriber",
         working=Working(
             formula="mL/kg/% of the band x weight x burned area",
             sum=f"{values} x {weight.name} x {number_text(pct, 2)} % = {said}",

@@ -63,7 +63,7 @@ def _rate(course: Course) -> Item:
         shown=f"{ml_kg_h(value)} ({last.shown()}){against}{_trend(course, used.kg)}{_not_since(course)}",
         as_of=last.at,
         flag=_flag(course, judged),
-        rank=RANK_LOW if _flag(course, judged) is Flag.ACTION else None,
+        rank=RANK_LOW if judged == "below" and _flag(course, judged) is not Flag.NONE else None,
         working=Working(
             formula="urine / weight / hours over which it was collected",
             sum=(
