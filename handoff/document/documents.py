@@ -8,10 +8,12 @@ from handoff.document.changes import Changes
 from handoff.document.context import Data, context
 from handoff.document.finish import Properties, finish
 from handoff.document.handover import handover
+from handoff.document.note import Note
 from handoff.document.paper import Page
 
 HANDOVER = "handover.docx"
 CARE_PLAN = "care-plan.docx"
+NOTE = "note.docx"
 
 
 def draft(assessment: Assessment, stem: str, changes: Changes | None = None) -> dict[str, bytes]:
@@ -30,11 +32,18 @@ def draft(assessment: Assessment, stem: str, changes: Changes | None = None) -> 
     policy = assessment.policy
     turned = policy.care_plan_orientation == "landscape"
     return {
-        f"{stem}-{HANDOVER}": _made(HANDOVER, context(handover(assessment, changes)), assessment, Page(policy.paper)),
+        f"{stem}-{HANDOVER}": _made(
+            HANDOVER, context(handover(assessment, changes)), assessment, Page(policy.paper)
+        ),
         f"{stem}-{CARE_PLAN}": _made(
             CARE_PLAN, context(care_plan(assessment)), assessment, Page(policy.paper, turned)
         ),
     }
+
+
+def note_document(note: Note, assessment: Assessment) -> bytes:
+    """Return the nursing note as a Word file; raises as :func:`draft`."""
+    return _made(NOTE, context(note), assessment, Page(assessment.policy.paper))
 
 
 def _made(template: str, data: dict[str, Data], assessment: Assessment, page: Page) -> bytes:

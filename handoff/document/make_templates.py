@@ -18,7 +18,7 @@ from docx.oxml.ns import qn
 from docx.shared import Twips
 
 from handoff.document.finish import TOOL, repacked
-from handoff.document.making import care_plan_template, handover_template
+from handoff.document.making import care_plan_template, handover_template, note_template
 from handoff.document.making.handover_parts import WIDTH
 from handoff.document.making.shared import page_footer, page_header
 from handoff.document.making.styles import styles_xml
@@ -39,6 +39,7 @@ def make_all() -> dict[str, bytes]:
     """Return the built-in templates by file name."""
     return {
         "handover.docx": make(handover_template.body(), WIDTH, landscape=False),
+        "note.docx": make(note_template.body(), note_template.WIDTH, landscape=False),
         "care-plan.docx": make(care_plan_template.body(), care_plan_template.WIDTH, landscape=True),
     }
 
