@@ -9,6 +9,7 @@ from handoff.cli.check import check
 from handoff.cli.demo import demo
 from handoff.cli.draft import draft
 from handoff.cli.due import due
+from handoff.cli.note import note
 from handoff.cli.plugins import plugins
 from handoff.cli.schema import schema
 from handoff.cli.show import show
@@ -23,7 +24,7 @@ app = typer.Typer(
     pretty_exceptions_enable=False,
     add_completion=True,
 )
-for command in (demo, chart, check, draft, due, show, since, working, plugins, schema):
+for command in (demo, chart, check, draft, due, show, since, note, working, plugins, schema):
     app.command()(command)
 
 
