@@ -79,7 +79,7 @@ def exposure(case: Case) -> Exposure:
     if face or _special_face(case):
         reasons.append("burn of the face")
     # A shallow splash on the neck does not narrow the airway; a deep or encircling burn may.
-    if any(burn.circumferential or burn.depth not in SHALLOW for burn in neck):
+    if neck and (_encircled(case) or any(burn.depth not in SHALLOW for burn in neck)):
         reasons.append("burn of the neck, deep, encircling or of unknown depth")
     if found:
         reasons.append(f"{plural(len(found), 'airway sign')} present when last looked for")
@@ -127,6 +127,12 @@ def counted_pct(case: Case) -> float | None:
 def _special_face(case: Case) -> bool:
     sites = case.findings["area"].values.get("special_sites") if "area" in case.findings else None
     return isinstance(sites, tuple) and "face" in [str(site) for site in sites]
+
+
+def _encircled(case: Case) -> bool:
+    """Whether the burn goes round the neck, or nearly so."""
+    regions = case.findings["area"].values.get("circumferential_regions") if "area" in case.findings else None
+    return isinstance(regions, tuple) and any(region in NECK for region in regions)
 
 
 def _missing(case: Case) -> tuple[str, ...]:

@@ -27,6 +27,12 @@ def _within(value: float, name: str, low: float, high: float) -> float:
     return value
 
 
+def _share_pct(value: float, name: str) -> float:
+    if _positive(value, name) > 100:
+        raise FormulaInputError(f"{name} must not be above 100 %")
+    return value
+
+
 def _halvings(minutes: Sequence[float], half_lives_min: Sequence[float]) -> float:
     if len(minutes) != len(half_lives_min):
         raise FormulaInputError("each stretch of time needs one half-life")
@@ -99,11 +105,7 @@ def pf_ratio_mmhg(pao2_mmhg: float, fio2_pct: float) -> float:
     Raises:
         FormulaInputError: A value is outside its range.
     """
-    return (
-        _positive(pao2_mmhg, "oxygen pressure")
-        * 100
-        / _within(_positive(fio2_pct, "oxygen"), "oxygen", 0, 100)
-    )
+    return _positive(pao2_mmhg, "oxygen pressure") * 100 / _share_pct(fio2_pct, "oxygen")
 
 
 def room_air_equivalent_mmhg(pf_mmhg: float, room_air_pct: float) -> float:
@@ -116,7 +118,7 @@ def room_air_equivalent_mmhg(pf_mmhg: float, room_air_pct: float) -> float:
     Raises:
         FormulaInputError: A value is outside its range.
     """
-    return _positive(pf_mmhg, "P/F") * _within(room_air_pct, "oxygen", 0, 100) / 100
+    return _positive(pf_mmhg, "P/F") * _share_pct(room_air_pct, "oxygen") / 100
 
 
 def kilopascals(mmhg: float) -> float:
@@ -153,8 +155,8 @@ def sf_ratio(spo2_pct: float, fio2_pct: float, highest_spo2_pct: float) -> float
     Raises:
         FormulaInputError: A value is outside its range.
     """
-    _within(_positive(spo2_pct, "saturation"), "saturation", 0, 100)
-    _within(_positive(fio2_pct, "oxygen"), "oxygen", 0, 100)
+    _share_pct(spo2_pct, "saturation")
+    _share_pct(fio2_pct, "oxygen")
     return None if spo2_pct > highest_spo2_pct else spo2_pct * 100 / fio2_pct
 
 
@@ -197,8 +199,8 @@ def rox_index(spo2_pct: float, fio2_pct: float, breaths_per_min: float) -> float
     Raises:
         FormulaInputError: A value is outside its range.
     """
-    _within(_positive(spo2_pct, "saturation"), "saturation", 0, 100)
-    _within(_positive(fio2_pct, "oxygen"), "oxygen", 0, 100)
+    _share_pct(spo2_pct, "saturation")
+    _share_pct(fio2_pct, "oxygen")
     return spo2_pct * 100 / fio2_pct / _positive(breaths_per_min, "breaths")
 
 
