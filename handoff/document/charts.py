@@ -51,11 +51,11 @@ def burns(assessment: Assessment) -> tuple[Burn, ...]:
             region=sentence(", ".join(str(part) for part in (region, face) if part)),
             depth=str(depth or NOT_RECORDED),
             share=_amount(share, AREA_PLACES),
-            counted=_COUNTED[counted],
+            counted=_COUNTED[counted if isinstance(counted, bool) else None],
             around=_yes_no(around),
             line=str(line or ""),
         )
-        for region, face, depth, share, counted, around, line in _rows(assessment, BURNS)[0]
+        for region, face, depth, share, counted, around, line in rows(assessment, BURNS)[0]
     )
 
 
@@ -71,7 +71,7 @@ def hours(assessment: Assessment) -> tuple[Hour, ...]:
             not_confirmed=_amount(unsure),
             urine=str(urine_text or _amount(urine)),
         )
-        for hour, start, due, given, unsure, urine, urine_text in _rows(assessment, HOURS)[0]
+        for hour, start, due, given, unsure, urine, urine_text in rows(assessment, HOURS)[0]
     )
 
 
@@ -79,7 +79,7 @@ def lost_tables(assessment: Assessment) -> tuple[str, ...]:
     """Return one line for each table whose rows were passed on in a form that cannot be printed."""
     found = []
     for table in COLUMNS:
-        count = _rows(assessment, table)[1]
+        count = rows(assessment, table)[1]
         if count:
             found.append(
                 f"table '{table[1]}' of the plugin '{table[0]}': {plural(count, 'row')} cannot be printed"
@@ -87,17 +87,17 @@ def lost_tables(assessment: Assessment) -> tuple[str, ...]:
     return tuple(found)
 
 
-def _rows(assessment: Assessment, table: tuple[str, str]) -> tuple[list[Sequence[object]], int]:
-    """Return the rows that can be printed, and how many cannot."""
+def rows(assessment: Assessment, table: tuple[str, str]) -> tuple[list[Sequence[object]], int]:
+    """Return the rows of a table that can be printed, and how many cannot."""
     plugin, key = table
     found = assessment.findings.get(plugin)
-    rows = found.values.get(key, ()) if found else ()
-    if not isinstance(rows, (tuple, list)):
+    passed = found.values.get(key, ()) if found else ()
+    if not isinstance(passed, (tuple, list)):
         return [], 1
     kept: list[Sequence[object]] = [
-        row for row in rows if isinstance(row, (tuple, list)) and len(row) == COLUMNS[table]
+        row for row in passed if isinstance(row, (tuple, list)) and len(row) == COLUMNS[table]
     ]
-    return kept, len(rows) - len(kept)
+    return kept, len(passed) - len(kept)
 
 
 def _amount(value: object, places: int = 0) -> str:

@@ -6,6 +6,7 @@ from handoff.assess import Assessment
 from handoff.document.care_plan import care_plan
 from handoff.document.changes import Changes
 from handoff.document.context import Data, context
+from handoff.document.figures import drawings
 from handoff.document.finish import Properties, finish
 from handoff.document.handover import handover
 from handoff.document.note import Note
@@ -55,7 +56,7 @@ def _made(template: str, data: dict[str, Data], assessment: Assessment, page: Pa
     frame = data["frame"]
     title = f"{frame['title']}, made at {frame['made_at']}" if isinstance(frame, dict) else template
     properties = Properties(title, assessment.now, assessment.state.digest)
-    content = finish(filled.template.docx, properties, page)
+    content = finish(filled.template.docx, properties, page, drawings(data))
     check_printed(content, filled.printed, data)
     check_marks(content, data)
     return content

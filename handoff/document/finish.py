@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from datetime import UTC, datetime
 from io import BytesIO
@@ -10,7 +10,7 @@ from itertools import count
 from typing import Any
 from zipfile import ZIP_DEFLATED, ZipFile, ZipInfo
 
-from handoff.document.names import DRAWING, WORD, WORD_2010, XML
+from handoff.document.names import DRAWING, SHAPE, WORD, WORD_2010, XML
 from handoff.document.paper import Page, fit
 
 TOOL = "handoff"
@@ -30,14 +30,20 @@ class Properties:
     digest: str
 
 
-def finish(document: Any, properties: Properties, page: Page) -> bytes:
-    """Return the filled python-docx ``document`` as the bytes of a .docx file."""
+def finish(
+    document: Any, properties: Properties, page: Page, drawings: Mapping[str, str] | None = None
+) -> bytes:
+    """Return the filled python-docx ``document`` as the bytes of a .docx file.
+
+    ``drawings`` holds runs by the tag of the content control into which each is put.
+    """
     _drop_unwanted(document.part)
     roots = list(_roots(document.part))
     fit(roots, page)
     for root in roots:
         _keep_spaces(root)
     _bookmark_rows(document.part.element)
+    _draw(document.part.element, drawings or {})
     _renumber(roots)
     _describe(document.core_properties, properties)
     saved = BytesIO()
@@ -77,6 +83,22 @@ def _bookmark_rows(body: Any) -> None:
             control.addnext(control.makeelement(f"{WORD}bookmarkEnd", identifier))
 
 
+def _draw(body: Any, drawings: Mapping[str, str]) -> None:
+    """Put each drawing in the place of what its content control holds."""
+    from lxml import etree  # noqa: PLC0415 (heavy: loaded when a document is made)
+
+    for control in list(body.iter(f"{WORD}sdt")):
+        tag = control.find(f"{WORD}sdtPr/{WORD}tag")
+        run = drawings.get("" if tag is None else tag.get(f"{WORD}val", ""))
+        content = control.find(f"{WORD}sdtContent")
+        if run is None or content is None:
+            continue
+        place = next(content.iter(f"{WORD}p"), content)
+        for old in place.findall(f"{WORD}r"):
+            place.remove(old)
+        place.append(etree.fromstring(run))
+
+
 def _renumber(roots: list[Any]) -> None:
     """Give every content control, bookmark, drawing and paragraph a number of its own."""
     controls, drawings, paragraphs = count(1), count(1), count(1)
@@ -84,7 +106,7 @@ def _renumber(roots: list[Any]) -> None:
         for node in root.iter():
             if node.tag == f"{WORD}sdtPr":
                 _set_control_id(node, next(controls))
-            elif node.tag == f"{DRAWING}docPr":
+            elif node.tag in (f"{DRAWING}docPr", f"{SHAPE}cNvPr"):
                 node.set("id", str(next(drawings)))
             if f"{WORD_2010}paraId" in node.attrib:
                 node.set(f"{WORD_2010}paraId", f"{next(paragraphs):08X}")

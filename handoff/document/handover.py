@@ -9,6 +9,7 @@ from handoff.assess import Assessment
 from handoff.document.appendix import Appendix, appendix
 from handoff.document.changes import Changes
 from handoff.document.charts import Burn, Hour, burns, hours, lost_tables
+from handoff.document.figures import Figures, figures
 from handoff.document.identity import Frame, Identity, frame, identity, person
 from handoff.document.page_one import PageOne, page_one
 from handoff.document.schedule import Shift
@@ -93,6 +94,7 @@ class Handover:
     checks: tuple[Check, ...]
     burns: tuple[Burn, ...]
     hours: tuple[Hour, ...]
+    figures: Figures
     appendix: Appendix
 
 
@@ -126,6 +128,7 @@ def handover(assessment: Assessment, changes: Changes | None = None) -> Handover
         checks=tuple(Check(text, Mark(f"check:{name}")) for name, text in BEDSIDE_CHECKS),
         burns=burns(assessment),
         hours=hours(assessment),
+        figures=figures(assessment),
         appendix=appendix(assessment),
     )
 

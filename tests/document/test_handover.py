@@ -21,7 +21,7 @@ def test_headings_of_the_first_level_are_the_four_parts_then_tables_and_appendix
         "Background",
         "Assessment",
         "Recommendation",
-        "Burn and fluid tables",
+        "Burn chart, fluid and trends",
         "Working and sources",
         "Not recorded",
     ]
@@ -183,7 +183,7 @@ def test_a_table_that_is_not_as_agreed_is_named_at_the_top_and_the_document_is_m
         name: replace(found, values={"burns": 3, "hours": ("x",)}) for name, found in given.findings.items()
     }
     content = made(replace(given, findings=broken))
-    assert "Burn and fluid tables" not in headings(content, 1)
+    assert "Burned regions" not in headings(content, 2)
     assert "table 'hours' of the plugin 'fluid': 1 row cannot be printed" in text_of(content)
 
 

@@ -3,25 +3,60 @@
 from __future__ import annotations
 
 from handoff.document.making.handover_parts import values
-from handoff.document.making.markup import Column, column, listing, paragraph, run, when
+from handoff.document.making.markup import (
+    Column,
+    column,
+    each,
+    listing,
+    marked,
+    paragraph,
+    run,
+    when,
+)
 from handoff.document.making.shared import sources
 
 NEXT_PAGE = "<w:pageBreakBefore/>"
 
 
 def charts() -> str:
-    """Return the burn table and the fluid table, on a page of their own."""
+    """Return the figures with their tables, on pages of their own, and what is not drawn."""
     said = "Due is a formula estimate. Given is what was confirmed; what was not seen running stands apart."
-    return when(
-        "burns or hours",
-        paragraph("Heading1", "Burn and fluid tables", extra=NEXT_PAGE),
-        when("burns", paragraph("Heading2", "Burned regions"), _burns()),
-        when(
-            "hours",
-            paragraph("Heading2", "Resuscitation fluid and urine by the hour since the burn"),
-            _hours(),
-            paragraph("Small", said),
-        ),
+    title = "Burn chart, fluid and trends"
+    some = "burns or hours or figures.trends"
+    return "".join(
+        (
+            when(some, paragraph("Heading1", title, extra=NEXT_PAGE)),
+            when(f"not ({some})", paragraph("Heading1", title)),
+            when("burns", paragraph("Heading2", "Burned regions"), _drawn("figures.body"), _burns()),
+            when(
+                "hours",
+                paragraph("Heading2", "Resuscitation fluid and urine by the hour since the burn"),
+                _drawn("figures.fluid"),
+                _hours(),
+                paragraph("Small", said),
+            ),
+            when(
+                "figures.trends",
+                paragraph("Heading2", "Trends"),
+                _drawn("figures.trends"),
+                each("line in figures.trend_lines", paragraph("Small", "{{ line }}")),
+            ),
+            each(
+                "line in figures.not_drawn",
+                paragraph("Missing", run("Not drawn: ", "Strong"), run("{{ line }}")),
+            ),
+        )
+    )
+
+
+def _drawn(name: str) -> str:
+    """A drawing, put into its content control when the document is finished, and the lines below it."""
+    place = marked("{{ figure.drawing }}", "{{ figure.title }}", run("[drawing]"))
+    return each(
+        f"figure in {name}",
+        paragraph("Normal", place, extra="<w:keepNext/>"),
+        each("note in figure.notes", paragraph("Small", "{{ note }}")),
+        paragraph("Gap"),
     )
 
 
