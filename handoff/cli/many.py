@@ -49,14 +49,19 @@ def unread_lines(unread: Sequence[Unread]) -> list[str]:
     return list(dict.fromkeys(line for one in unread for line in one.lines))
 
 
-def leave_many(read: Sequence[Read[Patient[T]]], unread: Sequence[Unread]) -> NoReturn:
-    """Say what is missing from the list and leave with exit code 1 (a file), 3 (a figure) or 0."""
-    lost = [f"not computed: {one.made.said}: {line}" for one in read for line in one.made.lost]
-    for line in lost:
-        complain(line)
+def lost_lines(read: Sequence[Read[Patient[T]]]) -> list[str]:
+    """Return what could not be computed and for whom, one line each."""
+    return [f"{one.made.said}: {line}" for one in read for line in one.made.lost]
+
+
+def leave_many(read: Sequence[Read[Patient[T]]], unread: Sequence[Unread], said: bool = False) -> NoReturn:
+    """Say what is missing from the list, unless ``said``, and leave with exit code 1 (a file), 3 (a figure) or 0."""
+    lost = lost_lines(read)
+    for line in () if said else lost:
+        complain(f"not computed: {line}")
     if unread and not read and all(one.usage for one in unread):
         stop(Exit.USAGE, *unread_lines(unread))
-    if unread:
+    if unread and not said:
         many = "files" if len(unread) > 1 else "file"
         complain(f"{len(unread)} {many} could not be read and stand in no list above:")
         for line in unread_lines(unread):

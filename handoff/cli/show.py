@@ -2,14 +2,12 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING, Annotated
+from typing import Annotated
 
 import typer
 
+from handoff.cli.console import draw
 from handoff.cli.edge import AtOption, BundledOption, FileArgument, PolicyOption, assessed, leave, say, who
-
-if TYPE_CHECKING:
-    from handoff.assess import Assessment
 
 JsonOption = Annotated[bool, typer.Option("--json", help="Print the same JSON as items.json")]
 
@@ -31,22 +29,8 @@ def show(
 
         typer.echo(as_json(assessment).encode(), nl=False)  # bytes, so that no console changes the line ends
     else:
+        from handoff.shift.screen import print_screen
+
         say(who(assessment.state))
-        _print(assessment)
+        draw(lambda console: print_screen(assessment, console))
     leave(assessment)
-
-
-def _print(assessment: Assessment) -> None:
-    from rich.console import Console
-
-    from handoff.shift.screen import print_screen, width_for
-
-    console = Console(markup=False, emoji=False, highlight=False)
-    console.width = width_for(console)
-    if console.is_terminal:
-        print_screen(assessment, console)
-        return
-    with console.capture() as captured:
-        print_screen(assessment, console)
-    for line in captured.get().splitlines():
-        say(line.rstrip())

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from datetime import datetime
+
 from handoff.assess import Assessment
 from handoff.document.care_plan import care_plan
 from handoff.document.changes import Changes
@@ -11,10 +13,12 @@ from handoff.document.finish import Properties, finish
 from handoff.document.handover import handover
 from handoff.document.note import Note
 from handoff.document.paper import Page
+from handoff.document.ward import Ward
 
 HANDOVER = "handover.docx"
 CARE_PLAN = "care-plan.docx"
 NOTE = "note.docx"
+WARD = "ward.docx"
 
 
 def draft(assessment: Assessment, stem: str, changes: Changes | None = None) -> dict[str, bytes]:
@@ -33,10 +37,10 @@ def draft(assessment: Assessment, stem: str, changes: Changes | None = None) -> 
     policy = assessment.policy
     turned = policy.care_plan_orientation == "landscape"
     return {
-        f"{stem}-{HANDOVER}": _made(
+        f"{stem}-{HANDOVER}": _of_patient(
             HANDOVER, context(handover(assessment, changes)), assessment, Page(policy.paper)
         ),
-        f"{stem}-{CARE_PLAN}": _made(
+        f"{stem}-{CARE_PLAN}": _of_patient(
             CARE_PLAN, context(care_plan(assessment)), assessment, Page(policy.paper, turned)
         ),
     }
@@ -44,10 +48,19 @@ def draft(assessment: Assessment, stem: str, changes: Changes | None = None) -> 
 
 def note_document(note: Note, assessment: Assessment) -> bytes:
     """Return the nursing note as a Word file; raises as :func:`draft`."""
-    return _made(NOTE, context(note), assessment, Page(assessment.policy.paper))
+    return _of_patient(NOTE, context(note), assessment, Page(assessment.policy.paper))
 
 
-def _made(template: str, data: dict[str, Data], assessment: Assessment, page: Page) -> bytes:
+def ward_document(ward: Ward, made_at: datetime, digest: str, paper: str) -> bytes:
+    """Return the page of a ward as a Word file on ``paper``; raises as :func:`draft`."""
+    return _made(WARD, context(ward), made_at, digest, Page(paper, landscape=True))
+
+
+def _of_patient(template: str, data: dict[str, Data], assessment: Assessment, page: Page) -> bytes:
+    return _made(template, data, assessment.now, assessment.state.digest, page)
+
+
+def _made(template: str, data: dict[str, Data], made_at: datetime, digest: str, page: Page) -> bytes:
     # The Word libraries are heavy; whoever only needs the sections or the references does not load them.
     from handoff.document.read_back import check_marks, check_printed  # noqa: PLC0415
     from handoff.document.render import fill, template_bytes  # noqa: PLC0415
@@ -55,7 +68,7 @@ def _made(template: str, data: dict[str, Data], assessment: Assessment, page: Pa
     filled = fill(template_bytes(template), template, data)
     frame = data["frame"]
     title = f"{frame['title']}, made at {frame['made_at']}" if isinstance(frame, dict) else template
-    properties = Properties(title, assessment.now, assessment.state.digest)
+    properties = Properties(title, made_at, digest)
     content = finish(filled.template.docx, properties, page, drawings(data))
     check_printed(content, filled.printed, data)
     check_marks(content, data)

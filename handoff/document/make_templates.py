@@ -18,7 +18,7 @@ from docx.oxml.ns import qn
 from docx.shared import Twips
 
 from handoff.document.finish import TOOL, repacked
-from handoff.document.making import care_plan_template, handover_template, note_template
+from handoff.document.making import care_plan_template, handover_template, note_template, ward_template
 from handoff.document.making.handover_parts import WIDTH
 from handoff.document.making.shared import page_footer, page_header
 from handoff.document.making.styles import styles_xml
@@ -40,12 +40,22 @@ def make_all() -> dict[str, bytes]:
     return {
         "handover.docx": make(handover_template.body(), WIDTH, landscape=False),
         "note.docx": make(note_template.body(), note_template.WIDTH, landscape=False),
+        "ward.docx": make(
+            ward_template.body(),
+            ward_template.WIDTH,
+            landscape=True,
+            header=ward_template.header(),
+            footer=ward_template.footer(),
+        ),
         "care-plan.docx": make(care_plan_template.body(), care_plan_template.WIDTH, landscape=True),
     }
 
 
-def make(body: str, width: int, *, landscape: bool) -> bytes:
-    """Return a template with that body, ``width`` twentieths of a point wide, as the bytes of a .docx file."""
+def make(body: str, width: int, *, landscape: bool, header: str = "", footer: str = "") -> bytes:
+    """Return a template with that body, ``width`` twentieths of a point wide, as the bytes of a .docx file.
+
+    Without a ``header`` and a ``footer`` of its own, every page names the patient.
+    """
     document = Document()
     part = document.part
     _keep_only(part, KEPT)
@@ -54,7 +64,10 @@ def make(body: str, width: int, *, landscape: bool) -> bytes:
     _set_page(document.sections[0], landscape)
     _set_settings(document.settings.element)
     section = document.sections[0]
-    for place, text in ((section.header, page_header(width)), (section.footer, page_footer(width))):
+    for place, text in (
+        (section.header, header or page_header(width)),
+        (section.footer, footer or page_footer(width)),
+    ):
         place.is_linked_to_previous = False
         _replace_children(place._element, parse_xml(f"<w:hdr {NAMESPACES}>{text}</w:hdr>"))
     last = document.element.body[-1]

@@ -27,7 +27,7 @@ def page_header(width: int) -> str:
         run("   {{ frame.born }}   {{ frame.numbers }}"),
         tab(),
         run("{{ frame.title }}"),
-        extra=_right_tab(width),
+        extra=right_tab(width),
     )
 
 
@@ -43,11 +43,11 @@ def page_footer(width: int) -> str:
         field("PAGE"),
         run(" of "),
         field("NUMPAGES"),
-        extra=_right_tab(width),
+        extra=right_tab(width),
     )
 
 
-def _right_tab(width: int) -> str:
+def right_tab(width: int) -> str:
     return f'<w:tabs><w:tab w:val="right" w:pos="{width}"/></w:tabs>'
 
 
