@@ -14,6 +14,7 @@ from handoff.cli.plugins import plugins
 from handoff.cli.schema import schema
 from handoff.cli.show import show
 from handoff.cli.since import since
+from handoff.cli.ward import ward
 from handoff.cli.working import working
 
 app = typer.Typer(
@@ -24,7 +25,7 @@ app = typer.Typer(
     pretty_exceptions_enable=False,
     add_completion=True,
 )
-for command in (demo, chart, check, draft, due, show, since, note, working, plugins, schema):
+for command in (demo, chart, check, draft, due, show, since, note, ward, working, plugins, schema):
     app.command()(command)
 
 
