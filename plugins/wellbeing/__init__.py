@@ -1,0 +1,12 @@
+"""Mood, sleep, body image, spiritual needs, teaching, discharge, and the goals of comfort."""
+
+from handoff.plugin import Plugin
+
+from .compute import compute
+
+plugin = Plugin(
+    name="wellbeing",
+    title="Mood, sleep, people and teaching",
+    package="handoff.bundled.wellbeing",
+    compute=compute,
+)
