@@ -116,6 +116,8 @@ def read_course(case: Case) -> Course:
     starts, start_said = _start(case, facts, person)
     used = urine_weight(case)
     first = first_hours(case, given.first((RESUSCITATION, COLLOID)))
+    if any(portion.before_arrival and portion.ml for portion in given.portions):
+        first = None  # fluid was running before arrival; when it began is not known
     return Course(
         case=case,
         person=person,

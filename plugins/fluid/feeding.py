@@ -33,7 +33,7 @@ def _start(course: Course) -> Item:
     chosen = course.case.chosen("feeding_line")
     parameter = course.case.parameters[f"feeding_line.{chosen.name}"]
     if course.hours is None or course.plan is None:
-        return absent(key, label, "no feed recorded", system=NUTRITION)
+        return unflagged(key, label, "no feed recorded", system=NUTRITION, detail=True)
     late = course.hours >= course.number(parameter.id)
     may_flag = parameter.kind != "from memory" or chosen.by_policy
     left = f"{number_text(course.number(parameter.id))} h after the burn ({chosen.name})"

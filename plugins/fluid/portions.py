@@ -185,7 +185,10 @@ def _line(case: Case, name: str, rows: list[Map]) -> tuple[list[Portion], list[R
         last = max([rate.start, *(at for at in seen if at >= rate.start)])
         portions.append(_portion(name, rate, rate.start, last, confirmed=True))
         portions.append(_portion(name, rate, last, case.now, confirmed=False))
-        running.append(Running(_said(name), rate.purpose, rate.fluid, rate.ml_h, rate.start, last, rate.line))
+        if rate.ml_h > 0:
+            running.append(
+                Running(_said(name), rate.purpose, rate.fluid, rate.ml_h, rate.start, last, rate.line)
+            )
     return [p for p in portions if p.end > p.start], running
 
 

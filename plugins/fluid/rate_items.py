@@ -6,6 +6,7 @@ from datetime import datetime
 
 from handoff.plugin import Flag, Item, Source, Working, number_text
 
+from . import formula
 from .course import Course, burn_moments
 from .plan import Plan
 from .plan_items import inputs, no_figure, range_said, weight_caution
@@ -53,7 +54,7 @@ def _rate_now(course: Course) -> Item:
         "Planned rate now, as ordered" if ordered else label,
         value=known[0] if is_one else None,
         unit="mL/h",
-        shown=f"{said}{_until(course, plan)} ({estimate}{plan.said})",
+        shown=f"{said}{_until(course, plan)} ({estimate}{plan.said}){_rounded(course, known, is_one and not ordered)}",
         as_of=course.now,
         working=Working(
             formula="volume of the period / hours of the period, counted from the burn; an ordered rate replaces it",
@@ -64,6 +65,15 @@ def _rate_now(course: Course) -> Item:
         sources=_plan_sources(course, plan),
         cautions=tuple(dict.fromkeys((*course.cautions, *_uncertain(course), *weight_caution(course)))),
     )
+
+
+def _rounded(course: Course, rates: list[float], applies: bool) -> str:
+    """The rate as the policy's rule rounds it, beside the exact one."""
+    name = course.case.chosen("rounding").name
+    step = course.number(f"rounding.{name}")
+    if not applies or not step:
+        return ""
+    return f"; {ml_h(formula.rounded_up_ml_h(rates[0], step))} rounded up by {name}"
 
 
 def _plan_sources(course: Course, plan: Plan) -> tuple[Source, ...]:

@@ -27,7 +27,10 @@ def _in_place(course: Course) -> list[Map]:
 
 def _is_gastric(what: str) -> bool:
     said = what.lower()
-    return any(name in said for name in ("gastric", "nasogastric", "orogastric", "feeding tube", "jejunal"))
+    return any(
+        name in said
+        for name in ("gastric", "gastrostomy", "nasogastric", "orogastric", "feeding tube", "jejunal")
+    )
 
 
 def _has(course: Course, what: str) -> bool:

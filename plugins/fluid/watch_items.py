@@ -7,11 +7,11 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from datetime import timedelta
 
-from handoff.plugin import Flag, Input, Item, Parameter, Part, Reading, System, amount, number_text, words
+from handoff.plugin import Flag, Input, Item, Parameter, Reading, System, amount, number_text, words
 
 from .bands import Band, pick
 from .course import COMFORT, Course
-from .say import absent, figure, once, unflagged
+from .say import NOT_RECORDED, figure, once, unflagged
 
 TREND = 3
 BEYOND = {"from": operator.ge, "above": operator.gt, "below": operator.lt, "to": operator.le}
@@ -175,7 +175,7 @@ def _summary(course: Course, crossed: list[Item]) -> Item:
     if course.comfort:
         return unflagged(key, label, COMFORT, detail=True)
     if not seen:
-        return absent(key, label, detail=True, part=Part.ASSESSMENT)
+        return unflagged(key, label, NOT_RECORDED, detail=True)
     sources = once(
         table.source for analyte, _ in seen for table in _tables(course, analyte) if _may_judge(course, table)
     )

@@ -88,13 +88,14 @@ def _input(case: Case, weight: Weight) -> Input:
 def _build(case: Case, weight: Weight) -> list[str]:
     """What obesity asks for; without a height it cannot be told."""
     height = height_cm(case)
-    if height is None:
-        return []
     burn = case.state.burn_time
     age = case.state.age_at(burn.earliest if burn else case.now)
     adult_from = case.parameters.number(f"adult_from.{case.chosen('adult_from').name}")
     if age is None or age.years < adult_from:
         return []
+    if height is None:
+        heavy = weight.kg >= case.parameters.number("obesity.ask_height_from")
+        return ["Height is not recorded: obesity cannot be judged; ask for it."] if heavy else []
     index = formula.body_mass_index(weight.kg, height)
     if index < case.parameters.number("obesity.from"):
         return []

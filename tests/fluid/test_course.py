@@ -492,3 +492,36 @@ def test_the_hours_are_rows_of_seven_for_the_table() -> None:
     assert [row.given_ml for row in rows] == [200, 0, 100, 50]
     assert [row.not_confirmed_ml for row in rows] == [0, 0, 0, 50]
     assert [row.urine_ml for row in rows] == [None, None, 20, 18]
+
+
+def test_fluid_that_ran_before_arrival_is_no_late_start() -> None:
+    state = burned(
+        orders=[order()],
+        given=[{"before_arrival": "500 mL", "purpose": "resuscitation"}],
+        events=[{"at": "2026-03-14 11:15", "what": "admission"}],
+    )
+    assert "Late start" not in " ".join(item(computed(state), "rate_now").cautions)
+
+
+def test_a_line_at_zero_is_not_asked_about() -> None:
+    lines = [
+        run("100 mL/h", "2026-03-14 09:00"),
+        {"line": "R1", "from": "2026-03-14 10:00", "rate": "0 mL/h"},
+    ]
+    found = computed(burned(orders=[order()], given=lines))
+    assert not [action for action in found.actions if action.key == "fluid.lines_running"]
+    assert value(found, "not_confirmed") == 0
+
+
+def test_a_heavy_adult_without_a_height_is_asked_for_it() -> None:
+    assert "Height is not recorded" in " ".join(
+        item(computed(burned("120 kg", orders=[order()])), "rate_now").cautions
+    )
+
+
+def test_a_rate_is_rounded_only_by_the_rule_that_the_policy_names() -> None:
+    state = burned("70 kg", "25 %", orders=[order()])
+    found = item(computed(state, rounding="uthealth-2021"), "rate_now")
+    assert found.value == 218.75
+    assert found.shown.endswith("; 220 mL/h rounded up by uthealth-2021")
+    assert "rounded" not in item(computed(state), "rate_now").shown
