@@ -9,6 +9,7 @@ import sys
 from pathlib import Path
 
 from docs.making.choices import choices
+from docs.making.short_words import short_words
 from docs.making.sources import read_first, sources
 from docs.making.state_file import state_file
 from handoff.policy import Policy
@@ -24,6 +25,7 @@ def pages(setup: Setup) -> dict[str, str]:
         "state-file.md": state_file(setup),
         "sources.md": sources(setup, first),
         "choices.md": choices(setup),
+        "short-words.md": short_words(setup),
     }
 
 
