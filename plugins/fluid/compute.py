@@ -23,6 +23,7 @@ from . import (
 from .actions import actions
 from .course import Course, read_course
 from .hours import hour_rows
+from .targets import Target
 
 
 def compute(case: Case) -> Findings:
@@ -66,8 +67,18 @@ def _values(course: Course) -> dict[str, object]:
         "weight_kg": weight.kg if weight else None,
         "weight_name": weight.name if weight else "",
         "urine_in_target": course.urine_in_target,
+        "urine_target_ml_h": _target_ml_h(course),
         "given_ml": course.given.total_ml(course.counted),
         "not_confirmed_ml": course.given.total_ml(course.counted, confirmed=False),
         "pigmented": course.pigmented,
         "comfort": course.comfort,
     }
+
+
+def _target_ml_h(course: Course) -> tuple[float | None, float | None] | None:
+    """The ends of the urine target in mL/h, each None where it is open; None without a target."""
+    aimed, used = course.target, course.urine_kg
+    if not isinstance(aimed, Target) or used is None or course.comfort:
+        return None
+    low, high = aimed.low_ml_kg_h, aimed.high_ml_kg_h
+    return None if low is None else low * used.kg, None if high is None else high * used.kg

@@ -525,3 +525,10 @@ def test_a_rate_is_rounded_only_by_the_rule_that_the_policy_names() -> None:
     assert found.value == 218.75
     assert found.shown.endswith("; 220 mL/h rounded up by uthealth-2021")
     assert "rounded" not in item(computed(state), "rate_now").shown
+
+
+def test_the_ends_of_the_urine_target_are_passed_on_in_ml_an_hour() -> None:
+    assert computed(burned(orders=[order()])).values["urine_target_ml_h"] == (40, 80)
+    child = burned("20 kg", "30 %", born="2020-01-01", orders=[order()])
+    assert computed(child).values["urine_target_ml_h"] == (20, None)
+    assert computed(burned(None, orders=[order()])).values["urine_target_ml_h"] is None
