@@ -82,6 +82,7 @@ def items(case: Case, seen: Exposure, run: Watch) -> tuple[Item, ...]:
             unit="entries",
             flag=Flag.ACTION if found.asks else Flag.NONE,
             rank=RANK if found.asks else None,
+            detail=not found.asks,
             system=System.BREATHING,
             working=Working(
                 formula="findings named by a published set, recorded or not",

@@ -55,7 +55,7 @@ def items(case: Case, seen: Exposure, gas: Monoxide) -> tuple[Item, ...]:
     saturation = _latest_spo2(case)
     doubt = doubt_text(case, seen, gas, saturation.at) if saturation else ""
     return (
-        *_spo2(case, seen, gas, saturation, doubt),
+        *_spo2(case, gas, saturation, doubt),
         _pf(case),
         *_sf(case, saturation, doubt),
         *rox.items(case, saturation, doubt),
@@ -73,10 +73,11 @@ def doubt_text(case: Case, seen: Exposure, gas: Monoxide, moment: datetime) -> s
     return f"may read falsely high: {doubt}" if doubt else ""
 
 
-def _spo2(case: Case, seen: Exposure, gas: Monoxide, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
-    key, label = "spo2", "Oxygen saturation by oximeter"
+def _spo2(case: Case, gas: Monoxide, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
+    """The reading itself is a vital sign and printed with them: here it stands for its doubt."""
+    key, label = "spo2", "Oxygen saturation, whether to trust it"
     if reading is None:
-        return (say.gap(key, label, unit="%", system=System.BREATHING),) if seen.watched else ()
+        return ()
     pct = amount(reading.node, "%") or 0.0
     shown = f"{say.pct(pct)} at {say.at(case, reading.at)}" + (f", {doubt}" if doubt else "")
     cautions = ["It cannot tell carbon monoxide from oxygen: blood co-oximetry does."] if doubt else []
@@ -93,6 +94,7 @@ def _spo2(case: Case, seen: Exposure, gas: Monoxide, reading: Reading | None, do
             as_of=reading.at,
             flag=Flag.REVIEW if doubt else Flag.NONE,
             rank=RANK if doubt and gas.doubt else None,
+            detail=not doubt,
             system=System.BREATHING,
             sources=(case.parameters.source_of("oximeter"),) if doubt else (),
             cautions=cautions,
@@ -214,7 +216,16 @@ def _sf(case: Case, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
     if value is None:
         shown = f"withheld: saturation {say.pct(pct)} is above {say.pct(highest)}"
         return (
-            say.fact(key, label, shown, unit="1", as_of=reading.at, system=System.BREATHING, sources=sources),
+            say.fact(
+                key,
+                label,
+                shown,
+                unit="1",
+                as_of=reading.at,
+                system=System.BREATHING,
+                sources=sources,
+                detail=True,
+            ),
         )
     by = number_text(given.high / 100, 2)
     cut_offs = {float(pf): float(sf) for pf, sf in case.parameters.table("sf.cut_offs").items()}

@@ -241,7 +241,7 @@ def _due(case: Case, run: Watch, due: datetime) -> Item:
 def _rule(case: Case, run: Watch) -> str:
     if run.tube.in_place:
         return "tube check with suction, about hourly"
-    begun = f" from {case.clock.day_and_time(run.start)}" if run.start else ""
+    begun = f", from {case.clock.day_and_time(run.start)}" if run.start else ""
     return f"{run.schedule.name}: {run.schedule.said}{begun}"
 
 
