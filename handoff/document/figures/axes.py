@@ -37,6 +37,8 @@ class Moments:
     def at(self, moment: datetime) -> float:
         """Return the place of ``moment``."""
         span = (self.last - self.first).total_seconds()
+        if not span:
+            return self.end
         return self.start + (moment - self.first).total_seconds() / span * (self.end - self.start)
 
 

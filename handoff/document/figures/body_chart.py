@@ -17,6 +17,7 @@ from handoff.document.figures.limbs import Region
 from handoff.document.figures.proportions import Build
 from handoff.document.figures.shapes import (
     GREY,
+    ORIGIN,
     WHITE,
     Look,
     Words,
@@ -89,12 +90,12 @@ def _face(burns: Sequence[Burn], build: Build, face: str, left: float) -> tuple[
     targets = {name: at(region.anchor) for name, region in regions.items()}
     placed, crowded = place(burned.labels(burns, face), targets, middle, columns)
     drawn = [_title(face, middle, columns)]
-    drawn += [
-        shape(f"{name}, {face}", region.path.moved(at), shaded[name][0].look if name in shaded else BLANK)
-        for name, region in _burned_last(regions, shaded)
-    ]
+    origin = at(ORIGIN)
+    for name, region in _burned_last(regions, shaded):
+        look = shaded[name][0].look if name in shaded else BLANK
+        drawn.append(shape(f"{name}, {face}", region.path, look, origin, scale))
     for name in burned.ringed(burns, face):
-        drawn.append(_ring(f"{name}, {face}", regions[name].ring.moved(at)))
+        drawn.append(_ring(f"{name}, {face}", regions[name].ring, origin, scale))
     drawn += [leader(one, len(shaded[one.label.points_at]) > 1) for one in placed]
     drawn += [written(one) for one in placed]
     return "".join(drawn), crowded
@@ -144,8 +145,9 @@ def _title(face: str, middle: float, columns: tuple[Column, Column]) -> str:
     return "".join(drawn)
 
 
-def _ring(name: str, ring: Path) -> str:
-    return shape(f"halo of the ring round {name}", ring, HALO) + shape(f"ring round {name}", ring, RING)
+def _ring(name: str, ring: Path, origin: Point = ORIGIN, scale: float = 1.0) -> str:
+    halo = shape(f"halo of the ring round {name}", ring, HALO, origin, scale)
+    return halo + shape(f"ring round {name}", ring, RING, origin, scale)
 
 
 def _entries(burns: Sequence[Burn]) -> list[Entry]:
@@ -162,16 +164,16 @@ def _entries(burns: Sequence[Burn]) -> list[Entry]:
     return found
 
 
-def _swatch(depth: Depth, left: float, top: float, wide: float, high: float) -> str:
-    return box(f"legend: shading of {depth.words}", left, top, wide, high, depth.look)
+def _swatch(depth: Depth, name: str, left: float, top: float, wide: float, high: float) -> str:
+    return box(name, left, top, wide, high, depth.look)
 
 
-def _ring_symbol(left: float, top: float, wide: float, high: float) -> str:
-    return _ring("legend", oval(Point(left + wide / 2, top + high / 2), wide / 2 - 1, high / 2 - 1.5))
+def _ring_symbol(name: str, left: float, top: float, wide: float, high: float) -> str:
+    return _ring(name, oval(Point(left + wide / 2, top + high / 2), wide / 2 - 1, high / 2 - 1.5))
 
 
-def _plus_symbol(left: float, top: float, wide: float, high: float) -> str:
-    return plus("legend: several depths", Point(left + wide / 2, top + high / 2))
+def _plus_symbol(name: str, left: float, top: float, wide: float, high: float) -> str:
+    return plus(name, Point(left + wide / 2, top + high / 2))
 
 
 def _described(burns: Sequence[Burn], build: Build) -> str:

@@ -65,9 +65,15 @@ class Label:
 
     region: str
     face: str
+    both_faces: bool
     points_at: str
     extents: tuple[Extent, ...]
     notes: tuple[str, ...]
+
+    @property
+    def name(self) -> str:
+        """What its shapes are called: a region may have one label for this face and one for both."""
+        return f"{self.region}, both, {self.face}" if self.both_faces else f"{self.region}, {self.face}"
 
     @property
     def title(self) -> str:
@@ -151,7 +157,7 @@ def _label(region: str, faces: tuple[str, ...], face: str, group: Sequence[Burn]
     if any(burn.around for burn in group):
         notes.append("circumferential")
     extents = () if both and face == BACK else _extents(group)
-    return Label(region, face, _target(region, face), extents, tuple(notes))
+    return Label(region, face, both, _target(region, face), extents, tuple(notes))
 
 
 def _target(region: str, face: str) -> str:

@@ -105,7 +105,7 @@ def _stacked(labels: Sequence[Label], targets: Mapping[str, Point], column: Colu
 
 def leader(placed: Placed, several: bool) -> str:
     """Return the line from a label to its region; it ends in a dot, or in a plus where depths meet."""
-    name, column = f"line of {placed.label.region}, {placed.label.face}", placed.column
+    name, column = f"line of {placed.label.name}", placed.column
     start = Point(column.towards + (2 if column.is_left else -2), placed.top + NAME_HIGH / 2)
     ends = (start, placed.target)
     drawn = stroke(f"halo of {name}", ends, Look(line=WHITE, width_pt=2.5)) + stroke(
@@ -129,7 +129,7 @@ def plus(name: str, at: Point) -> str:
 def written(placed: Placed) -> str:
     """Return the label itself: region, a swatch with each share, notes."""
     one, column = placed.label, placed.column
-    name = f"{one.region}, {one.face}"
+    name = one.name
     drawn = [_words(f"label of {name}", column, placed.top, Words(shorten(one.title, LETTERS)))]
     top = placed.top + NAME_HIGH
     for number, extent in enumerate(one.extents, start=1):

@@ -99,18 +99,18 @@ def _target_text(low: float | None, high: float | None) -> str:
     return f"{number_text(low)} to {number_text(high)} mL/h"
 
 
-def _symbol(look: Look, left: float, top: float, wide: float, high: float) -> str:
-    return box("legend: symbol", left, top, wide, high, look)
+def _symbol(look: Look, name: str, left: float, top: float, wide: float, high: float) -> str:
+    return box(name, left, top, wide, high, look)
 
 
-def _sign(left: float, top: float, wide: float, high: float) -> str:
+def _sign(name: str, left: float, top: float, wide: float, high: float) -> str:
     words = [Words(NOT_RECORDED_SIGN)]
-    return label("legend: not recorded", left, top, wide, high, words, align="right", anchor="ctr")
+    return label(name, left, top, wide, high, words, align="right", anchor="ctr")
 
 
-def _due_symbol(left: float, top: float, wide: float, high: float) -> str:
+def _due_symbol(name: str, left: float, top: float, wide: float, high: float) -> str:
     middle = top + high / 2
-    return stroke("legend: due", (Point(left, middle), Point(left + wide, middle)), DUE)
+    return stroke(name, (Point(left, middle), Point(left + wide, middle)), DUE)
 
 
 def _described(sheet: Sheet) -> str:

@@ -12,7 +12,7 @@ from handoff.document.figures.shapes import Look, Words, label, stroke
 from handoff.plugin import Clock, hours_text, number_text
 
 WIDE, LEFT, RIGHT = 527.0, 34.0, 14.0
-TITLE_WIDE, TITLE_HIGH = 170.0, 12.0
+TITLE_WIDE, TITLE_HIGH = 170.0, 14.0
 SLOT_MOST, BAR = 58.0, 0.62
 """Widest room of one hour in points, and the part of it that a bar takes."""
 
@@ -73,7 +73,7 @@ def axis(sheet: Sheet, title: str, most: float, top: float, bottom: float) -> tu
     values = ticks(max(most, LEAST_ML), 4)
     scale = Scale(0.0, values[-1], bottom, top)
     heading = [Words(title, 7.5, bold=True)]
-    drawn = [label(f"title: {title}", 0, top - TITLE_HIGH, TITLE_WIDE, TITLE_HIGH - 1, heading)]
+    drawn = [label(f"title: {title}", 0, top - TITLE_HIGH, TITLE_WIDE, TITLE_HIGH - 4, heading)]
     for value in values:
         y, text = scale.at(value), number_text(value, 1)
         ends = (Point(LEFT, y), Point(sheet.right, y))
@@ -108,6 +108,6 @@ def cut_short(sheet: Sheet, top: float) -> list[str]:
         return []
     wide = max(sheet.slot, 2 * TIME_WIDE)
     left = min(sheet.right - sheet.slot / 2 - wide / 2, WIDE - wide)
-    words = [Words(f"only {sheet.cut_short}")]
+    words = [Words(f"{sheet.cut_short} so far")]
     place = (max(left, TITLE_WIDE), top - TEXT_HIGH - 1, wide, TEXT_HIGH)
     return [label("last hour: how long it had run", *place, words, align="center")]

@@ -15,9 +15,9 @@ LETTER_WIDE = 0.5
 
 @dataclass(frozen=True, slots=True)
 class Entry:
-    """One symbol of a legend, drawn in a box of left, top, width and height, and its words."""
+    """One symbol of a legend, drawn under a name in a box of left, top, width and height; and its words."""
 
-    symbol: Callable[[float, float, float, float], str]
+    symbol: Callable[[str, float, float, float, float], str]
     words: str
 
 
@@ -29,7 +29,8 @@ def legend(entries: Sequence[Entry], top: float, wide: float) -> tuple[str, floa
         if left and left + long > wide:
             left, line = 0.0, line + 1
         edge = top + line * LINE_HIGH
-        drawn.append(entry.symbol(left, edge + (LINE_HIGH - SYMBOL_HIGH) / 2, SYMBOL_WIDE, SYMBOL_HIGH))
+        name = f"legend symbol: {entry.words}"
+        drawn.append(entry.symbol(name, left, edge + (LINE_HIGH - SYMBOL_HIGH) / 2, SYMBOL_WIDE, SYMBOL_HIGH))
         words = [Words(entry.words, SIZE_PT)]
         room = long - SYMBOL_WIDE - 4
         drawn.append(

@@ -15,6 +15,10 @@ from handoff.document.printable import visible
 EMU = 12700
 """English metric units in a point (definition)."""
 
+FINE = 100
+"""Parts of a unit in which the points of a path are written."""
+
+ORIGIN = Point(0.0, 0.0)
 BLACK, WHITE, GREY = "000000", "FFFFFF", "595959"
 
 SMALLEST_PT = 7.0
@@ -53,12 +57,14 @@ class Words:
     bold: bool = False
 
 
-def shape(name: str, path: Path, look: Look) -> str:
-    """Return a closed path as a shape."""
+def shape(name: str, path: Path, look: Look, origin: Point = ORIGIN, scale: float = 1.0) -> str:
+    """Return a closed path as a shape; its own 0 lies at ``origin`` and its unit is ``scale`` points long."""
     left, top, right, bottom = path.box()
-    size = f'w="{max(_emu(right - left), 1)}" h="{max(_emu(bottom - top), 1)}"'
+    wide, high = right - left, bottom - top
+    size = f'w="{max(_fine(wide), 1)}" h="{max(_fine(high), 1)}"'
     geometry = _custom(f"<a:path {size}>{_steps(path, left, top)}</a:path>")
-    return _shape(name, (left, top, right - left, bottom - top), geometry, look)
+    place = (origin.x + left * scale, origin.y + top * scale, wide * scale, high * scale)
+    return _shape(name, place, geometry, look)
 
 
 def box(name: str, left: float, top: float, wide: float, high: float, look: Look) -> str:
@@ -79,7 +85,7 @@ def dots(name: str, centres: Sequence[Point], radius: float, look: Look) -> str:
     left, top = min(box[0] for box in boxes), min(box[1] for box in boxes)
     wide, high = max(box[2] for box in boxes) - left, max(box[3] for box in boxes) - top
     drawn = "".join(_steps(path, left, top) for path in paths)
-    geometry = _custom(f'<a:path w="{_emu(wide)}" h="{_emu(high)}">{drawn}</a:path>')
+    geometry = _custom(f'<a:path w="{_fine(wide)}" h="{_fine(high)}">{drawn}</a:path>')
     return _shape(name, (left, top, wide, high), geometry, look)
 
 
@@ -215,7 +221,7 @@ def _custom(path: str) -> str:
 
 def _steps(path: Path, left: float, top: float) -> str:
     def at(point: Point) -> str:
-        return f'<a:pt x="{_emu(point.x - left)}" y="{_emu(point.y - top)}"/>'
+        return f'<a:pt x="{round((point[0] - left) * FINE)}" y="{round((point[1] - top) * FINE)}"/>'
 
     drawn = [f"<a:moveTo>{at(path.start)}</a:moveTo>"]
     for end, first, second in path.steps:
@@ -224,6 +230,10 @@ def _steps(path: Path, left: float, top: float) -> str:
         else:
             drawn.append(f"<a:cubicBezTo>{at(first)}{at(second)}{at(end)}</a:cubicBezTo>")
     return "".join(drawn) + "<a:close/>"
+
+
+def _fine(measure: float) -> int:
+    return round(measure * FINE)
 
 
 def _emu(points: float) -> int:

@@ -36,7 +36,7 @@ MOST_PANELS = 12
 MOST_DOTS = 60
 """Values closer than this are drawn as a line alone."""
 
-LETTERS = 24
+LETTERS = 22
 FRAME = Look(fill=WHITE, line=GREY, width_pt=0.5)
 LINE, SECOND_LINE = Look(width_pt=1.1), Look(width_pt=1.1, dash="sysDash")
 DOT, SECOND_DOT = Look(fill="000000", line=""), Look(fill=WHITE, width_pt=0.75)
@@ -94,6 +94,8 @@ def _notes(found: Sequence[Trend], clock: Clock, now: datetime, first: datetime)
     longest = number_text(WINDOW.total_seconds() / 3600)
     note = f"From {clock.time(first, now)} to {clock.time(now)}; at most the last {longest} h."
     note += " Where a value is missing or long awaited the line is broken. Most axes do not begin at zero."
+    if any(trend.name.startswith("Urine") for trend in found):
+        note += " Urine: each measure over its own time."
     if any(len(trend.last.numbers or ()) > 1 for trend in found):
         note += " Blood pressure: full line systolic, broken line diastolic."
     notes = [note]
@@ -142,13 +144,14 @@ def _drawn(panel: _Panel, clock: Clock) -> list[str]:
     ]
     for end in (panel.values.low, panel.values.high):
         place = (panel.left - LEFT, panel.values.at(end) - 4.5, LEFT - 3, 9)
-        drawn.append(label(f"axis of {name}", *place, [Words(number_text(end, 1))], align="right"))
+        text = number_text(end, 1)
+        drawn.append(label(f"axis of {name}: {text}", *place, [Words(text)], align="right"))
     for moment, edge, align in (
         (panel.moments.first, panel.left, "left"),
         (panel.moments.last, panel.left + panel.wide - 60, "right"),
     ):
         words = [Words(clock.time(moment, panel.moments.last))]
-        drawn.append(label(f"time of {name}", edge, panel.bottom + 1, 60, 9, words, align=align))
+        drawn.append(label(f"{align} time of {name}", edge, panel.bottom + 1, 60, 9, words, align=align))
     for index in range(len(trend.last.numbers or ())):
         drawn += _curve(panel, index)
     return drawn

@@ -72,7 +72,7 @@ class Trend:
     def runs(self) -> tuple[tuple[Value, ...], ...]:
         """Return the values in runs that a line may join: none over a missing value or a long silence."""
         known = self.known
-        waits = sorted((b.at - a.at for a, b in pairwise(known)), key=timedelta.total_seconds)
+        waits = sorted(wait for a, b in pairwise(known) if (wait := b.at - a.at))
         longest = GAP * waits[len(waits) // 2] if waits else WINDOW
         runs: list[list[Value]] = [[]]
         for value in self.values:
@@ -164,4 +164,4 @@ def _urine(state: PatientState) -> Iterator[Trend]:
     if pads:
         yield Trend("Urine by pad", "g", 0, 10, tuple(pads))
     if volumes or not pads:
-        yield Trend("Urine, each measure", "mL", 0, 20, tuple(volumes))
+        yield Trend("Urine", "mL", 0, 20, tuple(volumes))
