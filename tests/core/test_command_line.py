@@ -72,7 +72,8 @@ def test_a_fault_in_the_file_ends_with_exit_code_1_and_writes_nothing(small: Pat
 
 
 @pytest.mark.parametrize(
-    "arguments", [["check", "nothing.yaml"], ["check", "."], ["draft"], ["check", "small.yaml", "--at", "later"]]
+    "arguments",
+    [["check", "nothing.yaml"], ["check", "."], ["draft"], ["check", "small.yaml", "--at", "later"]],
 )
 def test_wrong_usage_ends_with_exit_code_2(small: Path, arguments: list[str]) -> None:
     done = run(*arguments, cwd=small.parent)
@@ -131,7 +132,9 @@ def test_the_schema_is_a_json_schema_that_accepts_the_small_patient_as_an_editor
     assert list(validator.iter_errors({**good, "patient": {**patient, "height": 178}}))
 
 
-def test_debug_shows_where_it_stopped_and_no_patient_data(small: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+def test_debug_shows_where_it_stopped_and_no_patient_data(
+    small: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
     script = (
         "import sys; import handoff.work as w\n"
         "def broken(*a, **k): raise RuntimeError('Tomas Ferrandel')\n"

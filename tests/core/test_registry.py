@@ -73,7 +73,10 @@ def test_a_policy_that_names_a_plugin_that_is_not_installed_is_refused() -> None
         ("policy: 1\nchoices: {overview.colour: red}\n", "no choice 'colour'"),
         ("policy: 1\nchoices: {nobody.colour: red}\n", "'nobody.colour' names no plugin"),
         ("policy: 1\nvalues: {overview.nothing: {value: 3, unit: h, source: x}}\n", "no value 'nothing'"),
-        ("policy: 1\nvalues: {overview.line.check_interval: {value: 3, unit: min, source: x}}\n", "is in h, not in min"),
+        (
+            "policy: 1\nvalues: {overview.line.check_interval: {value: 3, unit: min, source: x}}\n",
+            "is in h, not in min",
+        ),
     ],
 )
 def test_a_policy_that_names_what_is_not_there_is_refused(text: str, said: str) -> None:
@@ -86,7 +89,8 @@ def test_a_policy_that_names_what_is_not_there_is_refused(text: str, said: str) 
 
 def test_a_local_value_of_the_policy_is_used_and_says_so() -> None:
     policy = read_policy(
-        "policy: 1\nvalues: {overview.line.check_interval: {value: 6, unit: h, source: unit policy 12}}\n", "p"
+        "policy: 1\nvalues: {overview.line.check_interval: {value: 6, unit: h, source: unit policy 12}}\n",
+        "p",
     )
     plugins = [plugin for plugin in find_plugins(Policy()) if plugin.name == "overview"]
     parameter = prepare(policy, plugins).parameters["overview"]["line.check_interval"]
