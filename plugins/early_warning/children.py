@@ -113,6 +113,7 @@ def _sign(
         sources=[*sources, *line_sources],
         cautions=cautions,
         rank=rank,
+        detail=flag is Flag.NONE,
         line=reading.node.line,
     )
 

@@ -44,6 +44,7 @@ def _level(case: Case) -> tuple[Item, ...]:
             sources=(case.parameters.source_of("news2.consciousness"), *sources),
             cautions=(SEDATED,) if acts else (),
             rank=RANK if acts and said in DEEP else None,
+            detail=not acts,
             line=last.node.line,
         ),
     )
@@ -116,6 +117,7 @@ def _coma(case: Case) -> tuple[Item, ...]:
             sources=sources,
             cautions=cautions,
             rank=None if comfort else rank,
+            detail=flag is Flag.NONE or comfort,
             line=last.node.line,
         ),
     )

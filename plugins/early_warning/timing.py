@@ -86,5 +86,6 @@ def _response(case: Case, found: Scored) -> tuple[Item, ...]:
             part=Part.RECOMMENDATION,
             as_of=found.signs.at,
             sources=(case.parameters.source_of("news2.response"),),
+            detail=True,  # the care plan holds it as a line
         ),
     )

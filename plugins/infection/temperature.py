@@ -93,6 +93,7 @@ def items(case: Case) -> tuple[Item, ...]:
             sources=sources,
             cautions=_cautions(case, reading, hot),
             rank=RANK_COLD if cold and not comfort else None,
+            detail=flag is Flag.NONE,
             line=reading.node.line,
         ),
     )

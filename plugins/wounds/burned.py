@@ -18,13 +18,20 @@ class AreaRow(Protocol):
     """A burned region, as the area plugin hands it over."""
 
     @property
-    def region(self) -> str: ...
+    def region(self) -> str:
+        """The region of the body."""
+
     @property
-    def face(self) -> str: ...
+    def face(self) -> str:
+        """Front, back, or empty for both."""
+
     @property
-    def depth(self) -> str: ...
+    def depth(self) -> str:
+        """The depth, as the area plugin names it."""
+
     @property
-    def counted(self) -> bool | None: ...
+    def counted(self) -> bool | None:
+        """Whether it counts towards the burned area; None where its depth is not assessed."""
 
 
 @dataclass(frozen=True, slots=True)
