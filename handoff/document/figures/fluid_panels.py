@@ -122,8 +122,8 @@ def urine_panel(sheet: Sheet, top: float, bottom: float, target: Target | None) 
         y = scale.at(hour.urine_ml)
         if hour.urine_ml:
             drawn.append(box(name, left, y, wide, bottom - y, OTHER_TIME if hour.urine_said else URINE))
-        if sheet.slot >= VALUE_WIDE - 6:
-            text = number_text(hour.urine_ml) + ("*" if hour.urine_said else "")
+        text = number_text(hour.urine_ml) + ("*" if hour.urine_said else "")
+        if len(text) * DIGIT_WIDE <= sheet.slot:
             place = (sheet.left_of(index), max(y - TEXT_HIGH - 0.5, top), sheet.slot, TEXT_HIGH)
             drawn.append(label(f"figure of {name}", *place, [Words(text, bold=True)], align="center"))
     return drawn
