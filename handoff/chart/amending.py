@@ -138,12 +138,8 @@ class _Work:
         raise Refused(f"{said} fits {len(found)} entries of {self.when}; {cure}", *listed)
 
     def _correct_entry(self, said: Said, new: Entry) -> list[str]:
-        place = said.meaning.place
-        form = shape.at(self.schema, place.split("."))
-        entry_form = (shape.list_form(form) if form is not None else None) or shape.NOTHING
-        aside = ("by", *shape.times_of(entry_form))
-        known = {key: value for key, value in new.items() if key not in aside}
-        found = [one for one in self.there if one.place == place]
+        known = self._told_of(said.meaning.place, new)
+        found = [one for one in self.there if one.place == said.meaning.place]
         changes = [_changed(one, known) for one in found]
         fewest = min(map(len, changes), default=0)
         nearest = [one for one, changed in zip(found, changes, strict=True) if len(changed) == fewest]
@@ -159,6 +155,13 @@ class _Work:
             f"  is now: {describe_entry(now)}",
         ]
 
+    def _told_of(self, place: str, entry: Entry) -> dict[str, Value]:
+        """What an entry of a list says, without its author and its times."""
+        form = shape.at(self.schema, place.split("."))
+        entry_form = (shape.list_form(form) if form is not None else None) or shape.NOTHING
+        aside = ("by", *shape.times_of(entry_form))
+        return {key: value for key, value in entry.items() if key not in aside}
+
     def _found(self, text: str) -> tuple[Standing, str]:
         """The entry that the words name, and the key of a row where they name one value of it."""
         if not text:
@@ -166,23 +169,27 @@ class _Work:
         listed = [one for one in self.there if one.place == text.casefold()]
         if listed:
             return self._one(listed, text), ""
-        key, value = self._key_and_value(text)
-        rows = [one for one in self.there if one.place in (ROWS, "results") and key in one.entry]
-        fitting = [one for one in rows if value is None or same(plain(one.entry[key]), value)]
-        if fitting:
-            return self._one(fitting, text), key
-        said = text.casefold().replace(",", " ").split()
-        return self._one([one for one in self.there if _holds(one, said)], text), ""
-
-    def _key_and_value(self, text: str) -> tuple[str, Value | None]:
         lead = self.words.leads.get(text.casefold())
-        if lead is not None and lead.kind != LIST:
-            return lead.place, None
         try:
-            said = understand(text, self.words)
+            said = None if lead is not None and lead.kind != LIST else understand(text, self.words)
         except NotUnderstood:
-            return "", None
-        return (said.meaning.place, said.value("", "")) if said.meaning.kind != LIST else ("", None)
+            said = None
+        meaning = said.meaning if said is not None else lead
+        value = said.value(self.spelled, "") if said is not None else None
+        if meaning is not None and meaning.kind != LIST:
+            rows = [
+                one for one in self.there if one.place in (ROWS, "results") and meaning.place in one.entry
+            ]
+            fitting = [one for one in rows if value is None or same(plain(one.entry[meaning.place]), value)]
+            if fitting:
+                return self._one(fitting, text), meaning.place
+        elif meaning is not None and isinstance(value, Mapping):
+            known = self._told_of(meaning.place, value)
+            fitting = [one for one in self.there if one.place == meaning.place and not _changed(one, known)]
+            if fitting:
+                return self._one(fitting, text), ""
+        tokens = text.casefold().replace(",", " ").split()
+        return self._one([one for one in self.there if _holds(one, tokens)], text), ""
 
 
 def _of(one: Standing, key: str) -> Any:

@@ -82,6 +82,9 @@ def chart(
         Ask: Something has to be asked first.
         Refused: It cannot be charted.
     """
+    for option, said in (("--by", request.by), ("--why", request.why)):
+        if not said.isprintable() or "\ufeff" in said:
+            raise Refused(f"{option} holds a character that cannot be printed; type it again")
     before = open_text(text, file, setup, now)
     words.found.clear()
     words.found.update(words_that_stand(before.state.root))

@@ -101,7 +101,7 @@ def chart(
     by = by.strip() or _asked("Who charts it (initials)?", "who charts it? add --by EM, or set HANDOFF_BY")
     if not entries:
         why = why.strip() or _asked("Why?", 'say why: --why "misread"')
-    request = Request(tuple(entries or ()), at, by, correct, strike, why)
+    request = Request(tuple(entries or ()), at, " ".join(by.split()), correct, strike, " ".join(why.split()))
     charted = _charted(file, setup, known, request, now, confirm)
     _tell(charted, setup, known)
 

@@ -24,7 +24,9 @@ LISTS = {
     "no newline at the end": "other: 1\npain:\n  doses:\n    - {drug: a}",
     "a missing block without newline at the end": "other: 1",
     "windows lines": "pain:\r\n  doses:\r\n    - {drug: a}\r\nother: 1\r\n",
-    "comments everywhere": "# top\npain:  # p\n  # before\n  doses:  # d\n    # one\n    - {drug: a}  # two\n    # after\nother: 1\n",
+    "comments everywhere": (
+        "# top\npain:  # p\n  # before\n  doses:  # d\n    # one\n    - {drug: a}  # two\n    # after\nother: 1\n"
+    ),
     "text in a block below": "pain:\n  doses:\n    - drug: a\n      note: |\n        one\n        two\n\n\nother: 1\n",
     "a list over several lines": "pain:\n  doses: [\n    {drug: a},\n    {drug: b}\n  ]\nother: 1\n",
 }
@@ -64,8 +66,9 @@ def test_a_list_is_not_made_of_something_else() -> None:
 
 @pytest.mark.parametrize(
     "value",
-    ["4 mg", "104/62 mmHg", "98 %", "a, b", "bed #3", "key: value", "{x}", "[x]", "'", '"', "", " x", "x ", "no", "-", "- x",
-     "é", "\\", "a\nb", "@x", "`", "!x", "&x", "*x", "2026-03-14 14:30", "14:30", "?", "a:", "%", "lactated Ringer's"],
+    ["4 mg", "104/62 mmHg", "98 %", "a, b", "bed #3", "key: value", "{x}", "[x]", "'", '"', "", " x", "x ", "no", "-",
+     "- x", "é", "\\", "a\nb", "@x", "`", "!x", "&x", "*x", "2026-03-14 14:30", "14:30", "?", "a:", "%",
+     "lactated Ringer's", "NO", "none", "a\rb"],
 )  # fmt: skip
 def test_a_value_reads_back_as_it_was_in_braces_and_alone(value: str) -> None:
     root, faults = read_nodes(f"a: {scalar(value)}\nb: {flow({'c': value, 'd': [{'e': value}]})}\n", "f")
