@@ -25,6 +25,7 @@ from handoff.document.sections import (
     missing_line,
     row,
     sentence,
+    shown,
 )
 from handoff.document.timeline import Moment, Pending, pending, timeline
 from handoff.plugin import Flag, Item, Part, System, words
@@ -33,6 +34,9 @@ ELSEWHERE = frozenset(
     f"handover.{name}" for name in ("if_then", "requests", "pending", "to_do", "from", "to")
 )
 """Items that have a table of their own and are not repeated as rows."""
+
+BURN_LINE = ("injury.causes", "area.counted", "area.full_thickness")
+"""Items that tell the burn in one line of page one."""
 
 IN_THE_BAND = frozenset(
     (
@@ -78,6 +82,7 @@ class Handover:
     severity: str
     severity_said: str
     concerns: str
+    burn: str
     given_by: str
     received_by: str
     page_one: PageOne
@@ -112,6 +117,7 @@ def handover(assessment: Assessment, changes: Changes | None = None) -> Handover
         severity=severity,
         severity_said=said,
         concerns="; ".join(state.texts(written.get("concerns"))) or NOT_RECORDED,
+        burn="; ".join(_shown(assessment, key) for key in BURN_LINE),
         given_by=person(written.get("from")),
         received_by=person(written.get("to")),
         page_one=page_one(assessment, shift),
@@ -133,13 +139,20 @@ def handover(assessment: Assessment, changes: Changes | None = None) -> Handover
     )
 
 
+def _shown(assessment: Assessment, key: str) -> str:
+    item = assessment.item(key)
+    if item is None:
+        return f"{key.replace('.', ' ').replace('_', ' ')}: could not be computed"
+    return f"{item.label[:1].lower()}{item.label[1:]}: {shown(item)}"
+
+
 def _severity(assessment: Assessment) -> tuple[str, str]:
     state = assessment.state
-    word = words(state.handover.get("severity"))
-    if not word:
-        return "severity not recorded by the nurse", ""
-    at, by = state.when(state.handover.get("at")), person(state.handover.get("from"))
-    return word, f"{by}, {state.clock.day_and_time(at)}" if at else by
+    written = state.handover
+    at = state.when(written.get("at"))
+    said = f"given by {person(written.get('from'))}, received by {person(written.get('to'))}"
+    said += f", {state.clock.day_and_time(at)}" if at else ""
+    return words(written.get("severity")) or "severity not recorded by the nurse", said
 
 
 def _section(assessment: Assessment, part: Part) -> Section:

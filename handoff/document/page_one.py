@@ -8,7 +8,7 @@ from dataclasses import dataclass, replace
 from datetime import UTC, datetime
 
 from handoff.assess import Assessment
-from handoff.document.references import references
+from handoff.document.references import by_area, references
 from handoff.document.schedule import Shift, is_overdue
 from handoff.document.sections import sentence, shown
 from handoff.plugin import Action, Flag, Item, Urgency, entries, plural, words
@@ -16,11 +16,11 @@ from handoff.plugin import Action, Flag, Item, Urgency, entries, plural, words
 MOST_ACTIONS, MOST_TASKS, MOST_DUE = 5, 5, 4
 """Lines of each table of page one; what is left is named below it and stands in full further on."""
 
-ENOUGH_LETTERS = 110
-"""A finding that has said so much is cut at the end of its clause, and says that it was."""
+ENOUGH_LETTERS, ENOUGH_WHY = 110, 40
+"""A finding (a reason) that has said so much is cut at the end of its clause, and says that it was."""
 
 
-_CLAUSE = re.compile(r"(?<=;)\s+|(?<=\w\w\w\.)\s+|\n+")
+_CLAUSE = re.compile(r"(?<=;)\s+|(?<=[\w)][\w)][\w)]\.)\s+|\n+")
 """Where a clause ends; the point of ``Dr B. Osei`` is not such a place."""
 
 
@@ -72,14 +72,15 @@ def page_one(assessment: Assessment, shift: Shift) -> PageOne:
     ranked = _by_rank(item for item in assessment.items if item.rank is not None)
     acting = [item for item in ranked if item.flag is Flag.ACTION]
     unranked = [item for item in assessment.items if item.flag is Flag.ACTION and item.rank is None]
-    tasks = [action for action in assessment.actions if action.urgency is Urgency.NOW]
+    ordered = [action for _, group in by_area(assessment.actions) for action in group]
+    tasks = [action for action in ordered if action.urgency is Urgency.NOW]
     due, more_due = _due(assessment, shift, refs)
     gaps = [sentence(item.label) for item in ranked if item.flag is Flag.NOT_RECORDED]
     return PageOne(
         actions=tuple(_key_row(item, shift) for item in acting[:MOST_ACTIONS]),
         more_actions="; ".join(_names([*acting[MOST_ACTIONS:], *unranked])),
         tasks=tuple(_task(action, shift, refs[action.key]) for action in tasks[:MOST_TASKS]),
-        more_tasks=", ".join(refs[action.key] for action in tasks[MOST_TASKS:]),
+        more_tasks="; ".join(f"{refs[action.key]} {_named(action)}" for action in tasks[MOST_TASKS:]),
         due=due,
         more_due=more_due,
         if_then=tuple(
@@ -114,11 +115,11 @@ def _review_row(item: Item, shift: Shift) -> KeyRow:
     return replace(_key_row(item, shift), why="")
 
 
-def _in_short(text: str) -> str:
+def _in_short(text: str, enough: int = ENOUGH_LETTERS) -> str:
     clauses = _CLAUSE.split(text)
     kept = [clauses[0]]
     for clause in clauses[1:]:
-        if len(" ".join(kept)) >= ENOUGH_LETTERS:
+        if len(" ".join(kept)) >= enough:
             return f"{' '.join(kept).rstrip(';')} (more further on)"
         kept.append(clause)
     return text
@@ -128,7 +129,11 @@ def _task(action: Action, shift: Shift, ref: str) -> Task:
     late = ""
     if action.first_due and is_overdue(action, shift.start):
         late = f" (overdue since {shift.time(action.first_due)})"
-    return Task(ref, f"{_in_short(action.text)}{late}", _in_short(action.why))
+    return Task(ref, f"{_in_short(action.text)}{late}", _in_short(action.why, ENOUGH_WHY))
+
+
+def _named(action: Action) -> str:
+    return re.split(r"[;,]|: ", action.text, maxsplit=1)[0]
 
 
 def _due(assessment: Assessment, shift: Shift, refs: dict[str, str]) -> tuple[tuple[KeyRow, ...], str]:

@@ -81,7 +81,7 @@ def handing_actions(case: Case) -> tuple[Action, ...]:
     actions = []
     for index, text in enumerate(case.state.texts(handover.get("requests"))):
         actions.append(
-            _action(f"handover.request.{index + 1}", text, "asked for at the last handover", Urgency.NOW)
+            _action(f"handover.request.{index + 1}", text, "asked for by the nurse handing over", Urgency.NOW)
         )
     for index, entry in enumerate(entries(handover.get("to_do"))):
         due = case.when(entry.get("due"))
@@ -90,7 +90,7 @@ def handing_actions(case: Case) -> tuple[Action, ...]:
                 key=f"handover.to_do.{index + 1}",
                 area="Planned and awaited",
                 text=words(entry.get("what")),
-                why="planned at the last handover",
+                why="planned by the nurse handing over",
                 system=System.GENERAL,
                 first_due=due,
                 urgency=Urgency.TIMED if due else Urgency.SHIFT,
@@ -105,7 +105,7 @@ def handing_actions(case: Case) -> tuple[Action, ...]:
                 key=f"handover.pending.{index + 1}",
                 area="Planned and awaited",
                 text=f"Chase: {words(entry.get('what'))}{tell}",
-                why="awaited at the last handover",
+                why="awaited when handed over",
                 system=System.GENERAL,
                 first_due=due,
                 urgency=Urgency.TIMED if due else Urgency.SHIFT,

@@ -35,8 +35,17 @@ ASKED = ("resp", "spo2", "pulse", "bp")
 
 Consciousness and temperature have plugins of their own (``early_warning``, ``infection``)."""
 
-FULL_ROW = (*ASKED, "consciousness", "temp")
-"""What the check of vital signs looks at."""
+SAID = {
+    "resp": "breaths",
+    "spo2": "SpO2",
+    "pulse": "pulse",
+    "bp": "blood pressure",
+    "consciousness": "consciousness",
+    "temp": "temperature",
+}
+"""What the check of vital signs looks at; a row with more than half of it is a check."""
+
+FULL_ROW = tuple(SAID)
 
 GASES = ("ph", "pao2", "paco2", "base_excess", "bicarbonate")
 TREND_LENGTH = 4
@@ -133,20 +142,25 @@ def _results(case: Case) -> list[Item]:
 
 
 def vital_actions(case: Case) -> tuple[Action, ...]:
-    """Return the check of vital signs, due from the last full row by the check interval."""
+    """Return the check of vital signs, due from the last row with most of them by the check interval."""
     interval = timedelta(minutes=case.parameters.number("vital.check_interval"))
-    times = [readings[-1].at for name in FULL_ROW if (readings := case.state.series(name))]
-    first = min(times) + interval if times else case.now
+    rows = [row.at for row in case.state.rows if sum(name in row.entry for name in FULL_ROW) > len(FULL_ROW) / 2]
+    never = not any(case.state.series(name) for name in FULL_ROW)
+    old = [
+        f"{said} last at {case.clock.time(readings[-1].at, case.now)}"
+        for name, said in SAID.items()
+        if (readings := case.state.series(name)) and case.now - readings[-1].at > interval
+    ]
     return (
         Action(
             key="vital.check",
             area="Observations",
             text="Breaths, SpO2, pulse, blood pressure, consciousness, temperature",
-            why="early change shows in the trend",
+            why="; ".join(old) if old else "none charted yet" if never else "early change shows in the trend",
             system=System.CIRCULATION,
-            first_due=first,
+            first_due=rows[-1] + interval if rows else case.now,
             every=interval,
-            urgency=Urgency.TIMED,
+            urgency=Urgency.NOW if never else Urgency.TIMED,
             sources=(case.parameters.source_of("vital.check_interval"),),
         ),
     )

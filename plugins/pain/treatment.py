@@ -56,7 +56,6 @@ def _amount(key: str, drug: str, route: str, portions: list[Portion]) -> Item:
             inputs=tuple(portion.input() for portion in portions),
         ),
         repeats=True,
-        detail=True,
         line=line_of(portions[-1].node),
     )
 

@@ -52,7 +52,7 @@ def _band() -> str:
         half,
         paragraph("Label", "Severity, in the nurse's own word"),
         paragraph("BandName", "{{ severity }}"),
-        when("severity_said", paragraph("Label", "{{ severity_said }}")),
+        paragraph("Label", "{{ severity_said }}"),
         span=2,
     )
     burn = labelled(WIDTH - half, "Time of burn", "{{ identity.burn }}", "{{ identity.since }}", span=2)
@@ -62,11 +62,8 @@ def _band() -> str:
         paragraph("Key", "{{ concerns }}"),
         span=4,
     )
-    people = row(
-        labelled(half, "Given by", "{{ given_by }}", span=2, style="Normal"),
-        labelled(WIDTH - half, "Received by", "{{ received_by }}", span=2, style="Normal"),
-    )
-    return identity_band(WIDTH, row(severity, burn), row(worries), people)
+    story = cell(WIDTH, paragraph("Label", "The burn"), paragraph("Key", "{{ burn }}"), span=4)
+    return identity_band(WIDTH, row(severity, burn), row(story), row(worries))
 
 
 def _key_listing(caption: str, loop: str, label: str, found_label: str, time: str) -> str:
