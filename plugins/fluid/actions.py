@@ -22,6 +22,7 @@ def actions(course: Course) -> tuple[Action, ...]:
     return (
         *_urine(course),
         *_lines(course),
+        *_step(course),
         *_low(course),
         *_no_order(course),
         *_pigment(course),
@@ -59,7 +60,7 @@ def _lines(course: Course) -> tuple[Action, ...]:
         return ()
     every = timedelta(hours=course.number("line.check_every"))
     names = [
-        f"{line.name or line.fluid or line.purpose} ({ml_h(line.ml_h)}, {line.purpose})"
+        f"{line.name or line.fluid or line.purpose} ({line.purpose}, last charted {ml_h(line.ml_h)})"
         for line in course.given.running
     ]
     return (
@@ -73,6 +74,34 @@ def _lines(course: Course) -> tuple[Action, ...]:
             every=every,
             urgency=Urgency.TIMED,
             sources=(course.source("line.check_every"),),
+        ),
+    )
+
+
+def _step(course: Course) -> tuple[Action, ...]:
+    """Ask for the rate of the next period before the plan changes to it."""
+    plan, burn = course.plan, course.burn
+    if plan is None or plan.volume is None or plan.rates or burn is None or not burn.certain:
+        return ()
+    if plan.volume.total_ml is None or plan.volume.rate_ml_h is not None:
+        return ()
+    steps = [burn.earliest + timedelta(hours=hours) for hours in plan.volume.schedule.ends_h[:-1]]
+    ahead = [step for step in steps if step > course.now]
+    if not ahead:
+        return ()
+    rate = plan.rate_ml_h(burn.earliest, ahead[0])
+    if rate is None:
+        return ()
+    return (
+        Action(
+            key="fluid.plan_step",
+            area=AREA,
+            text="The plan steps down: ask the prescriber for the rate from now on, with urine and perfusion",
+            why=f"by the plan {ml_h(rate)} from here, formula estimate; the urine decides",
+            system=System.FLUID,
+            first_due=ahead[0],
+            urgency=Urgency.TIMED,
+            cautions=("A formula estimate is a starting point to check, not an order.",),
         ),
     )
 
