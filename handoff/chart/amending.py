@@ -15,7 +15,7 @@ from handoff.chart.entries import ROWS
 from handoff.chart.insertion import Entry, Value
 from handoff.chart.meanings import LIST, RESULT, Lexicon
 from handoff.chart.phrases import NotUnderstood, Said, understand
-from handoff.chart.restating import Restating, tree_of
+from handoff.chart.restating import Restating, SameAlready, tree_of
 from handoff.chart.shape import Schema
 from handoff.chart.standing import Standing, standing_at
 from handoff.chart.times import meant, spelled
@@ -90,17 +90,15 @@ class _Work:
         key = said.meaning.place
         place = "results" if said.meaning.kind == RESULT else ROWS
         one = work._one([found for found in work.there if found.place == place and key in found.entry], text)
-        old = plain(one.entry[key])
-        if same(old, new):
-            raise Refused(
-                f"{describe_key(key, old)} is what stands there for {work.when}; nothing to correct"
-            )
         look = shape.result if said.meaning.kind == RESULT else shape.observation
-        work.restating.value(one, key, new, look(work.schema, key) or shape.NOTHING)
+        try:
+            old, now = work.restating.value(one, key, new, look(work.schema, key) or shape.NOTHING)
+        except SameAlready as there:
+            raise Refused(f"{there} is what stands there for {work.when}; nothing to correct") from None
         return [
             f"corrected {work.signed}",
             f"  was: {describe_key(key, old)}{_charted(one)}",
-            f"  is now: {describe_key(key, new)}",
+            f"  is now: {describe_key(key, now)}",
         ]
 
     def strike(self, text: str) -> list[str]:
@@ -170,26 +168,27 @@ class _Work:
         if listed:
             return self._one(listed, text), ""
         lead = self.words.leads.get(text.casefold())
-        try:
-            said = None if lead is not None and lead.kind != LIST else understand(text, self.words)
-        except NotUnderstood:
-            said = None
-        meaning = said.meaning if said is not None else lead
-        value = said.value(self.spelled, "") if said is not None else None
-        if meaning is not None and meaning.kind != LIST:
-            rows = [
-                one for one in self.there if one.place in (ROWS, "results") and meaning.place in one.entry
-            ]
-            fitting = [one for one in rows if value is None or same(plain(one.entry[meaning.place]), value)]
-            if fitting:
-                return self._one(fitting, text), meaning.place
-        elif meaning is not None and isinstance(value, Mapping):
-            known = self._told_of(meaning.place, value)
-            fitting = [one for one in self.there if one.place == meaning.place and not _changed(one, known)]
-            if fitting:
-                return self._one(fitting, text), ""
+        if lead is not None and lead.kind != LIST:
+            return self._one(self._with_key(lead.place), text), lead.place
         tokens = text.casefold().replace(",", " ").split()
-        return self._one([one for one in self.there if _holds(one, tokens)], text), ""
+        by_words = [one for one in self.there if one.place != ROWS and _holds(one, tokens)]
+        try:
+            said = understand(text, self.words)
+        except NotUnderstood as error:
+            if not by_words:
+                raise Refused(str(error)) from None
+            return self._one(by_words, text), ""
+        place, value = said.meaning.place, said.value(self.spelled, "")
+        if said.meaning.kind != LIST:
+            fitting = [one for one in self._with_key(place) if same(plain(one.entry[place]), value)]
+            return self._one(fitting, text), place
+        known = self._told_of(place, value if isinstance(value, Mapping) else {})
+        return self._one(
+            [one for one in self.there if one.place == place and not _changed(one, known)], text
+        ), ""
+
+    def _with_key(self, key: str) -> list[Standing]:
+        return [one for one in self.there if one.place in (ROWS, "results") and key in one.entry]
 
 
 def _of(one: Standing, key: str) -> Any:

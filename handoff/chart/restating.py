@@ -8,16 +8,20 @@ from typing import Any
 
 from handoff.chart import shape
 from handoff.chart.describing import describe_key, same
-from handoff.chart.drafting import Draft
+from handoff.chart.drafting import Draft, Path
 from handoff.chart.entries import ROWS, with_confirmed
 from handoff.chart.insertion import Entry, Value
 from handoff.chart.layout import CannotInsert
 from handoff.chart.shape import Schema
 from handoff.chart.standing import Standing
-from handoff.state.nodes import Map, Text, plain
+from handoff.state.nodes import List, Map, Node, Text, plain
 
 _NOT_CARRIED = ("struck", "corrects", "confirmed")
 _LONGEST = 4000
+
+
+class SameAlready(ValueError):
+    """The new value is the one that stands there."""
 
 
 @dataclass(frozen=True)
@@ -32,10 +36,33 @@ class Restating:
         """Strike an entry out; it stays readable."""
         self.draft.extend(one.path, {"struck": dict(self.marks)})
 
-    def value(self, one: Standing, key: str, new: Value, form: Schema) -> None:
-        """Put ``new`` around the value of a row, or strike the row and write it anew beside."""
-        if not self._in_place(one, key, new, form):
-            self.row(one, key, new, form)
+    def value(self, one: Standing, key: str, new: Value, form: Schema) -> tuple[Any, Any]:
+        """Put ``new`` around the value of a row, or strike the row and write it anew beside.
+
+        Where a list of groups stands there, the group nearest to ``new`` is meant, and keeps
+        what ``new`` does not say. Returns what stood there and what stands there now.
+
+        Raises:
+            SameAlready: ``new`` is what stands there.
+        """
+        node, path = one.entry[key], (*one.path, key)
+        index = _nearest(node, new) if isinstance(node, List) else None
+        if index is not None and isinstance(node, List):
+            node, path = node[index], (*path, index)
+            form = shape.list_form(form) or shape.NOTHING
+            new = new[0] if isinstance(new, list) else new
+        old = plain(node)
+        new = _carried(old, new)
+        if same(old, new):
+            raise SameAlready(describe_key(key, old))
+        if not self._in_place(node, path, new, form):
+            whole: Value = new
+            if index is not None:
+                groups: list[Value] = list(tree_of(one.entry)[key])
+                groups[index] = new
+                whole = groups
+            self.row(one, key, whole, form)
+        return old, new
 
     def row(self, one: Standing, key: str, new: Value | None, form: Schema) -> None:
         """Strike a row out and write its rest anew, with the new value if there is one, and what it corrects."""
@@ -66,7 +93,7 @@ class Restating:
         self.draft.append(tuple(one.place.split(".")), restated)
         return {**old, **new}
 
-    def _in_place(self, one: Standing, key: str, new: Value, form: Schema) -> bool:
+    def _in_place(self, old: Node, path: Path, new: Value, form: Schema) -> bool:
         keys = shape.keys_of(form)
         group: Entry | None = None
         if isinstance(new, Mapping):
@@ -77,12 +104,11 @@ class Restating:
             return False
         if self.confirm:
             group = {**group, "confirmed": "yes"}
-        old = one.entry[key]
         try:
             if isinstance(old, Map) and _keeps_its_group(old, group):
-                self.draft.correct_inside((*one.path, key), str(group["value"]), self.marks)
+                self.draft.correct_inside(path, str(group["value"]), self.marks)
             else:
-                self.draft.correct((*one.path, key), group, self.marks)
+                self.draft.correct(path, group, self.marks)
         except CannotInsert:
             return False
         return True
@@ -92,6 +118,27 @@ class Restating:
             self.draft.beside(one.path[:3], entry)
         else:
             self.draft.append(tuple(one.place.split(".")), entry)
+
+
+def _carried(old: Any, new: Value) -> Value:
+    """A group keeps what the new one does not say; what spoke for the old value alone is left out."""
+    if not isinstance(old, Mapping) or not isinstance(new, Mapping) or "value" in new:
+        return new
+    return {**{key: value for key, value in old.items() if key not in _NOT_CARRIED}, **new}
+
+
+def _nearest(there: List, new: Value) -> int | None:
+    """The place of the one group of a list that differs least from ``new``; None where two do, or none."""
+    group = new[0] if isinstance(new, list) and len(new) == 1 else new
+    if not isinstance(group, Mapping):
+        return None
+    wrong = [
+        sum(not same(tree_of(one).get(key, ""), value) for key, value in group.items())
+        if isinstance(one, Map)
+        else len(group)
+        for one in there
+    ]
+    return wrong.index(min(wrong)) if wrong and wrong.count(min(wrong)) == 1 else None
 
 
 def _keeps_its_group(old: Map, new: Entry) -> bool:

@@ -13,6 +13,9 @@ from handoff.chart.shape import Schema
 from handoff.state.clock import Clock, ClockError
 from handoff.state.nodes import List, Map, Text, walk
 
+CONFIDENTIAL = "confidential"
+"""What stands there is never told on a screen."""
+
 
 @dataclass(frozen=True)
 class Standing:
@@ -58,7 +61,7 @@ def standing_at(root: Map, at: datetime, clock: Clock, schema: Schema) -> list[S
         names = [str(step) for step in path]
         if (
             not isinstance(node, List)
-            or names[:1] == [ROWS]
+            or names[:1] in ([ROWS], [CONFIDENTIAL])
             or not all(isinstance(step, str) for step in path)
         ):
             continue

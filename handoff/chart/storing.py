@@ -25,6 +25,8 @@ def store(path: Path, make: Callable[[str], Charted]) -> Charted:
         CannotWrite: It cannot be written, or another program keeps changing it.
     """
     target = path.resolve() if path.is_symlink() else path
+    if not target.is_file():
+        read_text(path)  # it says what is there instead
     with locked(target):
         for _ in range(_TRIES):
             text = read_text(path)

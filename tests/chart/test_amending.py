@@ -188,8 +188,10 @@ def test_a_row_with_one_value_is_struck_whole() -> None:
     assert rows(fixed)["14:15"] == {"by": "EM", "pulse": "124 /min", "struck": WHY}
 
 
-@pytest.mark.parametrize("entry", ["14:15", "14:15 observations", "14:15 EM", "14:15 pulse 124 resp"])
-def test_a_whole_row_is_struck_by_its_time_its_list_its_author_or_its_words(entry: str) -> None:
+@pytest.mark.parametrize(
+    "entry", ["14:15", "14:15 observations", "14:15 EM", "2026-03-14 14:15 EM observations"]
+)
+def test_a_whole_row_is_struck_by_its_time_its_list_or_its_author(entry: str) -> None:
     fixed = struck(row("{by: EM, pulse: 124 /min, resp: 20 /min}"), entry)
     assert rows(fixed)["14:15"]["struck"] == WHY
 
@@ -229,12 +231,47 @@ def test_where_several_fit_each_is_named_by_line() -> None:
         ({"correct": "14:15 pulse 142"}, "'142' has no unit"),
         ({"correct": "14:15 pulse 400 /min"}, "is not possible here"),
         ({"strike": "14:15 pulse 130 /min"}, "fits nothing that is charted"),
-        ({"strike": "14:15 morphine"}, "fits nothing that is charted"),
+        ({"strike": "14:15 give morphine 4 mg IV"}, "fits nothing that is charted"),
+        ({"strike": "14:15 pulse 124"}, "'124' has no unit"),
+        ({"strike": "14:15 puls"}, "did you mean 'pulse'"),
     ],
 )
 def test_what_cannot_be_changed_is_refused(asked: dict[str, str], what: str) -> None:
     with pytest.raises(Refused, match=what.replace("(", r"\(")):
         charted(row("{by: EM, pulse: 124 /min}"), by="JO", why="misread", **asked)
+
+
+def test_one_score_of_two_is_corrected_and_the_other_stands() -> None:
+    scores = "[{scale: numeric, score: 3, during: rest}, {scale: numeric, score: 7, during: movement, site: left hand}]"
+    fixed = rows(corrected(row(f"{{by: EM, pain: {scores}}}"), "14:15 pain 8 numeric on movement"))["14:15"][
+        "pain"
+    ]
+    assert fixed[0] == {"scale": "numeric", "score": "3", "during": "rest"}
+    assert (fixed[1]["score"], fixed[1]["site"]) == ("8", "left hand")
+    assert "score: 7" in fixed[1]["corrects"]["value"]
+
+
+def test_one_finding_of_a_limb_is_corrected_and_the_others_are_kept() -> None:
+    limbs = "[{region: right hand, pulse: weak, refill: 4 s}, {region: left hand, pulse: present}]"
+    done = charted(
+        row(f"{{by: EM, limbs: {limbs}}}"), by="JO", correct="14:15 limb right hand pulse absent", why="x"
+    )
+    first, second = rows(done.text)["14:15"]["limbs"]
+    assert (first["pulse"], first["refill"]) == ("absent", "4 s")
+    assert second == {"region": "left hand", "pulse": "present"}
+    assert done.lines[1:] == (
+        "  was: limbs region right hand, pulse weak, refill 4 s, charted by EM",
+        "  is now: limbs region right hand, pulse absent, refill 4 s",
+    )
+
+
+def test_what_is_confidential_is_neither_told_nor_touched() -> None:
+    block = "confidential: {safeguarding: [{at: 2026-03-14 14:15, note: secret}]}\n"
+    text = row("{by: EM, pulse: 124 /min}") + block
+    with pytest.raises(Refused) as refused:
+        struck(text, "14:15 resp")
+    assert "secret" not in "".join(refused.value.lines)
+    assert rows(struck(text, "14:15"))["14:15"]["struck"] == WHY
 
 
 def test_a_struck_entry_is_not_changed_again() -> None:
