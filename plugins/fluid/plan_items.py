@@ -192,7 +192,7 @@ def _beside(course: Course) -> Item:
     total = made.due_ml(course.period_h) if made.total_ml is not None else None
     rates = [made.rate_at(course.case.hours_between(one, course.now)) for one in burn_moments(course)]
     parts = [f"{ml(total)} in {number_text(course.period_h)} h"] if total is not None else []
-    parts += [f"{span(ml_h(min(rates)), ml_h(max(rates)))} now"] if any(rates) else []
+    parts += [f"{span(ml_h(min(rates)), ml_h(max(rates)))} by that formula"] if any(rates) else []
     return figure(
         key,
         label,
