@@ -101,7 +101,9 @@ def _not_full(about: Record) -> Fact:
 
 
 def _circular_neck(about: Record) -> Fact:
-    hit = next((burn for burn in about.seen.neck if burn.depth in DEEP and burn.circumferential), None)
+    hit = next(
+        (burn for burn in about.seen.neck if burn.depth in DEEP and burn.circumferential is True), None
+    )
     if hit is not None:
         return Fact(True, "deep burn round the neck", line=hit.line)
     return burned(about, about.seen.neck, (), "")

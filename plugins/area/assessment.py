@@ -15,6 +15,7 @@ from .regions import full_name
 from .tables import NoTableError, RegionTable, table_for
 
 PLACES = 2
+ENCIRCLING: dict[str, bool] = {"yes": True, "no": False}
 
 
 @dataclass(frozen=True, slots=True)
@@ -26,10 +27,8 @@ class Burn:
     depth: str
     tbsa_pct: float | None
     counted: bool | None
-    circumferential: bool
+    encircling: str
     line: int
-    near_circumferential: bool = False
-    encircling_recorded: bool = False
     deep: bool = False
     full: bool = False
     joint: str = ""
@@ -42,9 +41,23 @@ class Burn:
 
     def row(self) -> BurnRow:
         """Return the burn as a plain row for others."""
-        return BurnRow(
-            self.region, self.face, self.depth, self.tbsa_pct, self.counted, self.circumferential, self.line
-        )
+        around = ENCIRCLING.get(self.encircling, self.encircling or None)
+        return BurnRow(self.region, self.face, self.depth, self.tbsa_pct, self.counted, around, self.line)
+
+    @property
+    def circumferential(self) -> bool:
+        """Whether it is charted as going all the way round."""
+        return self.encircling == "yes"
+
+    @property
+    def near_circumferential(self) -> bool:
+        """Whether it is charted as going nearly all the way round."""
+        return self.encircling == "near"
+
+    @property
+    def encircling_recorded(self) -> bool:
+        """Whether anybody looked and charted if it goes all the way round."""
+        return self.encircling in ("yes", "no", "near")
 
     @property
     def where(self) -> str:
@@ -53,14 +66,17 @@ class Burn:
 
 
 class BurnRow(NamedTuple):
-    """One burned region as other plugins and the document read it; the share in % of body surface."""
+    """One burned region as other plugins and the document read it; the share in % of body surface.
+
+    ``circumferential`` is yes or no, or the word charted (near, not assessed), or None where it is blank.
+    """
 
     region: str
     face: str
     depth: str
     tbsa_pct: float | None
     counted: bool | None
-    circumferential: bool
+    circumferential: bool | str | None
     line: int
 
 
@@ -128,17 +144,14 @@ def read_burn(case: Case, entry: Map, table: RegionTable | None) -> Burn:
     written = words(entry.get("depth"))
     depth = depths.class_of(written, case.parameters)
     pct, extent, sum_text = _extent(case, entry, region, face, table)
-    encircling = words(entry.get("circumferential"))
     return Burn(
         region=region,
         face=face,
         depth=depth,
         tbsa_pct=pct,
         counted=depths.is_counted(depth, case.parameters),
-        circumferential=encircling == "yes",
+        encircling=words(entry.get("circumferential")),
         line=entry.line,
-        near_circumferential=encircling == "near",
-        encircling_recorded=encircling in ("yes", "no", "near"),
         deep=depths.is_deep(depth, case.parameters),
         full=depths.is_full(depth, case.parameters),
         joint=words(entry.get("joint")),

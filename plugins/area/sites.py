@@ -11,6 +11,8 @@ from .regions import LIMBS, TORSO, may_hold_site, special_site
 from .totals import NOT_RECORDED, pct_text
 
 RANK_CIRCUMFERENTIAL = 40
+ENCIRCLED = (*LIMBS, *TORSO, "head", "whole body")
+"""The regions that a burn can go round."""
 
 
 def site_names(burn: Burn) -> tuple[str, ...]:
@@ -107,12 +109,27 @@ def _circumferential(assessment: Assessment) -> Item:
         for burn in circumferential(assessment)
     ]
     deep = [burn for burn in assessment.burns if burn.deep or burn.counted is None]
-    unknown = dict.fromkeys(burn.region for burn in deep if may_go_round(burn, deep))
-    parts = [joined(said), f"not recorded for {joined(list(unknown))}" if unknown else ""]
-    shown = "; ".join(part for part in parts if part) or "none charted"
+    unknown = any(may_go_round(burn, deep) for burn in deep)
+    parts = [joined(said) or "none charted", *_blank_round(assessment)]
+    shown = "; ".join(parts)
     flag = Flag.NOT_RECORDED if unknown else Flag.NONE
     label = "Circumferential burns"
     return _item("area.circumferential", label, shown, assessment, flag=flag, system=System.LIMBS)
+
+
+def _blank_round(assessment: Assessment) -> list[str]:
+    """What was charted as not assessed, and what was left blank: a blank is never read as looked for."""
+    open_ones = [
+        burn
+        for burn in assessment.burns
+        if burn.counted is not False and not burn.encircling_recorded and burn.region in ENCIRCLED
+    ]
+    found = []
+    for said in ("not assessed", ""):
+        where = dict.fromkeys(burn.where for burn in open_ones if burn.encircling == said)
+        if where:
+            found.append(f"{said or 'not recorded'} for {joined([one.replace(', ', ' ') for one in where])}")
+    return found
 
 
 def _special(assessment: Assessment) -> Item:

@@ -208,10 +208,28 @@ def test_whether_it_goes_round_is_asked_of_a_deep_burn_that_spares_no_face() -> 
     deep = {"region": "left thigh", "of_region": "50 %", "depth": "deep partial"}
     made = assessed(state_text([deep])).item("area.circumferential")
     assert made is not None
-    assert (made.flag, made.shown) == (Flag.NOT_RECORDED, "not recorded for left thigh")
+    assert (made.flag, made.shown) == (Flag.NOT_RECORDED, "none charted; not recorded for left thigh")
     front = assessed(state_text([{**deep, "face": "front"}])).item("area.circumferential")
     assert front is not None
-    assert front.shown == "none charted"
+    assert (front.flag, front.shown) == (Flag.NONE, "none charted; not recorded for left thigh front")
+
+
+@pytest.mark.parametrize(
+    ("charted_as", "row", "said"),
+    [
+        ("", None, "none charted; not recorded for right forearm"),
+        ("no", False, "none charted"),
+        ("yes", True, "right forearm (full thickness)"),
+        ("near", "near", "right forearm (full thickness, nearly all round)"),
+        ("not assessed", "not assessed", "none charted; not assessed for right forearm"),
+    ],
+)
+def test_a_blank_is_handed_on_as_blank_and_never_as_no(charted_as: str, row: object, said: str) -> None:
+    burn = {key: value for key, value in ROUND.items() if key != "circumferential"}
+    made = assessed(state_text([{**burn, **({"circumferential": charted_as} if charted_as else {})}]))
+    (handed_on,) = made.findings["area"].values["burns"]  # type: ignore[misc]
+    assert handed_on.circumferential == row
+    assert item(made, "area.circumferential").shown == said
 
 
 def test_a_request_for_release_waits_until_it_is_answered_or_done() -> None:
