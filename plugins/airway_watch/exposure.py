@@ -22,6 +22,7 @@ FULL = ("full thickness", "deeper than full thickness")
 COMFORT = "comfort care"
 CAUSE, SETTING, SMOKE = "cause of the burn", "enclosed space or open air", "smoke breathed or not"
 CAUSE_GAPS = (CAUSE, SETTING, f"{SETTING} and {SMOKE}")
+REGIONS, LOOKED_FOR = "burned regions", "airway signs"
 
 
 class Burn(Protocol):
@@ -36,7 +37,7 @@ class Burn(Protocol):
     @property
     def counted(self) -> bool | None: ...
     @property
-    def circumferential(self) -> bool: ...
+    def circumferential(self) -> bool | str | None: ...
     @property
     def line(self) -> int: ...
 
@@ -61,6 +62,32 @@ class Exposure:
     def lethal_gap(self) -> bool:
         """Whether nothing asks for the watch only because it is not recorded what burned, or where."""
         return not self.reasons and not self.comfort and any(name in CAUSE_GAPS for name in self.missing)
+
+    @property
+    def cannot_be_judged(self) -> bool:
+        """Whether too little is recorded to say that nothing asks for the watch."""
+        blank = REGIONS in self.missing and LOOKED_FOR in self.missing
+        return self.lethal_gap or (blank and not self.reasons and not self.comfort)
+
+    @property
+    def smoke_open(self) -> bool:
+        """Whether smoke may have been breathed: nothing recorded says it was, and nothing that it was not."""
+        said = " ".join(self.missing)
+        return not self.smoke and any(name in said for name in (CAUSE, SETTING, SMOKE))
+
+    @property
+    def unknown(self) -> tuple[str, ...]:
+        """What would have to be recorded to judge whether the watch is asked for, in one word each."""
+        said = " ".join(self.missing)
+        names = (
+            ("cause", CAUSE in said),
+            ("smoke", CAUSE in said or SMOKE in said),
+            ("setting", CAUSE in said or SETTING in said),
+            ("face", REGIONS in said),
+            ("neck", REGIONS in said),
+            ("signs", LOOKED_FOR in said),
+        )
+        return tuple(name for name, is_missing in names if is_missing)
 
     @property
     def smoke_recorded(self) -> bool:
@@ -151,7 +178,7 @@ def _missing(case: Case) -> tuple[str, ...]:
         if gaps:
             missing.append(joined(gaps))
     if not burns_recorded(case):
-        missing.append("burned regions")
+        missing.append(REGIONS)
     if not charted.check_times(case):
-        missing.append("airway signs")
+        missing.append(LOOKED_FOR)
     return tuple(dict.fromkeys(missing))

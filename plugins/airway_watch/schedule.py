@@ -19,11 +19,11 @@ from handoff.plugin import (
     plural,
 )
 
-from . import charted, say, timetable
+from . import charted, judged, say, timetable
 from .charted import Tube
-from .exposure import Exposure
+from .exposure import LOOKED_FOR, Exposure
 
-RANK, RANK_UNKNOWN = 11, 13
+RANK = 11
 
 
 @dataclass(frozen=True, slots=True)
@@ -169,27 +169,10 @@ def _tube_watch(case: Case, seen: Exposure, schedule: Schedule, tube: Tube, earl
 
 def items(case: Case, seen: Exposure, run: Watch) -> tuple[Item, ...]:
     """Return why the airway is watched, when the next check is due and what was missed."""
-    found = [_why(seen, run), _next(case, seen, run)]
+    found = [judged.why(case, seen, run.start), _next(case, seen, run)]
     if run.missed:
         found.append(_missed(case, run))
     return tuple(found)
-
-
-def _why(seen: Exposure, run: Watch) -> Item:
-    missing = f"; not recorded: {say.and_list(seen.missing)}" if seen.missing else ""
-    if seen.comfort:
-        shown = f"not asked for: comfort care is recorded{missing}"
-    elif seen.reasons:
-        shown = f"asked for by {say.and_list(seen.reasons)}{missing}"
-    else:
-        shown = (
-            "not asked for by what is recorded: no smoke exposure, burn of the face, "
-            f"deep burn of the neck, or airway sign{missing}"
-        )
-    flag = Flag.NOT_RECORDED if seen.missing and not seen.reasons else Flag.NONE
-    since = run.start if seen.watched else None
-    rank = RANK_UNKNOWN if seen.lethal_gap else None
-    return say.fact("watch", "Airway watch", shown, as_of=since, flag=flag, rank=rank)
 
 
 def _next(case: Case, seen: Exposure, run: Watch) -> Item:
@@ -197,9 +180,12 @@ def _next(case: Case, seen: Exposure, run: Watch) -> Item:
     if run.ended is not None:
         shown = f"none: the watch ended {say.at(case, run.ended)}"
         return say.fact(key, label, shown, unit="time", as_of=run.ended, sources=(run.schedule.source,))
+    if seen.cannot_be_judged:
+        return say.fact(key, label, judged.unjudged(seen), unit="time", flag=Flag.NOT_RECORDED)
     if not seen.watched:
-        signs = "; airway signs not recorded" if "airway signs" in seen.missing else ""
-        shown = f"none: {'comfort care' if seen.comfort else 'no watch asked for by what is recorded'}{signs}"
+        signs = "; airway signs not recorded" if LOOKED_FOR in seen.missing else ""
+        why = "comfort care is recorded" if seen.comfort else "nothing recorded asks for the watch"
+        shown = f"no time set: {why}{signs}"
         return say.fact(key, label, shown, unit="time", flag=Flag.NOT_RECORDED if signs else Flag.NONE)
     if run.start is None:
         missing = "no airway check is recorded and no start of the watch is written"
@@ -269,7 +255,9 @@ def _missed(case: Case, run: Watch) -> Item:
 
 
 def actions(case: Case, seen: Exposure, run: Watch) -> tuple[Action, ...]:
-    """Return the airway check as one line of the care plan."""
+    """Return the airway check as one line of the care plan, or the first look where nothing can be judged."""
+    if seen.cannot_be_judged:
+        return (judged.first_look(seen),)
     if not run.running or not seen.watched:
         return ()
     if run.tube.in_place:

@@ -14,6 +14,15 @@ from .build import FIRE, found, item, said, setup_of, setup_with, state_text
 T = "2026-03-14 "
 NRB = {"from": T + "10:30", "device": "non-rebreather mask", "flow": "15 L/min"}
 
+LEG = [
+    {
+        "at": T + "10:30",
+        "by": "EM",
+        "method": "lund-browder",
+        "burns": [{"region": "left thigh", "of_region": "50 %", "depth": "superficial partial"}],
+    }
+]
+
 
 def action(findings: Findings, key: str) -> Any:
     return next((one for one in findings.actions if one.key == f"airway_watch.{key}"), None)
@@ -40,7 +49,7 @@ def test_without_any_check_the_first_is_due_now_and_then_at_the_first_interval()
 
 
 def test_a_leg_scald_has_no_airway_line_in_the_care_plan_and_no_rank() -> None:
-    findings = found(state_text({}, injury={"causes": [{"kind": "scald"}]}))
+    findings = found(state_text({}, injury={"causes": [{"kind": "scald"}]}, area=LEG))
     assert findings.actions == ()
     assert all(one.rank is None for one in findings.items)
 
@@ -49,19 +58,56 @@ def test_a_leg_scald_has_no_airway_line_in_the_care_plan_and_no_rank() -> None:
 def test_an_unknown_fire_is_a_gap_that_can_kill(causes: Any) -> None:
     watch = item(found(state_text({}, injury={"causes": causes})), "watch")
     assert watch.flag is Flag.NOT_RECORDED
-    assert watch.rank == 13
+    assert watch.rank == 10
+
+
+def test_a_blank_is_never_said_as_a_negative_finding() -> None:
+    findings = found(state_text(injury={"causes": [{"kind": "flame"}], "at": None}))
+    blank = "cannot be judged: smoke, setting, face, neck and signs not recorded"
+    for key in ("watch", "next_check"):
+        one = item(findings, key)
+        assert (one.shown, one.flag) == (blank, Flag.NOT_RECORDED)
+    ranked = sorted((one.rank, one.label) for one in findings.items if one.rank is not None)
+    assert ranked == [(10, "Airway watch")]
+    look = action(findings, "first_look")
+    assert look.urgency is Urgency.NOW
+    assert look.text == (
+        "Look at and listen to the airway now; chart each sign as present, absent or not assessed"
+    )
+
+
+def test_a_scald_of_which_no_region_is_charted_may_be_of_the_face() -> None:
+    findings = found(state_text({}, injury={"causes": [{"kind": "scald"}]}))
+    assert item(findings, "watch").shown == "cannot be judged: face, neck and signs not recorded"
+    assert action(findings, "first_look") is not None
+
+
+def test_only_what_was_charted_is_said_to_ask_for_nothing() -> None:
+    cause = {"kind": "flame", "setting": "open air"}
+    block = {"signs": [looked("10:45", stridor="absent")]}
+    shown = item(found(state_text(block, injury={"causes": [cause]}, area=LEG)), "watch").shown
+    assert shown == (
+        "not asked for by what is recorded: burns as charted, none of them of the face or deep of the neck "
+        "and airway signs last looked for 10:45; not recorded: smoke breathed or not"
+    )
+
+
+def test_comfort_care_asks_for_no_first_look() -> None:
+    patient = {"resuscitation": {"decision": "comfort care"}}
+    assert found(state_text({}, patient=patient, injury={"causes": None})).actions == ()
 
 
 def test_a_fire_in_the_open_with_no_smoke_asks_for_nothing() -> None:
     cause = {"kind": "flame", "setting": "open air", "smoke": "no"}
-    watch = item(found(state_text({}, injury={"causes": [cause]})), "watch")
+    watch = item(found(state_text({}, injury={"causes": [cause]}, area=LEG)), "watch")
     assert watch.shown.startswith("not asked for")
     assert watch.rank is None
 
 
 def test_an_electrical_flash_indoors_is_not_smoke() -> None:
     cause = {"kind": "flash", "setting": "enclosed space", "smoke": "no"}
-    assert item(found(state_text({}, injury={"causes": [cause]})), "watch").shown.startswith("not asked for")
+    findings = found(state_text({}, injury={"causes": [cause]}, area=LEG))
+    assert item(findings, "watch").shown.startswith("not asked for")
 
 
 def test_an_assessed_sign_stays_assessed_when_the_next_check_left_it_out() -> None:
