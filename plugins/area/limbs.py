@@ -31,16 +31,22 @@ FIELDS = {
 
 @dataclass(frozen=True, slots=True)
 class Place:
-    """A limb, or a part of the trunk or neck, that is burned all round."""
+    """A limb, or a part of the trunk or neck, that is burned all round, or that somebody charted a check of."""
 
     name: str
     limb: str
     burns: tuple[Burn, ...]
+    all_round: bool = True
 
     @property
     def key(self) -> str:
         """The place as part of a key: ``right_arm``."""
         return self.name.replace(" ", "_")
+
+    @property
+    def breathes(self) -> bool:
+        """Whether a tight burn here hinders breathing rather than the blood supply of a limb."""
+        return self.name in TORSO
 
     @property
     def deep(self) -> bool:
@@ -50,7 +56,8 @@ class Place:
     @property
     def regions(self) -> str:
         """The burned regions with their depths."""
-        return ", ".join(dict.fromkeys(f"{burn.region} {burn.depth}" for burn in self.burns))
+        said = dict.fromkeys(f"{burn.region} {burn.depth}" for burn in self.burns)
+        return ", ".join(said) or "no burn charted there"
 
 
 @dataclass(frozen=True, slots=True)
@@ -83,6 +90,32 @@ def places(assessment: Assessment | None) -> tuple[Place, ...]:
         if burn.region in (*LIMBS, *TORSO):
             found.setdefault(limb_of(burn.region) or burn.region, []).append(burn)
     return tuple(Place(name, limb_of(name), tuple(burns)) for name, burns in found.items())
+
+
+def watched(case: Case, assessment: Assessment | None) -> tuple[Place, ...]:
+    """Return the places burned all round, then every other region with a charted check, oldest check first."""
+    round_it = places(assessment)
+    burns = [burn for burn in assessment.burns if burn.counted is not False] if assessment else []
+    regions = dict.fromkeys(
+        full_name(words(entry.get("region")), words(entry.get("side")))
+        for row in case.state.rows
+        for entry in entries(row.entry.get("limbs"))
+    )
+    others = [name for name in regions if not any(touches(name, place.name) for place in round_it)]
+    return (
+        *round_it,
+        *(
+            Place(name, limb_of(name), tuple(burn for burn in burns if touches(burn.region, name)), False)
+            for name in others
+        ),
+    )
+
+
+def checks_at(case: Case, place: Place) -> tuple[LimbCheck, ...]:
+    """Return every check that counts for ``place``, oldest first: all of a burned limb, or of that one region."""
+    if place.all_round:
+        return checks_of(case, place.name, breaths=place.breathes)
+    return tuple(check for check in checks_of(case, place.name) if check.region == place.name)
 
 
 def checks_of(case: Case, name: str, breaths: bool = False) -> tuple[LimbCheck, ...]:

@@ -55,7 +55,7 @@ def _same(site: str, other: str) -> bool:
 def _request(case: Case, row: Row, index: int) -> Item:
     waited = hours_text(case.hours_between(row.at, case.now))
     site = words(row.entry.get("site"))
-    asked = f", asked of {words(row.entry.get('who'))}" if words(row.entry.get("who")) else ""
+    asked = f"; charted as: {words(row.entry.get('who'))}" if words(row.entry.get("who")) else ""
     return Item(
         key=f"area.release_requested.{index}",
         label=f"Release of a tight burn requested{f', {site}' if site else ''}",
@@ -155,7 +155,7 @@ def actions(case: Case) -> tuple[Action, ...]:
                 "press and raise and call if active",
                 why="a release bleeds more as blood flow and pressure return",
                 system=System.LIMBS,
-                first_due=max(due, case.now),
+                first_due=due,
                 every=timedelta(minutes=every),
                 urgency=Urgency.TIMED,
                 sources=_sources(case),

@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from datetime import datetime
-
 from handoff.plugin import (
     Action,
     Case,
@@ -19,7 +17,7 @@ from handoff.plugin import (
 
 from .assessment import Assessment
 from .goal import is_comfort
-from .limbs import LimbCheck, Place, checks_of, interval, places, warnings_of, watch_ends
+from .limbs import LimbCheck, Place, checks_at, interval, warnings_of, watch_ends, watched
 from .sites import RANK_CIRCUMFERENTIAL
 
 WHY_LIMB = "swelling can cut off the blood supply, and a lost pulse is a late sign"
@@ -32,14 +30,12 @@ CAUTION = "a palpable pulse or a Doppler signal does not prove perfusion; look f
 
 
 def items(case: Case, assessment: Assessment | None) -> tuple[Item, ...]:
-    """Return one item for each place burned all round: last finding, its age, what warns, what is overdue."""
-    return tuple(_item(case, place) for place in places(assessment))
+    """Return one item for each place burned all round or checked: last finding, its age, warnings, what is late."""
+    return tuple(_item(case, place) for place in watched(case, assessment))
 
 
 def _item(case: Case, place: Place) -> Item:
-    checks = checks_of(case, place.name, breaths=not place.limb)
-    latest = _latest_each(checks)
-    warned = [text for check in latest for text in warnings_of(case, check, _before(checks, check))]
+    latest, warned = _latest(case, place)
     ends = watch_ends(case)
     over = ends is not None and case.now > ends
     shown, flag = _state(case, place, latest, warned, over)
@@ -47,14 +43,14 @@ def _item(case: Case, place: Place) -> Item:
         flag = Flag.NONE if latest else Flag.NOT_RECORDED
     return Item(
         key=f"area.perfusion.{place.key}",
-        label=f"{'Beyond the burn' if place.limb else 'Movement'}: {place.name} ({place.regions})",
+        label=f"{'Movement' if place.breathes else 'Beyond the burn'}: {place.name} ({place.regions})",
         part=Part.ASSESSMENT,
-        system=System.LIMBS if place.limb else System.BREATHING,
+        system=System.BREATHING if place.breathes else System.LIMBS,
         shown=shown,
         as_of=latest[-1].at if latest else None,
         flag=flag,
         sources=_sources(case),
-        cautions=(CAUTION,) if place.limb else (),
+        cautions=() if place.breathes else (CAUTION,),
         rank=_rank(flag, place, bool(warned)),
         line=latest[-1].entry.line if latest else place.burns[0].line,
     )
@@ -93,6 +89,13 @@ def _where(check: LimbCheck, place: Place) -> str:
     return f"{named}: " if named else ""
 
 
+def _latest(case: Case, place: Place) -> tuple[list[LimbCheck], list[str]]:
+    """The last check of each region and site of the place, and what in them warns."""
+    checks = checks_at(case, place)
+    latest = _latest_each(checks)
+    return latest, [text for check in latest for text in warnings_of(case, check, _before(checks, check))]
+
+
 def _latest_each(checks: tuple[LimbCheck, ...]) -> list[LimbCheck]:
     """The last check of each region and pulse site, oldest first: a hand may warn while the wrist does not."""
     last = {(check.region, check.site): check for check in checks}
@@ -109,7 +112,7 @@ def _before(checks: tuple[LimbCheck, ...], check: LimbCheck) -> LimbCheck | None
 def _rank(flag: Flag, place: Place, warned: bool) -> int | None:
     if flag is not Flag.ACTION:
         return None
-    return RANK_CIRCUMFERENTIAL + (0 if warned else 1 if place.limb else 2)
+    return RANK_CIRCUMFERENTIAL + (0 if warned else 2 if place.breathes else 1)
 
 
 def _sources(case: Case) -> tuple[Source, ...]:
@@ -121,41 +124,46 @@ def _sources(case: Case) -> tuple[Source, ...]:
 
 
 def actions(case: Case, assessment: Assessment | None) -> tuple[Action, ...]:
-    """Return the check of each place burned all round; none once the watch is over or comfort leads."""
+    """Return the check of each place burned all round or checked; none once the watch is over or comfort leads."""
     ends = watch_ends(case)
     if is_comfort(case) or (ends is not None and case.now > ends):
         return ()
-    return tuple(_action(case, place) for place in places(assessment))
+    return tuple(_action(case, place) for place in watched(case, assessment))
 
 
 def _action(case: Case, place: Place) -> Action:
+    latest, warned = _latest(case, place)
+    danger = WHY_TRUNK if place.breathes else WHY_LIMB
     return Action(
         key=f"area.watch.{place.key}",
-        area="limb perfusion" if place.limb else "breathing",
+        area="breathing" if place.breathes else "limb perfusion",
         text=_text(place),
-        why=f"burned all round ({place.regions}): {WHY_LIMB if place.limb else WHY_TRUNK}",
-        system=System.LIMBS if place.limb else System.BREATHING,
-        first_due=_first_due(case, place),
+        why=f"{_reason(case, place, latest, warned)}: {danger}",
+        system=System.BREATHING if place.breathes else System.LIMBS,
+        first_due=latest[-1].at + interval(case) if latest else case.now,
         every=interval(case),
-        urgency=Urgency.NOW if place.deep else Urgency.TIMED,
+        urgency=Urgency.NOW if warned or (place.all_round and place.deep) else Urgency.TIMED,
         sources=tuple(case.parameters.source_of(name) for name in ("perfusion.every", "perfusion.signs")),
-        cautions=(CAUTION,) if place.limb else (),
+        cautions=() if place.breathes else (CAUTION,),
     )
 
 
-def _first_due(case: Case, place: Place) -> datetime:
-    checks = checks_of(case, place.name, breaths=not place.limb)
-    return max(checks[-1].at + interval(case), case.now) if checks else case.now
+def _reason(case: Case, place: Place, latest: list[LimbCheck], warned: list[str]) -> str:
+    if place.all_round:
+        return f"burned all round ({place.regions})"
+    last = f"checked at {case.clock.time(latest[-1].at, case.now)}"
+    return f"{last}, {', '.join(warned)}" if warned else last
 
 
 def _text(place: Place) -> str:
-    if not place.limb:
+    if place.breathes:
         return (
             f"Watch the breathing behind the tight burn ({place.name}): chest movement, effort, rate, SpO2, "
             "airway pressures if ventilated; sit up; call if tight or worse"
         )
+    pulses = f"{BEYOND[place.limb.rpartition(' ')[2]]}; " if place.limb else ""
     return (
-        f"Check the {place.name} beyond the burn: {BEYOND[place.limb.rpartition(' ')[2]]}; refill, colour, "
+        f"Check the {place.name} beyond the burn: {pulses}refill, colour, "
         "warmth, feeling, movement, pain on stretch, tightness, SpO2; compare with the other side; keep raised; "
         "call the burn surgeon at any change"
     )

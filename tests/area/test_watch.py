@@ -183,6 +183,15 @@ def test_the_watch_ends_48_hours_after_the_burn(at: str, planned: bool) -> None:
     assert ("the watch of 48 h after the burn is over" in item(made).shown) is not planned
 
 
+def test_an_overdue_check_is_planned_for_when_it_was_due() -> None:
+    made = charted(("17:00", {"pulse": "present"}))
+    planned = action(made, "area.watch.right_arm")
+    assert planned is not None
+    assert planned.first_due is not None
+    assert made.state.clock.time(planned.first_due) == "18:00"
+    assert "not reassessed since 17:00, overdue by 1 h 30 min" in item(made).shown
+
+
 def test_a_superficial_burn_all_round_is_watched_without_page_one() -> None:
     made = charted(burn={**ROUND, "depth": "superficial partial"})
     assert (item(made).flag, item(made).rank) == (Flag.NOT_RECORDED, None)
@@ -236,12 +245,15 @@ def test_a_request_for_release_waits_until_it_is_answered_or_done() -> None:
     request = {
         "at": "2026-03-14 17:10",
         "what": "escharotomy requested",
-        "who": "burns registrar",
+        "who": "EM to burns registrar",
         "site": "right arm",
     }
     made = item(charted(events=[request]), "area.release_requested.1")
     assert made.flag is Flag.ACTION
-    assert made.shown == "requested at 17:10, asked of burns registrar; no answer charted for 2 h 20 min"
+    assert (
+        made.shown
+        == "requested at 17:10; charted as: EM to burns registrar; no answer charted for 2 h 20 min"
+    )
     answered = charted(events=[{**request, "answered": "2026-03-14 17:40"}])
     done = charted(
         events=[request, {"at": "2026-03-14 18:00", "what": "escharotomy", "site": "right forearm and hand"}]
@@ -281,6 +293,8 @@ def test_bleeding_checks_become_hourly_after_the_first_hour() -> None:
     assert early.every is not None
     assert late.every is not None
     assert (early.every.total_seconds(), late.every.total_seconds()) == (900, 3600)
+    assert early.first_due is not None
+    assert charted().state.clock.time(early.first_due) == "19:15"
 
 
 @settings(max_examples=25, deadline=None, derandomize=True)
