@@ -39,7 +39,7 @@ def _drained_ml(course: Course, start: datetime) -> float:
 
 
 def _charted(course: Course) -> bool:
-    charted = course.given.portions or course.urine.measured or course.urine.drained_ml
+    charted = course.given.charted or course.urine.measured or course.urine.drained_ml
     return bool(charted or losses_ml(course.case))
 
 

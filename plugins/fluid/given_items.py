@@ -18,11 +18,6 @@ def items(course: Course) -> tuple[Item, ...]:
     return (_given(course), _not_confirmed(course), _against(course), _catch_up(course))
 
 
-def charted(course: Course) -> bool:
-    """Return whether anything that went in is recorded: blank is not zero."""
-    return bool(course.given.portions or course.given.running)
-
-
 def _portions(course: Course, confirmed: bool) -> tuple[Portion, ...]:
     return tuple(
         p for p in course.given.portions if p.purpose in course.counted and p.confirmed is confirmed and p.ml
@@ -47,7 +42,7 @@ def sum_of(portions: tuple[Portion, ...], total: float) -> str:
 
 def _given(course: Course) -> Item:
     label = "Resuscitation fluid given since the burn, confirmed"
-    if not charted(course):
+    if not course.given.charted:
         return absent("given", label)
     confirmed = _portions(course, confirmed=True)
     total = course.given.total_ml(course.counted)
@@ -78,7 +73,7 @@ def _given(course: Course) -> Item:
 
 def _not_confirmed(course: Course) -> Item:
     label = "Resuscitation fluid not confirmed"
-    if not charted(course):
+    if not course.given.charted:
         return absent("not_confirmed", label)
     portions = _portions(course, confirmed=False)
     total = course.given.total_ml(course.counted, confirmed=False)
@@ -123,7 +118,7 @@ def _against(course: Course) -> Item:
         return unflagged("against_plan", label, COMFORT)
     if course.plan is None and course.no_plan:
         return unflagged("against_plan", label, course.no_plan)
-    if not charted(course) and course.plan is not None:
+    if not course.given.charted and course.plan is not None:
         return unflagged("against_plan", label, "nothing given is recorded: blank is not zero")
     bounds = _bounds(course)
     if bounds is None:
@@ -196,8 +191,8 @@ def _catch_up(course: Course) -> Item:
         return unflagged(key, label, "none: a rate is ordered", detail=True)
     if plan.volume.schedule.ends_h[0] != hours_to:
         return unflagged(key, label, "none: this formula has no first 8 h half", detail=True)
-    if course.burn is None or not charted(course):
-        lacking = [*course.missing(), *([] if charted(course) else ["what was given"])]
+    if course.burn is None or not course.given.charted:
+        lacking = [*course.missing(), *([] if course.given.charted else ["what was given"])]
         return absent(key, label, why_not(lacking), detail=True)
     return _catch_up_figure(course, hours_to)
 

@@ -39,7 +39,7 @@ def _day_one_ml(course: Course, confirmed: bool) -> float:
 def _nothing(course: Course, key: str, label: str, missing: tuple[str, ...]) -> Item | None:
     if course.comfort:
         return unflagged(key, label, COMFORT, detail=True)
-    if not course.given.portions and not course.given.running:
+    if not course.given.charted:
         return absent(key, label)
     return absent(key, label, why_not(missing)) if missing else None
 

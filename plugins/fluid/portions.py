@@ -55,10 +55,11 @@ class Running:
 
 @dataclass(frozen=True, slots=True)
 class Given:
-    """Everything that went in, and the lines that run now."""
+    """Everything that went in, the lines that run now, and whether anything was charted: blank is not zero."""
 
     portions: tuple[Portion, ...]
     running: tuple[Running, ...]
+    charted: bool
 
     def total_ml(self, purposes: Collection[str] | None = None, confirmed: bool = True) -> float:
         """Return the volume of the purposes (all for None), in mL: what is confirmed, or what is not."""
@@ -108,7 +109,7 @@ def read_given(case: Case) -> Given:
         running += still
     portions.sort(key=lambda p: (p.start, p.end, p.purpose, p.fluid, p.name, p.ml, p.confirmed))
     running.sort(key=lambda r: (r.since, r.name, r.ml_h))
-    return Given(tuple(portions), tuple(running))
+    return Given(tuple(portions), tuple(running), bool(rows))
 
 
 def _arrival(case: Case) -> datetime | None:
