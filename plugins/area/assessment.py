@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, field
 from datetime import datetime
 from typing import NamedTuple
@@ -127,6 +128,15 @@ def measure(case: Case, row: Row) -> Assessment:
         table=table,
         missing=missing,
     )
+
+
+def said_once(parts: Sequence[str]) -> list[str]:
+    """Return the parts that are not blank and not already said within an earlier one."""
+    said: list[str] = []
+    for part in parts:
+        if part and not any(part.lower() in earlier.lower() for earlier in said):
+            said.append(part)
+    return said
 
 
 def find_table(case: Case, method: str, age: AgeAtBurn | None) -> tuple[RegionTable | None, str]:

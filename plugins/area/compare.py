@@ -5,7 +5,7 @@ from __future__ import annotations
 from handoff.plugin import Case, Flag, Input, Item, Part, System, Working, number_text
 
 from . import formula
-from .assessment import PLACES, Assessment, Burn
+from .assessment import PLACES, Assessment, Burn, said_once
 from .regions import PARTS, lies_within
 from .tables import LUND_BROWDER, NINES, NoTableError, RegionTable, table_for
 from .totals import TOTALS, pct_text, total_of
@@ -116,12 +116,22 @@ def _more(points: float) -> str:
 
 
 def _who(case: Case, one: Assessment) -> str:
-    parts = (
-        one.place,
-        f"by {one.by}" if one.by else "assessor not recorded",
-        one.method or "method not recorded",
+    who = f"by {one.by}" if one.by else "assessor not recorded"
+    place = one.place if said_once((who, one.place))[1:] else ""
+    parts = (case.clock.day_and_time(one.at), place, who, one.method or "method not recorded")
+    return ", ".join(part for part in parts if part)
+
+
+def _as_charted(one: Assessment) -> str:
+    """The extent that was charted without a depth, apart from what counts; empty where it has no figure."""
+    unknown, known = (
+        [burn.tbsa_pct for burn in one.burns if burn.counted is counts] for counts in (None, True)
     )
-    return f"{case.clock.day_and_time(one.at)}, {', '.join(part for part in parts if part)}"
+    sizes = [[size for size in part if size is not None] for part in (unknown, known)]
+    if not unknown or sum(map(len, sizes)) < len(unknown) + len(known):
+        return ""
+    apart = f"{pct_text(formula.total_pct(sizes[0]))} as charted, depth not assessed"
+    return f"{apart}, and {pct_text(formula.total_pct(sizes[1]))} that counts" if known else apart
 
 
 def _earlier(case: Case, one: Assessment, index: int) -> Item:
@@ -135,7 +145,7 @@ def _earlier(case: Case, one: Assessment, index: int) -> Item:
         unit="%" if value is not None else "",
         shown=pct_text(value)
         if value is not None
-        else f"not computed: {'; '.join(one.missing) or 'depth not assessed'}",
+        else _as_charted(one) or f"not computed: {'; '.join(one.missing) or 'depth not assessed'}",
         as_of=one.at,
         flag=Flag.NONE if value is not None else Flag.NOT_RECORDED,
         working=Working(
@@ -152,12 +162,16 @@ def _earlier(case: Case, one: Assessment, index: int) -> Item:
 
 def _differences(case: Case, earlier: tuple[Assessment, ...], latest: Assessment) -> Item | None:
     now = total_of(latest, COUNTED)
-    known = [(one, value) for one in earlier if (value := total_of(one, COUNTED)) is not None]
-    if now is None or not known:
+    told = [(one, total_of(one, COUNTED), _as_charted(one)) for one in earlier]
+    told = [(one, before, text) for one, before, text in told if before is not None or text]
+    if now is None or not told:
         return None
-    said, sums = [], []
-    for one, before in known:
-        points = formula.difference_points(before, now)
+    said, sums, value = [], [], None
+    for one, before, text in told:
+        if before is None:
+            said.append(f"{text} ({_who(case, one)}); not counted, difference not computed")
+            continue
+        value = points = formula.difference_points(before, now)
         said.append(
             f"{pct_text(before)} ({_who(case, one)}); now {_more(points)}{_of_method(case, one, latest, before)}"
         )
@@ -169,12 +183,15 @@ def _differences(case: Case, earlier: tuple[Assessment, ...], latest: Assessment
         label="Against earlier assessments",
         part=Part.ASSESSMENT,
         system=System.BURN,
-        value=formula.difference_points(known[-1][1], now),
-        unit="points",
+        value=value,
+        unit="points" if value is not None else "",
         shown=f"{pct_text(now)} in use ({_who(case, latest)}). Before: {'. '.join(said)}",
         as_of=latest.at,
+        flag=Flag.NONE if value is not None else Flag.NOT_RECORDED,
         working=Working(
-            formula="latest less earlier, in points of % of body surface", sum="; ".join(sums), rule=RULE
+            formula="latest less earlier, in points of % of body surface",
+            sum="; ".join(sums) or "no earlier figure with its depths",
+            rule=RULE,
         ),
         sources=(case.parameters.source_of("compare.why"),),
         cautions=(

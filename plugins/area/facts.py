@@ -18,6 +18,7 @@ HOURS_A_DAY = 24
 MAJOR_JOINTS = ("shoulder", "elbow", "wrist", "hip", "knee", "ankle")
 SITE_NAMES = {"genitalia and perineum": ("genitalia", "perineum"), "fingers": ("hands",), "toes": ("feet",)}
 ROUND_PLACES = {"trunk": "chest", "head and neck": "neck"}
+NO_CONDITION, NO_INJURY = "none of these", "none found"
 PARTIAL = ("superficial partial", "mid partial", "deep partial", "partial thickness")
 
 
@@ -83,12 +84,17 @@ def _person(case: Case, assessment: Assessment | None) -> dict[str, Fact]:
 
 
 def _comorbidity(case: Case) -> Fact:
+    """The conditions charted by name; a history in free text may say that there is none, and is only quoted."""
     patient = case.state.patient
-    found = [*case.state.texts(patient.get("conditions")), *case.state.texts(patient.get("history"))]
-    real = [name for name in found if name.lower() not in ("none of these", "none", "none known")]
+    found = case.state.texts(patient.get("conditions"))
+    real = [name for name in found if name != NO_CONDITION]
     if real:
         return Fact(True, shown=joined(real))
-    return Fact(False) if found else Fact(missing="past illness not recorded")
+    if found:
+        return Fact(False)
+    history = case.state.texts(patient.get("history"))
+    said = f"history charted as free text: {joined(history)}" if history else "past illness not recorded"
+    return Fact(missing=f"conditions not recorded; {said}" if history else said)
 
 
 def _immunity(case: Case) -> Fact:
@@ -206,10 +212,11 @@ def _without_smoke(kind: str) -> bool:
 
 
 def _trauma(case: Case) -> Fact:
+    """Free text may name an injury or clear one: only the words ``none found`` settle it, the rest is quoted."""
     said = words(case.state.injury.get("other_injuries"))
-    if not said or said.lower().startswith("not "):
-        return Fact(missing="other injuries not recorded")
-    return Fact(not said.lower().startswith("none"), shown=f"other injury: {said}")
+    if said == NO_INJURY:
+        return Fact(False)
+    return Fact(missing=f"other injuries charted as: {said}" if said else "other injuries not recorded")
 
 
 def _inhalation_signs(case: Case) -> Fact:

@@ -6,7 +6,7 @@ from collections.abc import Sequence
 
 from handoff.plugin import Case, Flag, Item, Part, System, Working, joined, number_text
 
-from .assessment import PLACES, Assessment, Burn
+from .assessment import PLACES, Assessment, Burn, said_once
 from .regions import LIMBS, TORSO, may_hold_site, special_site
 from .totals import NOT_RECORDED, pct_text
 
@@ -90,8 +90,9 @@ def _item(
 def _method(case: Case, assessment: Assessment) -> Item:
     name = assessment.table.name if assessment.table else assessment.method or "method not recorded"
     who = " ".join(part for part in (assessment.by, assessment.role) if part) or "assessor not recorded"
-    place = f", {assessment.place}" if assessment.place else ""
-    shown = f"{name}; {who}{place}, {case.clock.day_and_time(assessment.at)}"
+    shown = (
+        f"{name}; {', '.join(said_once((who, assessment.place)))}, {case.clock.day_and_time(assessment.at)}"
+    )
     return _item("area.method", "How the area was assessed", shown, assessment)
 
 

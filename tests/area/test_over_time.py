@@ -234,3 +234,41 @@ def test_what_other_plugins_read() -> None:
     )
     assert second.face == "front"
     assert third.counted is False
+
+
+NO_DEPTH = {
+    "at": "2026-03-14 13:58",
+    "by": "P. Loughran",
+    "place": "before hospital",
+    "method": "rule of nines",
+    "burns": [
+        {"region": "head and neck", "face": "front", "of_region": "100 %", "depth": "not assessed"},
+        {"region": "trunk", "face": "front", "of_region": "100 %", "depth": "not assessed"},
+        {"region": "right arm", "of_region": "100 %", "depth": "not assessed"},
+    ],
+}
+
+
+def test_an_earlier_extent_without_depth_is_shown_apart_and_not_counted() -> None:
+    made = assessed(state_text(area=[NO_DEPTH, SECOND]))
+    earlier, against = item(made, "area.assessment.1"), item(made, "area.differences")
+    assert earlier.shown == "31.5 %TBSA as charted, depth not assessed"
+    assert (earlier.value, earlier.flag) == (None, Flag.NOT_RECORDED)
+    assert (against.value, against.flag) == (None, Flag.NOT_RECORDED)
+    assert "Before: 31.5 %TBSA as charted, depth not assessed (Sat 14 Mar 2026 13:58, before" in against.shown
+    assert against.shown.endswith("; not counted, difference not computed")
+
+
+def test_an_earlier_extent_with_and_without_depth_shows_both_parts() -> None:
+    burns = [*NO_DEPTH["burns"][:2], {**NO_DEPTH["burns"][2], "depth": "deep partial"}]  # type: ignore[index,dict-item]
+    made = item(assessed(state_text(area=[{**NO_DEPTH, "burns": burns}, SECOND])), "area.assessment.1")
+    assert made.shown == "22.5 %TBSA as charted, depth not assessed, and 9 %TBSA that counts"
+
+
+def test_a_place_that_the_role_or_the_name_already_says_is_printed_once() -> None:
+    latest = {**SECOND, "role": "RN, burn unit"}
+    told = item(assessed(state_text(area=[latest])), "area.method").shown
+    assert told.count("burn unit") == 1
+    first = {**FIRST, "by": "referring hospital"}
+    earlier = item(assessed(state_text(area=[first, SECOND])), "area.assessment.1").label
+    assert earlier.count("referring hospital") == 1
