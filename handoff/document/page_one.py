@@ -16,7 +16,7 @@ from handoff.plugin import Action, Flag, Item, Urgency, entries, plural, words
 MOST_ACTIONS, MOST_TASKS, MOST_DUE = 5, 5, 4
 """Lines of each table of page one; what is left is named below it and stands in full further on."""
 
-ENOUGH_LETTERS, ENOUGH_WHY = 110, 40
+ENOUGH_LETTERS, REASON_LETTERS = 110, 40
 """A finding (a reason) that has said so much is cut at the end of its clause, and says that it was."""
 
 
@@ -129,7 +129,7 @@ def _task(action: Action, shift: Shift, ref: str) -> Task:
     late = ""
     if action.first_due and is_overdue(action, shift.start):
         late = f" (overdue since {shift.time(action.first_due)})"
-    return Task(ref, f"{_in_short(action.text)}{late}", _in_short(action.why, ENOUGH_WHY))
+    return Task(ref, f"{_in_short(action.text)}{late}", _in_short(action.why, REASON_LETTERS))
 
 
 def _named(action: Action) -> str:

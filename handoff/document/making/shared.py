@@ -48,6 +48,7 @@ def page_footer(width: int) -> str:
 
 
 def right_tab(width: int) -> str:
+    """Return the paragraph property that puts a tab stop at the right edge of ``width``."""
     return f'<w:tabs><w:tab w:val="right" w:pos="{width}"/></w:tabs>'
 
 
