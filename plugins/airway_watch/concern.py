@@ -27,7 +27,7 @@ class Listed:
 
     parameter: Parameter
     met: tuple[tuple[str, Fact], ...]
-    open_ended: tuple[str, ...]
+    open_ended: tuple[tuple[str, Fact], ...]
 
     @property
     def title(self) -> str:
@@ -44,12 +44,11 @@ def lists(case: Case, about: Record) -> tuple[Listed, ...]:
 def _looked_up(parameter: Parameter, about: Record) -> Listed:
     table = parameter.value
     found = [(str(name), ENTRIES[str(name)](about)) for name in table["entries"]]
-    open_ended = tuple(name for name, fact in found if fact.met is None)
+    open_ended = tuple((name, fact) for name, fact in found if fact.met is None)
     needed = str(table.get("needs", ""))
     if needed and not ENTRIES[needed](about).met:
-        return Listed(
-            parameter, (), (*((needed,) if ENTRIES[needed](about).met is None else ()), *open_ended)
-        )
+        fact = ENTRIES[needed](about)
+        return Listed(parameter, (), (*(((needed, fact),) if fact.met is None else ()), *open_ended))
     return Listed(parameter, tuple((name, fact) for name, fact in found if fact.met), open_ended)
 
 
@@ -161,8 +160,12 @@ def _list_item(listed: Listed) -> Item:
         shown = f"{plural(len(listed.met), 'entry', 'entries')} met: {said}"
     else:
         shown = "no entry is recorded as met"
-    if listed.open_ended:
-        shown += f"; not recorded: {', '.join(listed.open_ended)}"
+    blank = [name for name, fact in listed.open_ended if not fact.said]
+    old = [f"{name} ({fact.said.removeprefix(f'{name} ')})" for name, fact in listed.open_ended if fact.said]
+    if blank:
+        shown += f"; not recorded: {', '.join(blank)}"
+    if old:
+        shown += f"; not reassessed: {', '.join(old)}"
     if unread:
         shown += f"; to be judged at the bedside: {', '.join(unread)}"
     name = listed.parameter.id.removeprefix("list.").replace("-", "_")

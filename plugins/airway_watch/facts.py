@@ -51,11 +51,16 @@ class Record:
             return UNKNOWN
         if sign.present:
             return Fact(True, f"{name} ({say.at(self.case, sign.at)})", sign.since, sign.line)
-        return UNKNOWN if self.run.is_old(sign.at) else NOT_SO
+        if self.run.is_old(sign.at):
+            return Fact(None, f"last absent {say.at(self.case, sign.at)}, old")
+        return NOT_SO
 
     def any_of(self, *names: str) -> Fact:
         """Return the first of several signs that is present; not so only when all were looked for."""
-        return first(self.sign(name) for name in names)
+        found = {name: self.sign(name) for name in names}
+        last = [f"{name} {fact.said}" for name, fact in found.items() if fact.met is None and fact.said]
+        together = first(found.values())
+        return Fact(None, "; ".join(last)) if together.met is None else together
 
     def ever(self, *names: str) -> Fact:
         """Return whether any of several signs was present at any check so far."""

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from handoff.plugin import Case, Flag, Input, Item, Working, plural
+from handoff.plugin import Case, Flag, Input, Item, Working, plural, words
 
 from . import charted, say
 from .charted import SUSPICION_SIGNS, Sign
@@ -20,21 +20,22 @@ def items(case: Case, seen: Exposure, run: Watch) -> tuple[Item, ...]:
 
 
 def _count(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> Item:
-    key, label = "signs_present", "Airway signs present"
+    key, label = "signs_present", "Airway signs"
     source = case.parameters.source_of("signs.value")
     if not signs:
         return say.gap(key, label, unit="count", rank=10 if seen.watched else None, cautions=(NO_ALL_CLEAR,))
     present = [sign for sign in signs if sign.present]
     old = [sign for sign in signs if run.is_old(sign.at)]
-    last = max(sign.at for sign in signs)
+    times = [sign.at for sign in signs]
     if not present and old:
         # A count of 0 would say "absent" of signs that nobody has looked for since.
-        shown = f"not reassessed since {say.at(case, max(sign.at for sign in old))}"
+        when = " to ".join(say.at(case, at) for at in sorted({min(times), max(times)}))
+        shown = f"{_counted(present, signs)} at {when}; not reassessed since"
+        flag = Flag.REVIEW if seen.watched or seen.cannot_be_judged else Flag.NONE
         return say.fact(
-            key, label, shown, unit="count", as_of=last, flag=Flag.REVIEW, cautions=(NO_ALL_CLEAR,)
+            key, label, shown, unit="count", as_of=max(times), flag=flag, cautions=(NO_ALL_CLEAR,)
         )
-    looked = plural(len(signs), "sign") + " looked for"
-    shown = f"{len(present)} of {looked}"
+    shown = _counted(present, signs)
     if present:
         shown += f": {', '.join(sign.name for sign in present)}"
     if old:
@@ -45,7 +46,7 @@ def _count(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> I
         shown,
         value=len(present),
         unit="count",
-        as_of=last,
+        as_of=max(times),
         flag=Flag.REVIEW if old else Flag.NONE,
         sources=(source,),
         cautions=(WEAK, NO_ALL_CLEAR),
@@ -57,8 +58,12 @@ def _count(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> I
     )
 
 
+def _counted(present: list[Sign], signs: tuple[Sign, ...]) -> str:
+    return f"{len(present)} present of {plural(len(signs), 'sign')} looked for"
+
+
 def _input(case: Case, sign: Sign, run: Watch) -> Input:
-    return Input(sign.name, aged(case, sign, run).removeprefix(sign.name).strip(), sign.line)
+    return Input(sign.name, aged(case, sign, run).removeprefix(sign.name).lstrip(" :"), sign.line)
 
 
 def _list(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> Item:
@@ -69,11 +74,12 @@ def _list(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> It
     shown = "; ".join(parts) or say.NOT_RECORDED
     if signs and missing:
         shown += f"; not assessed: {', '.join(missing)}"
+    shown += "".join(f"; {note}" for note in _notes(case, signs))
     old = any(run.is_old(sign.at) for sign in signs)
     flag = Flag.NOT_RECORDED if not signs else Flag.REVIEW if old and seen.watched else Flag.NONE
     return say.fact(
         "signs",
-        "Airway signs",
+        "Airway signs, one by one",
         shown,
         as_of=max((sign.at for sign in signs), default=None),
         flag=flag,
@@ -82,12 +88,23 @@ def _list(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> It
     )
 
 
+def _notes(case: Case, signs: tuple[Sign, ...]) -> list[str]:
+    """Return what was written in words beside the latest finding of each sign, with its time."""
+    latest = [sign.at for sign in signs]
+    return [
+        f"note {say.at(case, row.at)}{say.person(words(row.entry.get('by')))}: {said}"
+        for row in charted.block_rows(case, "signs")
+        if (said := words(row.entry.get("note")))
+        and (row.at in latest or row.at > max(latest, default=row.at))
+    ]
+
+
 def aged(case: Case, sign: Sign, run: Watch) -> str:
     """Return how one sign prints; an old absence never prints as absent."""
     when = f"{say.at(case, sign.at)}{say.person(sign.by)}"
     old = run.is_old(sign.at)
     if sign.present:
         return f"{sign.name} present {when}" + (", not reassessed since" if old else "")
-    return (
-        f"{sign.name} not reassessed since {say.at(case, sign.at)}" if old else f"{sign.name} absent {when}"
-    )
+    if old:
+        return f"{sign.name}: not reassessed since {say.at(case, sign.at)} (absent then)"
+    return f"{sign.name} absent {when}"

@@ -119,10 +119,46 @@ def test_an_assessed_sign_stays_assessed_when_the_next_check_left_it_out() -> No
         ],
     }
     shown = item(found(state_text(block), at=T + "11:05"), "signs").shown
-    assert "stridor not reassessed since 10:45" in shown
+    assert "stridor: not reassessed since 10:45 (absent then)" in shown
     assert "hoarse voice present 10:45 by EM, not reassessed since" in shown
     assert "drooling absent 11:00 by EM" in shown
     assert "not assessed: soot in mouth" in shown
+
+
+def test_the_lists_say_when_a_sign_was_last_absent() -> None:
+    block = {
+        "watch": {"start": T + "10:30"},
+        "signs": [looked("10:45", stridor="absent", laboured_breathing="absent", drooling="absent")],
+    }
+    findings = found(state_text(block), at=T + "14:00")
+    shown = item(findings, "list_aba_2011").shown
+    assert "not reassessed: stridor (last absent 10:45, old)" in shown
+    assert "respiratory distress (laboured breathing last absent 10:45, old)" in shown
+    assert "stridor" not in shown.split("not recorded: ")[1].split(";")[0]
+
+
+def test_a_note_is_printed_with_the_time_and_hand_of_its_entry() -> None:
+    first = {**looked("10:45", stridor="absent"), "note": "calm"}
+    later = {**looked("11:00", stridor="absent"), "note": "voice hoarser than at 10:45"}
+    shown = item(found(state_text({"signs": [first, later]}), at=T + "11:05"), "signs").shown
+    assert shown.endswith("; note 11:00 by EM: voice hoarser than at 10:45")
+    assert "calm" not in shown
+
+
+def test_a_note_without_any_sign_is_printed_too() -> None:
+    only = {**looked("10:45", stridor="not assessed"), "note": "asleep, not woken"}
+    shown = item(found(state_text({"signs": [only]}), at=T + "11:05"), "signs").shown
+    assert shown == "not recorded; note 10:45 by EM: asleep, not woken"
+
+
+def test_old_absences_of_a_patient_who_is_not_watched_ask_for_nothing() -> None:
+    block = {"signs": [looked("10:45", stridor="absent", drooling="absent")]}
+    scald = {"causes": [{"kind": "scald"}]}
+    count = item(found(state_text(block, injury=scald, area=LEG)), "signs_present")
+    assert (count.label, count.value, count.flag) == ("Airway signs", None, Flag.NONE)
+    assert count.shown == "0 present of 2 signs looked for at 10:45; not reassessed since"
+    watched = item(found(state_text(block)), "signs_present")
+    assert watched.flag is Flag.REVIEW
 
 
 def test_not_assessed_is_no_assessment() -> None:
@@ -136,7 +172,7 @@ def test_signs_from_before_an_extubation_are_old() -> None:
     block = {"signs": [looked("10:45", stridor="absent")]}
     events = [{"at": T + "11:00", "what": "intubation"}, {"at": T + "11:10", "what": "extubation"}]
     shown = item(found(state_text(block, events=events), at=T + "11:11"), "signs").shown
-    assert "stridor not reassessed since 10:45" in shown
+    assert "stridor: not reassessed since 10:45 (absent then)" in shown
 
 
 def test_a_count_of_signs_is_never_an_all_clear() -> None:

@@ -138,7 +138,7 @@ def test_an_old_absence_never_prints_as_absent(looked: list[tuple[int, str]], la
     for sign in charted.signs(case):
         if run.is_old(sign.at):
             assert f"{sign.name} absent" not in text
-            assert f"{sign.name} not reassessed since" in text
+            assert f"{sign.name}: not reassessed since" in text
         else:
             assert f"{sign.name} absent" in text
 
