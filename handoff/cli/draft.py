@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from pathlib import Path
-from typing import Annotated
+from typing import TYPE_CHECKING, Annotated
 
 import typer
 
@@ -22,6 +22,10 @@ from handoff.cli.edge import (
     who,
 )
 from handoff.cli.since import changes_or_stop
+
+if TYPE_CHECKING:
+    from handoff.registry import Setup
+    from handoff.state.load import Loaded
 
 OutOption = Annotated[
     Path | None,
@@ -52,7 +56,8 @@ def draft(
     from handoff.work import assess_loaded
 
     setup = setup_or_stop(policy, bundled_only)
-    assessment = assess_loaded(open_or_stop(file, setup, at), setup)
+    loaded = open_or_stop(file, setup, at)
+    assessment = assess_loaded(loaded, setup)
     changes = changes_or_stop(assessment, setup, since) if since else None
     try:
         documents = draft_documents(assessment, file.stem, changes)
@@ -69,5 +74,17 @@ def draft(
         complain(fault.said(assessment.state.file))
     for path in written:
         say(f"written: {path}")
+    _say_wording(loaded, setup)
     say("Check them against the patient, the prescription and local policy before you sign.")
     leave(assessment)
+
+
+def _say_wording(loaded: Loaded, setup: Setup) -> None:
+    from handoff.shift.wording import count_in_state, load_rules
+
+    count = count_in_state(loaded.state.root, setup.schema, load_rules())
+    if count:
+        found = f"{count} finding{'' if count == 1 else 's'}"
+        say(f"wording: {found} in the free text; handoff wording {loaded.state.file} shows them")
+    else:
+        say("wording: nothing is pointed out in the free text")
