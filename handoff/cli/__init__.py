@@ -15,6 +15,7 @@ from handoff.cli.schema import schema
 from handoff.cli.show import show
 from handoff.cli.since import since
 from handoff.cli.ward import ward
+from handoff.cli.wording import wording
 from handoff.cli.working import working
 
 app = typer.Typer(
@@ -25,7 +26,7 @@ app = typer.Typer(
     pretty_exceptions_enable=False,
     add_completion=True,
 )
-for command in (demo, chart, check, draft, due, show, since, note, ward, working, plugins, schema):
+for command in (demo, chart, check, draft, due, show, since, note, ward, wording, working, plugins, schema):
     app.command()(command)
 
 
