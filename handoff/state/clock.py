@@ -95,6 +95,11 @@ def _offset_text(delta: timedelta) -> str:
     return f"{'-' if minutes < 0 else '+'}{abs(minutes) // 60:02d}:{abs(minutes) % 60:02d}"
 
 
+def _written(local: datetime, between: str = " ") -> str:
+    # strftime leaves the zeros of an early year out on some systems
+    return local.replace(tzinfo=None).isoformat(between, "minutes")
+
+
 class Clock:
     """The clock of one time zone."""
 
@@ -147,10 +152,10 @@ class Clock:
                 return self._with_offset(local, offset, early, late)
             instant = first.astimezone(UTC)
         except OverflowError:
-            raise ClockError(f"'{local:%Y-%m-%d %H:%M}' is outside the calendar", "check the year") from None
+            raise ClockError(f"'{_written(local)}' is outside the calendar", "check the year") from None
         if early == late:
             return instant
-        said = f"{local:%Y-%m-%d %H:%M}"
+        said = _written(local)
         if instant.astimezone(self._zone).replace(tzinfo=None, fold=0) != local:
             raise ClockError(
                 f"{said} did not exist in {self.zone}: the clocks went forward over it",
@@ -173,7 +178,7 @@ class Clock:
         return instant
 
     def _wall(self, moment: datetime) -> str:
-        return f"{moment.astimezone(UTC).astimezone(self._zone):%Y-%m-%d %H:%M}"
+        return _written(moment.astimezone(UTC).astimezone(self._zone))
 
     def local(self, instant: datetime) -> datetime:
         """Return ``instant`` as local time of this zone."""
@@ -202,4 +207,4 @@ class Clock:
     def iso(self, instant: datetime) -> str:
         """Return ISO 8601 with the offset: ``2026-03-14T14:30+00:00``."""
         local = self.local(instant)
-        return f"{local:%Y-%m-%dT%H:%M}{_offset_text(local.utcoffset() or timedelta(0))}"
+        return f"{_written(local, 'T')}{_offset_text(local.utcoffset() or timedelta(0))}"

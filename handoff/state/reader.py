@@ -19,7 +19,14 @@ from handoff.state.characters import refused_characters
 from handoff.state.faults import Fault, StateFaults
 from handoff.state.nodes import List, Map, Node, Text, path_text
 from handoff.state.parser_words import parser_fault
-from handoff.state.scalars import Refusal, plain_refused, quoted_refused, split_number, without_colon
+from handoff.state.scalars import (
+    Refusal,
+    lost_comment,
+    plain_refused,
+    quoted_refused,
+    split_number,
+    without_colon,
+)
 
 MAX_BYTES = 8_000_000
 MAX_DEPTH = 24
@@ -188,6 +195,8 @@ class _Reading:
         elif isinstance(event, (yaml.MappingEndEvent, yaml.SequenceEndEvent)):
             end: Any = event.end_mark
             self._end(end.index)
+            if self._open and self._open[-1].flow:
+                self._refuse_comment(event, end.index)
         elif isinstance(event, yaml.AliasEvent):
             self._stop(event, "'*' begins an alias", "write the value out, or put it in quotes")
 
@@ -204,7 +213,14 @@ class _Reading:
             self._stop(
                 event, f"nested more than {MAX_DEPTH} deep", "a patient state needs less; check the brackets"
             )
+        if event.flow_style:
+            self._refuse_comment(event, mark.index + 1)
         self._open.append(_Open(is_map, mark.line + 1, mark.column + 1, mark.index, bool(event.flow_style)))
+
+    def _refuse_comment(self, event: yaml.Event, place: int) -> None:
+        lost = lost_comment(self.text, place) if "#" in self.text[place : place + 4] else None
+        if lost is not None:
+            self._fault(event, lost.what, lost.cure)
 
     def _end(self, end: int) -> None:
         done = self._open.pop()
@@ -228,7 +244,7 @@ class _Reading:
         text = Text.at(event.value, start.line + 1, start.column + 1, start.index, end.index, is_plain)
         if not is_plain:
             refusal = quoted_refused(self.text, event, self._indent())
-        elif start.line == end.line and self.text[end.index : end.index + 1] not in " ," and text.isascii():
+        elif start.line == end.line and "#" not in self.text[end.index : end.index + 4] and text.isascii():
             refusal = None
         else:
             refusal = plain_refused(self.text, event, bool(self._open) and self._open[-1].flow)
@@ -271,6 +287,8 @@ class _Reading:
     def _key(self, event: yaml.ScalarEvent, text: Text, inside: _Open) -> None:
         if text == "<<":
             self._fault(event, "'<<' merges another entry", "write the values out")
+        elif not text:
+            self._fault(event, "a key is missing", "write it before the colon, or delete the '?' or ':'")
         elif self._has_explicit_keys and _EXPLICIT_KEY.search(self._just_before(text)):
             self._fault(event, "'?' begins a key", "put text that begins with ? in quotes")
         known = inside.keys.get(text)

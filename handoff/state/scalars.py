@@ -14,6 +14,7 @@ _ODD_SPACE = re.compile(f"^-?[{SPACES}]|:[{SPACES}]")
 _BLOCK_HEADER = re.compile(r"[|>][+-]?(?=\s|$)")
 _LINE_BEGIN = re.compile(r"[\r\n]+( *)(?=\S)")
 _REST_OF_NUMBER = re.compile(r"(?<=[0-9]),[0-9][^,\]}\r\n]*")
+_TOO_NEAR = re.compile(r" ?(, ?)?#")
 _NUMBER_BEFORE = re.compile(r"[0-9.]*$")
 
 
@@ -41,21 +42,25 @@ def plain_refused(text: str, event: yaml.ScalarEvent, in_brackets: bool) -> Refu
             if in_brackets
             else "check the indentation below it, or put a long text after '|' on lines of its own",
         )
-    if text.startswith((" #", ", #"), end):
-        place = (
-            "after a comma"
-            if text[end] == ","
-            else "after a value"
-            if event.value
-            else "where a value is due"
-        )
-        return Refusal(
-            f"one space and '#' {place}: the rest would be lost as a comment",
-            "put the whole text in quotes, or put two spaces before a comment",
-        )
+    lost = lost_comment(text, end)
+    if lost is not None:
+        return lost
     if not event.value.isascii() and (odd := _ODD_SPACE.search(event.value)):
         return Refusal(f"a no-break space at character {odd.end()}", "type an ordinary space there")
     return None
+
+
+def lost_comment(text: str, end: int) -> Refusal | None:
+    """Return what is wrong where a ``#`` that may have been meant as text follows at ``end``."""
+    sign = _TOO_NEAR.match(text, end)
+    if sign is None:
+        return None
+    before = "," if "," in sign[0] else text[end - 1]
+    place = {",": "a comma", ":": "a colon", "-": "a dash"}.get(before, "a value")
+    return Refusal(
+        f"'#' after {place} with fewer than two spaces: the rest would be lost as a comment",
+        "put the whole text in quotes, or put two spaces before a comment",
+    )
 
 
 def quoted_refused(text: str, event: yaml.ScalarEvent, indent: int) -> Refusal | None:
@@ -77,6 +82,9 @@ def quoted_refused(text: str, event: yaml.ScalarEvent, indent: int) -> Refusal |
             return None
         written = text[start.index : start.index + 12].split(maxsplit=1)[0]
         return Refusal(f"'{written}' begins a block of text and would be lost", "put it in quotes", False)
+    lost = lost_comment(text, end.index)
+    if lost is not None:
+        return lost
     if end.line != start.line:
         lines = _LINE_BEGIN.finditer(text, start.index, end.index)
         if any(len(line[1]) < indent for line in lines):
