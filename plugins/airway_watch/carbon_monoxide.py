@@ -31,12 +31,18 @@ RANK_UNKNOWN, RANK_RAISED = 21, 20
 ONE_PHASE = (
     "One half-life is a simplification: after a brief exposure the fall is steeper first and slower later."
 )
+OPEN_BEFORE = (
+    "Time without charted oxygen is counted as room air; the range is wide because that oxygen is not known, "
+    "and nothing is decided by it."
+)
 FLOOR = "The body's own level is left out of the sum."
 
 
 def items(case: Case, seen: Exposure, gas: Monoxide) -> tuple[Item, ...]:
     """Return the measured series, the level expected now, and the level at the time of the burn."""
     if gas.expected is None:
+        if not seen.smoke_recorded and not seen.smoke_open:
+            return (say.not_asked(f"{CO}_now", "Carboxyhaemoglobin", "%"),)
         rank = RANK_UNKNOWN if seen.smoke_recorded else None
         caution = ("After smoke exposure an oximeter may read falsely high until it is measured.",)
         return (
@@ -156,6 +162,9 @@ def _at_burn(case: Case, seen: Exposure, gas: Monoxide) -> tuple[Item, ...]:
     if not seen.smoke_recorded or burn is None or not burn.certain or first.at < burn.latest:
         return ()
     parts = oxygen.stretches(case, burn.latest, first.at)
+    if parts and all(part.kind == oxygen.UNCHARTED for part in parts):
+        return ()
+    unknown = any(part.kind == oxygen.UNCHARTED for part in parts)
     lives = [half_life(case, part.kind) for part in parts]
     spans = [part.minutes for part in parts]
     high, high_capped = formula.backdated_pct(first.pct, spans, [life.low for life in lives])
@@ -187,7 +196,7 @@ def _at_burn(case: Case, seen: Exposure, gas: Monoxide) -> tuple[Item, ...]:
             sources=_sources(case, [part.kind for part in parts]),
             cautions=(
                 "Exposure is taken to end at the burn; rescue may have been later.",
-                "Time without charted oxygen is counted as room air.",
+                *((OPEN_BEFORE,) if unknown else ()),
                 ONE_PHASE,
             ),
         ),

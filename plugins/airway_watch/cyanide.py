@@ -170,7 +170,10 @@ def _coma(case: Case, at_most: float) -> Fact:
     if not totals:
         return facts.UNKNOWN
     total, at = min(totals)
-    return Fact(True, f"coma score {total} ({say.at(case, at)})", at) if total <= at_most else facts.NOT_SO
+    said = f"coma score {total} ({say.at(case, at)})"
+    if total > at_most:
+        return Fact(False, f"{said}, above the line of {number_text(at_most)}", at)
+    return Fact(True, said, at)
 
 
 def _low_pressure(case: Case, at_most: float) -> Fact:
@@ -185,9 +188,10 @@ def _low_pressure(case: Case, at_most: float) -> Fact:
     if not pairs:
         return facts.UNKNOWN
     systolic, at = min(pairs)
+    said = f"systolic {number_text(systolic)} mmHg ({say.at(case, at)})"
     if systolic > at_most:
-        return facts.NOT_SO
-    return Fact(True, f"systolic {number_text(systolic)} mmHg ({say.at(case, at)})", at)
+        return Fact(False, f"{said}, above the line of {number_text(at_most)} mmHg", at)
+    return Fact(True, said, at)
 
 
 def _lactate(case: Case, limit: float, at_least: bool) -> Fact:
@@ -201,7 +205,10 @@ def _lactate(case: Case, limit: float, at_least: bool) -> Fact:
     value, at = max(values)
     met = value >= limit if at_least else value > limit
     said = f"lactate {with_unit(value, 'mmol/L', say.PLACES)} ({say.at(case, at)})"
-    return Fact(True, said, at) if met else facts.NOT_SO
+    if met:
+        return Fact(True, said, at)
+    below = "below" if at_least else "not above"
+    return Fact(False, f"{said}, {below} the line of {with_unit(limit, 'mmol/L', say.PLACES)}", at)
 
 
 def _antidote(case: Case) -> str:

@@ -8,6 +8,7 @@ from datetime import datetime
 from handoff.plugin import (
     Case,
     Flag,
+    Input,
     Item,
     Node,
     Reading,
@@ -56,7 +57,7 @@ def items(case: Case, seen: Exposure, gas: Monoxide) -> tuple[Item, ...]:
     doubt = doubt_text(case, seen, gas, saturation.at) if saturation else ""
     return (
         *_spo2(case, gas, saturation, doubt),
-        _pf(case),
+        _pf(case, seen),
         *_sf(case, saturation, doubt),
         *rox.items(case, saturation, doubt),
     )
@@ -112,12 +113,14 @@ def _hidden(case: Case, gas: Monoxide, moment: datetime, pct: float) -> str:
     return f"Carboxyhaemoglobin about {say.pct(level)} then: oxygenated haemoglobin at most about {say.pct(most)}."
 
 
-def _pf(case: Case) -> Item:
+def _pf(case: Case, seen: Exposure) -> Item:
     key, label = "pf_ratio", "P/F"
     rows = [row for row in case.state.results if row.entry.get("pao2") is not None]
     rows = [row for row in rows if words(row.entry.get("specimen")) in ("", "arterial")]
     rows.sort(key=lambda row: (row.at, -(amount(row.entry.get("pao2"), "mmHg") or 0)))
     pao2 = amount(rows[-1].entry.get("pao2"), "mmHg") if rows else None
+    if pao2 is None and not _asks_for_gas(case, seen):
+        return say.not_asked(key, label, "mmHg")
     if pao2 is None:
         return say.gap(key, label, unit="mmHg", system=System.BREATHING)
     row = rows[-1]
@@ -125,6 +128,13 @@ def _pf(case: Case) -> Item:
     if given is None:
         return say.gap(key, label, missing, unit="mmHg", system=System.BREATHING)
     return _pf_item(case, row, pao2, given)
+
+
+def _asks_for_gas(case: Case, seen: Exposure) -> bool:
+    """Whether smoke, a tube or oxygen beyond room air makes a missing blood gas a gap."""
+    held = oxygen.holding(case, case.now)
+    on_oxygen = held is not None and held.device != oxygen.ROOM_AIR
+    return seen.smoke_recorded or seen.smoke_open or charted.tube(case).in_place or on_oxygen
 
 
 def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
@@ -136,8 +146,12 @@ def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
         said = f"about {number_text(value)} to {number_text(best)} mmHg"
     limits = [float(limit) for limit in case.parameters["berlin"].value]
     band = pf_range(value, limits)
+    shown = f"{said}, P/F {band}, at {say.at(case, row.at)} on {given.shown()}"
     if band != pf_range(best, limits):
-        band += " or above it"
+        shown = (
+            f"{said} (estimated FiO2) at {say.at(case, row.at)}; "
+            "no range named because the estimate crosses ranges"
+        )
     flag = _pf_flag(value, best, limits)
     sources = [case.parameters.source_of("berlin")] + ([given.source] if given.source else [])
     pao2_said = words(row.entry.get("pao2"))
@@ -146,7 +160,7 @@ def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
     return say.fact(
         "pf_ratio",
         "P/F",
-        f"{said}, P/F {band}, at {say.at(case, row.at)} on {given.shown()}",
+        shown,
         value=value,
         unit="mmHg",
         as_of=row.at,
@@ -159,6 +173,7 @@ def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
             inputs=(
                 case.input("Arterial oxygen pressure", row.entry.get("pao2"), pao2_said),
                 case.input("Inspired oxygen", row.entry.get("fio2"), given.shown()),
+                Input("Arterial pressure of the same ratio on room air", f"about {number_text(equal)} mmHg"),
             ),
             rule=given.table,
         ),
@@ -167,7 +182,6 @@ def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
             NOT_ARDS,
             _peep(case, row.at),
             *((OPEN_DEVICE,) if given.estimated else ()),
-            f"The same ratio on room air would be about {number_text(equal)} mmHg (handbook sum, 20 % oxygen).",
         ),
         line=row.line,
     )

@@ -76,6 +76,12 @@ def gap(
     )
 
 
+def not_asked(key: str, label: str, unit: str) -> Item:
+    """Return an item of breathing that must be there, where nothing recorded asks for it: not a gap."""
+    shown = "not worked out: nothing recorded asks for it"
+    return fact(key, label, shown, unit=unit, system=System.BREATHING, detail=True)
+
+
 def pct(value: float) -> str:
     """Return a percentage as printed: ``18 %``, ``0.9 %``."""
     return f"{number_text(value, PLACES)} %"

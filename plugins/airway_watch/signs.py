@@ -94,8 +94,7 @@ def _notes(case: Case, signs: tuple[Sign, ...]) -> list[str]:
     return [
         f"note {say.at(case, row.at)}{say.person(words(row.entry.get('by')))}: {said}"
         for row in charted.block_rows(case, "signs")
-        if (said := words(row.entry.get("note")))
-        and (row.at in latest or row.at > max(latest, default=row.at))
+        if (said := words(row.entry.get("note"))) and (row.at in latest or not latest or row.at > max(latest))
     ]
 
 

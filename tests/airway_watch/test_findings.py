@@ -161,6 +161,55 @@ def test_old_absences_of_a_patient_who_is_not_watched_ask_for_nothing() -> None:
     assert watched.flag is Flag.REVIEW
 
 
+def test_a_scald_is_not_asked_for_blood_gases_and_a_fire_is() -> None:
+    scald = found(state_text({}, injury={"causes": [{"kind": "scald"}]}, area=LEG))
+    for key, unit in (("carboxyhaemoglobin_now", "%"), ("pf_ratio", "mmHg")):
+        one = item(scald, key)
+        assert (one.value, one.unit, one.flag, one.detail) == (None, unit, Flag.NONE, True)
+        assert one.shown == "not worked out: nothing recorded asks for it"
+    for causes in (None, [{"kind": "flame"}], [FIRE]):
+        fire = found(state_text({}, injury={"causes": causes}, area=LEG))
+        assert item(fire, "carboxyhaemoglobin_now").flag is Flag.NOT_RECORDED
+        assert item(fire, "pf_ratio").flag is Flag.NOT_RECORDED
+
+
+def test_a_scald_on_oxygen_is_asked_for_the_gas() -> None:
+    findings = found(state_text({"oxygen": [NRB]}, injury={"causes": [{"kind": "scald"}]}, area=LEG))
+    assert item(findings, "pf_ratio").flag is Flag.NOT_RECORDED
+
+
+def test_an_estimate_that_crosses_ranges_names_none() -> None:
+    text = state_text({"oxygen": [NRB]}, results=[{"at": T + "16:30", "pao2": "190 mmHg"}])
+    ratio = item(found(text), "pf_ratio")
+    assert ratio.shown == (
+        "about 190 to 317 mmHg (estimated FiO2) at 16:30; no range named because the estimate crosses ranges"
+    )
+    assert not any("room air" in caution for caution in ratio.cautions)
+
+
+def test_the_level_at_the_burn_needs_some_oxygen_before_the_sample() -> None:
+    block = {"carboxyhaemoglobin": [{"at": T + "11:00", "value": "18 %"}]}
+    assert found(state_text(block)).item("airway_watch.carboxyhaemoglobin_at_burn") is None
+    level = item(found(state_text({**block, "oxygen": [NRB]})), "carboxyhaemoglobin_at_burn")
+    assert level.detail
+    assert any("nothing is decided by it" in caution for caution in level.cautions)
+
+
+@pytest.mark.parametrize(
+    ("choice", "line"), [("consensus", "not above the line of 10 mmol/L"), ("service", "below the line of")]
+)
+def test_a_lactate_under_the_line_is_said_with_the_line(choice: str, line: str) -> None:
+    results = [{"at": T + "10:40", "lactate": "3.9 mmol/L"}]
+    rows = {"2026-03-14": {"10:45": {"bp": "104/62 mmHg"}}}
+    text = state_text({}, results=results, observations=rows)
+    working = item(found(text, at=T + "11:00", setup=setup_with(cyanide=choice)), "cyanide").working
+    assert working is not None
+    read = {part.label: part.shown for part in working.inputs}
+    assert read["lactate"].startswith("lactate 3.9 mmol/L (10:40), ")
+    assert line in read["lactate"]
+    assert read["blood pressure"].startswith("systolic 104 mmHg (10:45), above the line of ")
+
+
 def test_not_assessed_is_no_assessment() -> None:
     block = {"signs": [looked("10:45", stridor="not assessed")]}
     findings = found(state_text(block), at=T + "10:50")
