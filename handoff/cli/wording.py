@@ -32,7 +32,8 @@ WhatArgument = Annotated[
 ]
 
 STATES = (".yaml", ".yml")
-MOST_BYTES = 8_000_000
+MEGABYTE_BYTES = 1_000_000
+MOST_BYTES = 8 * MEGABYTE_BYTES
 
 
 def wording(
@@ -102,7 +103,7 @@ def _of_text(content: bytes, name: str) -> list[Finding]:
 def _typed() -> bytes:
     content = sys.stdin.buffer.read(MOST_BYTES + 1)
     if len(content) > MOST_BYTES:
-        stop(Exit.USAGE, f"that is more than {MOST_BYTES // 1_000_000} MB; give a part of it")
+        stop(Exit.USAGE, f"that is more than {MOST_BYTES // MEGABYTE_BYTES} MB; give a part of it")
     return content
 
 
@@ -111,7 +112,7 @@ def _bytes(file: Path) -> bytes:
         if not file.is_file():
             stop(Exit.USAGE, f"{file} is no file; name a patient-state file, a Word document or a text file")
         if file.stat().st_size > MOST_BYTES and file.suffix.lower() != ".docx":
-            stop(Exit.USAGE, f"{file} is larger than {MOST_BYTES // 1_000_000} MB; give a part of it")
+            stop(Exit.USAGE, f"{file} is larger than {MOST_BYTES // MEGABYTE_BYTES} MB; give a part of it")
         return file.read_bytes()
     except OSError as error:
         stop(

@@ -14,6 +14,9 @@ from handoff.document.ward import Ward
 PATIENT_WIDTH, WORD_WIDTH, COUNT_WIDTH = 20, 10, 7
 """Letters of a column."""
 
+FIRST_WIDTH, NEXT_WIDTH = 3, 2
+"""Shares of what is left of the width."""
+
 
 def print_ward(ward: Ward, console: Console) -> None:
     """Print the ward: what is missing from the table first, then one row for each patient."""
@@ -27,9 +30,9 @@ def print_ward(ward: Ward, console: Console) -> None:
     table = Table(box=box.ASCII, show_lines=True, expand=True, padding=(0, 0))
     table.add_column("patient, place", width=PATIENT_WIDTH, overflow="fold")
     table.add_column("nurse's word", width=WORD_WIDTH, overflow="fold")
-    table.add_column("needs action first", ratio=3, overflow="fold")
+    table.add_column("needs action first", ratio=FIRST_WIDTH, overflow="fold")
     table.add_column("overdue", width=COUNT_WIDTH, justify="right")
-    table.add_column("next", ratio=2, overflow="fold")
+    table.add_column("next", ratio=NEXT_WIDTH, overflow="fold")
     for row in ward.rows:
         cells = (f"{row.patient}, {row.place}", row.severity, row.first, row.overdue, row.next)
         table.add_row(*(Text(visible(cell)) for cell in cells))

@@ -12,16 +12,16 @@ from lxml import etree
 
 from handoff.document.names import WORD
 
-MOST_FILE_BYTES = 50_000_000
+MEGABYTE_BYTES = 1_000_000
+
+MOST_FILE_BYTES = 50 * MEGABYTE_BYTES
 """Of the file: pictures may make it large."""
 
-MOST_PART_BYTES = 12_000_000
+MOST_PART_BYTES = 12 * MEGABYTE_BYTES
 """Of each part that holds text, when it is unpacked."""
 
-MOST_PARTS_BYTES = 30_000_000
+MOST_PARTS_BYTES = 30 * MEGABYTE_BYTES
 """Of all parts that are read, unpacked."""
-
-CHUNK_BYTES = 1_000_000
 
 READ = ("word/document", "word/header", "word/footer", "word/footnotes", "word/endnotes", "word/comments")
 """Beginnings of the names of parts that hold text."""
@@ -38,7 +38,9 @@ def lines_of(content: bytes) -> list[tuple[str, str]]:
         NotADocument: Not a .docx file, damaged, or larger than a document of words can be.
     """
     if len(content) > MOST_FILE_BYTES:
-        raise NotADocument(f"it is larger than {MOST_FILE_BYTES // 1_000_000} MB; no document of words is")
+        raise NotADocument(
+            f"it is larger than {MOST_FILE_BYTES // MEGABYTE_BYTES} MB; no document of words is"
+        )
     try:
         with ZipFile(BytesIO(content)) as file:
             names = [info for info in file.infolist() if _holds_text(info.filename)]
@@ -72,7 +74,7 @@ def _unpacked(file: ZipFile, info: ZipInfo, left: int) -> bytes:
     limit = min(MOST_PART_BYTES, left)
     chunks, size = [], 0
     with file.open(info) as part:
-        while chunk := part.read(CHUNK_BYTES):
+        while chunk := part.read(MEGABYTE_BYTES):
             size += len(chunk)
             if size > limit:
                 raise NotADocument("it unpacks to more than a document of words can hold; it was not read")
