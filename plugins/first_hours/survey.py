@@ -73,7 +73,12 @@ def _summary(case: Case, found: tuple[Step, ...], asked: bool) -> Item:
     source = case.parameters.source_of("steps")
     if len(missing) == len(found):
         return fact(
-            "survey", LABEL, NOT_RECORDED, system=System.GENERAL, unit="steps", flag=Flag.NOT_RECORDED
+            "survey",
+            LABEL,
+            f"{NOT_RECORDED} step by step",
+            system=System.GENERAL,
+            unit="steps",
+            flag=Flag.NOT_RECORDED,
         )
     said = [f"{len(done)} of {plural(len(found), 'step')} done"]
     said += [f"not done: {joined(left)}"] if left else []
@@ -108,6 +113,11 @@ def _item(step: Step) -> Item:
     )
 
 
+def _is_unknown(case: Case) -> bool:
+    """Whether so little is charted that the patient may not have been looked at: no time of burn, or no reading."""
+    return case.state.burn_time is None or not case.state.rows
+
+
 def actions(case: Case) -> tuple[Action, ...]:
     """Return what is left of the survey, the back apart because it needs hands."""
     found = steps(case)
@@ -123,8 +133,9 @@ def actions(case: Case) -> tuple[Action, ...]:
                 key="first_hours.finish",
                 area="First-hours survey",
                 text=f"Do and chart the survey: {', '.join(missing)} (log-roll with enough hands)",
-                why="no step of it is charted",
+                why="not charted step by step in first_hours",
                 system=System.GENERAL,
+                urgency=Urgency.NOW if _is_unknown(case) else Urgency.SHIFT,
                 sources=(source,),
             ),
         )

@@ -61,6 +61,15 @@ def test_a_survey_not_begun_is_one_line_of_the_care_plan() -> None:
     assert "back (log-roll with enough hands)" in action(found, "first_hours.finish").text
 
 
+def test_of_an_unknown_patient_the_survey_is_for_now() -> None:
+    reading = {"19:00": {"pulse": "80 /min"}}
+    known = action(assessed(NAMES, state_text(reading)), "first_hours.finish")
+    assert (known.urgency, known.why) == (Urgency.SHIFT, "not charted step by step in first_hours")
+    assert action(made(), "first_hours.finish").urgency is Urgency.NOW
+    undated = assessed(NAMES, state_text(reading, injury={"at": None}))
+    assert action(undated, "first_hours.finish").urgency is Urgency.NOW
+
+
 def test_a_step_left_with_a_reason_is_not_done() -> None:
     left = {"back": {"at": "2026-03-14 09:00", "not_done": "spine not yet cleared"}}
     found = made(*STEPS[:-1], steps=left)
