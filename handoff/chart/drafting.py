@@ -7,6 +7,7 @@ and the new tree is the old tree with the one change that was meant.
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
+from dataclasses import dataclass
 from typing import Any, TypeAlias
 
 from handoff.chart.insertion import Entry, Insertion, Value, pairs, scalar, woven
@@ -19,26 +20,49 @@ Path: TypeAlias = tuple[str | int, ...]
 Tree: TypeAlias = Any
 
 
+@dataclass(frozen=True)
+class _Change:
+    """One change: the block it is in, its insertions, how they are found, and what it does to the tree."""
+
+    block: str
+    insertions: list[Insertion]
+    found: Callable[[Layout], list[Insertion]]
+    meant: Callable[[Tree], Any]
+
+
 class Draft:
-    """The text and tree of a file with the changes made so far."""
+    """The text and tree of a file with the changes made so far.
+
+    Changes in different blocks of the file are put in together, so that a long file is read
+    back once and not once for each.
+    """
 
     def __init__(self, text: str, file: str) -> None:
-        self.old_text = text
         self.file = file
-        self.root, faults = read_nodes(text, file)
+        self._root, faults = read_nodes(text, file)
         if faults:
             raise StateFaults(file, faults)
+        self._tree: Tree = plain(self._root)
         self._parts: list[tuple[str, bool]] = [(text, True)]
         self._text = text
+        self._waiting: list[_Change] = []
 
     @property
     def text(self) -> str:
         """The new text so far."""
+        self._put_in()
         return self._text
+
+    @property
+    def root(self) -> Map:
+        """The tree of the new text so far."""
+        self._put_in()
+        return self._root
 
     @property
     def kept(self) -> str:
         """The new text without what was inserted; the old text."""
+        self._put_in()
         return "".join(part for part, is_old in self._parts if is_old)
 
     def node(self, path: Path) -> Node:
@@ -49,14 +73,19 @@ class Draft:
         return node  # type: ignore[no-any-return]
 
     def append(self, path: Sequence[str], entry: Entry) -> Path:
-        """Add ``entry`` at the end of the list at ``path``, made if missing; return the path of the entry."""
+        """Add ``entry`` at the end of the list at ``path``, made if missing; return the path of the entry.
+
+        Raises:
+            CannotInsert: Something else than a list stands there, as in every change that follows
+                where the layout has no safe place.
+        """
 
         def meant(tree: Tree) -> int:
             place = _made(tree, path[:-1])
             place[path[-1]] = [*(place.get(path[-1]) or []), _copy(entry)]
             return len(place[path[-1]]) - 1
 
-        index = self._step(self._layout.into_list(path, entry), meant)
+        index = self._change(path[0], lambda layout: layout.into_list(path, entry), meant)
         return (*path, index)
 
     def put(
@@ -67,7 +96,7 @@ class Draft:
         def meant(tree: Tree) -> None:
             _made(tree, path)[key] = _copy(value)
 
-        self._step(self._layout.into_map(path, key, value, is_later), meant)
+        self._change(path[0], lambda layout: layout.into_map(path, key, value, is_later), meant)
         return (*path, key)
 
     def extend(self, path: Path, added: Entry) -> Path:
@@ -79,11 +108,12 @@ class Draft:
         def meant(tree: Tree) -> None:
             _at(tree, path).update(_copy(added))
 
-        self._step(self._layout.into_entry(entry, added), meant)
+        self._change("", lambda layout: layout.into_entry(entry, added), meant)
         return path
 
     def beside(self, path: Path, entry: Entry) -> Path:
         """Add ``entry`` beside the one, or to the list, at ``path``; return the path of the new entry."""
+        node = self.node(path)
 
         def meant(tree: Tree) -> int:
             place = _at(tree, path[:-1])
@@ -91,7 +121,7 @@ class Draft:
             place[path[-1]] = [*(there if isinstance(there, list) else [there]), _copy(entry)]
             return len(place[path[-1]]) - 1
 
-        index = self._step(self._layout.beside(self.node(path), entry), meant)
+        index = self._change("", lambda layout: layout.beside(node, entry), meant)
         return (*path, index)
 
     def correct(self, path: Path, new: Entry, corrects: Mapping[str, str]) -> Path:
@@ -101,48 +131,77 @@ class Draft:
             CannotInsert: The old value is written in a way that cannot stand inside another.
         """
         node = self.node(path)
-        old, quote = _inside(node, self._text)
+        old, quote = _inside(node, self.text)
         before = f"{{{pairs(new)}, corrects: {{value: {quote}"
         after = f"{quote}, {pairs(corrects)}}}}}"
 
         def meant(tree: Tree) -> None:
             _at(tree, path[:-1])[path[-1]] = {**_copy(new), "corrects": {"value": old, **corrects}}
 
-        self._step(self._layout.around(node, before, after), meant)
+        self._change("", lambda layout: layout.around(node, before, after), meant)
         return path
 
     def correct_inside(self, path: Path, value: str, corrects: Mapping[str, str]) -> Path:
         """Put ``value`` before the ``value:`` of the group at ``path``, whose other keys stay; return ``path``."""
         inner = self.node((*path, "value"))
-        old, quote = _inside(inner, self._text)
+        old, quote = _inside(inner, self.text)
         before = f"{scalar(value)}, corrects: {{value: {quote}"
 
         def meant(tree: Tree) -> None:
             _at(tree, path).update({"value": value, "corrects": {"value": old, **corrects}})
 
-        self._step(self._layout.around(inner, before, f"{quote}, {pairs(corrects)}}}"), meant)
+        after = f"{quote}, {pairs(corrects)}}}"
+        self._change("", lambda layout: layout.around(inner, before, after), meant)
         return path
+
+    def _change(
+        self, block: str, found: Callable[[Layout], list[Insertion]], meant: Callable[[Tree], Any]
+    ) -> Any:
+        """Take up a change; one whose place depends on an earlier one (no block named) is put in alone."""
+        if not block or any(one.block in ("", block) for one in self._waiting):
+            self._put_in()
+        insertions = found(self._layout)
+        self._waiting.append(_Change(block, insertions, found, meant))
+        result = meant(self._tree)
+        if not block:
+            self._put_in()
+        return result
 
     @property
     def _layout(self) -> Layout:
-        return Layout(self._text, self.root)
+        return Layout(self._text, self._root)
 
-    def _step(self, insertions: list[Insertion], meant: Callable[[Tree], Any]) -> Any:
-        expected = plain(self.root)
-        result = meant(expected)
+    def _put_in(self) -> None:
+        changes, self._waiting = self._waiting, []
+        if not changes:
+            return
+        together = [insertion for change in changes for insertion in change.insertions]
+        if self._step(together, self._tree):
+            return
+        tree = plain(self._root)
+        for change in changes:  # two of them meant the same place: one after the other then
+            change.meant(tree)
+            if not self._step(change.found(self._layout), tree):
+                line = self._text.count("\n", 0, min(one.place for one in change.insertions)) + 1
+                self._tree = plain(self._root)
+                raise CannotInsert(
+                    f"line {line}: its layout has no safe place for the entry; write it by hand"
+                )
+        self._tree = tree
+
+    def _step(self, insertions: list[Insertion], expected: Tree) -> bool:
+        """Put insertions in if the result reads as ``expected``; return whether they were."""
         parts = woven(self._text, insertions)
         text = "".join(part for part, _ in parts)
-        line = self._text.count("\n", 0, min(one.place for one in insertions)) + 1
-        refused = CannotInsert(f"line {line}: its layout has no safe place for the entry; write it by hand")
         try:
             root, faults = read_nodes(text, self.file)
         except StateFaults:
-            raise refused from None
+            return False
         if faults or plain(root) != expected or "".join(part for part, old in parts if old) != self._text:
-            raise refused
+            return False
         self._parts = _rewoven(self._parts, insertions)
-        self._text, self.root = text, root
-        return result
+        self._text, self._root = text, root
+        return True
 
 
 def _rewoven(parts: list[tuple[str, bool]], insertions: list[Insertion]) -> list[tuple[str, bool]]:

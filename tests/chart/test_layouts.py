@@ -118,24 +118,29 @@ def test_a_new_value_stands_around_the_old(
 
 
 @MANY
-@given(files(), st.lists(st.sampled_from(["dose", "row", "event"]), min_size=2, max_size=5), ENTRIES)
+@given(
+    files(), st.lists(st.sampled_from(["dose", "row", "event", "result"]), min_size=2, max_size=5), ENTRIES
+)
 def test_many_changes_in_one_draft_keep_every_character(
     file: tuple[str, dict[str, Any]], kinds: list[str], entry: dict[str, str]
 ) -> None:
     text, _ = file
     draft = Draft(text, "f")
-    for kind in kinds:
+    count: dict[str, int] = {}
+    for number, kind in enumerate(kinds):
         if kind == "dose":
             draft.append(("pain", "doses"), entry)
         elif kind == "event":
             draft.append(("events",), entry)
-        elif "observations" in draft.root and "14:15" in str(plain(draft.root)):
+        elif kind == "result":
             draft.append(("results",), entry)
         else:
-            draft.put(
-                ("observations", "2026-03-15"), f"0{len(draft.text) % 10}:{len(draft.text) % 60:02d}", entry
-            )
+            draft.put(("observations", "2026-03-15"), f"0{9 - number}:00", entry, lambda other: other > "09")
+        count[kind] = count.get(kind, 0) + 1
+    told = tree(draft.text)
     assert draft.kept == text
+    assert len(told.get("events", [])) == count.get("event", 0)
+    assert len(told.get("observations", {}).get("2026-03-15", {})) == count.get("row", 0)
 
 
 def _some_row(told: dict[str, Any], data: st.DataObject) -> tuple[str, str, str]:
@@ -169,8 +174,9 @@ def test_an_entry_without_its_braces_is_refused_by_line(text: str, line: int) ->
 def test_a_text_that_would_change_by_what_follows_it_is_left_alone() -> None:
     text = "pain:\n  doses:\n    - drug: a\n      note: |\n        no newline at the end of the file"
     draft = Draft(text, "f")
+    draft.append(("pain", "doses"), NEW)
     with pytest.raises(CannotInsert, match="line 5: its layout has no safe place"):
-        draft.append(("pain", "doses"), NEW)
+        assert draft.text
     assert draft.text == text
 
 
