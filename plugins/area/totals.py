@@ -101,6 +101,7 @@ def _blank(total: Total, shown: str, assessment: Assessment | None = None) -> It
         label=total.label,
         part=Part.ASSESSMENT,
         system=System.BURN,
+        unit="%",
         shown=shown,
         as_of=assessment.at if assessment else None,
         flag=Flag.NOT_RECORDED,

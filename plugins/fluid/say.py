@@ -11,6 +11,22 @@ NOT_RECORDED = "not recorded"
 RATE_PLACES = 0
 INDEX_PLACES = 2
 PER_KG_PLACES = 2
+UNITS = {  # of the figures that others look up by key; a figure that is not there keeps its unit
+    "total_24h": "mL",
+    "first_8h": "mL",
+    "rate_now": "mL/h",
+    "catch_up_rate": "mL/h",
+    "due_by_now": "mL",
+    "given": "mL",
+    "not_confirmed": "mL",
+    "given_index": "mL/kg/%",
+    "projected_24h": "mL",
+    "projected_per_kg": "mL/kg",
+    "urine_rate": "mL/kg/h",
+    "urine_last": "mL/h",
+    "maintenance_rate": "mL/h",
+    "balance": "mL",
+}
 
 
 def ml(value: float) -> str:
@@ -43,7 +59,8 @@ def why_not(missing: Sequence[str]) -> str:
 
 
 def figure(key: str, label: str, **more: Any) -> Item:
-    """Return an item of the assessment under fluid and urine."""
+    """Return an item of the assessment under fluid and urine, in the unit of its key."""
+    more.setdefault("unit", UNITS.get(key, ""))
     return Item(
         key=f"fluid.{key}",
         label=label,

@@ -9,7 +9,7 @@ import pytest
 
 from handoff.plugin import Flag, Item, Urgency
 
-from .build import assessed, burned, computed, item, order, run, value
+from .build import assessed, burned, computed, item, order, run, value, whole
 
 PLAN = (
     "total_24h",
@@ -532,3 +532,23 @@ def test_the_ends_of_the_urine_target_are_passed_on_in_ml_an_hour() -> None:
     child = burned("20 kg", "30 %", born="2020-01-01", orders=[order()])
     assert computed(child).values["urine_target_ml_h"] == (20, None)
     assert computed(burned(None, orders=[order()])).values["urine_target_ml_h"] is None
+
+
+@pytest.mark.parametrize(
+    "state",
+    [
+        burned(None, None, burn=None),
+        burned("80 kg", "12 %"),
+        burned(orders=[order()]),
+        burned(patient={"resuscitation": {"decision": "comfort care", "by": "Dr A. Quill"}}),
+    ],
+)
+def test_a_figure_that_is_not_there_keeps_its_unit(state: dict[str, Any]) -> None:
+    found = computed(state)
+    assert {key: item(found, key).unit for key in CONTRACT} == CONTRACT
+
+
+def test_an_area_that_is_not_there_keeps_its_unit() -> None:
+    counted = whole(burned(None, None, burn=None)).item("area.counted")
+    assert counted is not None
+    assert (counted.value, counted.unit) == (None, "%")
