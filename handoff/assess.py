@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-import math
 import traceback
 from collections.abc import Mapping
 from dataclasses import dataclass
-from datetime import datetime, timedelta
+from datetime import datetime
 from pathlib import Path
 
+from handoff.contract import breach
 from handoff.plugin import Action, Case, Findings, Flag, Item, Plugin
 from handoff.policy import Policy
 from handoff.registry import Setup
@@ -64,7 +64,7 @@ def assess(state: PatientState, setup: Setup, now: datetime, warnings: tuple[Fau
         case = case_of(plugin, state, setup, now, required)
         try:
             found = plugin.compute(case)
-            problem = _breach(plugin, found)
+            problem = breach(plugin, found)
         except Exception as error:  # a plugin may fail in any way; the document must still be made
             problem = f"stopped with {type(error).__name__} {_place(error)}"
         if problem:
@@ -98,34 +98,3 @@ def _place(error: Exception) -> str:
         return ""
     last = frames[-1]
     return f"({Path(last.filename).name}, line {last.lineno})"
-
-
-def _breach(plugin: Plugin, found: Findings) -> str:
-    if not isinstance(found, Findings):
-        return f"returned {type(found).__name__} instead of Findings"
-    words = (plugin.name, *plugin.owns)
-    seen: set[str] = set()
-    for key in (*(item.key for item in found.items), *(action.key for action in found.actions)):
-        if key.partition(".")[0] not in words:
-            return f"returned the key '{key}', which is not its own"
-        if key in seen:
-            return f"returned the key '{key}' twice"
-        seen.add(key)
-    for item in found.items:
-        problem = _item_breach(item)
-        if problem:
-            return f"returned '{item.key}' {problem}"
-    for action in found.actions:
-        if action.every is not None and action.every < timedelta(minutes=1):
-            return f"returned the action '{action.key}' more often than once a minute"
-    return ""
-
-
-def _item_breach(item: Item) -> str:
-    if isinstance(item.value, float) and not math.isfinite(item.value):
-        return "as a number that is not finite"
-    if item.value is not None and not item.sources and not item.repeats:
-        return "without a source"
-    if item.value is None and item.flag is Flag.NONE and not item.shown:
-        return "with nothing to show"
-    return ""

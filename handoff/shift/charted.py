@@ -48,7 +48,7 @@ class Entry:
 
 def entries_of(state: PatientState) -> Iterator[Entry]:
     """Yield every dated entry of the file, each observation row as one, in the order of the file."""
-    for key, node in state.root.items():
+    for key, node in state.written.items():
         if key in NOT_FOR_READERS:
             continue
         if key == ROWS and isinstance(node, Map):

@@ -109,7 +109,7 @@ def _found(system: str, at: datetime, entry: Entry, text: str, speaker: Speaker)
 def _undated(state: PatientState, end: datetime, speaker: Speaker) -> Iterator[_Found]:
     dated = {id(entry.node) for entry in entries_of(state)}
     for block in WITHOUT_TIME:
-        node = state.root.get(block)
+        node = state.written.get(block)
         lists = {block: node} if isinstance(node, List) else {}
         if isinstance(node, Map):
             lists |= {f"{block}.{key}": value for key, value in node.items() if isinstance(value, List)}

@@ -24,6 +24,25 @@ def entries(node: Node | None) -> tuple[Map, ...]:
     return ()
 
 
+def without_struck(node: Node) -> Node:
+    """Return ``node`` without the values that were struck out; a list keeps its places.
+
+    A struck-out entry of a list is left aside by :func:`entries`, so that paths still count
+    as in the file.
+    """
+    if isinstance(node, Map):
+        kept = [
+            (key, without_struck(value))
+            for key, value in node.items()
+            if not (isinstance(value, Map) and "struck" in value)
+        ]
+        return Map.at(kept, node.line, node.column, node.start, node.end, node.flow)  # type: ignore[arg-type]
+    if isinstance(node, List):
+        values = [without_struck(value) for value in node]
+        return List.at(values, node.line, node.column, node.start, node.end, node.flow)
+    return node
+
+
 def child(node: Node | None, *names: str) -> Node | None:
     """Return what stands at ``names`` below ``node``, or None."""
     for name in names:

@@ -8,9 +8,10 @@ from dataclasses import dataclass
 from datetime import UTC, date, datetime
 from functools import cached_property
 
-from handoff.state.access import amount, child, entries, instant, words
+from handoff.state.access import amount, child, entries, instant, unit_of, without_struck, words
 from handoff.state.clock import Clock, read_date
 from handoff.state.nodes import List, Map, Node, plain
+from handoff.words import plural
 
 NOT_CLINICAL = ("collected",)
 """Keys that hold what the tool itself brought back; they do not change the digest."""
@@ -18,7 +19,10 @@ NOT_CLINICAL = ("collected",)
 
 @dataclass(frozen=True, slots=True)
 class Age:
-    """Age at a moment: completed years, months and days; days and months None when estimated."""
+    """Age at a moment: completed years, months and days.
+
+    An estimated age has months and days only as far as it was written in them.
+    """
 
     years: int
     months: int | None
@@ -28,12 +32,11 @@ class Age:
     def shown(self) -> str:
         """Return the age as said at the bedside, in years, months or days."""
         prefix = "about " if self.estimated else ""
-        if self.days is not None and self.months is not None:
-            if self.months < 1:
-                return f"{self.days} days"
-            if self.years < 2:
-                return f"{self.months} months"
-        return f"{prefix}{self.years} years"
+        if self.months is not None and self.years < 2:
+            if self.months < 1 and self.days is not None:
+                return prefix + plural(self.days, "day")
+            return prefix + plural(self.months, "month")
+        return prefix + plural(self.years, "year")
 
 
 @dataclass(frozen=True, slots=True)
@@ -87,14 +90,17 @@ class PatientState:
     """What one state file says, validated; reading it never fails and nothing changes it."""
 
     def __init__(self, root: Map, file: str) -> None:
-        self.root = root
+        self.written = root
+        """Everything as it stands in the file, struck-out values too."""
+        kept = without_struck(root)
+        self.root = kept if isinstance(kept, Map) else root
         self.file = file
         self.clock = Clock(words(root.get("clock")))
 
     @cached_property
     def digest(self) -> str:
         """SHA-256 of the clinical content; comments, layout and collected ticks do not count."""
-        content = {key: plain(value) for key, value in self.root.items() if key not in NOT_CLINICAL}
+        content = {key: plain(value) for key, value in self.written.items() if key not in NOT_CLINICAL}
         text = json.dumps(content, sort_keys=True, ensure_ascii=False, separators=(",", ":"))
         return hashlib.sha256(text.encode()).hexdigest()
 
@@ -150,8 +156,13 @@ class PatientState:
         if born:
             return _age(read_date(born).earliest(), self.clock.local(moment).date())
         node = self.patient.get("estimated_age")
-        months = amount(node, "months") if node is not None else None
-        return None if months is None else Age(int(months // 12), None, None, estimated=True)
+        months = amount(node, "months", "age") if node is not None else None
+        if months is None:
+            return None
+        unit = unit_of(node)
+        days = amount(node, "d", "age") if unit == "d" or unit.startswith("week") else None
+        exact = None if unit.startswith("year") else int(months)
+        return Age(int(months // 12), exact, None if days is None else round(days), estimated=True)
 
     @cached_property
     def rows(self) -> tuple[Row, ...]:

@@ -53,6 +53,15 @@ KINDS: dict[str, dict[str, Unit]] = {
         "year": Unit(12, dimension="month"),
         "years": Unit(12, dimension="month"),
     },
+    "age": {
+        "months": _PLAIN,
+        "years": Unit(12),
+        "month": _PLAIN,
+        "year": Unit(12),
+        "weeks": Unit(7 * 12 / 365.2425),
+        "week": Unit(7 * 12 / 365.2425),
+        "d": Unit(12 / 365.2425),
+    },
     "voltage": {"V": _PLAIN, "kV": Unit(1000)},
     "dose": {
         "mg": _PLAIN,

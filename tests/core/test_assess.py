@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from datetime import timedelta
+from datetime import datetime, timedelta
 
 import pytest
 
@@ -62,6 +62,16 @@ def test_what_depends_on_a_failed_plugin_is_not_computed() -> None:
         (Findings((item("a.one", value=None, shown=""),)), "nothing to show"),
         (Findings((), (action("a.do", every=timedelta(seconds=1)),)), "more often"),
         ("text", "instead of Findings"),
+        (Findings((item("a.one", flag="needs action"),)), "where a Flag is due"),
+        (Findings((item("a.one", system="airway"),)), "where a System is due"),
+        (Findings((item("a.one", shown=3),)), "where a text is due"),
+        (Findings((item("a.one", as_of=datetime(2026, 3, 14, 12)),)), "no time zone"),
+        (Findings((item("a.one", cautions="one"),)), "not a tuple of texts"),
+        (Findings((item("a.one", sources=("x",)),)), "not a tuple of Source"),
+        (Findings((item("a.one", value=[1]),)), "of the kind list"),
+        (Findings((), (action("a.do", urgency="now"),)), "where a Urgency is due"),
+        (Findings((), (action("a.do", first_due=datetime(2026, 3, 14, 12)),)), "no time zone"),
+        (Findings(("text",)), "returned str among its findings"),
     ],
 )
 def test_findings_that_break_the_contract_are_refused(found: object, said: str) -> None:

@@ -112,6 +112,20 @@ def test_working_of_an_unknown_figure_names_the_nearest(small: Path) -> None:
     assert "injury.hours_since" in done.stderr
 
 
+def test_working_of_a_figure_that_could_not_be_computed_ends_with_exit_code_3(small: Path) -> None:
+    script = (
+        "import sys, dataclasses, handoff.bundled.fluid as f, handoff.registry as r\n"
+        "def broken(case): raise ValueError('x')\n"
+        "f.plugin = dataclasses.replace(f.plugin, compute=broken)\n"
+        "import handoff.cli; sys.argv = ['handoff', 'working', *sys.argv[1:]]; handoff.cli.main()\n"
+    )
+    for key in ("fluid.total_24h", "injury.hours_since"):
+        command = [sys.executable, "-c", script, str(small), key, "--at", AT]
+        done = subprocess.run(command, capture_output=True, text=True, check=False)
+        assert done.returncode == 3, done.stderr
+        assert "Fluid" in done.stderr
+
+
 def test_plugins_lists_each_with_its_choices() -> None:
     done = run("plugins")
     assert done.returncode == 0
