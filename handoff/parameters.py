@@ -39,7 +39,10 @@ class Source:
         parts = [self.citation, f"Edition: {self.edition}" if self.edition else ""]
         parts += [f"doi:{self.doi}" if self.doi else "", self.locator]
         cited = " ".join(f"{part.strip().rstrip('.')}." for part in parts if part.strip())
-        notes = {"from memory": "From memory: confirm before use.", "common practice": "Common practice, no source."}
+        notes = {
+            "from memory": "From memory: confirm before use.",
+            "common practice": "Common practice, no source.",
+        }
         return f"{cited} {notes.get(self.kind, '')}".strip()
 
 
