@@ -41,7 +41,7 @@ def items(case: Case, found: Injury) -> tuple[Item, ...]:
         fact(
             "contact",
             "Source and contact points",
-            "; ".join([found.voltage, joined(said) or "contact points not recorded", *told]),
+            "; ".join([found.voltage, joined(said) or _not_recorded(case, found), *told]),
             system=System.ELECTRICAL,
             flag=flag,
             sources=(case.parameters.source_of("voltage.high"),),
@@ -49,6 +49,13 @@ def items(case: Case, found: Injury) -> tuple[Item, ...]:
             line=found.cause.line,
         ),
     )
+
+
+def _not_recorded(case: Case, found: Injury) -> str:
+    """Say that the contact points are not recorded, with the words in which they may have been told."""
+    told = (words(case.state.injury.get("what_happened")), words(found.cause.get("note")))
+    free = "; ".join(part.rstrip(".") for part in told if part)
+    return "contact points not recorded" + (f" (free text: {free})" if free else "")
 
 
 def path(case: Case) -> list[str]:

@@ -52,6 +52,24 @@ def running(case: Case) -> datetime | None:
     return spans[-1].at if spans and "until" not in spans[-1].entry else None
 
 
+def _seen_on_monitor(case: Case, found: Injury) -> bool:
+    """Whether an arrhythmia was read from a monitor of which no start is charted."""
+    said = " ".join(words(row.entry.get("said")).lower() for row in found.rhythms)
+    return "monitor" in said and not _spans(case)
+
+
+def _last_rhythm(case: Case, found: Injury, between: str) -> str:
+    last = found.rhythms[-1]
+    return f"{words(last.entry.get('what'))} {between} {case.clock.time(last.at, case.now)}"
+
+
+def _ecg_since(case: Case, found: Injury) -> str:
+    """Return what to ask where no electrocardiogram was taken at or after the last arrhythmia."""
+    if not found.rhythms or not ecgs(case) or any(row.at >= found.rhythms[-1].at for row in ecgs(case)):
+        return ""
+    return f"; 12-lead electrocardiogram after the {_last_rhythm(case, found, 'of')} not charted: ask"
+
+
 def items(case: Case, found: Injury) -> tuple[Item, ...]:
     """Return arrhythmias, the electrocardiogram, and the monitoring."""
     return (*_rhythms(case, found), _ecg(case, found), _monitoring(case, found))
@@ -124,7 +142,7 @@ def _monitoring(case: Case, found: Injury) -> Item:
     since, hours = running(case), case.parameters.number("monitoring.hours")
     end = since + timedelta(hours=hours) if since else None
     asks = bool(have) and since is None and not _done(case, hours) and not found.comfort
-    said = [_state(case, since, end)]
+    said = [_state(case, found, since, end)]
     said.append(f"asked for by {joined(have)} ({title})" if have else f"no criterion of {title} met")
     said += [f"cannot be judged: {joined(lack)}"] if lack else []
     flag = Flag.ACTION if asks else Flag.NONE
@@ -153,7 +171,7 @@ def _monitoring(case: Case, found: Injury) -> Item:
     )
 
 
-def _state(case: Case, since: datetime | None, end: datetime | None) -> str:
+def _state(case: Case, found: Injury, since: datetime | None, end: datetime | None) -> str:
     if since is not None and end is not None:
         reached = "24 h reached, ask whether it may end" if end < case.now else "to at least"
         if end < case.now:
@@ -164,6 +182,8 @@ def _state(case: Case, since: datetime | None, end: datetime | None) -> str:
         ended = case.when(spans[-1].entry.get("until"))
         by = words(spans[-1].entry.get("decided_by")) or "not recorded by whom"
         return f"ended {case.clock.day_and_time(ended)} ({by})" if ended else "ended"
+    if _seen_on_monitor(case, found):
+        return f"monitoring start and alarms not charted; {_last_rhythm(case, found, 'charted at')}"
     return "not recorded"
 
 
@@ -193,11 +213,14 @@ def actions(case: Case, found: Injury) -> tuple[Action, ...]:
     have = met(case, found)
     since = running(case)
     if have and since is None and not _done(case, case.parameters.number("monitoring.hours")):
+        start = "Connect the rhythm monitor now, alarms on, and chart from when; tell the doctor"
+        if _seen_on_monitor(case, found):
+            start = "Check that the rhythm monitor is on, alarms set; chart from when"
         made.append(
             Action(
                 key="electrical.start_monitoring",
                 area="Electrical injury",
-                text="Connect the rhythm monitor now, alarms on, and chart from when; tell the doctor",
+                text=f"{start}{_ecg_since(case, found)}",
                 why=f"{joined(have)} ({title})",
                 system=System.ELECTRICAL,
                 urgency=Urgency.NOW,
@@ -210,7 +233,10 @@ def actions(case: Case, found: Injury) -> tuple[Action, ...]:
             Action(
                 key="electrical.keep_monitoring",
                 area="Electrical injury",
-                text="Keep the rhythm monitor on, on transfer and in the scanner too; ask before it is ended",
+                text=(
+                    "Keep the rhythm monitor on, on transfer and in the scanner too; ask before it is ended"
+                    + _ecg_since(case, found)
+                ),
                 why=joined(have) or "started after an electrical injury",
                 system=System.ELECTRICAL,
                 first_due=since + timedelta(hours=hours),

@@ -89,6 +89,47 @@ def test_each_list_asks_for_its_own_criteria(
     assert ("electrical.start_monitoring" in action_keys(found)) is asked
 
 
+SEEN = {"at": "2026-03-14 19:20", "what": "arrhythmia", "said": "run of ectopics on the monitor"}
+
+
+def test_an_arrhythmia_read_from_a_monitor_does_not_ask_to_connect_one() -> None:
+    results = [{"at": "2026-03-14 14:00", "ecg": "sinus tachycardia"}]
+    found = made(events=[SEEN], results=results)
+    shown = item(found, "electrical.monitoring").shown
+    assert shown.startswith("monitoring start and alarms not charted; arrhythmia charted at 19:20")
+    assert action(found, "electrical.start_monitoring").text == (
+        "Check that the rhythm monitor is on, alarms set; chart from when; "
+        "12-lead electrocardiogram after the arrhythmia of 19:20 not charted: ask"
+    )
+
+
+def test_an_arrhythmia_without_a_monitor_still_asks_to_connect_one() -> None:
+    found = made(events=[{**SEEN, "said": "pulse irregular"}])
+    assert item(found, "electrical.monitoring").shown.startswith("not recorded; asked for by arrhythmia")
+    text = action(found, "electrical.start_monitoring").text
+    assert text == "Connect the rhythm monitor now, alarms on, and chart from when; tell the doctor"
+    assert "electrical.take_ecg" in action_keys(found)
+
+
+def test_an_electrocardiogram_after_the_arrhythmia_is_not_asked_about() -> None:
+    block = {
+        "ecg": [{"at": "2026-03-14 19:20", "abnormal": "yes"}],
+        "monitoring": [{"from": "2026-03-14 09:00"}],
+    }
+    assert "not charted" not in action(made(block, events=[SEEN]), "electrical.keep_monitoring").text
+    block["ecg"][0]["at"] = "2026-03-14 19:19"
+    text = action(made(block, events=[SEEN]), "electrical.keep_monitoring").text
+    assert text.endswith("12-lead electrocardiogram after the arrhythmia of 19:20 not charted: ask")
+
+
+def test_contact_points_told_in_words_are_shown_as_such() -> None:
+    assert "contact points not recorded" in item(made(), "electrical.contact").shown
+    assert "free text" not in item(made(), "electrical.contact").shown
+    found = item(made(injury={"what_happened": "Left hand on a crane chain."}), "electrical.contact")
+    assert "contact points not recorded (free text: Left hand on a crane chain)" in found.shown
+    assert found.flag is Flag.NOT_RECORDED
+
+
 def test_what_nobody_recorded_cannot_be_judged() -> None:
     found = item(made(), "electrical.monitoring")
     assert found.flag is Flag.NOT_RECORDED
