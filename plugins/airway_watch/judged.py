@@ -22,7 +22,7 @@ def why(case: Case, seen: Exposure, start: datetime | None) -> Item:
     elif seen.cannot_be_judged:
         shown = unjudged(seen)
     else:
-        shown = f"not asked for by what is recorded: {say.and_list(_known(case, seen))}{missing}"
+        shown = f"not asked for by what is recorded: {'; '.join(_known(case, seen))}{missing}"
     flag = Flag.NOT_RECORDED if seen.missing and not seen.reasons else Flag.NONE
     since = start if seen.watched else None
     rank = RANK if seen.cannot_be_judged else None

@@ -87,8 +87,8 @@ def test_only_what_was_charted_is_said_to_ask_for_nothing() -> None:
     block = {"signs": [looked("10:45", stridor="absent")]}
     shown = item(found(state_text(block, injury={"causes": [cause]}, area=LEG)), "watch").shown
     assert shown == (
-        "not asked for by what is recorded: burns as charted, none of them of the face or deep of the neck "
-        "and airway signs last looked for 10:45; not recorded: smoke breathed or not"
+        "not asked for by what is recorded: burns as charted, none of them of the face or deep of the neck; "
+        "airway signs last looked for 10:45; not recorded: smoke breathed or not"
     )
 
 
