@@ -17,7 +17,7 @@ from handoff.chart.meanings import LIST, RESULT, Lexicon
 from handoff.chart.phrases import NotUnderstood, Said, understand
 from handoff.chart.restating import Restating, SameAlready, tree_of
 from handoff.chart.shape import Schema
-from handoff.chart.standing import Standing, standing_at
+from handoff.chart.standing import Standing, standing_at, stands
 from handoff.chart.times import meant, spelled
 from handoff.state.load import Loaded
 from handoff.state.nodes import Map, plain
@@ -25,6 +25,8 @@ from handoff.state.nodes import Map, plain
 _REFERENCE = re.compile(
     r"(?P<when>(?:\d{4}-\d{2}-\d{2}[ T])?\d{1,2}:\d{2}(?: ?(?:Z|[+-]\d{2}:\d{2}))?)(?:\s+(?P<words>.+))?"
 )
+
+WHOLE = -1
 
 
 @dataclass(frozen=True)
@@ -89,7 +91,9 @@ class _Work:
             return work._correct_entry(said, new if isinstance(new, Mapping) else {})
         key = said.meaning.place
         place = "results" if said.meaning.kind == RESULT else ROWS
-        one = work._one([found for found in work.there if found.place == place and key in found.entry], text)
+        one = work._one(
+            [found for found in work.there if found.place == place and stands(found.entry, key)], text
+        )
         look = shape.result if said.meaning.kind == RESULT else shape.observation
         try:
             old, now = work.restating.value(one, key, new, look(work.schema, key) or shape.NOTHING)
@@ -104,10 +108,11 @@ class _Work:
     def strike(self, text: str) -> list[str]:
         """Strike out one entry, or one value of a row: then the rest of the row is written anew."""
         work, text = self._of_author(text)
-        one, key = work._found(text)
-        said = describe_key(key, plain(one.entry[key])) if key else _told(one)
-        if key and _clinical(one.entry) != [key]:
-            work.restating.row(one, key, None, shape.NOTHING)
+        one, key, index = work._found(text)
+        said = describe_key(key, _part(one, key, index)) if key else _told(one)
+        if key and (index is not None or _clinical(one.entry) != [key]):
+            look = shape.observation if one.place == ROWS else shape.result
+            work.restating.strike_value(one, key, index, look(work.schema, key) or shape.NOTHING)
         else:
             work.restating.strike(one)
         return [
@@ -160,16 +165,14 @@ class _Work:
         aside = ("by", *shape.times_of(entry_form))
         return {key: value for key, value in entry.items() if key not in aside}
 
-    def _found(self, text: str) -> tuple[Standing, str]:
-        """The entry that the words name, and the key of a row where they name one value of it."""
-        if not text:
-            return self._one(self.there, text), ""
-        listed = [one for one in self.there if one.place == text.casefold()]
+    def _found(self, text: str) -> tuple[Standing, str, int | None]:
+        """The entry that the words name, the key of a row where they name one value, its place in a list."""
+        listed = [one for one in self.there if one.place == text.casefold()] if text else self.there
         if listed:
-            return self._one(listed, text), ""
+            return self._one(listed, text), "", None
         lead = self.words.leads.get(text.casefold())
         if lead is not None and lead.kind != LIST:
-            return self._one(self._with_key(lead.place), text), lead.place
+            return self._one(self._with_key(lead.place), text), lead.place, None
         tokens = text.casefold().replace(",", " ").split()
         by_words = [one for one in self.there if one.place != ROWS and _holds(one, tokens)]
         try:
@@ -177,22 +180,38 @@ class _Work:
         except NotUnderstood as error:
             if not by_words:
                 raise Refused(str(error)) from None
-            return self._one(by_words, text), ""
+            return self._one(by_words, text), "", None
         place, value = said.meaning.place, said.value(self.spelled, "")
         if said.meaning.kind != LIST:
-            fitting = [one for one in self._with_key(place) if same(plain(one.entry[place]), value)]
-            return self._one(fitting, text), place
+            found = [one for one in self._with_key(place) if _index(one, place, value) is not None]
+            one = self._one(found, text)
+            index = _index(one, place, value)
+            return one, place, None if index == WHOLE else index
         known = self._told_of(place, value if isinstance(value, Mapping) else {})
-        return self._one(
-            [one for one in self.there if one.place == place and not _changed(one, known)], text
-        ), ""
+        fitting = [one for one in self.there if one.place == place and not _changed(one, known)]
+        return self._one(fitting, text), "", None
 
     def _with_key(self, key: str) -> list[Standing]:
-        return [one for one in self.there if one.place in (ROWS, "results") and key in one.entry]
+        return [one for one in self.there if one.place in (ROWS, "results") and stands(one.entry, key)]
 
 
 def _of(one: Standing, key: str) -> Any:
     return plain(one.entry[key]) if key in one.entry else ""
+
+
+def _part(one: Standing, key: str, index: int | None) -> Any:
+    value = plain(one.entry[key])
+    return value[index] if index is not None and isinstance(value, list) else value
+
+
+def _index(one: Standing, key: str, value: Value) -> int | None:
+    """WHOLE where ``value`` is all that stands under a key, its place where it is one of a list, else None."""
+    there = plain(one.entry[key])
+    if same(there, value):
+        return WHOLE
+    group = value[0] if isinstance(value, list) and len(value) == 1 else value
+    parts = there if isinstance(there, list) else []
+    return next((place for place, part in enumerate(parts) if same(part, group)), None)
 
 
 def _changed(one: Standing, known: Mapping[str, Value]) -> list[str]:

@@ -16,7 +16,7 @@ from handoff.chart.entries import Moment, Placed, Write, gathered, placed, rows_
 from handoff.chart.layout import CannotInsert
 from handoff.chart.meanings import LIST, OBSERVATION, Lexicon
 from handoff.chart.phrases import NotUnderstood, Said, understand
-from handoff.chart.standing import listed_entries, words_that_stand
+from handoff.chart.standing import listed_entries, stands, words_that_stand
 from handoff.chart.times import meant, spelled
 from handoff.registry import Setup
 from handoff.state.faults import Fault, StateFaults
@@ -260,7 +260,7 @@ def _beside_another(root: Map, write: Write, moment: Moment) -> Iterator[str]:
         return
     for _, row in rows_at(root, moment.at, moment.clock):
         for key in write.keys:
-            if key in row and "struck" not in row and not same(write.keys[key], plain(row[key])):
+            if stands(row, key) and "struck" not in row and not same(write.keys[key], plain(row[key])):
                 by = row.get("by", "somebody")
                 yield (
                     f"  beside {describe_key(key, plain(row[key]))} charted by {by} for the same minute; "

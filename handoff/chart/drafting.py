@@ -141,6 +141,22 @@ class Draft:
         self._change("", lambda layout: layout.around(node, before, after), meant)
         return path
 
+    def enclose(self, path: Path, added: Entry) -> Path:
+        """Make a group with ``added`` of the text at ``path``, which becomes its ``value``; return ``path``.
+
+        Raises:
+            CannotInsert: The text is written in a way that cannot stand inside a group.
+        """
+        node = self.node(path)
+        old, quote = _inside(node, self.text)
+
+        def meant(tree: Tree) -> None:
+            _at(tree, path[:-1])[path[-1]] = {"value": old, **_copy(added)}
+
+        after = f"{quote}, {pairs(added)}}}"
+        self._change("", lambda layout: layout.around(node, f"{{value: {quote}", after), meant)
+        return path
+
     def correct_inside(self, path: Path, value: str, corrects: Mapping[str, str]) -> Path:
         """Put ``value`` before the ``value:`` of the group at ``path``, whose other keys stay; return ``path``."""
         inner = self.node((*path, "value"))

@@ -10,6 +10,7 @@ from handoff.chart.meanings import Lexicon, Meaning
 from handoff.chart.slots import Listed, Pairs, Slot
 
 WIDTH = 80
+_HANGING_WIDTH = 4
 _KIND = re.compile(r"<(\w+):\w+>")
 
 
@@ -68,7 +69,7 @@ def lines(words: Lexicon) -> Iterator[str]:
         yield group.upper()
         for example, means, says in rows(meanings):
             yield from _wrapped(f'"{example}": {means}', 2)
-            yield from _wrapped("say: " + "; ".join(says), 6)
+            yield from _wrapped("say: " + "; ".join(says), 2 + _HANGING_WIDTH)
         for called, listed in listed_words(meanings).items():
             yield from _wrapped(f"words for {called}: {', '.join(listed)}", 2)
         yield ""
@@ -77,5 +78,5 @@ def lines(words: Lexicon) -> Iterator[str]:
 
 
 def _wrapped(text: str, indent: int) -> list[str]:
-    first, later = " " * indent, " " * (indent + 4)
+    first, later = " " * indent, " " * (indent + _HANGING_WIDTH)
     return textwrap.wrap(text, WIDTH, initial_indent=first, subsequent_indent=later, break_on_hyphens=False)

@@ -36,6 +36,31 @@ class Restating:
         """Strike an entry out; it stays readable."""
         self.draft.extend(one.path, {"struck": dict(self.marks)})
 
+    def strike_value(self, one: Standing, key: str, index: int | None, form: Schema) -> None:
+        """Strike one value of a row out where it stands, or the row, whose rest is then written anew."""
+        node, path = one.entry[key], (*one.path, key)
+        if isinstance(node, List):
+            form = shape.list_form(form) or shape.NOTHING
+            places = [(*path, at) for at in (range(len(node)) if index is None else [index])]
+        else:
+            places = [path]
+        try:
+            if "struck" not in shape.keys_of(form):
+                raise CannotInsert("a value of this key cannot be struck out by itself")
+            for place in places:
+                self._strike_at(place, form)
+        except CannotInsert:
+            self.row(one, key, None, form)
+
+    def _strike_at(self, path: Path, form: Schema) -> None:
+        node, marks = self.draft.node(path), {"struck": dict(self.marks)}
+        if isinstance(node, Map):
+            self.draft.extend(path, marks)
+        elif "value" in shape.keys_of(form):
+            self.draft.enclose(path, marks)
+        else:
+            raise CannotInsert(f"line {node.line}: a group of keys is due here")
+
     def value(self, one: Standing, key: str, new: Value, form: Schema) -> tuple[Any, Any]:
         """Put ``new`` around the value of a row, or strike the row and write it anew beside.
 

@@ -31,6 +31,12 @@ class Standing:
         return str(self.entry.get("by", ""))
 
 
+def stands(entry: Map, key: str) -> bool:
+    """Whether ``entry`` has a value under ``key`` that was not struck out."""
+    value = entry.get(key)
+    return value is not None and not (isinstance(value, Map) and "struck" in value)
+
+
 def listed_entries(root: Map, path: Sequence[str]) -> Iterator[tuple[Path, Map]]:
     """Yield the entries of the list at ``path`` with their paths, struck-out ones left aside."""
     node: object = root

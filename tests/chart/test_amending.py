@@ -171,16 +171,36 @@ def test_one_sign_of_a_check_is_corrected_and_the_others_are_carried() -> None:
     assert new["corrects"]["value"] == "stridor absent"
 
 
-def test_a_value_entered_in_error_is_struck_and_the_rest_stands() -> None:
+def test_a_value_entered_in_error_is_struck_where_it_stands() -> None:
     text = row("{by: EM, pulse: 124 /min, resp: 20 /min}")
-    done = charted(text, by="JO", strike="14:15 pulse", why="entered in error, wrong patient")
-    old, new = rows(done.text)["14:15"]
-    assert old["pulse"] == "124 /min"
-    assert old["struck"]["why"] == "entered in error, wrong patient"
-    assert new == {"by": "EM", "resp": "20 /min", "corrects": {**old["struck"], "value": "pulse 124 /min"}}
+    done = charted(text, by="JO", strike="14:15 pulse", why="entered in error")
+    mark = "struck: {by: JO, at: 2026-03-14 19:30, why: entered in error}"
+    assert done.text == text.replace("pulse: 124 /min", f"pulse: {{value: 124 /min, {mark}}}")
     assert series(done.text, "pulse") == []
     assert series(done.text, "resp") == ["20 /min"]
     assert done.lines[1] == "  pulse 124 /min, charted by EM"
+    with pytest.raises(Refused, match="'pulse' fits nothing"):
+        struck(done.text, "14:15 pulse")
+    again = charted(done.text, "pulse 118 /min", at="14:15")
+    assert series(again.text, "pulse") == ["118 /min"]
+    assert "beside" not in " ".join(again.lines)
+
+
+def test_a_score_is_struck_where_it_stands_alone_or_in_a_list() -> None:
+    alone = struck(row("{by: EM, pain: {scale: numeric, score: 9}, resp: 20 /min}"), "14:15 pain")
+    assert rows(alone)["14:15"]["pain"] == {"scale": "numeric", "score": "9", "struck": WHY}
+    scores = "[{scale: numeric, score: 3, during: rest}, {scale: numeric, score: 7, during: movement}]"
+    one = struck(row(f"{{by: EM, pain: {scores}}}"), "14:15 pain 7 numeric on movement")
+    assert [score.get("struck") for score in rows(one)["14:15"]["pain"]] == [None, WHY]
+    both = struck(row(f"{{by: EM, pain: {scores}, resp: 20 /min}}"), "14:15 pain")
+    assert [score.get("struck") for score in rows(both)["14:15"]["pain"]] == [WHY, WHY]
+
+
+def test_where_a_value_cannot_be_struck_by_itself_the_rest_of_its_row_is_written_anew() -> None:
+    text = row("{by: EM, consciousness: alert, resp: 20 /min}")
+    old, new = rows(struck(text, "14:15 consciousness"))["14:15"]
+    assert old == {"by": "EM", "consciousness": "alert", "resp": "20 /min", "struck": WHY}
+    assert new == {"by": "EM", "resp": "20 /min", "corrects": {"value": "consciousness alert", **WHY}}
 
 
 def test_a_row_with_one_value_is_struck_whole() -> None:
