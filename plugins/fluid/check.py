@@ -7,6 +7,7 @@ from datetime import datetime
 
 from handoff.plugin import Case, List, Map, Problem, child, words
 
+from .orders import ended_by, only_ends
 from .portions import rate_of
 from .weight_check import check_weights
 
@@ -49,6 +50,7 @@ def _orders(case: Case) -> Iterator[Problem]:
                 "two urine targets stand in one order",
                 "keep urine_target: or urine_target_per_kg:",
             )
+        yield from _ending(case, entry, path)
         at = case.when(entry.get("at"))
         for kind in ("fluid", "urine"):
             names = SETS[:3] if kind == "fluid" else SETS[3:5]
@@ -62,6 +64,21 @@ def _orders(case: Case) -> Iterator[Problem]:
                     "strike one out, or write the minute at which the later one came",
                 )
             seen[at, kind] = path
+
+
+def _ending(case: Case, entry: Map, path: Path) -> Iterator[Problem]:
+    """An entry that only ends an order must leave no doubt which."""
+    if not only_ends(entry) or case.when(entry.get("at")) is None or case.when(entry["ended"]) is None:
+        return
+    meant = ended_by(case, entry)
+    if len(meant) == 1:
+        return
+    yield Problem(
+        entry["ended"],
+        (*path, "ended"),
+        "two orders were in force at that time" if meant else "no order was in force at that time",
+        "write ended: in the order that it ends",
+    )
 
 
 def _given(case: Case) -> Iterator[Problem]:

@@ -9,6 +9,7 @@ from handoff.plugin import BurnTime, Case, Flag, Source, joined, number_text
 
 from .bands import Facts, pick
 from .person import Person, first_hours, read_person, standing_cautions
+from .orders import Ended, ended_order
 from .plan import Plan, ordered_plan, policy_plan
 from .portions import COLLOID, RESUSCITATION, Given, read_given
 from .rules import NoVolume, Volume, by_rule, lacking_of, published
@@ -30,6 +31,7 @@ class Course:
     burn: BurnTime | None
     facts: Facts
     plan: Plan | None
+    ended: Ended | None
     formula: Volume | NoVolume
     published: tuple[Volume, ...]
     no_plan: str
@@ -68,6 +70,11 @@ class Course:
     def period_h(self) -> float:
         """The period of the plan in h."""
         return self.case.parameters.number("plan.period")
+
+    @property
+    def no_order(self) -> str:
+        """How it is said that no order holds: none was recorded, or the last one was ended."""
+        return "no order in force" if self.ended else "no order recorded"
 
     def flagged(self, flag: Flag) -> Flag:
         """Return ``flag``, or none where comfort is the goal of care."""
@@ -124,6 +131,7 @@ def read_course(case: Case) -> Course:
         burn=case.state.burn_time,
         facts=facts,
         plan=plan if plan and (plan.by_order or starts is not False) else None,
+        ended=ended_order(case),
         formula=by_rule(case, person, case.chosen("starting_rate").name, facts),
         published=published(case, person, facts),
         no_plan=f"no plan: {start_said}" if starts is False else "",

@@ -124,7 +124,7 @@ def _against(course: Course) -> Item:
     if bounds is None:
         missing = list(course.missing())
         if course.plan is None and not missing:
-            return unflagged("against_plan", label, "no order recorded: nothing to set it against")
+            return unflagged("against_plan", label, f"{course.no_order}: nothing to set it against")
         return unflagged("against_plan", label, why_not(missing), detail=True)
     given = course.given.total_ml(course.counted)
     low, high = (formula.surplus_ml(due, given) for due in reversed(bounds))
@@ -177,7 +177,7 @@ def _catch_up(course: Course) -> Item:
         if course.no_plan:
             return unflagged(key, label, course.no_plan, detail=True)
         missing = course.missing()
-        shown = why_not(missing) if missing else "no order recorded: no catch-up is worked out"
+        shown = why_not(missing) if missing else f"{course.no_order}: no catch-up is worked out"
         return (
             absent(key, label, shown, detail=True) if missing else unflagged(key, label, shown, detail=True)
         )

@@ -6,16 +6,16 @@ import math
 from dataclasses import dataclass
 from datetime import datetime, timedelta
 
-from handoff.plugin import Case, Map, Row, amount, child, number_text, words
+from handoff.plugin import Case, Map, Row, amount, number_text, words
 
 from . import formula
 from .bands import Facts
+from .orders import SETS_FLUID, order_in_force, orders, sets
 from .person import Person
 from .rules import COEFFICIENT_PLACES, NoVolume, Volume, by_coefficient, by_rule
 from .say import ml_h
 
 HOUR = timedelta(hours=1)
-SETS_FLUID = ("formula", "coefficient", "rate")
 LOCAL = "local"
 
 
@@ -67,26 +67,12 @@ class Plan:
         return None if ended else self.volume.rate_at(hours)
 
 
-def orders(case: Case) -> tuple[Row, ...]:
-    """Return the orders on the file in time order."""
-    return case.state.dated(child(case.block, "orders"))
-
-
-def order_in_force(case: Case) -> Row | None:
-    """Return the latest order that sets fluid; None where there is none or it was ended."""
-    setting = [row for row in orders(case) if any(name in row.entry for name in SETS_FLUID)]
-    if not setting:
-        return None
-    ended = case.when(setting[-1].entry.get("ended"))
-    return None if ended is not None and ended <= case.now else setting[-1]
-
-
 def ordered_plan(case: Case, person: Person, facts: Facts) -> Plan | None:
     """Return the plan of the order in force, with the rates ordered since; None without an order."""
     force = order_in_force(case)
     if force is None:
         return None
-    setting = [row for row in orders(case) if any(name in row.entry for name in SETS_FLUID)]
+    setting = [row for row in orders(case) if sets(row.entry, SETS_FLUID)]
     bases = [row for row in setting if "formula" in row.entry or "coefficient" in row.entry]
     base = bases[-1] if bases else None
     volume: Volume | NoVolume | None = None

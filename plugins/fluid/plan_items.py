@@ -6,12 +6,14 @@ from handoff.plugin import Flag, Input, Item, Source, Working, number_text
 
 from . import formula
 from .course import COMFORT, Course, burn_moments
+from .orders import Ended
 from .plan import Plan
 from .rules import NoVolume, Volume
 from .say import absent, figure, inputs_of, ml, ml_h, once, span, unflagged, why_not
 
 TOTAL = ("total_24h", "Resuscitation fluid in 24 h")
 FIRST = ("first_8h", "First 8 h from the burn")
+RANK_NO_ORDER = 34
 
 
 def items(course: Course) -> tuple[Item, ...]:
@@ -29,6 +31,8 @@ def _order(course: Course) -> Item:
     label = "Fluid order in force"
     if course.comfort:
         return unflagged("order", label, COMFORT)
+    if course.ended is not None:
+        return _ended(course, course.ended)
     if plan is None or not plan.by_order:
         if course.no_plan:
             return unflagged("order", label, f"none recorded; {course.no_plan}")
@@ -41,6 +45,23 @@ def _order(course: Course) -> Item:
         as_of=plan.at,
         repeats=True,
         line=plan.line,
+        cautions=(f"{course.no_plan.removeprefix('no plan: ')}.",) if course.no_plan else (),
+    )
+
+
+def _ended(course: Course, ended: Ended) -> Item:
+    """The last order where it was ended; asked about while an earlier one is open or the formulas still run."""
+    over = course.hours is not None and course.hours >= course.period_h
+    asked = ended.earlier is not None or not (over or course.no_plan)
+    return figure(
+        "order",
+        "Fluid order",
+        shown=ended.said(course.case),
+        as_of=ended.at,
+        flag=Flag.REVIEW if asked else Flag.NONE,
+        rank=RANK_NO_ORDER if asked else None,
+        sources=(course.source("order.in_force"),),
+        line=ended.row.line,
         cautions=(f"{course.no_plan.removeprefix('no plan: ')}.",) if course.no_plan else (),
     )
 
@@ -78,7 +99,7 @@ def _small_burn(course: Course) -> tuple[str, ...]:
 
 
 def _formula_said(course: Course) -> str:
-    return course.formula.shown if isinstance(course.formula, NoVolume) else "no order recorded"
+    return course.formula.shown if isinstance(course.formula, NoVolume) else course.no_order
 
 
 def _start_sources(course: Course) -> tuple[Source, ...]:
@@ -153,7 +174,7 @@ def _volume_range(course: Course, key: str, label: str, hours: float) -> Item:
         key,
         label,
         unit="mL",
-        shown=f"no order recorded; {said} by the published coefficients ({range_said(course)})",
+        shown=f"{course.no_order}; {said} by the published coefficients ({range_said(course)})",
         flag=Flag.NONE,
         working=Working(
             formula="lowest and highest of the published coefficients that hold for this patient",

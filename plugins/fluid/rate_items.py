@@ -9,12 +9,11 @@ from handoff.plugin import Flag, Item, Source, Working, number_text
 from . import formula
 from .course import Course, burn_moments
 from .plan import Plan
-from .plan_items import inputs, no_figure, range_said, weight_caution
+from .plan_items import RANK_NO_ORDER, inputs, no_figure, range_said, weight_caution
 from .say import figure, ml, ml_h, once, span, unflagged
 
 RATE = ("rate_now", "Planned rate now")
 DUE = ("due_by_now", "Due by now")
-RANK_NO_ORDER = 34
 
 
 def items(course: Course) -> tuple[Item, ...]:
@@ -131,16 +130,16 @@ def _rate_range(course: Course, key: str, label: str) -> Item:
     ]
     period = number_text(course.period_h)
     if max(rates) == 0:
-        return unflagged(key, label, f"no order recorded; the formulas end at {period} h")
+        return unflagged(key, label, f"{course.no_order}; the formulas end at {period} h")
     said = span(ml_h(min(rates)), ml_h(max(rates)))
     return figure(
         key,
         label,
         unit="mL/h",
-        shown=f"no order recorded; {said} by the published coefficients ({range_said(course)}){_policy_said(course)}",
+        shown=f"{course.no_order}; {said} by the published coefficients ({range_said(course)}){_policy_said(course)}",
         as_of=course.now,
         flag=Flag.REVIEW,
-        rank=RANK_NO_ORDER,
+        rank=None if course.ended else RANK_NO_ORDER,  # the order that was ended stands there already
         working=Working(
             formula="lowest and highest rate of the published coefficients at this time since the burn",
             sum=f"{course.published[0].sum} and {course.published[-1].sum} in 24 h: {said} now",
@@ -173,7 +172,7 @@ def _due(course: Course) -> Item:
             for volume in (course.published[0], course.published[-1])
             for moment in moments
         ]
-        prefix, rule = "no order recorded; ", "no order in force: a range, no single figure"
+        prefix, rule = f"{course.no_order}; ", "no order in force: a range, no single figure"
         sources = once((*course.published[0].sources, *course.published[-1].sources))
     else:
         dues = [plan.due_ml(moment, course.now) for moment in moments or (course.now,)]

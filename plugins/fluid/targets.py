@@ -9,7 +9,7 @@ from datetime import datetime
 from handoff.plugin import Case, Source, amount, child
 
 from .bands import Band, Facts, pick
-from .plan import orders
+from .orders import SETS_URINE, ended_at, orders, sets
 from .say import ml_h, ml_kg_h, span
 from .urine import Charted
 
@@ -79,12 +79,11 @@ def _for_pigment(case: Case, kg: float, facts: Facts, usual: Target | NoTarget) 
 
 
 def _ordered(case: Case, kg: float | None) -> Target | None:
-    named = [row for row in orders(case) if "urine_target" in row.entry or "urine_target_per_kg" in row.entry]
+    named = [row for row in orders(case) if sets(row.entry, SETS_URINE)]
     if not named:
         return None
     row = named[-1]
-    ended = case.when(row.entry.get("ended"))
-    if ended is not None and ended <= case.now:
+    if ended_at(case, row) is not None:
         return None
     said = f"order of {_time(case, row.at)}"
     source = case.parameters.source_of("urine.check_every")

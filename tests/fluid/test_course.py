@@ -133,7 +133,7 @@ def test_without_an_order_there_is_a_range_and_no_single_rate() -> None:
 
 def test_an_order_that_was_ended_is_no_longer_in_force() -> None:
     ended = order(ended="2026-03-14 11:00")
-    assert item(computed(burned(orders=[ended])), "order").flag is Flag.NOT_RECORDED
+    assert item(computed(burned(orders=[ended])), "order").flag is Flag.REVIEW
     assert value(computed(burned(orders=[ended]), "2026-03-14 10:30"), "rate_now") == 400
 
 

@@ -41,5 +41,7 @@ def test_the_step_is_due_eight_hours_after_the_burn_with_the_next_rate_as_an_est
     ],
     ids=["comfort care", "uncertain burn time"],
 )
-def test_there_is_no_step_where_no_single_moment_or_no_resuscitation_is_meant(change: tuple[str, str]) -> None:
+def test_there_is_no_step_where_no_single_moment_or_no_resuscitation_is_meant(
+    change: tuple[str, str],
+) -> None:
     assert step(assessed(change)) is None
