@@ -69,7 +69,7 @@ def _properties(validator: Any, properties: Schema, instance: Any, schema: Schem
             yield from validator.descend(value, others, path=str(key))
         elif not others:
             cure = schema.get("x-instead", {}).get(key) or nearest(key, properties)
-            yield Finding(f"unknown key '{key}'", cure, key=instance.key(key))
+            yield closed(key, f"unknown key '{key}'", cure, instance.key(key))
 
 
 def _required(validator: Any, required: list[str], instance: Any, schema: Schema) -> Found:

@@ -118,7 +118,7 @@ class _Open:
     values: list[Node] = field(default_factory=list)
     keys: dict[str, Text] = field(default_factory=dict)
     key: Text | None = None
-    rest_of_number: int = -1
+    number_ends: int = -1
     drop: bool = False
 
 
@@ -126,7 +126,7 @@ class _Stop(Exception):
     """What follows cannot be read in any sensible way; the fault is noted."""
 
 
-_EXPLICIT_KEY = re.compile(r"[\r\n{\[,-] *\? +$")
+_EXPLICIT_KEY = re.compile(r"(?:[\r\n{\[,-] *\? +|[\r\n] *(?:- +)*\?[ \r\n]+)$")
 
 
 class _Reading:
@@ -136,7 +136,7 @@ class _Reading:
         self._open: list[_Open] = []
         self._root: Node | None = None
         self._upset_to = -1
-        self._has_explicit_keys = "? " in text
+        self._has_explicit_keys = re.search(r"\?\s", text) is not None
 
     def root(self) -> Node | None:
         self.faults += refused_characters(self.text)
@@ -158,17 +158,18 @@ class _Reading:
                 else:
                     self._take(event)
         except yaml.YAMLError as error:
-            self._parser_stopped(parser_fault(error, self.text))
+            self._parser_stopped(error)
         except _Stop:
             pass
         except RecursionError:
             self.faults.append(Fault(1, 1, "", "nested too deep", "check the brackets"))
         return self._root
 
-    def _parser_stopped(self, fault: Fault) -> None:
+    def _parser_stopped(self, error: yaml.YAMLError) -> None:
         # A text that was cut short by what is already refused is the usual reason why the parser stops.
-        if not self._upset_to <= fault.line <= self._upset_to + 1:
-            self.faults.append(fault)
+        mark = getattr(error, "problem_mark", None)
+        if mark is None or not self._upset_to <= mark.line + 1 <= self._upset_to + 1:
+            self.faults.append(parser_fault(error, self.text))
 
     def _path(self) -> str:
         steps: list[str | int] = []
@@ -270,7 +271,7 @@ class _Reading:
             self._upset_to = last_line + 1
 
     def _in_braces(self, event: yaml.ScalarEvent, inside: _Open, text: Text) -> None:
-        if text.start == inside.rest_of_number:
+        if text.start < inside.number_ends:
             inside.drop = True
             return
         is_key = inside.is_map and inside.key is None
@@ -278,8 +279,8 @@ class _Reading:
             return
         split = split_number(self.text, event) if self.text[text.end : text.end + 1] == "," else None
         if split is not None:
-            self._fault(event, split.what, split.cure)
-            inside.rest_of_number = text.end + 1
+            refusal, inside.number_ends = split
+            self._fault(event, refusal.what, refusal.cure)
         elif inside.key is not None and not event.value and not inside.drop:
             what, cure, _ = without_colon(inside.key)
             self.faults.append(Fault(inside.key.line, inside.key.column, self._path(), what, cure))

@@ -10,10 +10,10 @@ import yaml
 from handoff.state.characters import SPACES, unprintable
 from handoff.state.quantity import comma_cure
 
-_ODD_SPACE = re.compile(f"^-?[{SPACES}]|:[{SPACES}]")
+_ODD_SPACE = re.compile(f"^-?[{SPACES}]|:[{SPACES}]|[{SPACES}]$")
 _BLOCK_HEADER = re.compile(r"[|>][+-]?(?=\s|$)")
 _LINE_BEGIN = re.compile(r"[\r\n]+( *)(?=\S)")
-_REST_OF_NUMBER = re.compile(r"(?<=[0-9]),[0-9][^,\]}\r\n]*")
+_REST_OF_NUMBER = re.compile(r"(?<=[0-9])(?:,[0-9]+)*,[0-9][^,\]}\r\n]*")
 _TOO_NEAR = re.compile(r" ?(, ?)?#")
 _NUMBER_BEFORE = re.compile(r"[0-9.]*$")
 
@@ -81,7 +81,7 @@ def quoted_refused(text: str, event: yaml.ScalarEvent, indent: int) -> Refusal |
         if _BLOCK_HEADER.match(text, start.index):
             return None
         written = text[start.index : start.index + 12].split(maxsplit=1)[0]
-        return Refusal(f"'{written}' begins a block of text and would be lost", "put it in quotes", False)
+        return Refusal(f"'{written}' begins a block of text and would be lost", "put it in quotes")
     lost = lost_comment(text, end.index)
     if lost is not None:
         return lost
@@ -95,17 +95,15 @@ def quoted_refused(text: str, event: yaml.ScalarEvent, indent: int) -> Refusal |
     return None
 
 
-def split_number(text: str, event: yaml.ScalarEvent) -> Refusal | None:
-    """Return what is wrong where a comma inside brackets cuts a number in two: ``{value: 0,51}``."""
+def split_number(text: str, event: yaml.ScalarEvent) -> tuple[Refusal, int] | None:
+    """Return what is wrong where a comma inside brackets cuts a number (``{value: 0,51}``), and its end."""
     rest = _REST_OF_NUMBER.match(text, _marks(event)[1].index)
     if rest is None:
         return None
     before = _NUMBER_BEFORE.search(event.value)
     said = (before[0] if before else "") + rest[0].strip()
-    return Refusal(
-        f"a comma in '{said}' splits the number",
-        f"{comma_cure(said)}; between two entries put a space after the comma",
-    )
+    cure = f"{comma_cure(said)}; between two entries put a space after the comma"
+    return Refusal(f"a comma in '{said}' splits the number", cure), rest.end()
 
 
 def without_colon(key: str) -> Refusal:

@@ -135,7 +135,7 @@ def test_a_place_is_where_the_value_stands(text: str) -> None:
     for _, node in walk(root):
         assert starts[node.line - 1] + node.column - 1 == node.start
         if isinstance(node, Text) and node.plain:
-            assert text[node.start : node.end].rstrip() == node
+            assert text[node.start : node.end].rstrip(" \r\n") == node
         elif isinstance(node, Text):
             assert text[node.start] in "'\"|>"
         elif node.flow and text[node.start] in "[{":  # [a: b] holds a mapping without braces
