@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from datetime import datetime
 
-from handoff.plugin import Case, Input, Node, child, line_of, number_text, with_unit
+from handoff.plugin import Case, Input, Node, child, entries, line_of, number_text, with_unit
 
 from .formula import HOURS_A_DAY, MCG_IN_MG
 from .given import DOSE, HOME, PUMP, Given, given
@@ -38,7 +38,7 @@ class Portion:
 
 @dataclass(frozen=True, slots=True)
 class Charted:
-    """Doses, runs of infusions and scores of one patient; ``any_doses`` is False where none are charted."""
+    """Doses, runs of infusions and scores of one patient; ``any_doses`` is False where the last day is not charted."""
 
     given: tuple[Given, ...]
     runs: tuple[Run, ...]
@@ -64,9 +64,19 @@ def read(case: Case) -> Charted:
         runs=ran,
         scores=pain_scores(case),
         portions=_portions(case, doses, ran),
-        any_doses=any(child(case.block, name) is not None for name in CHARTS_OF_DOSES),
+        any_doses=_is_charted(case, doses, ran),
         hours=_hours(case, doses, ran),
     )
+
+
+def _is_charted(case: Case, doses: tuple[Given, ...], ran: tuple[Run, ...]) -> bool:
+    """Whether the chart speaks of the last day: nothing charted in it is not nothing given."""
+    if not any(entries(child(case.block, name)) for name in CHARTS_OF_DOSES):
+        return False
+    in_day = any(case.hours_between(row.at, case.now) < HOURS_A_DAY for row in case.state.rows)
+    dosed = any(one.in_day_to(case.now) for one in doses)
+    begun = any(case.hours_between(run.start, case.now) < HOURS_A_DAY for run in ran)
+    return in_day or dosed or begun or any(run.hours_in_day_to(case.now) > 0 for run in ran)
 
 
 def mg_text(mg: float) -> str:
