@@ -8,7 +8,7 @@ from datetime import datetime
 from handoff.plugin import Case, List, Map, Problem, child, words
 
 from .orders import ended_by, only_ends
-from .portions import rate_of
+from .portions import Stop, rate_of, stops_of
 from .weight_check import check_weights
 
 Path = tuple[str | int, ...]
@@ -149,6 +149,25 @@ def _lines(case: Case) -> Iterator[Problem]:
             lines.setdefault(name or f"\0{path}", []).append((entry, path))
     for rows in lines.values():
         yield from _line(case, rows)
+    yield from _unnamed(case, [rows[0] for name, rows in lines.items() if name.startswith("\0")])
+
+
+def _unnamed(case: Case, rows: list[tuple[Map, Path]]) -> Iterator[Problem]:
+    """Rates without a line that run at one time: whether one replaces the other cannot be told."""
+    spans: list[tuple[datetime, datetime]] = []
+    for entry, path in rows:
+        start = case.when(entry.get("from"))
+        if start is None or rate_of(entry) is None:
+            continue
+        end = case.when(entry.get("stopped")) or max(start, case.now)
+        if any(start == other or (start < until and other < end) for other, until in spans):
+            yield Problem(
+                entry,
+                path,
+                "two rates run at the same time and no line is named",
+                "name the line: the same name replaces the rate, another name runs beside it",
+            )
+        spans.append((start, end))
 
 
 def _line(case: Case, rows: list[tuple[Map, Path]]) -> Iterator[Problem]:
@@ -174,20 +193,21 @@ def _line(case: Case, rows: list[tuple[Map, Path]]) -> Iterator[Problem]:
             "the first entry of a line does not say what it is for",
             "add purpose: resuscitation, colloid, maintenance, drug carrier, feed or other",
         )
-    stops = sorted(at for entry, _ in rows if (at := case.when(entry.get("stopped"))) is not None)
+    stops = stops_of(case, [entry for entry, _ in rows])
+    rates = {at: rate_of(entry) or 0.0 for at, entry, _ in starts}
     for entry, path in rows:
-        yield from _marks(case, entry, path, [at for at, _, _ in starts], stops)
+        yield from _marks(case, entry, path, rates, stops)
 
 
 def _marks(
-    case: Case, entry: Map, path: Path, starts: list[datetime], stops: list[datetime]
+    case: Case, entry: Map, path: Path, rates: dict[datetime, float], stops: list[Stop]
 ) -> Iterator[Problem]:
     own = case.when(entry.get("from"))
     for key in ("running", "stopped"):
         at = case.when(entry.get(key))
         if at is None:
             continue
-        began = [start for start in starts if start <= at]
+        began = [start for start in rates if start <= at]
         if not began or (own is not None and at <= own and key == "stopped"):
             yield Problem(
                 entry[key],
@@ -195,10 +215,25 @@ def _marks(
                 "it comes before the line began",
                 "check the time, or add the entry that began it",
             )
-        elif key == "running" and any(began[-1] < stop < at for stop in stops):
+        elif key == "stopped" and at in rates and _begins_it(at, rate_of(entry) is None, rates, stops):
+            yield Problem(
+                entry[key],
+                (*path, key),
+                "the line was begun in the same minute",
+                "write the minute at which it was stopped, or strike out the entry that is wrong",
+            )
+        elif key == "running" and any(
+            began[-1] < stop.at < at or (stop.at < at and stop.ends_all(began[-1], rates, stops))
+            for stop in stops
+        ):
             yield Problem(
                 entry[key],
                 (*path, key),
                 "the line was stopped before and not begun again",
                 "add the entry that began it again: from: and rate:",
             )
+
+
+def _begins_it(at: datetime, apart: bool, rates: dict[datetime, float], stops: list[Stop]) -> bool:
+    """Whether a stop in an entry of its own stands in the minute of a rate with nothing running before."""
+    return apart and not Stop(at, apart).ends_all(at, rates, stops)

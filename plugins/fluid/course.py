@@ -8,8 +8,8 @@ from datetime import datetime, timedelta
 from handoff.plugin import BurnTime, Case, Flag, Source, joined, number_text
 
 from .bands import Facts, pick
-from .person import Person, first_hours, read_person, standing_cautions
 from .orders import Ended, ended_order
+from .person import Person, first_hours, read_person, standing_cautions
 from .plan import Plan, ordered_plan, policy_plan
 from .portions import COLLOID, RESUSCITATION, Given, read_given
 from .rules import NoVolume, Volume, by_rule, lacking_of, published

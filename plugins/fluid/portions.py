@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Collection, Iterable
+from collections.abc import Collection, Iterable, Mapping
 from dataclasses import dataclass, replace
 from datetime import datetime, timedelta
 
@@ -161,6 +161,21 @@ class _Rate:
     line: int
 
 
+@dataclass(frozen=True, slots=True)
+class Stop:
+    """A stop of a line; ``apart`` where it stands in an entry of its own, not in that of the rate it ends."""
+
+    at: datetime
+    apart: bool
+
+    def ends_all(self, start: datetime, rates: Mapping[datetime, float], stops: Iterable[Stop]) -> bool:
+        """Return whether it also ends the rate that began in its minute: where the line was running before."""
+        earlier = max((moment for moment in rates if moment < start), default=None)
+        if not self.apart or self.at != start or earlier is None or rates[earlier] <= 0:
+            return False
+        return not any(earlier < stop.at < start for stop in stops)
+
+
 def rate_of(row: Map) -> float | None:
     """Return the rate written in an entry, in mL/h: as such, or as drops with the drop factor; None for none."""
     rate = amount(row.get("rate"), "mL/h")
@@ -173,12 +188,15 @@ def rate_of(row: Map) -> float | None:
 def _line(case: Case, name: str, rows: list[Map]) -> tuple[list[Portion], list[Running]]:
     rates = _rates(case, rows)
     seen = sorted(at for row in rows if (at := case.when(row.get("running"))) is not None)
-    stops = sorted(at for row in rows if (at := case.when(row.get("stopped"))) is not None)
+    stops = stops_of(case, rows)
+    starts = {rate.start: rate.ml_h for rate in rates}
     portions: list[Portion] = []
     running: list[Running] = []
     for index, rate in enumerate(rates):
         following = [rates[index + 1].start] if index + 1 < len(rates) else []
-        stopped = [stop for stop in stops if stop > rate.start]
+        stopped = [
+            stop.at for stop in stops if stop.at > rate.start or stop.ends_all(rate.start, starts, stops)
+        ]
         ends = [*following, *stopped[:1]]
         if ends:
             portions.append(_portion(name, rate, rate.start, min(ends), confirmed=True))
@@ -191,6 +209,14 @@ def _line(case: Case, name: str, rows: list[Map]) -> tuple[list[Portion], list[R
                 Running(_said(name), rate.purpose, rate.fluid, rate.ml_h, rate.start, last, rate.line)
             )
     return [p for p in portions if p.end > p.start], running
+
+
+def stops_of(case: Case, rows: Iterable[Map]) -> list[Stop]:
+    """Return the stops of a line in time order."""
+    found = [
+        Stop(at, rate_of(row) is None) for row in rows if (at := case.when(row.get("stopped"))) is not None
+    ]
+    return sorted(found, key=lambda stop: (stop.at, stop.apart))
 
 
 def _said(name: str) -> str:

@@ -89,7 +89,7 @@ def line(dice: random.Random, name: str, now: int) -> list[dict[str, Any]]:
             return made
         if dice.random() < 0.4:
             made.append({"line": name, "stopped": text(end), "reason": "changed"})
-            end += dice.choice((0, dice.randint(1, 30)))
+            end += dice.randint(1, 30)  # begun again in the minute of its stop, the stop would end it
             if end > now or dice.random() < 0.3:
                 return made
         at = end

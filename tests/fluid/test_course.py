@@ -552,3 +552,11 @@ def test_an_area_that_is_not_there_keeps_its_unit() -> None:
     counted = whole(burned(None, None, burn=None)).item("area.counted")
     assert counted is not None
     assert (counted.value, counted.unit) == (None, "%")
+
+
+def test_a_stop_in_the_minute_of_a_new_rate_ends_a_line_that_was_running() -> None:
+    given = [run("100 mL/h", "2026-03-14 09:00"), run("50 mL/h", "2026-03-14 10:00")]
+    stopped = computed(burned(given=[*given, {"line": "R1", "stopped": "2026-03-14 10:00"}]))
+    assert (value(stopped, "given"), value(stopped, "not_confirmed")) == (100, 0)
+    again = [run("100 mL/h", "2026-03-14 09:00", stopped="2026-03-14 10:00"), given[1]]
+    assert value(computed(burned(given=again)), "not_confirmed") == 100

@@ -116,3 +116,32 @@ def test_two_orders_at_one_minute_are_refused_and_a_struck_one_is_not_counted() 
 def test_what_the_schema_refuses(state: dict[str, Any], said: str) -> None:
     (found,) = faults(state)
     assert said in found
+
+
+def test_rates_without_a_line_that_run_at_one_time_are_refused() -> None:
+    first = {"purpose": "resuscitation", "from": GIVEN, "rate": "500 mL/h"}
+    second = {**first, "from": LATER, "rate": "300 mL/h"}
+    assert given(first, second) == [
+        "fluid.given[2]: two rates run at the same time and no line is named; "
+        "name the line: the same name replaces the rate, another name runs beside it"
+    ]
+    assert not given({**first, "stopped": LATER}, second)
+    assert not given({**first, "line": "R1"}, {**second, "line": "R2"})
+
+
+def test_a_stop_in_the_minute_of_the_start_is_refused() -> None:
+    assert given(run("100 mL/h", GIVEN), {"line": "R1", "stopped": GIVEN}) == [
+        "fluid.given[2].stopped: the line was begun in the same minute; "
+        "write the minute at which it was stopped, or strike out the entry that is wrong"
+    ]
+    assert not given(run("100 mL/h", GIVEN), run("50 mL/h", LATER), {"line": "R1", "stopped": LATER})
+
+
+def test_a_line_seen_running_after_the_stop_that_ended_it_all_is_refused() -> None:
+    (found,) = given(
+        run("100 mL/h", GIVEN),
+        run("50 mL/h", LATER),
+        {"line": "R1", "stopped": LATER},
+        {"line": "R1", "running": "2026-03-14 11:00"},
+    )
+    assert found.startswith("fluid.given[4].running: the line was stopped before and not begun again")
