@@ -51,11 +51,13 @@ def _balance(course: Course) -> Item:
     urine, drained = course.urine.total_ml(), course.urine.drained_ml
     lost = losses_ml(course.case)
     value = formula.balance_ml(intake, urine + drained + lost)
-    open_ml = course.given.total_ml(confirmed=False)
+    open_ml, unseen = course.unconfirmed_ml(), course.long_unconfirmed()
     parts = [f"in {ml(intake)}", f"out {ml(urine + drained + lost)}"]
     shown = f"{_signed(value)} ({', '.join(parts)})"
     if open_ml:
         shown += f"; {ml(open_ml)} more in, not confirmed"
+    if unseen:
+        shown += f"; a line {unseen}"
     return figure(
         key,
         label,

@@ -2,22 +2,25 @@
 
 from __future__ import annotations
 
+import math
+from collections.abc import Collection
 from dataclasses import dataclass
 from datetime import datetime, timedelta
 
-from handoff.plugin import BurnTime, Case, Flag, Source, joined, number_text
+from handoff.plugin import BurnTime, Case, Flag, Source, hours_text, joined, number_text, plural
 
 from .bands import Facts, pick
 from .orders import Ended, ended_order
 from .person import Person, first_hours, read_person, standing_cautions
 from .plan import Plan, ordered_plan, policy_plan
-from .portions import COLLOID, RESUSCITATION, Given, read_given
+from .portions import COLLOID, RESUSCITATION, Given, Portion, read_given
 from .rules import NoVolume, Volume, by_rule, lacking_of, published
 from .targets import NoTarget, Target, is_pigmented, target
 from .urine import Charted, Urine, read_urine
 from .weights import Used, urine_weight
 
 HOUR = timedelta(hours=1)
+HOURS_A_DAY = 24
 COMFORT = "not prompted: the goal of care is comfort"
 PCT_PLACES = 1
 
@@ -84,6 +87,33 @@ class Course:
         """Return what a figure of the plan lacks: time of the burn, weight, burned area."""
         lacking = () if self.burn else ("time of the burn",)
         return (*lacking, *lacking_of(self.person))
+
+    def unconfirmed_ml(self, purposes: Collection[str] | None = None) -> float:
+        """Return what is not confirmed and short enough to be said as a volume, in mL."""
+        open_ = (p for p in self._open(purposes) if not self.is_long(p.start))
+        return math.fsum(p.ml for p in open_)
+
+    def long_unconfirmed(self, purposes: Collection[str] | None = None) -> str:
+        """Return ``not confirmed for 102 days: chart the stop``; empty where nothing is open for so long."""
+        since = min((p.start for p in self._open(purposes) if self.is_long(p.start)), default=None)
+        return self.unseen_said(since) if since else ""
+
+    def unseen_said(self, seen: datetime) -> str:
+        """Return for how long a line was not seen running, and what to do."""
+        hours = (self.now - seen) / HOUR
+        days = math.floor(hours / HOURS_A_DAY)
+        return f"not confirmed for {plural(days, 'day') if days > 1 else hours_text(hours)}: chart the stop"
+
+    def is_long(self, seen: datetime) -> bool:
+        """Return whether a line was not seen running for so long that no volume is said."""
+        return (self.now - seen) / HOUR > self.number("line.not_confirmed_longest")
+
+    def _open(self, purposes: Collection[str] | None) -> list[Portion]:
+        return [
+            p
+            for p in self.given.portions
+            if not p.confirmed and p.ml and (purposes is None or p.purpose in purposes)
+        ]
 
     def source(self, identifier: str) -> Source:
         """Return the source of a parameter."""

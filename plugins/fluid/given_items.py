@@ -77,18 +77,12 @@ def _not_confirmed(course: Course) -> Item:
         return absent("not_confirmed", label)
     portions = _portions(course, confirmed=False)
     total = course.given.total_ml(course.counted, confirmed=False)
-    lines = [
-        f"{line.name or line.fluid or line.purpose} {ml_h(line.ml_h)}, last seen running {course.time(line.seen)}"
-        for line in course.given.running
-        if line.purpose in course.counted
-    ]
-    shown = f"{ml(total)} if it has run on: {'; '.join(lines)}" if total else ml(total)
     return figure(
         "not_confirmed",
         label,
         value=total,
         unit="mL",
-        shown=shown,
+        shown=_unconfirmed_said(course) if total else ml(total),
         as_of=course.now if total else None,
         flag=course.flagged(Flag.REVIEW) if total else Flag.NONE,
         working=Working(
@@ -96,9 +90,25 @@ def _not_confirmed(course: Course) -> Item:
             sum=sum_of(portions, total),
             inputs=tuple(input_of(course, portion) for portion in portions),
         ),
-        sources=(course.source("line.seen_running"),),
+        sources=(course.source("line.seen_running"), course.source("line.not_confirmed_longest")),
         cautions=("Not counted as given: see the line running and chart it.",) if total else (),
     )
+
+
+def _unconfirmed_said(course: Course) -> str:
+    """What may have run on, with its lines; a line long unseen without a volume, which nobody can believe."""
+    short, long = [], []
+    for line in course.given.running:
+        if line.purpose not in course.counted:
+            continue
+        name = f"{line.name or line.fluid or line.purpose} {ml_h(line.ml_h)}"
+        seen = f"last seen running {course.time(line.seen)}"
+        if course.is_long(line.seen):
+            long.append(f"{name}, {seen}: {course.unseen_said(line.seen)}")
+        else:
+            short.append(f"{name}, {seen}")
+    ran_on = [f"{ml(course.unconfirmed_ml(course.counted))} if it has run on: {'; '.join(short)}"]
+    return "; ".join([*(ran_on if short else []), *long])
 
 
 def _bounds(course: Course) -> tuple[float, float] | None:

@@ -21,11 +21,13 @@ def items(course: Course) -> tuple[Item, ...]:
         if not portions:
             continue
         total = course.given.total_ml((purpose,))
-        open_ml = course.given.total_ml((purpose,), confirmed=False)
+        open_ml, unseen = course.unconfirmed_ml((purpose,)), course.long_unconfirmed((purpose,))
         fluids = ", ".join(dict.fromkeys(p.fluid for p in portions if p.fluid))
         shown = ml(total) + (f" ({fluids})" if fluids else "")
         if open_ml:
             shown += f"; {ml(open_ml)} more not confirmed"
+        if unseen:
+            shown += f"; {unseen}"
         shown += _reactions(course, purpose)
         found.append(
             figure(

@@ -560,3 +560,31 @@ def test_a_stop_in_the_minute_of_a_new_rate_ends_a_line_that_was_running() -> No
     assert (value(stopped, "given"), value(stopped, "not_confirmed")) == (100, 0)
     again = [run("100 mL/h", "2026-03-14 09:00", stopped="2026-03-14 10:00"), given[1]]
     assert value(computed(burned(given=again)), "not_confirmed") == 100
+
+
+def test_a_line_unseen_for_long_is_said_without_a_volume() -> None:
+    given = [
+        run("748 mL/h", "2026-03-14 09:00"),
+        run("80 mL/h", "2026-03-14 09:00", line="M1", purpose="maintenance"),
+    ]
+    found = computed(burned(given=given), "2026-06-24 10:00")
+    open_ = item(found, "not_confirmed")
+    assert open_.shown == (
+        "R1 748 mL/h, last seen running 09:00 on 14 Mar: not confirmed for 102 days: chart the stop"
+    )
+    assert open_.value == pytest.approx(748 * (102 * 24))
+    assert open_.flag is Flag.REVIEW
+    assert item(found, "balance").shown == (
+        "0 mL (in 0 mL, out 0 mL); a line not confirmed for 102 days: chart the stop"
+    )
+    assert item(found, "given_maintenance").shown == "0 mL; not confirmed for 102 days: chart the stop"
+
+
+def test_a_line_unseen_for_long_stands_beside_one_seen_lately() -> None:
+    given = [run("100 mL/h", "2026-03-14 09:00"), run("50 mL/h", "2026-03-15 10:00", line="R2")]
+    found = computed(burned(given=given), "2026-03-15 12:00")
+    assert item(found, "not_confirmed").shown == (
+        "100 mL if it has run on: R2 50 mL/h, last seen running 10:00; "
+        "R1 100 mL/h, last seen running 09:00 on 14 Mar: not confirmed for 27 h: chart the stop"
+    )
+    assert "; 100 mL more in, not confirmed; a line not confirmed for 27 h" in item(found, "balance").shown
