@@ -26,6 +26,7 @@ FERRANDEL = Person("Tomas Ferrandel", "1985-02-11", (("record_number", "HSH-2045
         ("Ann O'Neill", "Bea Oneill"),
         ("Ann Reid", "Bea Reed"),
         ("Jon Wu", "Lee Wu"),
+        ("José Ibáñez", "Ana Ibanez"),
         ("Thomas Ferrant", "Tomas Ferrand"),
     ],
 )
