@@ -51,6 +51,8 @@ def read_text(path: Path) -> str:
     try:
         if path.is_dir():
             raise NotAStateFile(f"{path} is a folder; name the patient's .yaml file in it")
+        if not path.is_file() and path.exists():
+            raise NotAStateFile(f"{path} is a device or a pipe; name the patient's .yaml file")
         size = path.stat().st_size
         with path.open("rb") as file:
             # The size is not known of everything that can be opened, so no more is read than may be.
@@ -145,7 +147,9 @@ class _Reading:
         documents = 0
         try:
             for event in yaml.parse(self.text, Loader=_Loader):
-                if isinstance(event, yaml.DocumentStartEvent):
+                if type(event) is yaml.ScalarEvent:
+                    self._scalar(event)
+                elif isinstance(event, yaml.DocumentStartEvent):
                     documents += 1
                     if documents > 1:
                         self._stop(
@@ -161,8 +165,6 @@ class _Reading:
             self._parser_stopped(error)
         except _Stop:
             pass
-        except RecursionError:
-            self.faults.append(Fault(1, 1, "", "nested too deep", "check the brackets"))
         return self._root
 
     def _parser_stopped(self, error: yaml.YAMLError) -> None:
@@ -189,9 +191,7 @@ class _Reading:
         raise _Stop
 
     def _take(self, event: yaml.Event) -> None:
-        if type(event) is yaml.ScalarEvent:
-            self._scalar(event)
-        elif isinstance(event, (yaml.MappingStartEvent, yaml.SequenceStartEvent)):
+        if isinstance(event, (yaml.MappingStartEvent, yaml.SequenceStartEvent)):
             self._begin(event)
         elif isinstance(event, (yaml.MappingEndEvent, yaml.SequenceEndEvent)):
             end: Any = event.end_mark

@@ -71,7 +71,10 @@ def test_what_is_left_empty_is_the_built_in_default() -> None:
         ("shift_length: 8 hrs", "policy.yaml:2:15: shift_length: unknown unit 'hrs'; use "),
         ("paper: A3", "policy.yaml:2:8: paper: 'A3' is not a word for this; "),
         ("name: no", "policy.yaml:2:7: name: 'no' stands where a name, a place or a number is due; "),
-        ("shift_lenght: 8 h", "policy.yaml:2:1: shift_lenght: unknown key 'shift_lenght'; did you mean 'shift_length'?"),
+        (
+            "shift_lenght: 8 h",
+            "policy.yaml:2:1: shift_lenght: unknown key 'shift_lenght'; did you mean 'shift_length'?",
+        ),
     ],
 )
 def test_a_fault_is_said_by_line_with_its_cure(line: str, said: str) -> None:
