@@ -137,8 +137,18 @@ def guarded(run: Callable[[], object]) -> None:
         run()
     except KeyboardInterrupt:
         stop(Exit.USAGE, "stopped; nothing more was written")
+    except SystemExit as leaving:
+        # The command line library leaves with 1 when the reader of a pipe has gone.
+        if isinstance(leaving.__context__, BrokenPipeError):
+            raise SystemExit(int(Exit.DONE)) from None
+        raise
     except BrokenPipeError:
-        raise SystemExit(0) from None
+        raise SystemExit(int(Exit.DONE)) from None
+    except OSError as error:
+        stop(
+            Exit.USAGE,
+            f"what was to be printed could not be written ({error.strerror}); your file was not changed",
+        )
     except Exception as error:  # the last guard: a fault of the tool itself
         complain(f"handoff stopped on a fault of its own ({type(error).__name__}); your file was not changed")
         if debug:
