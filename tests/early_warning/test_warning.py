@@ -272,3 +272,8 @@ def test_a_level_below_voice_is_on_page_one() -> None:
         )
         assert found.rank == rank
         assert (found.flag is Flag.ACTION) is (said != "alert")
+
+
+def test_air_and_oxygen_are_named_as_they_are() -> None:
+    assert "on air (0)" in score_of(WELL).shown
+    assert "on oxygen (2)" in score_of({**WELL, "on_oxygen": "yes"}).shown

@@ -232,3 +232,25 @@ def test_comfort_as_the_goal_of_care_asks_for_nothing() -> None:
 
 def test_an_insulin_rate_in_another_unit_is_refused() -> None:
     assert any("insulin" in fault for fault in faults_of(NAMES, state_text({"18:00": {"insulin": "3 kg"}})))
+
+
+def test_the_first_day_and_rows_from_memory_are_said_as_cautions() -> None:
+    early = item(made({"19:00": SEPTIC}), "infection.sepsis")
+    assert any("burn shock" in caution for caution in early.cautions)
+    late = item(made({"19:00": SEPTIC}, injury=DAYS_AGO), "infection.sepsis")
+    assert not any("burn shock" in caution for caution in late.cautions)
+    assert not any("from memory" in caution for caution in late.cautions)
+    child = item(made({"19:00": SEPTIC}, injury=DAYS_AGO, patient=CHILD), "infection.sepsis")
+    assert any("from memory" in caution for caution in child.cautions)
+
+
+def test_without_a_time_of_burn_platelets_cannot_be_judged() -> None:
+    found = item(made({"19:00": SEPTIC}, injury={"at": None}), "infection.sepsis")
+    assert "low platelets (time of burn not recorded)" in found.shown
+    assert found.flag is Flag.ACTION
+
+
+def test_no_sign_at_all_is_left_to_the_vital_signs_in_the_first_day() -> None:
+    assert made().item("infection.sepsis") is None
+    assert made(injury={"at": None}).item("infection.sepsis") is None
+    assert item(made(injury=DAYS_AGO), "infection.sepsis").flag is Flag.NOT_RECORDED

@@ -281,3 +281,20 @@ def test_comfort_as_the_goal_of_care_leaves_position_and_turning_to_the_patient(
 def test_an_unknown_product_is_refused_with_the_nearest_one() -> None:
     said = faults_of(NAMES, state_text(wounds=dressing(product="silver foams")))
     assert any("silver foam" in fault for fault in said)
+
+
+def test_doses_that_are_not_recorded_are_not_taken_as_unknown() -> None:
+    found = made(injury={"tetanus": {"given_today": "no"}})
+    assert found.item("wounds.tetanus") is None
+    assert "wounds.tetanus_ask" in action_keys(found)
+
+
+def test_a_dose_after_the_burn_calls_for_no_further_one() -> None:
+    injury = {"at": "2026-03-10 08:00", "tetanus": {"doses": "3 or more", "last": "2026-03-12"}}
+    assert item(made(injury=injury), "wounds.tetanus").value == "none"
+
+
+def test_the_years_are_counted_to_the_burn_and_without_its_time_to_now() -> None:
+    tetanus = {"doses": "3 or more", "last": "2021-03-14"}
+    assert item(made(injury={"at": "2026-03-13 08:00", "tetanus": tetanus}), "wounds.tetanus").value == "none"
+    assert item(made(injury={"at": None, "tetanus": tetanus}), "wounds.tetanus").value == "vaccine"
