@@ -13,7 +13,7 @@ from handoff.chart.describing import describe_entry, describe_key, named, same
 from handoff.chart.drafting import Draft
 from handoff.chart.entries import ROWS
 from handoff.chart.insertion import Entry, Value
-from handoff.chart.meanings import LIST, RESULT, Lexicon
+from handoff.chart.meanings import GROUP, LIST, RESULT, Lexicon
 from handoff.chart.phrases import NotUnderstood, Said, understand
 from handoff.chart.restating import Restating, SameAlready, tree_of
 from handoff.chart.shape import Schema
@@ -87,6 +87,8 @@ class _Work:
         work, text = self._of_author(text)
         said = understand(text, work.words)
         new = said.value(work.spelled, "")
+        if said.meaning.kind == GROUP:
+            raise Refused(f"'{text}': this stands once in the file; change it by hand")
         if said.meaning.kind == LIST:
             return work._correct_entry(said, new if isinstance(new, Mapping) else {})
         key = said.meaning.place
@@ -160,8 +162,8 @@ class _Work:
 
     def _told_of(self, place: str, entry: Entry) -> dict[str, Value]:
         """What an entry of a list says, without its author and its times."""
-        form = shape.at(self.schema, place.split("."))
-        entry_form = (shape.list_form(form) if form is not None else None) or shape.NOTHING
+        form = shape.at(self.schema, place.split(".")) or shape.NOTHING
+        entry_form = shape.list_form(form) or form
         aside = ("by", *shape.times_of(entry_form))
         return {key: value for key, value in entry.items() if key not in aside}
 
@@ -171,7 +173,7 @@ class _Work:
         if listed:
             return self._one(listed, text), "", None
         lead = self.words.leads.get(text.casefold())
-        if lead is not None and lead.kind != LIST:
+        if lead is not None and lead.is_row:
             return self._one(self._with_key(lead.place), text), lead.place, None
         tokens = text.casefold().replace(",", " ").split()
         by_words = [one for one in self.there if one.place != ROWS and _holds(one, tokens)]
@@ -182,13 +184,14 @@ class _Work:
                 raise Refused(str(error)) from None
             return self._one(by_words, text), "", None
         place, value = said.meaning.place, said.value(self.spelled, "")
-        if said.meaning.kind != LIST:
+        if said.meaning.is_row:
             found = [one for one in self._with_key(place) if _index(one, place, value) is not None]
             one = self._one(found, text)
             index = _index(one, place, value)
             return one, place, None if index == WHOLE else index
-        known = self._told_of(place, value if isinstance(value, Mapping) else {})
-        fitting = [one for one in self.there if one.place == place and not _changed(one, known)]
+        path = ".".join(said.meaning.path(said.values))
+        known = self._told_of(path, value if isinstance(value, Mapping) else {})
+        fitting = [one for one in self.there if one.place == path and not _changed(one, known)]
         return self._one(fitting, text), "", None
 
     def _with_key(self, key: str) -> list[Standing]:

@@ -14,7 +14,7 @@ from handoff.chart.describing import describe_entry, describe_key, same
 from handoff.chart.drafting import Draft
 from handoff.chart.entries import Moment, Placed, Write, gathered, placed, rows_at
 from handoff.chart.layout import CannotInsert
-from handoff.chart.meanings import LIST, OBSERVATION, Lexicon
+from handoff.chart.meanings import GROUP, LIST, OBSERVATION, Lexicon
 from handoff.chart.phrases import NotUnderstood, Said, understand
 from handoff.chart.standing import listed_entries, stands, words_that_stand
 from handoff.chart.times import meant, spelled
@@ -211,8 +211,8 @@ def _without_places(fault: Fault) -> tuple[str, str]:
 
 
 def _said(write: Write) -> Iterator[str]:
-    if write.kind == LIST:
-        yield f"  {write.first.means}: {describe_entry(write.keys) or write.first.place}"
+    if not write.first.is_row:
+        yield f"  {write.first.means}: {describe_entry(write.keys) or write.path[-1]}"
     else:
         yield from (f"  {describe_key(key, value)}" for key, value in write.keys.items())
 
@@ -221,6 +221,8 @@ def _again(root: Map, writes: list[Write], moment: Moment) -> Iterator[Question]
     """What stands there already, the same value in the same minute, whoever charted it."""
     clock = moment.clock
     for write in writes:
+        if write.kind == GROUP:
+            continue  # a group stands once and is refused a second time
         if write.kind == LIST:
             for _, entry in listed_entries(root, write.path):
                 if same({**write.keys, "note": ""}, {**_dict(plain(entry)), "note": ""}):

@@ -10,13 +10,13 @@ from typing import Any
 from handoff.chart import shape
 from handoff.chart.asking import Refused
 from handoff.chart.drafting import Draft, Path
-from handoff.chart.insertion import Value
-from handoff.chart.meanings import LIST, OBSERVATION, Meaning
+from handoff.chart.insertion import Entry, Value
+from handoff.chart.meanings import GROUP, LIST, OBSERVATION, Meaning
 from handoff.chart.phrases import Said
 from handoff.chart.shape import Schema
 from handoff.chart.times import spelled
 from handoff.state.clock import Clock
-from handoff.state.nodes import List, Map, Node, path_text
+from handoff.state.nodes import List, Map, Node, Text, path_text
 
 ROWS = "observations"
 CLOSED = ("struck", "confirmed", "written", "corrects")
@@ -99,7 +99,7 @@ def gathered(
     for said in phrases:
         meaning, value = said.meaning, said.value(moment.spelled, moment.by)
         is_checked = said.text in confirmed
-        if meaning.kind == LIST:
+        if not meaning.is_row:
             _into_list(writes, said, value, is_checked)
             continue
         form = _form(schema, meaning)
@@ -140,8 +140,9 @@ def _into_list(writes: list[Write], said: Said, value: Value, is_checked: bool) 
     if not isinstance(value, Mapping):
         raise Refused(f"'{said.text}' makes no entry")
     about = dict.fromkeys(value, said)
+    path = said.meaning.path(said.values)
     for index, other in enumerate(writes):
-        if said.meaning.together and other.first.together and other.path == said.meaning.path:
+        if said.meaning.together and other.first.together and other.path == path:
             clash = [key for key in value if key in other.keys and value[key] != other.keys[key]]
             if clash:
                 raise Refused(f"'{other.said[clash[0]].text}' and '{said.text}' contradict each other")
@@ -152,7 +153,7 @@ def _into_list(writes: list[Write], said: Said, value: Value, is_checked: bool) 
                 confirmed=other.confirmed or is_checked,
             )
             return
-    writes.append(Write(LIST, said.meaning.path, value, about, is_checked))
+    writes.append(Write(said.meaning.kind, path, value, about, is_checked))
 
 
 def with_confirmed(value: Value, form: Schema) -> Value | None:
@@ -171,6 +172,8 @@ def placed(draft: Draft, write: Write, moment: Moment) -> Placed:
     marks |= {"confirmed": "yes"} if write.confirmed else {}
     if write.kind == LIST:
         return Placed(write, draft.append(write.path, {**write.keys, **marks}))
+    if write.kind == GROUP:
+        return Placed(write, _put_group(draft, write.path, {**write.keys, **marks}, moment))
     if write.kind != OBSERVATION:
         return Placed(
             write, draft.append(write.path, {"at": moment.spelled, "by": moment.by, **write.keys, **marks})
@@ -189,6 +192,20 @@ def placed(draft: Draft, write: Write, moment: Moment) -> Placed:
         return Placed(write, (*draft.put((ROWS,), day, {time: entry}, lambda other: other > day), time))
     is_later = _later_than(moment, day)
     return Placed(write, draft.put((ROWS, day), time, entry, is_later))
+
+
+def _put_group(draft: Draft, path: tuple[str, ...], entry: Entry, moment: Moment) -> Path:
+    """Put in an entry that stands once; an earlier one stays readable inside it."""
+    node: Node | None = draft.root
+    for name in path:
+        node = node.get(name) if isinstance(node, Map) else None
+    if node is None or node == "":
+        return draft.put(path[:-1], path[-1], entry)
+    standing = node.get("at") if isinstance(node, Map) else None
+    if not isinstance(standing, Text) or moment.clock.read(str(standing)) > moment.at:
+        raise Refused(f"line {node.line}: a later '{path[-1]}' stands there; change it by hand")
+    corrects = {"by": moment.by, "at": moment.spelled, "why": "a later entry took its place"}
+    return draft.correct(path, entry, corrects)
 
 
 def _later_than(moment: Moment, day: str) -> Any:

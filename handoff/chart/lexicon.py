@@ -9,7 +9,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from handoff.chart import shape
-from handoff.chart.meanings import LIST, OBSERVATION, REST, RESULT, SLOT, Lexicon, Meaning, Template
+from handoff.chart.meanings import GROUP, LIST, OBSERVATION, REST, RESULT, SLOT, Lexicon, Meaning, Template
 from handoff.chart.shape import Schema
 from handoff.chart.slots import Free, Known, Listed, NotThat, Pairs, Quantity, Slot, Word, slot_for
 from handoff.plugin import Plugin
@@ -91,13 +91,13 @@ class _Maker:
 
     def phrase(self, group: str, phrase: Mapping[str, Any]) -> Meaning:
         """One phrase of ``words.json``."""
-        kind = next(kind for kind in (OBSERVATION, RESULT, LIST) if kind in phrase)
+        kind = next(kind for kind in (OBSERVATION, RESULT, LIST, GROUP) if kind in phrase)
         place = str(phrase[kind])
-        template = phrase["entry" if kind == LIST else "value"]
+        template = phrase["entry" if kind in (LIST, GROUP) else "value"]
         says = tuple([phrase["say"]] if isinstance(phrase["say"], str) else phrase["say"])
         examples = phrase["example"]
-        schema = self._list_schema(place) if kind == LIST else self._value_schema(kind, place)
-        forms = dict(self._forms(template, schema))
+        schema, forms = self._place(kind, place)
+        forms |= dict(self._forms(template, schema))
         kinds = {match["name"]: match["kind"] or "" for say in says for match in SLOT.finditer(say)}
         slots = {name: self._slot(name, kind, forms, place) for name, kind in kinds.items()}
         unsaid = sorted(set(forms) - set(slots))
@@ -114,6 +114,22 @@ class _Maker:
             slots,
             bool(phrase.get("together", False)),
         )
+
+    def _place(self, kind: str, place: str) -> tuple[Schema, dict[str, tuple[str, Slot]]]:
+        """The schema of what stands at a place, and the slot where its last step is one."""
+        if kind == LIST:
+            return self._list_schema(place), {}
+        if kind != GROUP:
+            return self._value_schema(kind, place), {}
+        above, _, last = place.rpartition(".")
+        known = shape.keys_of(shape.at(self.schema, above.split(".")) or shape.NOTHING)
+        groups = {key: form for key, form in known.items() if "struck" in shape.keys_of(form)}
+        match = SLOT.fullmatch(last)
+        if match and groups:
+            return next(iter(groups.values())), {match["name"]: ("", self._keys(match["name"], groups))}
+        if last not in groups:
+            raise ValueError(f"'{place}' is not a group of the state file")
+        return groups[last], {}
 
     def _value_schema(self, kind: str, key: str) -> Schema:
         look = shape.observation if kind == OBSERVATION else shape.result

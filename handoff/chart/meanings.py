@@ -13,7 +13,7 @@ from handoff.chart.slots import Slot
 
 Template: TypeAlias = Any
 SLOT = re.compile(r"<(?P<name>\w+)(?::(?P<kind>\w+))?>")
-OBSERVATION, RESULT, LIST = "observation", "result", "list"
+OBSERVATION, RESULT, LIST, GROUP = "observation", "result", "list", "group"
 REST = "*"
 
 
@@ -21,8 +21,9 @@ REST = "*"
 class Meaning:
     """One thing that can be charted: how it is said, what it means, where it goes.
 
-    ``kind`` is observation, result or list; ``place`` is the key of the row, or the path of the
-    list. ``template`` is the value or entry with ``<slot>``, ``@at`` and ``@by`` in it.
+    ``kind`` is observation, result, list or group; ``place`` is the key of the row, or the path of
+    the list or group, whose last step may be a slot. ``template`` is the value or entry with
+    ``<slot>``, ``@at`` and ``@by`` in it.
     """
 
     group: str
@@ -36,9 +37,15 @@ class Meaning:
     together: bool = False
 
     @property
-    def path(self) -> tuple[str, ...]:
-        """The path of the list that it goes into."""
-        return tuple(self.place.split(".")) if self.kind == LIST else ("results",)
+    def is_row(self) -> bool:
+        """Whether it charts a value of a row of observations or results."""
+        return self.kind in (OBSERVATION, RESULT)
+
+    def path(self, values: Mapping[str, Value]) -> tuple[str, ...]:
+        """Return the path of the list or group that it goes into, for the values of its slots."""
+        steps = self.place.split(".")
+        match = SLOT.fullmatch(steps[-1])
+        return (*steps[:-1], str(values[match["name"]]) if match else steps[-1])
 
 
 @dataclass

@@ -65,21 +65,25 @@ def standing_at(root: Map, at: datetime, clock: Clock, schema: Schema) -> list[S
     found = [Standing(path, row, ROWS) for path, row in rows_at(root, at, clock) if "struck" not in row]
     for path, node in walk(root):
         names = [str(step) for step in path]
-        if (
-            not isinstance(node, List)
-            or names[:1] in ([ROWS], [CONFIDENTIAL])
-            or not all(isinstance(step, str) for step in path)
-        ):
+        if names[:1] in ([ROWS], [CONFIDENTIAL]) or not all(isinstance(step, str) for step in path):
             continue
-        form = shape.at(schema, names)
-        entry_form = shape.list_form(form) if form is not None else None
-        if entry_form is None or "struck" not in shape.keys_of(entry_form):
+        form = shape.at(schema, names) or shape.NOTHING
+        entry_form = (shape.list_form(form) or shape.NOTHING) if isinstance(node, List) else form
+        if "struck" not in shape.keys_of(entry_form):
             continue
         times = shape.times_of(entry_form)
-        for place, entry in listed_entries(root, names):
+        for place, entry in _entries_of(root, node, names):
             if any(_is_at(entry.get(key), at, clock) for key in times):
                 found.append(Standing(place, entry, ".".join(names)))
     return sorted(found, key=lambda one: one.entry.line)
+
+
+def _entries_of(root: Map, node: object, names: list[str]) -> Iterator[tuple[Path, Map]]:
+    """The entries of a list, or the one entry that a group is."""
+    if isinstance(node, List):
+        yield from listed_entries(root, names)
+    elif isinstance(node, Map) and "struck" not in node:
+        yield tuple(names), node
 
 
 def _is_at(value: object, at: datetime, clock: Clock) -> bool:

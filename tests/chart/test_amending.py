@@ -224,6 +224,14 @@ def test_an_entry_of_a_list_is_struck_by_its_words(entry: str) -> None:
     assert [dose["at"] for dose in doses if "struck" in dose] == ["2026-03-14 19:10"]
 
 
+def test_an_entry_that_stands_once_is_struck_and_not_corrected() -> None:
+    text = charted(HEAD, "last food bread and soup", at="15:00", now="2026-03-14 15:00").text
+    for entry in ("15:00 last food bread and soup", "15:00 nutrition.last_food", "15:00 soup"):
+        assert tree(struck(text, entry))["nutrition"]["last_food"]["struck"] == WHY
+    with pytest.raises(Refused, match="stands once in the file; change it by hand"):
+        corrected(text, "15:00 last food bread")
+
+
 def test_where_several_fit_each_is_named_by_line() -> None:
     text = row("[{by: EM, pulse: 124 /min}, {by: JO, pulse: 126 /min}]")
     with pytest.raises(Refused) as refused:

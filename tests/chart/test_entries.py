@@ -84,6 +84,25 @@ def test_the_signs_of_one_check_are_one_entry() -> None:
     ]
 
 
+def test_what_stands_once_keeps_the_earlier_one_readable() -> None:
+    text = charted(HEAD, "last food bread and soup", at="15:00", now="2026-03-14 15:00").text
+    done = charted(text, "last food tea and toast")
+    assert is_kept(text, done.text)
+    food = tree(done.text)["nutrition"]["last_food"]
+    assert (food["at"], food["what"]) == ("2026-03-14 19:30", "tea and toast")
+    assert "bread and soup" in food["corrects"]["value"]
+    with pytest.raises(Refused, match="a later 'last_food' stands there; change it by hand"):
+        charted(done.text, "last food an apple", at="18:00")
+
+
+def test_a_step_of_the_survey_is_charted_under_its_name() -> None:
+    done = charted(HEAD, "survey back: log-rolled, no burn", "survey head to toe")
+    assert tree(done.text)["first_hours"] == {
+        "back": {"at": "2026-03-14 19:30", "by": "EM", "found": "log-rolled, no burn"},
+        "head to toe": {"at": "2026-03-14 19:30", "by": "EM"},
+    }
+
+
 def test_the_results_of_one_sample_are_one_entry() -> None:
     done = charted(HEAD, "specimen arterial", "ph 7.31", "lactate 2.2 mmol/L")
     assert tree(done.text)["results"] == [
