@@ -144,7 +144,9 @@ def _results(case: Case) -> list[Item]:
 def vital_actions(case: Case) -> tuple[Action, ...]:
     """Return the check of vital signs, due from the last row with most of them by the check interval."""
     interval = timedelta(minutes=case.parameters.number("vital.check_interval"))
-    rows = [row.at for row in case.state.rows if sum(name in row.entry for name in FULL_ROW) > len(FULL_ROW) / 2]
+    rows = [
+        row.at for row in case.state.rows if sum(name in row.entry for name in FULL_ROW) > len(FULL_ROW) / 2
+    ]
     never = not any(case.state.series(name) for name in FULL_ROW)
     old = [
         f"{said} last at {case.clock.time(readings[-1].at, case.now)}"
