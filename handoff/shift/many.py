@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 from collections.abc import Callable, Iterable, Iterator, Sequence
 from concurrent.futures import ProcessPoolExecutor
+from concurrent.futures.process import BrokenProcessPool
 from dataclasses import dataclass
 from functools import lru_cache, partial
 from pathlib import Path
@@ -95,8 +96,15 @@ def read_each(
         for path in paths:
             yield _one(path, request, setup)
         return
-    with ProcessPoolExecutor(min(jobs, len(paths))) as pool:
-        yield from pool.map(partial(_elsewhere, request), paths)
+    done = 0
+    try:
+        with ProcessPoolExecutor(min(jobs, len(paths))) as pool:
+            for one in pool.map(partial(_elsewhere, request), paths):
+                yield one
+                done += 1
+    except BrokenProcessPool:  # the machine took a process away: the rest is read here, one by one
+        for path in paths[done:]:
+            yield _one(path, request, setup)
 
 
 @lru_cache(maxsize=1)

@@ -5,6 +5,8 @@ from __future__ import annotations
 import os
 import subprocess
 import sys
+from collections.abc import Callable, Iterator
+from concurrent.futures.process import BrokenProcessPool
 from dataclasses import replace
 from datetime import timedelta
 from pathlib import Path
@@ -139,6 +141,26 @@ def test_every_file_in_and_below_the_folder_is_in_the_table(ward: Path) -> None:
 def test_reading_side_by_side_gives_the_same_page(ward: Path) -> None:
     write(ward, bad="handoff: 1\n")
     assert run("ward", ward, "--at", MOMENT) == run("ward", ward, "--at", MOMENT, "--jobs", "3")
+
+
+def test_a_reading_process_that_is_lost_costs_no_patient(ward: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    class Broken:
+        def __init__(self, jobs: int) -> None:
+            pass
+
+        def __enter__(self) -> Broken:
+            return self
+
+        def __exit__(self, *_: object) -> None:
+            pass
+
+        def map(self, read: Callable[[Path], object], paths: list[Path]) -> Iterator[object]:
+            yield read(paths[0])
+            raise BrokenProcessPool
+
+    alone = run("ward", ward, "--at", MOMENT)
+    monkeypatch.setattr("handoff.shift.many.ProcessPoolExecutor", Broken)
+    assert run("ward", ward, "--at", MOMENT, "--jobs", "2") == alone
 
 
 def test_nothing_confidential_is_on_the_page(ward: Path, tmp_path: Path) -> None:
