@@ -5,6 +5,8 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 
+from handoff.state.patient import PatientState
+
 
 @dataclass(frozen=True)
 class Question:
@@ -20,11 +22,12 @@ class Question:
 
 
 class Ask(Exception):
-    """Charting cannot go on before these questions are answered."""
+    """Charting cannot go on before these questions are answered; ``state`` says whose file it is."""
 
     def __init__(self, questions: Sequence[Question]) -> None:
         super().__init__(f"{len(questions)} questions")
         self.questions = tuple(questions)
+        self.state: PatientState | None = None
 
 
 class Refused(Exception):

@@ -93,6 +93,9 @@ def chart(
         return work.done()
     except (CannotInsert, NotUnderstood) as error:
         raise Refused(str(error)) from None
+    except Ask as ask:
+        ask.state = before.state
+        raise
 
 
 @dataclass(frozen=True)

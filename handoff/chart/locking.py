@@ -12,13 +12,14 @@ import os
 import secrets
 import socket
 import time
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from pathlib import Path
 
 from handoff.files import CannotWrite
 
 LEFT_OVER_AFTER_S = 30.0
 GIVE_UP_AFTER_S = 90.0
+TELL_AFTER_S = 2.0
 _PAUSE_S = 0.03
 _TRIES = 30
 
@@ -30,16 +31,19 @@ def lock_path(path: Path) -> Path:
 
 @contextlib.contextmanager
 def locked(
-    path: Path, left_over_after_s: float = LEFT_OVER_AFTER_S, give_up_after_s: float = GIVE_UP_AFTER_S
+    path: Path,
+    left_over_after_s: float = LEFT_OVER_AFTER_S,
+    give_up_after_s: float = GIVE_UP_AFTER_S,
+    on_wait: Callable[[], object] | None = None,
 ) -> Iterator[None]:
-    """Hold the lock of ``path``.
+    """Hold the lock of ``path``; ``on_wait`` is called once where that takes a while.
 
     Raises:
         CannotWrite: Another program keeps it, or the folder cannot be written.
     """
     lock = lock_path(path)
     mark = f"{socket.gethostname()} {os.getpid()} {secrets.token_hex(8)}"
-    _take(lock, mark, left_over_after_s, give_up_after_s)
+    _take(lock, mark, left_over_after_s, give_up_after_s, on_wait or (lambda: None))
     try:
         yield
     finally:
@@ -47,12 +51,22 @@ def locked(
             _unlinked(lock)
 
 
-def _take(lock: Path, mark: str, left_over_after_s: float, give_up_after_s: float) -> None:
+def _take(
+    lock: Path,
+    mark: str,
+    left_over_after_s: float,
+    give_up_after_s: float,
+    on_wait: Callable[[], object],
+) -> None:
     begun = seen_since = time.monotonic()
     seen = ""
+    is_told = False
     while not _made(lock, mark):
         now = time.monotonic()
         other = _mark_of(lock)
+        if not is_told and now - begun > TELL_AFTER_S:
+            on_wait()
+            is_told = True
         if other != seen:
             seen, seen_since = other, now
         if _is_gone(other) or now - seen_since > left_over_after_s:

@@ -14,11 +14,12 @@ _BOM = b"\xef\xbb\xbf"
 _TRIES = 5
 
 
-def store(path: Path, make: Callable[[str], Charted]) -> Charted:
+def store(path: Path, make: Callable[[str], Charted], on_wait: Callable[[], object] | None = None) -> Charted:
     """Write what ``make`` returns for the text of ``path``, under the lock of the file; return it.
 
     ``make`` is called with the text as it stands; whatever it raises leaves the file unchanged.
-    Where another program changed the file in between, it is read and made again.
+    Where another program changed the file in between, it is read and made again. ``on_wait`` is
+    called once where another program holds the lock for a while.
 
     Raises:
         NotAStateFile: The path is not a readable text file.
@@ -27,7 +28,7 @@ def store(path: Path, make: Callable[[str], Charted]) -> Charted:
     target = path.resolve() if path.is_symlink() else path
     if not target.is_file():
         read_text(path)  # it says what is there instead
-    with locked(target):
+    with locked(target, on_wait=on_wait):
         for _ in range(_TRIES):
             text = read_text(path)
             old = target.read_bytes()

@@ -11,7 +11,7 @@ import typer
 from handoff.cli.edge import BundledOption, Exit, PolicyOption, complain, leave, say, setup_or_stop, stop, who
 
 if TYPE_CHECKING:
-    from handoff.chart.asking import Question
+    from handoff.chart.asking import Ask
     from handoff.chart.charting import Charted, Request
     from handoff.chart.meanings import Lexicon
     from handoff.registry import Setup
@@ -103,13 +103,20 @@ def chart(
         why = why.strip() or _asked("Why?", 'say why: --why "misread"')
     request = Request(tuple(entries or ()), at, " ".join(by.split()), correct, strike, " ".join(why.split()))
     charted = _charted(file, setup, known, request, now, confirm)
-    _tell(charted, setup, known)
+    try:
+        _tell(charted, setup, known)
+    except Exception as error:  # whatever goes wrong now, the nurse must not chart it a second time
+        complain(f"the entry was written; what it changed could not be shown ({type(error).__name__})")
+        raise SystemExit(int(Exit.INCOMPLETE)) from None
 
 
 def _asked(question: str, otherwise: str) -> str:
     if not sys.stdin.isatty():
         stop(Exit.USAGE, f"{otherwise}; nothing was written")
-    return str(typer.prompt(question)).strip()
+    try:
+        return str(typer.prompt(question)).strip()
+    except typer.Abort:
+        stop(Exit.USAGE, "nothing was written")
 
 
 def _charted(file: Path, setup: Setup, known: Lexicon, request: Request, now: str, confirm: bool) -> Charted:
@@ -128,9 +135,9 @@ def _charted(file: Path, setup: Setup, known: Lexicon, request: Request, now: st
 
     while True:
         try:
-            return store(file, make)
+            return store(file, make, lambda: complain("another program is writing this file; waiting for it"))
         except Ask as ask:
-            yes.update(_answered(ask.questions, confirm))
+            yes.update(_answered(ask, confirm))
         except Refused as error:
             stop(Exit.USAGE, *error.lines, "nothing was written")
         except StateFaults as error:
@@ -144,13 +151,19 @@ def _charted(file: Path, setup: Setup, known: Lexicon, request: Request, now: st
             stop(Exit.USAGE, str(error))
 
 
-def _answered(questions: tuple[Question, ...], confirm: bool) -> set[str]:
-    yes = {question.key for question in questions if confirm and question.by_confirm}
-    open_ones = [question for question in questions if question.key not in yes]
+def _answered(ask: Ask, confirm: bool) -> set[str]:
+    yes = {question.key for question in ask.questions if confirm and question.by_confirm}
+    open_ones = [question for question in ask.questions if question.key not in yes]
     if open_ones and not sys.stdin.isatty():
         stop(Exit.USAGE, *(question.refused for question in open_ones), "nothing was written")
+    if open_ones:
+        say(who(ask.state))
     for question in open_ones:
-        if not typer.confirm(question.asked):
+        try:
+            is_so = typer.confirm(question.asked)
+        except typer.Abort:
+            is_so = False
+        if not is_so:
             stop(Exit.USAGE, "nothing was written")
         yes.add(question.key)
     return yes
@@ -169,6 +182,4 @@ def _tell(charted: Charted, setup: Setup, known: Lexicon) -> None:
         say("changed by it:")
     for line in changed:
         say(f"  {line}")
-    for fault in charted.after.unusual:
-        complain(fault.said(after.state.file))
     leave(after)

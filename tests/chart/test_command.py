@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import subprocess
 import sys
 from pathlib import Path
 
@@ -125,6 +126,26 @@ def test_the_words_are_listed_without_a_file() -> None:
     assert '"give morphine 4 mg IV": A dose was given' in done.stdout
 
 
+def test_what_was_written_is_never_said_to_be_unwritten(patient: Path) -> None:
+    script = (
+        "import sys; import handoff.chart.effect as effect\n"
+        "def broken(*_): raise RuntimeError('Ferrandel')\n"
+        "effect.changes = broken\n"
+        "import handoff.cli; handoff.cli.main()\n"
+    )
+    done = subprocess.run(
+        [sys.executable, "-c", script, "chart", str(patient), "urine 20 mL", "--by", "EM", "--now", NOW],
+        capture_output=True,
+        text=True,
+        check=False,
+    )
+    assert done.returncode == 3
+    assert done.stderr.splitlines() == [
+        "the entry was written; what it changed could not be shown (RuntimeError)"
+    ]
+    assert "urine: 20 mL" in patient.read_text(encoding="utf-8")
+
+
 def test_a_policy_sets_when_an_entry_is_late(patient: Path, tmp_path: Path) -> None:
     policy = write(tmp_path / "policy.yaml", "policy: 1\nlate_entry_after: 15 min\n")
     chart(patient, "urine 20 mL", "--by", "EM", "--at", "19:10", "--policy", policy)
@@ -143,6 +164,7 @@ def test_in_a_terminal_the_name_the_date_and_the_unusual_are_asked(patient: Path
     )
     assert code == 0, screen
     assert "charted for Sat 14 Mar 2026 23:50 by JO:" in screen
+    assert screen.index("Tomas Ferrandel, born 11 Feb 1985") < screen.index("yesterday?")
     assert rows(patient.read_text(encoding="utf-8"))["23:50"]["pulse"]["confirmed"] == "yes"
 
 

@@ -193,6 +193,14 @@ def test_a_lock_that_is_held_is_waited_for_and_then_named(patient: Path) -> None
         pass
 
 
+def test_a_long_wait_is_told_once(patient: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    monkeypatch.setattr(locking, "TELL_AFTER_S", 0.05)
+    told: list[int] = []
+    lock_path(patient).write_text("another-machine 12 abc", encoding="utf-8")
+    with locked(patient, left_over_after_s=0.4, on_wait=lambda: told.append(1)):
+        assert told == [1]
+
+
 def test_a_lock_taken_over_is_not_removed_by_its_first_maker(patient: Path) -> None:
     with locked(patient):
         lock_path(patient).write_text("another-machine 12 abc", encoding="utf-8")
