@@ -200,8 +200,10 @@ class Draft:
             if not self._step(change.found(self._layout), tree):
                 line = self._text.count("\n", 0, min(one.place for one in change.insertions)) + 1
                 self._tree = plain(self._root)
+                ended = self._text.endswith(("\n", "\r"))
+                first = "" if ended else "put a line break at the end of the file and try again, or "
                 raise CannotInsert(
-                    f"line {line}: its layout has no safe place for the entry; write it by hand"
+                    f"line {line}: its layout has no safe place for the entry; {first}write it by hand"
                 )
         self._tree = tree
 

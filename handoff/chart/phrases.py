@@ -14,6 +14,8 @@ from handoff.chart.slots import ANYTHING, Free, Known, Listed, NotThat, spaced
 from handoff.words import joined
 
 _STRICT, _LOOSE, _OPEN = range(3)
+_LONGEST = {_LOOSE: 400, _OPEN: 100}
+"""Up to how many letters a phrase is compared so: in a long text the ways to divide it are too many."""
 
 
 class NotUnderstood(ValueError):
@@ -158,7 +160,7 @@ def _explained(text: str, lexicon: Lexicon, misses: list[_Miss]) -> str:
     """What is wrong with a phrase that fits no meaning: a slot of the meaning that it comes nearest to."""
     near = [*misses, *_incomplete(text, lexicon)]
     for level in (_LOOSE, _OPEN):
-        for meaning in lexicon.meanings:
+        for meaning in lexicon.meanings if len(text) <= _LONGEST[level] else ():
             for say in meaning.says:
                 for match in _matches(text, say, meaning, level):
                     values, faults = _read(match, meaning)

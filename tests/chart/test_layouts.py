@@ -175,7 +175,7 @@ def test_a_text_that_would_change_by_what_follows_it_is_left_alone() -> None:
     text = "pain:\n  doses:\n    - drug: a\n      note: |\n        no newline at the end of the file"
     draft = Draft(text, "f")
     draft.append(("pain", "doses"), NEW)
-    with pytest.raises(CannotInsert, match="line 5: its layout has no safe place"):
+    with pytest.raises(CannotInsert, match=r"line 5: .* put a line break at the end of the file"):
         assert draft.text
     assert draft.text == text
 

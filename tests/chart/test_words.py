@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import time
 from fnmatch import fnmatch
 from functools import lru_cache
 
@@ -148,6 +149,15 @@ def test_a_phrase_that_fits_two_meanings_is_refused_and_both_are_named() -> None
 def test_what_a_plugin_knows_as_its_own_words_is_not_taken_as_free_text() -> None:
     assert understand("pupils unreactive 1", words()).meaning.place == "pupils_unreactive"
     assert understand("pupils equal, 3 mm", words()).meaning.place == "pupils"
+
+
+@pytest.mark.parametrize("said", ["wound ", "for at 4 mg ", "x: y, "])
+def test_a_long_text_that_means_nothing_is_refused_at_once(said: str) -> None:
+    begun = time.monotonic()
+    for length in (99, 399, 4000):
+        with pytest.raises(NotUnderstood):
+            understand((said * length)[:length], words())
+    assert time.monotonic() - begun < 20
 
 
 def test_words_that_should_have_been_in_quotes_are_explained() -> None:
