@@ -26,7 +26,7 @@ _CURES = (
     ("did not find expected alphabetic or numeric", "put text that begins with & or * in quotes"),
     (
         "did not find expected node content",
-        "delete the extra comma or colon, or write what belongs beside it",
+        "delete the extra comma or colon, or put text that begins with ? in quotes",
     ),
     ("did not find expected <document start>", "delete the line with '...'"),
     ("mapping keys are not allowed", "put text that begins with ? in quotes"),

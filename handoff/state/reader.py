@@ -128,7 +128,7 @@ class _Stop(Exception):
     """What follows cannot be read in any sensible way; the fault is noted."""
 
 
-_EXPLICIT_KEY = re.compile(r"(?:[\r\n{\[,-] *\? +|[\r\n] *(?:- +)*\?[ \r\n]+)$")
+_EXPLICIT_KEY = re.compile(r"(?:[{\[,] *\? *|- *\? +|[\r\n] *(?:- +)*\?[ \r\n]+)$")
 
 
 class _Reading:
@@ -138,7 +138,7 @@ class _Reading:
         self._open: list[_Open] = []
         self._root: Node | None = None
         self._upset_to = -1
-        self._has_explicit_keys = re.search(r"\?\s", text) is not None
+        self._has_explicit_keys = "?" in text
 
     def root(self) -> Node | None:
         self.faults += refused_characters(self.text)
@@ -292,6 +292,7 @@ class _Reading:
             self._fault(event, "a key is missing", "write it before the colon, or delete the '?' or ':'")
         elif self._has_explicit_keys and _EXPLICIT_KEY.search(self._just_before(text)):
             self._fault(event, "'?' begins a key", "put text that begins with ? in quotes")
+            inside.drop = True
         known = inside.keys.get(text)
         if known is not None and not inside.drop:
             self._fault(

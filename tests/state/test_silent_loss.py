@@ -60,6 +60,8 @@ REFUSED = {
     "twice far apart": ("a: {b: 1, c: 2, d: 3, b: 4}", "1:23: a: the key 'b' stands twice here"),
     "a question": ("a:\n  ? b\n", "2:5: a: '?' begins a key"),
     "a question in braces": ("a: {? b : c}", "1:7: a: '?' begins a key"),
+    "a query in braces": ("a: {?b: c}", "1:6: a: '?' begins a key"),
+    "a query in a list": ("a: [?b]", "1:6: a[1]: '?' begins a key"),
     "no key": ("a: {'': 5}", "1:5: a: a key is missing"),
     "a missing space after the colon": ("a: {b:1, c: 2}", "1:5: a.b:1: no space after the colon in 'b:1'"),
     "a comma in text": ("a: {b: x, then y}", "1:11: a.then y: 'then y' has no value"),
