@@ -16,8 +16,8 @@ from handoff.plugin import plural
 from handoff.registry import Setup
 from handoff.shift.people import Person
 from handoff.state.faults import StateFaults
+from handoff.state.file_text import NotAStateFile
 from handoff.state.load import MomentError
-from handoff.state.reader import NotAStateFile
 from handoff.work import assess_loaded, make_setup, open_file
 
 T = TypeVar("T")

@@ -167,6 +167,7 @@ def test_a_place_is_line_and_column_of_the_words_in_the_file() -> None:
     for finding in found:
         assert lines[finding.line - 1][finding.column - 1 :].startswith("stable"), finding
     assert [finding.line for finding in found] == [9, 9, 11, 12, 15, 16, 16]
+    assert len({(finding.line, finding.column) for finding in found}) == 7
     assert found[0].where == "handovers[1].summary"
     assert found[2].where == "handovers[1].concerns[1]"
 
