@@ -15,8 +15,9 @@ from typing import Any
 
 from handoff.state.access import amount, words
 from handoff.state.faults import Fault, StateFaults
+from handoff.state.file_text import NotAStateFile, read_text
 from handoff.state.nodes import List, Map
-from handoff.state.reader import NotAStateFile, read_nodes, read_text
+from handoff.state.reader import read_nodes
 from handoff.state.schema import expand, load_schema
 from handoff.state.validate import check, without_blanks
 

@@ -20,9 +20,9 @@ from handoff.chart.standing import listed_entries, stands, words_that_stand
 from handoff.chart.times import meant, spelled
 from handoff.registry import Setup
 from handoff.state.faults import Fault, StateFaults
+from handoff.state.file_text import MAX_BYTES
 from handoff.state.load import Loaded
 from handoff.state.nodes import Map, plain
-from handoff.state.reader import MAX_BYTES
 from handoff.work import open_text
 
 

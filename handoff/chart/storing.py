@@ -8,7 +8,7 @@ from pathlib import Path
 from handoff.chart.charting import Charted
 from handoff.chart.locking import locked
 from handoff.files import CannotWrite, write_file
-from handoff.state.reader import read_text
+from handoff.state.file_text import read_text
 
 _BOM = b"\xef\xbb\xbf"
 _TRIES = 5

@@ -125,8 +125,8 @@ def _charted(file: Path, setup: Setup, known: Lexicon, request: Request, now: st
     from handoff.chart.storing import store
     from handoff.files import CannotWrite
     from handoff.state.faults import StateFaults
+    from handoff.state.file_text import NotAStateFile
     from handoff.state.load import MomentError
-    from handoff.state.reader import NotAStateFile
 
     yes: set[str] = set()
 

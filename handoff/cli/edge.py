@@ -78,8 +78,8 @@ def setup_or_stop(policy: Path | None, bundled_only: bool) -> Setup:
 def open_or_stop(file: Path, setup: Setup, at: str) -> Loaded:
     """Return the validated state, or leave with exit code 1 (faults) or 2 (not a state file)."""
     from handoff.state.faults import StateFaults
+    from handoff.state.file_text import NotAStateFile
     from handoff.state.load import MomentError
-    from handoff.state.reader import NotAStateFile
     from handoff.work import open_file
 
     try:

@@ -82,7 +82,7 @@ def changes_or_stop(assessment: Assessment, setup: Setup, other: Path, since_tim
 def _earlier(assessment: Assessment, setup: Setup, other: Path, since_time: str) -> Snapshot:
     from handoff.shift.charted import latest_moment
     from handoff.shift.snapshot import snapshot_in, snapshot_of
-    from handoff.state.reader import NotAStateFile, read_text
+    from handoff.state.file_text import NotAStateFile, read_text
     from handoff.work import assess_loaded
 
     if other.suffix.lower() == ".json":
@@ -103,7 +103,7 @@ def _earlier(assessment: Assessment, setup: Setup, other: Path, since_time: str)
 
 def _stop_if_newer(other: Path, setup: Setup, assessment: Assessment) -> None:
     from handoff.state.faults import StateFaults
-    from handoff.state.reader import NotAStateFile
+    from handoff.state.file_text import NotAStateFile
     from handoff.work import open_file
 
     clock = assessment.state.clock

@@ -72,7 +72,7 @@ def wording(
 
 def _of_state(file: Path, at: str, policy: Path | None, bundled_only: bool) -> list[Finding]:
     from handoff.shift.wording import check_state, load_rules
-    from handoff.state.reader import read_text
+    from handoff.state.file_text import read_text
 
     setup = setup_or_stop(policy, bundled_only)
     state = open_or_stop(file, setup, at).state

@@ -11,9 +11,10 @@ from typing import Any, TypeAlias
 
 from handoff.state.clock import Clock, ClockError
 from handoff.state.faults import Fault, Severity, StateFaults
+from handoff.state.file_text import read_text
 from handoff.state.nodes import Map, Text
 from handoff.state.patient import PatientState
-from handoff.state.reader import read_nodes, read_text
+from handoff.state.reader import read_nodes
 from handoff.state.validate import check, without_blanks
 
 Checks: TypeAlias = Callable[[PatientState, datetime], list[Fault]]

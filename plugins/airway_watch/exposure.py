@@ -29,17 +29,28 @@ class Burn(Protocol):
     """A burned region, as the area plugin hands it over."""
 
     @property
-    def region(self) -> str: ...
+    def region(self) -> str:
+        """Region of the body."""
+
     @property
-    def face(self) -> str: ...
+    def face(self) -> str:
+        """Face of the body; empty for both."""
+
     @property
-    def depth(self) -> str: ...
+    def depth(self) -> str:
+        """Depth class."""
+
     @property
-    def counted(self) -> bool | None: ...
+    def counted(self) -> bool | None:
+        """Whether it counts; None when its depth was not assessed."""
+
     @property
-    def circumferential(self) -> bool | str | None: ...
+    def circumferential(self) -> bool | str | None:
+        """Whether it goes all the way round; None when not recorded."""
+
     @property
-    def line(self) -> int: ...
+    def line(self) -> int:
+        """Line of the file."""
 
 
 @dataclass(frozen=True, slots=True)

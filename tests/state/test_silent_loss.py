@@ -45,7 +45,7 @@ REFUSED = {
     "more than, over a text": ("a: >5\n  b: 1", "1:4: a: '>5' begins a block of text and would be lost"),
     "a stroke": ("a: |2", "1:4: a: '|2' begins a block of text and would be lost"),
     "a backslash that is a code": (r'a: "obs\e"', "1:4: a: a backslash code for an unprintable character"),
-    "a backslash before a capital": (r'a: "C:\Notes"', "1:4: a: a backslash code for an unprintable character"),
+    "a backslash before a capital": (r'a: "see \Notes"', "1:4: a: a backslash code for an unprintable character"),
     "a backslash that is no code": (r'a: "Ward\Bed"', "1:9: the line cannot be read (found unknown escape"),
     # Lines swallowed.
     "by a quote closed later": ('a: "x\nb: 1\nc: y"', "1:4: a: the quotes that open here close only on line 3"),

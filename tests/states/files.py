@@ -7,8 +7,8 @@ import sys
 from pathlib import Path
 
 from handoff.state.faults import StateFaults
+from handoff.state.file_text import NotAStateFile
 from handoff.state.load import Loaded
-from handoff.state.reader import NotAStateFile
 from handoff.work import open_file
 from tests.small_patient import setup_of
 

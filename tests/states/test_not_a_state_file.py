@@ -10,7 +10,8 @@ from pathlib import Path
 import pytest
 
 from handoff.state.faults import StateFaults
-from handoff.state.reader import MAX_BYTES, MAX_DEPTH, NotAStateFile, read_nodes, read_text
+from handoff.state.file_text import MAX_BYTES, NotAStateFile, read_text
+from handoff.state.reader import MAX_DEPTH, read_nodes
 from tests.states.files import AT, command
 
 SMALL = "handoff: 1\nclock: Europe/Dublin\npatient: {name: Tomas Ferrandel}\ninjury: {at: 2026-03-14 13:20}\n"

@@ -8,9 +8,10 @@ from pathlib import Path
 import pytest
 
 from handoff.state.access import amount, child, words
+from handoff.state.file_text import read_text
 from handoff.state.nodes import List, Map, plain
 from handoff.state.patient import PatientState
-from handoff.state.reader import read_nodes, read_text
+from handoff.state.reader import read_nodes
 from tests.states.files import AT, HERE, command, loaded
 
 FILES = sorted((HERE / "valid").glob("*.yaml"))
