@@ -140,7 +140,7 @@ def items(case: Case, found: Triggers | None) -> tuple[Item, ...]:
     if found is None:
         return ()
     met, unknown = found.of(MET), found.of(UNKNOWN)
-    if len(unknown) == len(found.rows):
+    if not met and not found.of(NOT_MET):
         if _is_early(case) or patient.hours_since_burn(case) is None:
             return ()
         label = f"Sepsis triggers, {found.title}"

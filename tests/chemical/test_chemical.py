@@ -113,3 +113,34 @@ def test_comfort_as_the_goal_of_care_asks_for_nothing() -> None:
     )
     assert action_keys(found) == []
     assert all(one.rank is None and one.flag is not Flag.ACTION for one in found.items)
+
+
+def test_the_chemical_is_shown_with_what_is_known_of_it_and_nothing_else() -> None:
+    found = item(made({"group": "alkali", "clothes_off": "yes", "in_eye": "no"}), "chemical.agent")
+    assert found.shown == (
+        "caustic soda, alkali; poisons service: no advice recorded; contaminated clothes off: yes; in the eye: no"
+    )
+    assert found.cautions == ()
+    bare = item(made(), "chemical.agent")
+    assert bare.shown == "caustic soda; poisons service: no advice recorded"
+    assert bare.flag is Flag.NONE
+    only_group = item(made({"group": "cement"}, cause={"agent": None}), "chemical.agent")
+    assert only_group.flag is Flag.NONE
+
+
+def test_hydrofluoric_acid_says_why_a_small_patch_matters() -> None:
+    found = item(made({"group": "hydrofluoric acid"}), "chemical.agent")
+    assert any("stop the heart" in caution for caution in found.cautions)
+    assert found.sources[0].key == "hf-sheet"
+
+
+def test_the_working_names_each_time_and_what_was_told() -> None:
+    found = item(made({"rinsed": [span("08:10", "08:40"), span("19:00", None)]}), "chemical.rinsed")
+    assert found.working is not None
+    assert [one.shown for one in found.working.inputs] == [
+        "2026-03-14 08:10 to 2026-03-14 08:40",
+        "2026-03-14 19:00 to now",
+    ]
+    told = item(made(cause={"irrigated_for": "20 min"}), "chemical.rinsed")
+    assert told.working is not None
+    assert [one.label for one in told.working.inputs] == ["told"]

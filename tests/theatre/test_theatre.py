@@ -91,3 +91,23 @@ def test_blood_without_an_operation_is_shown() -> None:
     text = state_text(theatre={"blood": [{"at": "2026-03-14 10:00", "valid_until": "2026-03-14 19:00"}]})
     found = item(assessed(NAMES, text), "theatre.blood")
     assert (found.flag, "no longer valid" in found.shown) == (Flag.REVIEW, True)
+
+
+def test_edges_of_time_and_words() -> None:
+    day_before = made(start="2026-03-15 19:30")
+    assert "theatre.ready" in action_keys(day_before)
+    assert "theatre.ready" not in action_keys(made(start="2026-03-15 19:31"))
+    now = item(made(start="2026-03-14 19:30", entry=READY), "theatre.operation")
+    assert (now.flag, "its time is past" in now.shown) == (Flag.NONE, False)
+    assert "consent signed" in now.shown
+    assert "consent signed" not in item(made(), "theatre.operation").shown
+
+
+def test_food_and_drink_not_recorded_is_said_only_where_neither_is() -> None:
+    assert item(made(), "theatre.fasting").shown.endswith("last food and drink not recorded")
+    assert "not recorded" not in item(made(last_food="2026-03-14 18:00"), "theatre.fasting").shown
+
+
+def test_a_sample_without_its_validity_says_so() -> None:
+    found = item(made(theatre={"blood": [{"at": "2026-03-14 10:00"}]}), "theatre.blood")
+    assert "validity not recorded; what is ready is not recorded" in found.shown

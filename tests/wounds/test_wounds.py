@@ -298,3 +298,24 @@ def test_the_years_are_counted_to_the_burn_and_without_its_time_to_now() -> None
     tetanus = {"doses": "3 or more", "last": "2021-03-14"}
     assert item(made(injury={"at": "2026-03-13 08:00", "tetanus": tetanus}), "wounds.tetanus").value == "none"
     assert item(made(injury={"at": None, "tetanus": tetanus}), "wounds.tetanus").value == "vaccine"
+
+
+def test_a_dressing_is_shown_with_what_was_seen_and_nothing_else() -> None:
+    found = item(made(wounds=dressing(soaked="yes", exudate="heavy", look="pink edge")), "wounds.dressing.1")
+    assert found.shown.endswith("soaked through; exudate heavy; pink edge")
+    assert found.working is not None
+    plain = item(made(wounds=dressing(next="2026-03-15 10:00")), "wounds.dressing.1")
+    assert "soaked" not in plain.shown
+    assert "exudate" not in plain.shown
+    assert plain.working is None
+
+
+def test_a_change_that_is_due_has_its_time_in_the_plan_and_one_without_a_time_has_none() -> None:
+    timed = action(made(wounds=dressing()), "wounds.change.1")
+    assert (timed.urgency, timed.first_due is not None) == (Urgency.TIMED, True)
+    untimed = action(made(wounds=dressing(product="film")), "wounds.change.1")
+    assert (untimed.urgency, untimed.first_due) == (Urgency.SHIFT, None)
+
+
+def test_comfort_without_a_dressing_has_no_line_about_dressings() -> None:
+    assert "wounds.dressing_comfort" not in action_keys(made({"region": "trunk"}, patient=COMFORT))
