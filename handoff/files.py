@@ -56,7 +56,9 @@ def write_file(path: Path, content: bytes) -> None:
         CannotWrite: The file cannot be written; an existing one is unchanged.
     """
     if not path.parent.is_dir():
-        raise CannotWrite(f"{path} could not be written (there is no such folder); check the name and try again")
+        raise CannotWrite(
+            f"{path} could not be written (there is no such folder); check the name and try again"
+        )
     write_all(path.parent, {path.name: content})
 
 

@@ -103,7 +103,7 @@ def test_working_shows_formula_sum_input_line_and_rule(small: Path) -> None:
     done = run("working", small, "injury.hours_since", "--at", AT)
     assert done.returncode == 0
     assert "6 h 10 min" in done.stdout
-    assert "small.yaml, line 4" in done.stdout
+    assert "small.yaml, line 4" in " ".join(done.stdout.split())
 
 
 def test_working_of_an_unknown_figure_names_the_nearest(small: Path) -> None:

@@ -142,6 +142,8 @@ def test_monitoring_that_runs_is_kept_on_and_asked_about_after_a_day() -> None:
     found = made(block, injury=injury)
     assert action(found, "electrical.keep_monitoring").first_due == item(found, "electrical.monitoring").value
     assert item(made(block, injury=injury, at="2026-03-15 09:00"), "electrical.monitoring").flag is Flag.NONE
+    running = item(found, "electrical.monitoring").shown
+    assert "running since Sat 14 Mar 2026 09:00, to at least Sun 15 Mar 2026 09:00" in running
     late = item(made(block, injury=injury, at="2026-03-15 09:01"), "electrical.monitoring")
     assert late.flag is Flag.REVIEW
     assert "24 h reached" in late.shown

@@ -14,6 +14,8 @@ HELD = (
     "handoff/**.py",
     "handoff/py.typed",
     "handoff/document/templates/*.docx",
+    "handoff/shift/wording/rules.yaml",
+    "handoff/shift/wording/rules.schema.json",
     "handoff/bundled/*/*.json",
     "handoff/bundled/*/*.yaml",
     "handoff/bundled/*/README.md",

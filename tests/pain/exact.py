@@ -86,7 +86,18 @@ def infused(entries: list[dict[str, Any]]) -> list[tuple[str, Fraction]]:
     return found
 
 
+def speaks_of_the_last_day(state: dict[str, Any]) -> bool:
+    """Whether anything was charted in the last 24 h: a dose, a line begun or seen, an observation."""
+    pain = state["pain"]
+    lines = pain.get("infusions", [])
+    moments = [entry["at"] for entry in pain["doses"]] + [line["from"] for line in lines if "from" in line]
+    moments += [f"{day} {time}" for day, times in state.get("observations", {}).items() for time in times]
+    return bool(infused(lines)) or any(0 <= minutes_ago(moment) < DAY for moment in moments)
+
+
 def opioid_mg(state: dict[str, Any], table: str) -> Fraction | None:
+    if not speaks_of_the_last_day(state):
+        return None
     pain = state["pain"]
     portions = [
         (entry["drug"], WAYS[entry["route"]], milligrams(entry))
@@ -103,7 +114,9 @@ def opioid_mg(state: dict[str, Any], table: str) -> Fraction | None:
     return total
 
 
-def paracetamol_mg(state: dict[str, Any]) -> Fraction:
+def paracetamol_mg(state: dict[str, Any]) -> Fraction | None:
+    if not speaks_of_the_last_day(state):
+        return None
     return sum(
         (
             milligrams(entry)
