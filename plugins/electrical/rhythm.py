@@ -171,12 +171,13 @@ def _monitoring(case: Case, found: Injury) -> Item:
     )
 
 
-def _state(case: Case, found: Injury, since: datetime | None, end: datetime | None) -> str:
+def _state(case: Case, since: datetime | None, end: datetime | None) -> str:
     if since is not None and end is not None:
-        reached = "24 h reached, ask whether it may end" if end < case.now else "to at least"
+        begun = f"running since {case.clock.day_and_time(since)}"
         if end < case.now:
-            return f"running since {case.clock.day_and_time(since)}; {reached}"
-        return f"running since {case.clock.day_and_time(since)}, {reached} {case.clock.day_and_time(end)}"
+            hours = hours_text(case.parameters.number("monitoring.hours"))
+            return f"{begun}; {hours} reached, ask whether it may end"
+        return f"{begun}, to at least {case.clock.day_and_time(end)}"
     spans = _spans(case)
     if spans:
         ended = case.when(spans[-1].entry.get("until"))
