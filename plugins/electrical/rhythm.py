@@ -171,7 +171,7 @@ def _monitoring(case: Case, found: Injury) -> Item:
     )
 
 
-def _state(case: Case, since: datetime | None, end: datetime | None) -> str:
+def _state(case: Case, found: Injury, since: datetime | None, end: datetime | None) -> str:
     if since is not None and end is not None:
         begun = f"running since {case.clock.day_and_time(since)}"
         if end < case.now:
