@@ -90,6 +90,8 @@ def speaks_of_the_last_day(state: dict[str, Any]) -> bool:
     """Whether anything was charted in the last 24 h: a dose, a line begun or seen, an observation."""
     pain = state["pain"]
     lines = pain.get("infusions", [])
+    if not pain["doses"] and not lines:
+        return False
     moments = [entry["at"] for entry in pain["doses"]] + [line["from"] for line in lines if "from" in line]
     moments += [f"{day} {time}" for day, times in state.get("observations", {}).items() for time in times]
     return bool(infused(lines)) or any(0 <= minutes_ago(moment) < DAY for moment in moments)
