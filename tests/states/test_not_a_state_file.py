@@ -144,6 +144,8 @@ def test_nesting_to_the_limit_is_read() -> None:
     root, faults = read_nodes("a: " + "[" * (MAX_DEPTH - 1) + "]" * (MAX_DEPTH - 1) + "\n", "deep.yaml")
     assert faults == []
     assert len(root) == 1
+    with pytest.raises(StateFaults, match="1 faults"):
+        read_nodes("a: " + "[" * MAX_DEPTH + "]" * MAX_DEPTH + "\n", "deep.yaml")
 
 
 def test_a_million_tabs_are_refused_at_once_and_not_a_million_times(tmp_path: Path) -> None:
