@@ -18,7 +18,7 @@ import yaml
 from handoff.parameters import ParameterError, Parameters, read_parameters
 from handoff.plugin import API_VERSION, Plugin
 from handoff.policy import Policy, PolicyError
-from handoff.state.schema import SchemaError, merged_schema
+from handoff.state.schema import SchemaError, load_schema, merged_schema
 
 GROUP = "handoff.plugins"
 BUNDLED = "handoff.bundled."
@@ -136,9 +136,20 @@ def parameters_of(plugin: Plugin) -> Parameters:
     loader = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
     try:
         data = yaml.load(part_of(plugin, "parameters.yaml") or "{}", Loader=loader)  # noqa: S506  (a safe loader)
-        return read_parameters(data, f"parameters.yaml of '{plugin.name}'")
+        where = f"parameters.yaml of '{plugin.name}'"
+        if not plugin.package.startswith(BUNDLED):
+            _hold_to_schema(data, where)
+        return read_parameters(data, where)
     except (yaml.YAMLError, ParameterError) as error:
         raise PluginError(str(error)) from None
+
+
+def _hold_to_schema(data: Any, where: str) -> None:
+    """Refuse an outside table with the place of its first fault; the bundled ones are held to it by tests."""
+    from jsonschema import Draft202012Validator  # noqa: PLC0415  (only an outside plugin needs it here)
+
+    for error in Draft202012Validator(load_schema("parameters.schema.json")).iter_errors(data):
+        raise PluginError(f"{where}: {error.json_path}: {error.message}")
 
 
 def prepare(policy: Policy, plugins: Iterable[Plugin]) -> Setup:
