@@ -28,7 +28,7 @@ texts = st.one_of(
         units,
     ),
 )
-TAKEN = re.compile(r"[+-]?([1-9][0-9]*|0)(\.[0-9]+)?( *\S.*)?|[0-9]+/[0-9]+ *mm ?Hg")
+TAKEN = re.compile(r"[+-]?([1-9][0-9]*|0)(\.[0-9]+)?( *\S.*)? *|[0-9]+/[0-9]+ *mm ?Hg")
 
 
 @given(kinds, texts)
