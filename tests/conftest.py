@@ -7,9 +7,15 @@ import shutil
 from pathlib import Path
 
 import pytest
+from hypothesis import settings
 
 ROOT = Path(__file__).resolve().parents[1]
 EVERYTHING_MUST_RUN = os.environ.get("CI", "").lower() == "true"
+
+# A run that decides over a change tries the same examples each time; elsewhere new ones are sought.
+settings.register_profile("same", derandomize=True, deadline=None)
+if EVERYTHING_MUST_RUN:
+    settings.load_profile("same")
 
 
 def needs_tool(name: str) -> str:
