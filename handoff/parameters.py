@@ -41,7 +41,7 @@ class Source:
         cited = " ".join(f"{part.strip().rstrip('.')}." for part in parts if part.strip())
         notes = {
             "from memory": "From memory: confirm before use.",
-            "common practice": "Common practice, no source.",
+            "common practice": "Common practice." if self.citation else "Common practice, no source.",
         }
         return f"{cited} {notes.get(self.kind, '')}".strip()
 

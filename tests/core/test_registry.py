@@ -6,7 +6,7 @@ import itertools
 
 import pytest
 
-from handoff.parameters import ParameterError, read_parameters
+from handoff.parameters import ParameterError, Source, read_parameters
 from handoff.plugin import API_VERSION
 from handoff.policy import Policy, PolicyError, read_policy
 from handoff.registry import PluginError, find_plugins, in_order, prepare
@@ -110,3 +110,10 @@ def test_a_guideline_without_a_source_is_refused() -> None:
     entry = {"value": 4, "unit": "h", "kind": "guideline", "source": "none", "locator": ""}
     with pytest.raises(ParameterError, match="needs a source"):
         read_parameters({"parameters": {"a": entry}}, "parameters.yaml")
+
+
+@pytest.mark.parametrize(
+    ("citation", "end"), [("", "Common practice, no source."), ("A text.", "Common practice.")]
+)
+def test_common_practice_says_no_source_only_where_there_is_none(citation: str, end: str) -> None:
+    assert Source("x", citation, "p. 1", "common practice").shown().endswith(end)
