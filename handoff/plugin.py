@@ -14,6 +14,7 @@ from datetime import datetime, timedelta
 from enum import StrEnum
 from typing import TypeAlias
 
+from handoff.later import later
 from handoff.parameters import Chosen, Parameter, Parameters, Source
 from handoff.state.access import (
     amount,
@@ -232,6 +233,7 @@ class Plugin:
     and ``cases.yaml``. ``requires`` names the plugins whose findings it reads. ``owns`` names
     further first words of keys that it reports on (its own name always counts). ``check``
     finds the faults that a schema cannot see; it runs before anything is computed, without findings.
+    Both may be given by :func:`later`, so that a command which needs neither does not load them.
     """
 
     name: str
@@ -281,6 +283,7 @@ __all__ = [
     "entries",
     "hours_text",
     "joined",
+    "later",
     "line_of",
     "number",
     "number_text",

@@ -10,15 +10,17 @@ import json
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 from graphlib import CycleError, TopologicalSorter
-from importlib import metadata, resources
+from importlib import import_module, metadata, resources
+from pathlib import Path
 from typing import Any
 
 import yaml
 
+from handoff.compiled import keep, kept
 from handoff.parameters import ParameterError, Parameters, read_parameters
 from handoff.plugin import API_VERSION, Plugin
 from handoff.policy import Policy, PolicyError
-from handoff.state.schema import SchemaError, load_schema, merged_schema
+from handoff.state.schema import Schema, SchemaError, load_schema, merged_schema, schema_texts
 
 GROUP = "handoff.plugins"
 BUNDLED = "handoff.bundled."
@@ -133,15 +135,19 @@ def parameters_of(plugin: Plugin) -> Parameters:
     Raises:
         PluginError: ``parameters.yaml`` is not YAML or a value is not cited.
     """
-    loader = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
+    text = part_of(plugin, "parameters.yaml") or "{}"
     try:
-        data = yaml.load(part_of(plugin, "parameters.yaml") or "{}", Loader=loader)  # noqa: S506  (a safe loader)
+        data = kept([text]) or _parsed(text)
         where = f"parameters.yaml of '{plugin.name}'"
         if not plugin.package.startswith(BUNDLED):
             _hold_to_schema(data, where)
         return read_parameters(data, where)
     except (yaml.YAMLError, ParameterError) as error:
         raise PluginError(str(error)) from None
+
+
+def _parsed(text: str) -> Any:
+    return yaml.load(text, Loader=getattr(yaml, "CSafeLoader", yaml.SafeLoader))  # noqa: S506  (a safe loader)
 
 
 def _hold_to_schema(data: Any, where: str) -> None:
@@ -160,10 +166,7 @@ def prepare(policy: Policy, plugins: Iterable[Plugin]) -> Setup:
         PolicyError: The policy names a choice, rule set or value that is not there.
     """
     ordered = tuple(plugins)
-    try:
-        schema = merged_schema((plugin.name, schema_part(plugin)) for plugin in ordered)
-    except SchemaError as error:
-        raise PluginError(str(error)) from None
+    schema = kept(_schema_sources(ordered)) or _merged(ordered)
     parameters = {}
     for plugin in ordered:
         try:
@@ -182,3 +185,29 @@ def _refuse_unknown(policy: Policy, plugins: Iterable[Plugin]) -> None:
     for key in (*policy.choices, *policy.values):
         if key.partition(".")[0] not in names:
             raise PolicyError([f"policy '{policy.name}': '{key}' names no plugin; write plugin.name"])
+
+
+def _schema_sources(plugins: Iterable[Plugin]) -> tuple[str, ...]:
+    parts = ((plugin.name, part_of(plugin, "schema.json") or "{}") for plugin in plugins)
+    return (*schema_texts(), *(text for part in parts for text in part))
+
+
+def _merged(plugins: Iterable[Plugin]) -> Schema:
+    try:
+        return merged_schema((plugin.name, schema_part(plugin)) for plugin in plugins)
+    except SchemaError as error:
+        raise PluginError(str(error)) from None
+
+
+def compile_bundled(folder: Path, file: Path) -> None:
+    """Write the tables and the merged schema of the plugins in ``folder`` to ``file``; for the build.
+
+    Raises:
+        PluginError: A schema part cannot be used.
+        ValueError: A table does not survive as JSON.
+    """
+    names = sorted(path.parent.name for path in folder.glob("*/__init__.py"))
+    ordered = in_order(import_module(f"{BUNDLED}{name}").plugin for name in names)
+    tables = [part_of(plugin, "parameters.yaml") or "{}" for plugin in ordered]
+    made = [((text,), _parsed(text)) for text in tables]
+    keep([*made, (_schema_sources(ordered), _merged(ordered))], file)

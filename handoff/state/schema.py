@@ -61,6 +61,13 @@ def schema_folder() -> Path:
     return installed if installed.is_dir() else package.parent / "schemas"
 
 
+def schema_texts() -> tuple[str, ...]:
+    """Return everything that the merged schema is made from besides the plugins' parts: schemas and code."""
+    files = [schema_folder() / "patient-state.schema.json", schema_folder() / "common.schema.json"]
+    code = [Path(__file__), Path(__file__).with_name("units.py")]
+    return tuple(path.read_text(encoding="utf-8") for path in (*files, *code))
+
+
 def load_schema(name: str) -> Schema:
     """Return the core schema file ``name``."""
     loaded: Schema = json.loads((schema_folder() / name).read_text(encoding="utf-8"))

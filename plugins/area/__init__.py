@@ -1,14 +1,11 @@
 """Burned area, depth, special sites, referral criteria and circumferential watch."""
 
-from handoff.plugin import Plugin
-
-from .check import check
-from .compute import compute
+from handoff.plugin import Plugin, later
 
 plugin = Plugin(
     name="area",
     title="Burned area and depth",
     package="handoff.bundled.area",
-    compute=compute,
-    check=check,
+    compute=later("handoff.bundled.area.compute", "compute"),
+    check=later("handoff.bundled.area.check", "check"),
 )

@@ -1,13 +1,11 @@
 """Electrical injury and lightning: rhythm, contact points, limbs that look unburned."""
 
-from handoff.plugin import Plugin
-
-from .compute import compute
+from handoff.plugin import Plugin, later
 
 plugin = Plugin(
     name="electrical",
     title="Electrical injury",
     package="handoff.bundled.electrical",
-    compute=compute,
+    compute=later("handoff.bundled.electrical.compute", "compute"),
     requires=("area",),
 )

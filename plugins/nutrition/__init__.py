@@ -1,12 +1,10 @@
 """Last food, tube feeding and where the tube lies, bowels, glucose while insulin runs."""
 
-from handoff.plugin import Plugin
-
-from .compute import compute
+from handoff.plugin import Plugin, later
 
 plugin = Plugin(
     name="nutrition",
     title="Feeding, bowels and glucose",
     package="handoff.bundled.nutrition",
-    compute=compute,
+    compute=later("handoff.bundled.nutrition.compute", "compute"),
 )

@@ -1,15 +1,12 @@
 """Pain scores, sedation, analgesic totals and the next painful procedure."""
 
-from handoff.plugin import Plugin
-
-from .check import check
-from .compute import compute
+from handoff.plugin import Plugin, later
 
 plugin = Plugin(
     name="pain",
     title="Pain, sedation and analgesia",
     package="handoff.bundled.pain",
-    compute=compute,
+    compute=later("handoff.bundled.pain.compute", "compute"),
     requires=("area",),
-    check=check,
+    check=later("handoff.bundled.pain.check", "check"),
 )

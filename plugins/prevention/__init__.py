@@ -1,13 +1,11 @@
 """Whether prevention of clots and of stress ulcers was decided, by whom and when."""
 
-from handoff.plugin import Plugin
-
-from .compute import compute
+from handoff.plugin import Plugin, later
 
 plugin = Plugin(
     name="prevention",
     title="Clot and ulcer prevention",
     package="handoff.bundled.prevention",
-    compute=compute,
+    compute=later("handoff.bundled.prevention.compute", "compute"),
     requires=("area",),
 )

@@ -12,6 +12,7 @@ from tests.packaging.project import BUNDLED, ROOT, named, project
 
 HELD = (
     "handoff/**.py",
+    "handoff/compiled.json",
     "handoff/py.typed",
     "handoff/document/templates/*.docx",
     "handoff/shift/wording/rules.yaml",

@@ -1,0 +1,53 @@
+"""Bundled tables and the merged schema, read once in the build so that a command need not parse them again.
+
+Each is kept under the digest of the text that it was made from. A table that was edited since has
+another digest, is not found here and is read from its source: what is kept can be absent, never stale.
+"""
+
+from __future__ import annotations
+
+import hashlib
+import json
+from collections.abc import Iterable, Mapping
+from functools import cache
+from pathlib import Path
+from typing import Any
+
+FILE = Path(__file__).with_name("compiled.json")
+
+
+def digest_of(texts: Iterable[str]) -> str:
+    """Return the digest under which what was made from ``texts`` is kept; their borders count."""
+    found = hashlib.sha256()
+    for text in texts:
+        content = text.encode()
+        found.update(f"{len(content)}:".encode())
+        found.update(content)
+    return found.hexdigest()
+
+
+def kept(texts: Iterable[str]) -> Any | None:
+    """Return what the build made from exactly these texts, or None when it made nothing from them."""
+    return _all().get(digest_of(texts))
+
+
+def keep(made: Iterable[tuple[tuple[str, ...], Any]], file: Path) -> None:
+    """Write what was made from each group of texts to ``file``, and prove that it reads back equal.
+
+    Raises:
+        ValueError: Something that was made does not survive as JSON.
+    """
+    content = {digest_of(texts): data for texts, data in made}
+    text = json.dumps(content, ensure_ascii=False, separators=(",", ":"), allow_nan=False)
+    if json.loads(text) != content:
+        raise ValueError("a table does not survive as JSON; write its keys as text")
+    file.write_text(text, encoding="utf-8")
+
+
+@cache
+def _all() -> Mapping[str, Any]:
+    try:
+        found: Mapping[str, Any] = json.loads(FILE.read_text(encoding="utf-8"))
+    except (OSError, ValueError):
+        return {}
+    return found
