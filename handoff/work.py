@@ -8,6 +8,7 @@ from pathlib import Path
 from handoff.assess import Assessment, assess, case_of
 from handoff.policy import load_policy
 from handoff.registry import Setup, find_plugins, prepare
+from handoff.state.contradictions import contradictions
 from handoff.state.faults import Fault, Severity
 from handoff.state.load import Loaded, load_file, load_text
 from handoff.state.nodes import path_text
@@ -26,8 +27,8 @@ def make_setup(policy: Path | None = None, bundled_only: bool = False) -> Setup:
 
 
 def checks_of(setup: Setup, state: PatientState, now: datetime) -> list[Fault]:
-    """Return the faults that only the plugins can see, with their places."""
-    faults = []
+    """Return the faults that no schema can see, with their places: the core's and each plugin's."""
+    faults = contradictions(state, now)
     for plugin in setup.plugins:
         if plugin.check is None:
             continue

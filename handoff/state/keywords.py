@@ -16,6 +16,7 @@ from handoff.state.faults import Severity
 from handoff.state.findings import Finding, closed, is_blank, kind_of
 from handoff.state.moments import Moments
 from handoff.state.nodes import List, Map, Text
+from handoff.state.pair_keywords import PAIR_KEYWORDS
 from handoff.state.quantity import Quantity, QuantityError, read_quantity
 from handoff.state.time_keywords import TimeKeywords
 
@@ -203,6 +204,7 @@ KEYWORDS: dict[str, Any] = {
     "if": _condition,
     "x-name": _name,
     "x-quantity": _quantity,
+    **PAIR_KEYWORDS,
 }
 
 

@@ -27,7 +27,13 @@ class TimeKeywords:
 
     def by_name(self) -> dict[str, Any]:
         """Return the functions that check, by their keywords."""
-        return {"x-instant": self._instant, "x-date": self._date, "x-zone": self._zone, "x-rows": self._rows}
+        return {
+            "x-instant": self._instant,
+            "x-date": self._date,
+            "x-zone": self._zone,
+            "x-rows": self._rows,
+            "x-order": self._order,
+        }
 
     def _instant(self, _validator: Any, rule: Schema, instance: Any, _schema: Schema) -> Found:
         clock = self._moments.clock
@@ -54,6 +60,19 @@ class TimeKeywords:
             yield Finding(f"{instance} is later than today", "check the year")
         elif today.year - first.year > OLDEST_YEARS:
             yield Finding(f"{instance} is more than {OLDEST_YEARS} years ago", "check the year")
+
+    def _order(self, _validator: Any, pairs: list[list[str]], instance: Any, _schema: Schema) -> Found:
+        """Times of one entry that can only follow each other; an entry that was struck out may be wrong."""
+        clock = self._moments.clock
+        if clock is None or not isinstance(instance, Map) or "struck" in instance:
+            return
+        for first, later in pairs:
+            before, after = (_moment(clock, instance.get(name)) for name in (first, later))
+            if before is not None and after is not None and after < before:
+                said = f"{later} {clock.day_and_time(after)} is before {first} {clock.day_and_time(before)}"
+                found = Finding(said, "check both times")
+                found.relative_path.appendleft(later)
+                yield found
 
     def _zone(self, _validator: Any, _rule: bool, instance: Any, _schema: Schema) -> Found:
         if not isinstance(instance, Text):
@@ -108,3 +127,11 @@ class TimeKeywords:
         if self._moments.now.year - moment.year > OLDEST_YEARS:
             return Finding(f"{clock.day(moment)} is more than {OLDEST_YEARS} years ago", "check the year")
         return self._moments.refuse(moment, rule)
+
+
+def _moment(clock: Clock, node: Any) -> datetime | None:
+    """The moment written at ``node``; None where that is a fault of its own."""
+    try:
+        return clock.read(node) if isinstance(node, Text) and not is_blank(node) else None
+    except ClockError:
+        return None

@@ -2,9 +2,22 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+import math
+from collections.abc import Iterator, Mapping
 
-from handoff.plugin import Case, List, Map, Node, Problem, Severity, amount, child, number_text, words
+from handoff.plugin import (
+    Case,
+    List,
+    Map,
+    Node,
+    Problem,
+    Severity,
+    amount,
+    child,
+    line_of,
+    number_text,
+    words,
+)
 
 from . import charted
 from .charted import SIGNS
@@ -15,7 +28,7 @@ Path = tuple[str | int, ...]
 
 def check(case: Case) -> tuple[Problem, ...]:
     """Return the faults of the airway block, in the order of the file."""
-    return (*_signs(case), *_oxygen(case), *_levels(case), *_spans(case))
+    return (*_signs(case), *_oxygen(case), *_levels(case), *_gases(case), *_spans(case))
 
 
 def _listed(case: Case, name: str) -> Iterator[tuple[Path, Map]]:
@@ -80,6 +93,45 @@ def _levels(case: Case) -> Iterator[Problem]:
         if other is not None and amount(other, "%") != amount(entry.get("value"), "%"):
             what = f"{words(entry.get('value'))} here and {words(other)} in results at the same time"
             yield Problem(entry["value"], (*path, "value"), what, "keep the one on the laboratory's slip")
+
+
+def _gases(case: Case) -> Iterator[Problem]:
+    """Arterial oxygen against the saturation charted near it: the one hardly goes with the other."""
+    node = case.state.root.get("results")
+    within = case.parameters.number("plausible.gas_within")
+    saturations = [
+        (reading.at, reading.node, pct)
+        for reading in case.state.series("spo2")
+        if (pct := amount(reading.node, "%")) is not None
+    ]
+    for index, entry in enumerate(node) if isinstance(node, List) else ():
+        if not isinstance(entry, Map) or "struck" in entry or words(entry.get("confirmed")) == "yes":
+            continue
+        at, pressure = case.when(entry.get("at")), amount(entry.get("pao2"), "mmHg")
+        if at is None or pressure is None or words(entry.get("specimen")) not in ("", "arterial"):
+            continue
+        near = [one for one in saturations if abs(case.hours_between(one[0], at)) * 60 <= within]
+        if not near:
+            continue
+        _, saturation, pct = min(near, key=lambda one: abs(case.hours_between(one[0], at)))
+        if any(_odd(pressure, pct, pair) for pair in case.parameters["plausible.gas_pairs"].value):
+            yield Problem(
+                entry["pao2"],
+                ("results", index, "pao2"),
+                f"{words(entry['pao2'])} seldom goes with the saturation of {words(saturation)} charted near it "
+                f"(line {line_of(saturation)})",
+                "check the unit (kPa or mmHg), the specimen and the probe; if both are right, add confirmed: yes",
+                Severity.UNUSUAL,
+            )
+
+
+def _odd(pressure_mmhg: float, saturation_pct: float, pair: Mapping[str, float]) -> bool:
+    low = pressure_mmhg < pair.get("pao2_below", math.inf) and pressure_mmhg >= pair.get("pao2_from", 0)
+    return (
+        low
+        and pair.get("spo2_from", 0) <= saturation_pct
+        and saturation_pct < pair.get("spo2_below", math.inf)
+    )
 
 
 def _spans(case: Case) -> Iterator[Problem]:
