@@ -5,7 +5,6 @@ from __future__ import annotations
 import json
 
 from handoff.bundled.airway_watch import charted, concern, facts, oxygen, schedule
-from handoff.bundled.airway_watch.compute import compute
 from handoff.bundled.airway_watch.exposure import exposure
 
 from handoff.registry import part_of
@@ -70,5 +69,5 @@ def test_what_is_from_memory_says_so() -> None:
 
 
 def test_the_plugin_is_the_one_that_it_says() -> None:
-    assert (airway.name, airway.requires, airway.compute) == ("airway_watch", ("area",), compute)
+    assert (airway.name, airway.requires) == ("airway_watch", ("area",))
     assert json.loads(part_of(airway, "schema.json") or "")["title"]
