@@ -31,6 +31,17 @@ def kept(texts: Iterable[str]) -> Any | None:
     return _all().get(digest_of(texts))
 
 
+def parsed(text: str) -> Any:
+    """Return the plain data of a trusted YAML text of our own.
+
+    Raises:
+        yaml.YAMLError: It is not YAML.
+    """
+    import yaml  # noqa: PLC0415  (a command whose tables are all compiled need not load it here)
+
+    return yaml.load(text, Loader=getattr(yaml, "CSafeLoader", yaml.SafeLoader))  # noqa: S506  (a safe loader)
+
+
 def keep(made: Iterable[tuple[tuple[str, ...], Any]], file: Path) -> None:
     """Write what was made from each group of texts to ``file``, and prove that it reads back equal.
 

@@ -16,7 +16,7 @@ from typing import Any
 
 import yaml
 
-from handoff.compiled import keep, kept
+from handoff.compiled import keep, kept, parsed
 from handoff.parameters import ParameterError, Parameters, read_parameters
 from handoff.plugin import API_VERSION, Plugin
 from handoff.policy import Policy, PolicyError
@@ -137,17 +137,13 @@ def parameters_of(plugin: Plugin) -> Parameters:
     """
     text = part_of(plugin, "parameters.yaml") or "{}"
     try:
-        data = kept([text]) or _parsed(text)
+        data = kept([text]) or parsed(text)
         where = f"parameters.yaml of '{plugin.name}'"
         if not plugin.package.startswith(BUNDLED):
             _hold_to_schema(data, where)
         return read_parameters(data, where)
     except (yaml.YAMLError, ParameterError) as error:
         raise PluginError(str(error)) from None
-
-
-def _parsed(text: str) -> Any:
-    return yaml.load(text, Loader=getattr(yaml, "CSafeLoader", yaml.SafeLoader))  # noqa: S506  (a safe loader)
 
 
 def _hold_to_schema(data: Any, where: str) -> None:
@@ -209,5 +205,6 @@ def compile_bundled(folder: Path, file: Path) -> None:
     names = sorted(path.parent.name for path in folder.glob("*/__init__.py"))
     ordered = in_order(import_module(f"{BUNDLED}{name}").plugin for name in names)
     tables = [part_of(plugin, "parameters.yaml") or "{}" for plugin in ordered]
-    made = [((text,), _parsed(text)) for text in tables]
+    tables += [path.read_text(encoding="utf-8") for path in sorted(Path(__file__).parent.rglob("*.yaml"))]
+    made = [((text,), parsed(text)) for text in tables]
     keep([*made, (_schema_sources(ordered), _merged(ordered))], file)

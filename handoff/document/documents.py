@@ -62,7 +62,7 @@ def _of_patient(template: str, data: dict[str, Data], assessment: Assessment, pa
 
 def _made(template: str, data: dict[str, Data], made_at: datetime, digest: str, page: Page) -> bytes:
     # The Word libraries are heavy; whoever only needs the sections or the references does not load them.
-    from handoff.document.read_back import check_marks, check_printed  # noqa: PLC0415
+    from handoff.document.read_back import check_document  # noqa: PLC0415
     from handoff.document.render import fill, template_bytes  # noqa: PLC0415
 
     filled = fill(template_bytes(template), template, data)
@@ -70,6 +70,5 @@ def _made(template: str, data: dict[str, Data], made_at: datetime, digest: str, 
     title = f"{frame['title']}, made at {frame['made_at']}" if isinstance(frame, dict) else template
     properties = Properties(title, made_at, digest)
     content = finish(filled.template.docx, properties, page, drawings(data))
-    check_printed(content, filled.printed, data)
-    check_marks(content, data)
+    check_document(content, filled.printed, data)
     return content

@@ -18,8 +18,8 @@ from handoff.document.sections import Mark
 _SHORT = 60
 
 
-def check_printed(content: bytes, printed: list[str], data: Mapping[str, Data]) -> None:
-    """Raise unless every text of ``data`` was printed and every printed text is in the document.
+def check_document(content: bytes, printed: list[str], data: Mapping[str, Data]) -> None:
+    """Raise unless every text of ``data`` was printed and is in the document, and every tag marks a control.
 
     Args:
         content: The finished .docx file.
@@ -27,8 +27,14 @@ def check_printed(content: bytes, printed: list[str], data: Mapping[str, Data]) 
         data: What the template was filled with.
 
     Raises:
-        DocumentError: A text is missing; names the field.
+        DocumentError: A text or a tag is missing; names the field.
     """
+    roots = list(_roots(content))
+    _check_printed(roots, printed, data)
+    _check_marks(roots, dict(data))
+
+
+def _check_printed(roots: Iterable[Any], printed: list[str], data: Mapping[str, Data]) -> None:
     fields = list(texts(dict(data)))
     times = Counter(printed)
     for path, text in fields:
@@ -37,7 +43,7 @@ def check_printed(content: bytes, printed: list[str], data: Mapping[str, Data]) 
             raise DocumentError(
                 f"the template does not print the field {path}; put it back into the template"
             )
-    page = text_of(content)
+    page = _text_in(roots)
     place = 0
     for text in printed:
         if not text:
@@ -49,15 +55,8 @@ def check_printed(content: bytes, printed: list[str], data: Mapping[str, Data]) 
         place = found + len(text)
 
 
-def check_marks(content: bytes, data: Data) -> None:
-    """Raise unless every tag of ``data`` marks a content control.
-
-    Raises:
-        DocumentError: A tag is missing; names it.
-    """
-    tags = {
-        tag.get(f"{WORD}val") for root in _roots(content) for tag in root.iter(f"{WORD}tag", f"{WORD}alias")
-    }
+def _check_marks(roots: Iterable[Any], data: Data) -> None:
+    tags = {tag.get(f"{WORD}val") for root in roots for tag in root.iter(f"{WORD}tag", f"{WORD}alias")}
     for mark in _marks(data):
         if str(mark) not in tags:
             raise DocumentError(
@@ -67,7 +66,11 @@ def check_marks(content: bytes, data: Data) -> None:
 
 def text_of(content: bytes) -> str:
     """Return the text of a .docx file: body, then headers, then footers, one paragraph a line."""
-    return "\n".join(_text(paragraph) for root in _roots(content) for paragraph in root.iter(f"{WORD}p"))
+    return _text_in(_roots(content))
+
+
+def _text_in(roots: Iterable[Any]) -> str:
+    return "\n".join(_text(paragraph) for root in roots for paragraph in root.iter(f"{WORD}p"))
 
 
 def _roots(content: bytes) -> Iterable[Any]:

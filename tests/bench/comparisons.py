@@ -74,7 +74,17 @@ def small(place: Path, runs: int) -> Iterator[Figure]:
     adult = files.copy_of_adult(place)
     charted = place / "charted.yaml"
     charted.write_text(files.stay(24), encoding="utf-8")
-    chart = (*HANDOFF, "chart", str(charted), "pulse 118 /min", "--by", "EM", "--at", files.end_of(24), "--confirm")
+    chart = (
+        *HANDOFF,
+        "chart",
+        str(charted),
+        "pulse 118 /min",
+        "--by",
+        "EM",
+        "--at",
+        files.end_of(24),
+        "--confirm",
+    )
     checked = (*HANDOFF, "check", str(charted))
     found = alternated(
         [

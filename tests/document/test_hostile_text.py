@@ -17,7 +17,7 @@ from handoff.document.context import context
 from handoff.document.finish import Properties, finish
 from handoff.document.paper import Page
 from handoff.document.printable import visible
-from handoff.document.read_back import check_printed, text_of
+from handoff.document.read_back import check_document, text_of
 from handoff.document.render import fill
 from handoff.plugin import Flag, Part, System
 from tests.document.fake import STEM, assessment, at, item, state
@@ -105,7 +105,7 @@ def filled(content: bytes, data: dict[str, object]) -> bytes:
     made = fill(content, "own.docx", data)  # type: ignore[arg-type]
     patient = state()
     finished = finish(made.template.docx, Properties("t", at(patient, "19:30"), "d"), Page("A4"))
-    check_printed(finished, made.printed, data)  # type: ignore[arg-type]
+    check_document(finished, made.printed, data)  # type: ignore[arg-type]
     return finished
 
 
@@ -132,7 +132,7 @@ def test_a_field_that_the_template_leaves_out_is_named() -> None:
 def test_a_text_that_the_filling_lost_is_named() -> None:
     made = fill(template("{{ name }}"), "own.docx", {"name": "seen"})
     with pytest.raises(DocumentError, match="the field name is not in the document"):
-        check_printed(template("something else"), made.printed, {"name": "seen"})
+        check_document(template("something else"), made.printed, {"name": "seen"})
 
 
 def test_a_key_is_found_before_a_method_of_the_same_name() -> None:

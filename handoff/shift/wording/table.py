@@ -9,8 +9,7 @@ from functools import lru_cache
 from importlib import resources
 from typing import Any
 
-import yaml
-
+from handoff.compiled import kept, parsed
 from handoff.parameters import UNCITED_KINDS, Source
 
 FILE = "rules.yaml"
@@ -63,9 +62,8 @@ class Rules:
 @lru_cache(maxsize=1)
 def load_rules() -> Rules:
     """Return the table of rules that lies beside this file."""
-    loader = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
     text = resources.files(__package__).joinpath(FILE).read_text(encoding="utf-8")
-    return read_rules(yaml.load(text, Loader=loader))  # noqa: S506  (a safe loader)
+    return read_rules(kept([text]) or parsed(text))
 
 
 def read_rules(data: Mapping[str, Any]) -> Rules:

@@ -22,7 +22,7 @@ from handoff.document.figures.depths import DEPTHS, NOT_COUNTED, UNKNOWN
 from handoff.document.figures.shapes import Look, box, group
 from handoff.document.finish import Properties, finish
 from handoff.document.paper import Page
-from handoff.document.read_back import check_marks, text_of
+from handoff.document.read_back import check_document, text_of
 from handoff.document.sections import Mark
 from tests.document.fake import STEM, assessment, at, bare, state
 from tests.document.figures.seen import find
@@ -170,9 +170,9 @@ def test_an_office_validator_finds_nothing_in_crowded_figures(tmp_path: Path) ->
 
 
 def test_a_template_without_the_place_of_a_figure_is_a_fault(handover: bytes) -> None:
-    check_marks(handover, [Mark(tag) for tag in TAGS])
+    check_document(handover, [], {"tags": [Mark(tag) for tag in TAGS]})
     with pytest.raises(DocumentError, match=r"no content control for figure:map"):
-        check_marks(handover, [Mark("figure:map")])
+        check_document(handover, [], {"tags": [Mark("figure:map")]})
 
 
 @pytest.mark.parametrize("is_block", [True, False])
