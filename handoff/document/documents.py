@@ -69,6 +69,7 @@ def _made(template: str, data: dict[str, Data], made_at: datetime, digest: str, 
     frame = data["frame"]
     title = f"{frame['title']}, made at {frame['made_at']}" if isinstance(frame, dict) else template
     properties = Properties(title, made_at, digest)
-    content = finish(filled.template.docx, properties, page, drawings(data))
-    check_document(content, filled.printed, data)
+    content, printed = finish(filled.template.docx, properties, page, drawings(data)), filled.printed
+    del filled  # the filled tree is let go before the finished one is read
+    check_document(content, printed, data)
     return content

@@ -5,7 +5,6 @@ from __future__ import annotations
 from collections import Counter
 from collections.abc import Iterable, Mapping
 from io import BytesIO
-from typing import Any
 from zipfile import ZipFile
 
 from lxml import etree
@@ -16,6 +15,9 @@ from handoff.document.names import WORD
 from handoff.document.sections import Mark
 
 _SHORT = 60
+_PARAGRAPH, _RUN, _TEXT, _VALUE = (f"{WORD}{name}" for name in ("p", "r", "t", "val"))
+_TAGS = (f"{WORD}tag", f"{WORD}alias")
+_WHITE = {f"{WORD}br": "\n", f"{WORD}tab": "\t"}
 
 
 def check_document(content: bytes, printed: list[str], data: Mapping[str, Data]) -> None:
@@ -29,12 +31,12 @@ def check_document(content: bytes, printed: list[str], data: Mapping[str, Data])
     Raises:
         DocumentError: A text or a tag is missing; names the field.
     """
-    roots = list(_roots(content))
-    _check_printed(roots, printed, data)
-    _check_marks(roots, dict(data))
+    parts = _read(content)
+    _check_printed(_text_in(parts), printed, data)
+    _check_marks({tag for part in parts for tag in part.tags}, dict(data))
 
 
-def _check_printed(roots: Iterable[Any], printed: list[str], data: Mapping[str, Data]) -> None:
+def _check_printed(page: str, printed: list[str], data: Mapping[str, Data]) -> None:
     fields = list(texts(dict(data)))
     times = Counter(printed)
     for path, text in fields:
@@ -43,7 +45,6 @@ def _check_printed(roots: Iterable[Any], printed: list[str], data: Mapping[str, 
             raise DocumentError(
                 f"the template does not print the field {path}; put it back into the template"
             )
-    page = _text_in(roots)
     place = 0
     for text in printed:
         if not text:
@@ -55,8 +56,7 @@ def _check_printed(roots: Iterable[Any], printed: list[str], data: Mapping[str, 
         place = found + len(text)
 
 
-def _check_marks(roots: Iterable[Any], data: Data) -> None:
-    tags = {tag.get(f"{WORD}val") for root in roots for tag in root.iter(f"{WORD}tag", f"{WORD}alias")}
+def _check_marks(tags: set[str], data: Data) -> None:
     for mark in _marks(data):
         if str(mark) not in tags:
             raise DocumentError(
@@ -66,29 +66,69 @@ def _check_marks(roots: Iterable[Any], data: Data) -> None:
 
 def text_of(content: bytes) -> str:
     """Return the text of a .docx file: body, then headers, then footers, one paragraph a line."""
-    return _text_in(_roots(content))
+    return _text_in(_read(content))
 
 
-def _text_in(roots: Iterable[Any]) -> str:
-    return "\n".join(_text(paragraph) for root in roots for paragraph in root.iter(f"{WORD}p"))
+def _text_in(parts: Iterable[_Reader]) -> str:
+    return "\n".join(line for part in parts for line in part.lines())
 
 
-def _roots(content: bytes) -> Iterable[Any]:
+class _Reader:
+    """Takes the elements of a part as they pass, so that no second tree of the document is held.
+
+    ``paragraphs`` holds the texts of each paragraph in the order in which they begin; a paragraph
+    within another (in a drawing) counts for both.
+    """
+
+    def __init__(self) -> None:
+        self.paragraphs: list[list[str]] = []
+        self.tags: set[str] = set()
+        self._open: list[list[str]] = []
+        self._above: list[str] = []
+
+    def start(self, name: str, attributes: Mapping[str, str]) -> None:
+        """An element begins."""
+        if name == _PARAGRAPH:
+            self.paragraphs.append([])
+            self._open.append(self.paragraphs[-1])
+        elif name in _TAGS:
+            self.tags.add(attributes.get(_VALUE, ""))
+        elif name in _WHITE and self._above[-1] == _RUN:
+            self._say(_WHITE[name])
+        self._above.append(name)
+
+    def end(self, name: str) -> None:
+        """An element ends."""
+        self._above.pop()
+        if name == _PARAGRAPH:
+            self._open.pop()
+
+    def data(self, text: str) -> None:
+        """Characters pass."""
+        if self._above[-1] == _TEXT:
+            self._say(text)
+
+    def close(self) -> _Reader:
+        """Return what was read."""
+        return self
+
+    def _say(self, text: str) -> None:
+        for paragraph in self._open:
+            paragraph.append(text)
+
+    def lines(self) -> Iterable[str]:
+        """Return the text of each paragraph."""
+        return ("".join(paragraph) for paragraph in self.paragraphs)
+
+
+def _read(content: bytes) -> list[_Reader]:
+    found = []
     with ZipFile(BytesIO(content)) as file:
         names = file.namelist()
         for start in ("word/document", "word/header", "word/footer"):
             for name in sorted(name for name in names if name.startswith(start) and name.endswith(".xml")):
-                yield etree.fromstring(file.read(name))
-
-
-def _text(paragraph: Any) -> str:
-    said = []
-    for node in paragraph.iter(f"{WORD}t", f"{WORD}br", f"{WORD}tab"):
-        if node.tag == f"{WORD}t":
-            said.append(node.text or "")
-        elif node.getparent().tag == f"{WORD}r":
-            said.append("\n" if node.tag == f"{WORD}br" else "\t")
-    return "".join(said)
+                found.append(etree.fromstring(file.read(name), etree.XMLParser(target=_Reader())))
+    return found
 
 
 def _marks(data: Data) -> Iterable[Mark]:
