@@ -9,11 +9,25 @@ and actions (what the care plan asks for), each with its working.
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from datetime import datetime, timedelta
-from enum import StrEnum
-from typing import TypeAlias
 
+from handoff.findings import (
+    NOT_RECORDED,
+    Action,
+    Findings,
+    Flag,
+    FormulaInputError,
+    Input,
+    Item,
+    Part,
+    System,
+    Urgency,
+    Value,
+    Working,
+    fact,
+    gap,
+)
 from handoff.later import later
 from handoff.parameters import Chosen, Parameter, Parameters, Source
 from handoff.state.access import (
@@ -36,146 +50,6 @@ from handoff.words import joined, plural, with_unit
 from handoff.words import number as number_text
 
 API_VERSION = 1
-
-Value: TypeAlias = float | int | str | datetime | None
-
-
-class Part(StrEnum):
-    """The part of the handover in which an item is printed."""
-
-    SITUATION = "situation"
-    BACKGROUND = "background"
-    ASSESSMENT = "assessment"
-    RECOMMENDATION = "recommendation"
-
-
-class System(StrEnum):
-    """The system of the body, or the matter, under which an item is printed; printed in this order."""
-
-    GENERAL = "general"
-    AIRWAY = "airway"
-    BREATHING = "breathing"
-    CIRCULATION = "circulation"
-    DISABILITY = "disability"
-    EXPOSURE = "temperature"
-    BURN = "burn area and depth"
-    LIMBS = "limb perfusion"
-    FLUID = "fluid and urine"
-    PAIN = "pain and sedation"
-    WOUND = "wounds and dressings"
-    INFECTION = "infection"
-    NUTRITION = "nutrition and glucose"
-    LINES = "lines, tubes and drains"
-    SKIN = "skin, position and movement"
-    ELECTRICAL = "electrical and chemical injury"
-    PEOPLE = "patient and family"
-
-
-class Flag(StrEnum):
-    """What an item asks of the reader; none of them says that a finding is well."""
-
-    ACTION = "needs action"
-    REVIEW = "due for review"
-    NONE = "no flag"
-    NOT_RECORDED = "not recorded"
-
-
-class Urgency(StrEnum):
-    """How soon an action of the care plan is due."""
-
-    NOW = "now"
-    TIMED = "timed"
-    SHIFT = "this shift"
-    ONGOING = "ongoing"
-
-
-class FormulaInputError(ValueError):
-    """An argument of a formula is not finite or lies outside its range."""
-
-
-@dataclass(frozen=True, slots=True)
-class Input:
-    """One number or fact that went into a sum: its name, how it is printed, its line (0: not from the file)."""
-
-    label: str
-    shown: str
-    line: int = 0
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Working:
-    """How a figure was worked out, for a reader to check."""
-
-    formula: str
-    sum: str
-    inputs: tuple[Input, ...] = ()
-    rule: str = ""
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Item:
-    """One thing that the reader should know.
-
-    ``value`` is not rounded and is in ``unit``; ``shown`` is how it is printed, with its unit.
-    ``repeats`` marks an item that only repeats what was charted and so needs no source.
-    ``rank`` puts an item on page one: the lower, the sooner it can kill; None keeps it off.
-    ``detail`` keeps an item out of the body of the handover and in its appendix.
-    """
-
-    key: str
-    label: str
-    part: Part
-    system: System
-    value: Value = None
-    unit: str = ""
-    shown: str = ""
-    as_of: datetime | None = None
-    flag: Flag = Flag.NONE
-    working: Working | None = None
-    sources: tuple[Source, ...] = ()
-    cautions: tuple[str, ...] = ()
-    repeats: bool = False
-    rank: int | None = None
-    detail: bool = False
-    line: int = 0
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Action:
-    """One line of the care plan: what to do, why, when first and how often.
-
-    ``every`` and ``first_due`` give the boxes of the shift; an action with neither is done once.
-    """
-
-    key: str
-    area: str
-    text: str
-    why: str
-    system: System
-    first_due: datetime | None = None
-    every: timedelta | None = None
-    urgency: Urgency = Urgency.SHIFT
-    sources: tuple[Source, ...] = ()
-    cautions: tuple[str, ...] = ()
-
-
-@dataclass(frozen=True, slots=True)
-class Findings:
-    """What one plugin returns; ``values`` is for the plugins that require it, by any key they agree on."""
-
-    items: tuple[Item, ...] = ()
-    actions: tuple[Action, ...] = ()
-    values: Mapping[str, object] = field(default_factory=dict)
-
-    def item(self, key: str) -> Item | None:
-        """Return the item of that key, or None."""
-        return next((item for item in self.items if item.key == key), None)
-
-    def number(self, key: str) -> float | None:
-        """Return the value of the item of that key as a number, or None."""
-        item = self.item(key)
-        value = item.value if item else None
-        return float(value) if isinstance(value, (int, float)) else None
 
 
 @dataclass(frozen=True, slots=True)
@@ -248,6 +122,7 @@ class Plugin:
 
 __all__ = [
     "API_VERSION",
+    "NOT_RECORDED",
     "Action",
     "Age",
     "BurnTime",
@@ -276,11 +151,14 @@ __all__ = [
     "System",
     "Text",
     "Urgency",
+    "Value",
     "Weight",
     "Working",
     "amount",
     "child",
     "entries",
+    "fact",
+    "gap",
     "hours_text",
     "joined",
     "later",

@@ -42,12 +42,12 @@ def items(case: Case, seen: Exposure, gas: Monoxide) -> tuple[Item, ...]:
     """Return the measured series, the level expected now, and the level at the time of the burn."""
     if gas.expected is None:
         if not seen.smoke_recorded and not seen.smoke_open:
-            return (say.not_asked(f"{CO}_now", "Carboxyhaemoglobin", "%"),)
+            return (say.not_asked(f"airway_watch.{CO}_now", "Carboxyhaemoglobin", "%"),)
         rank = RANK_UNKNOWN if seen.smoke_recorded else None
         caution = ("After smoke exposure an oximeter may read falsely high until it is measured.",)
         return (
             say.gap(
-                f"{CO}_now",
+                f"airway_watch.{CO}_now",
                 "Carboxyhaemoglobin",
                 unit="%",
                 system=System.BREATHING,
@@ -66,7 +66,7 @@ def _series(case: Case, gas: Monoxide) -> Item:
         (f"Hydroxocobalamin was given {given}: blood co-oximetry may misread after it.",) if given else ()
     )
     return say.fact(
-        f"{CO}_measured",
+        f"airway_watch.{CO}_measured",
         "Carboxyhaemoglobin, measured",
         shown,
         value=last.pct,
@@ -86,7 +86,7 @@ def _antidote_before(case: Case, moment: datetime) -> str:
 
 def _now(case: Case, seen: Exposure, gas: Monoxide, expected: Expected) -> Item:
     level = expected.level
-    key, label = f"{CO}_now", "Carboxyhaemoglobin expected now"
+    key, label = f"airway_watch.{CO}_now", "Carboxyhaemoglobin expected now"
     span = _range(case, expected.low, expected.high)
     after = f"{hours_text(case.hours_between(level.at, case.now))} after {say.pct(level.pct)}"
     flag, rank = (Flag.ACTION, RANK_RAISED) if gas.raised and not seen.comfort else (Flag.NONE, None)
@@ -176,7 +176,7 @@ def _at_burn(case: Case, seen: Exposure, gas: Monoxide) -> tuple[Item, ...]:
         shown = f"not plausible by this sum (over 100 %); at least {say.pct(low)}"
     return (
         say.fact(
-            f"{CO}_at_burn",
+            f"airway_watch.{CO}_at_burn",
             "Carboxyhaemoglobin at the time of the burn, worked back",
             shown,
             value=None if central_capped else central,

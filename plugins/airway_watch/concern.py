@@ -96,7 +96,7 @@ def review(case: Case, found: tuple[Listed, ...]) -> Review:
 
 
 def _review(case: Case, run: Watch, found: tuple[Listed, ...]) -> Item:
-    key, label = "senior_review", "Senior airway review"
+    key, label = "airway_watch.senior_review", "Senior airway review"
     asked = review(case, found)
     seen_by = f"last reviewed {asked.last[1]}" if asked.last else "no review of the airway is recorded"
     if run.tube.since is not None:
@@ -170,7 +170,7 @@ def _list_item(listed: Listed) -> Item:
         shown += f"; to be judged at the bedside: {', '.join(unread)}"
     name = listed.parameter.id.removeprefix("list.").replace("-", "_")
     return say.fact(
-        f"list_{name}",
+        f"airway_watch.list_{name}",
         f"Airway concern, {listed.title}",
         shown,
         value=len(listed.met),
@@ -197,7 +197,7 @@ def _score(case: Case, seen: Exposure, about: Record) -> tuple[Item, ...]:
     rows = charted.check_times(case)
     return (
         say.fact(
-            "score",
+            "airway_watch.score",
             str(parameter.value["title"]),
             shown,
             value=None if missing else points,

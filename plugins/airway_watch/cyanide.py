@@ -75,7 +75,7 @@ def items(case: Case, seen: Exposure, run: Watch) -> tuple[Item, ...]:
     return (
         *measured,
         say.fact(
-            "cyanide",
+            "airway_watch.cyanide",
             "Cyanide after smoke, findings to weigh",
             shown,
             value=len(met),
@@ -107,7 +107,7 @@ def _measured(case: Case) -> tuple[Item, ...]:
     said = f"{with_unit(level, 'umol/L', say.PLACES)} ({with_unit(mass, 'mg/L', 2)})"
     return (
         say.fact(
-            "cyanide_measured",
+            "airway_watch.cyanide_measured",
             "Blood cyanide, measured",
             f"{said} at {say.at(case, last.at)}",
             value=level,

@@ -76,7 +76,7 @@ def doubt_text(case: Case, seen: Exposure, gas: Monoxide, moment: datetime) -> s
 
 def _spo2(case: Case, gas: Monoxide, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
     """The reading itself is a vital sign and printed with them: here it stands for its doubt."""
-    key, label = "spo2", "Oxygen saturation, whether to trust it"
+    key, label = "airway_watch.spo2", "Oxygen saturation, whether to trust it"
     if reading is None:
         return ()
     pct = amount(reading.node, "%") or 0.0
@@ -114,7 +114,7 @@ def _hidden(case: Case, gas: Monoxide, moment: datetime, pct: float) -> str:
 
 
 def _pf(case: Case, seen: Exposure) -> Item:
-    key, label = "pf_ratio", "P/F"
+    key, label = "airway_watch.pf_ratio", "P/F"
     rows = [row for row in case.state.results if row.entry.get("pao2") is not None]
     rows = [row for row in rows if words(row.entry.get("specimen")) in ("", "arterial")]
     rows.sort(key=lambda row: (row.at, -(amount(row.entry.get("pao2"), "mmHg") or 0)))
@@ -158,7 +158,7 @@ def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
     by = number_text(given.high / 100, 2)
     equal = formula.room_air_equivalent_mmhg(value, case.parameters.number("fio2.room_air_handbook"))
     return say.fact(
-        "pf_ratio",
+        "airway_watch.pf_ratio",
         "P/F",
         shown,
         value=value,
@@ -219,7 +219,7 @@ def _peep(case: Case, moment: datetime) -> str:
 def _sf(case: Case, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
     if reading is None:
         return ()
-    key, label = "sf_ratio", "S/F"
+    key, label = "airway_watch.sf_ratio", "S/F"
     pct = amount(reading.node, "%") or 0.0
     given, _ = given_at(case, reading.at)
     if given is None:

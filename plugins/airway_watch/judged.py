@@ -26,7 +26,7 @@ def why(case: Case, seen: Exposure, start: datetime | None) -> Item:
     flag = Flag.NOT_RECORDED if seen.missing and not seen.reasons else Flag.NONE
     since = start if seen.watched else None
     rank = RANK if seen.cannot_be_judged else None
-    return say.fact("watch", "Airway watch", shown, as_of=since, flag=flag, rank=rank)
+    return say.fact("airway_watch.watch", "Airway watch", shown, as_of=since, flag=flag, rank=rank)
 
 
 def unjudged(seen: Exposure) -> str:

@@ -216,7 +216,7 @@ def _by_table(case: Case, part: Oxygen) -> tuple[Fraction | None, str]:
 
 def items(case: Case, watched: bool) -> tuple[Item, ...]:
     """Return the oxygen in use and the inspired oxygen that goes with it."""
-    key, label = "oxygen", "Oxygen"
+    key, label = "airway_watch.oxygen", "Oxygen"
     now = holding(case, case.now)
     if now is None:
         return (say.gap(key, label, system=System.BREATHING),) if watched else ()
@@ -226,7 +226,7 @@ def items(case: Case, watched: bool) -> tuple[Item, ...]:
 
 
 def _fraction_item(case: Case, now: Oxygen) -> Item:
-    key, label = "fio2", "Inspired oxygen"
+    key, label = "airway_watch.fio2", "Inspired oxygen"
     given, missing = fraction(case, now)
     if given is None:
         return say.gap(key, label, missing, unit="%", system=System.BREATHING)

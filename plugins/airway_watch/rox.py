@@ -18,7 +18,7 @@ def items(case: Case, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
     held = oxygen.holding(case, reading.at)
     if held is None or held.device != oxygen.HIGH_FLOW:
         return ()
-    key, label = "rox_index", "ROX index"
+    key, label = "airway_watch.rox_index", "ROX index"
     age = case.state.age_at(case.now)
     if age is not None and age.years < case.parameters.number("adult_from"):
         return ()
@@ -44,7 +44,7 @@ def _item(
     if passed and value < passed[-1]:
         said += f" and below {number_text(passed[-1], 2)}: tell the doctor"
     return say.fact(
-        "rox_index",
+        "airway_watch.rox_index",
         "ROX index",
         said + (f", {doubt}" if doubt else ""),
         value=value,

@@ -1,79 +1,20 @@
-"""Items of this plugin in the few shapes that it uses."""
+"""What this plugin says in the same words everywhere; its items are of the airway unless they say otherwise."""
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable
 from datetime import datetime
+from functools import partial
 
-from handoff.plugin import Case, Flag, Item, Part, Source, System, Value, Working, joined, number_text
+from handoff.plugin import NOT_RECORDED, Case, Item, System, joined, number_text
+from handoff.plugin import fact as item_of
+from handoff.plugin import gap as gap_of
 
-NOT_RECORDED = "not recorded"
+__all__ = ["NOT_RECORDED", "PLACES", "ago", "and_list", "at", "fact", "gap", "not_asked", "pct", "person"]
+
 PLACES = 1
-
-
-def fact(
-    key: str,
-    label: str,
-    shown: str,
-    *,
-    value: Value = None,
-    unit: str = "",
-    as_of: datetime | None = None,
-    flag: Flag = Flag.NONE,
-    system: System = System.AIRWAY,
-    working: Working | None = None,
-    sources: Iterable[Source] = (),
-    cautions: Sequence[str] = (),
-    rank: int | None = None,
-    detail: bool = False,
-    line: int = 0,
-) -> Item:
-    """Return an item of the assessment; one without a source only repeats what was charted."""
-    cited = tuple(dict.fromkeys(sources))
-    return Item(
-        key=f"airway_watch.{key}",
-        label=label,
-        part=Part.ASSESSMENT,
-        system=system,
-        value=value,
-        unit=unit,
-        shown=shown,
-        as_of=as_of,
-        flag=flag,
-        working=working,
-        sources=cited,
-        cautions=tuple(cautions),
-        repeats=not cited,
-        rank=rank,
-        detail=detail,
-        line=line,
-    )
-
-
-def gap(
-    key: str,
-    label: str,
-    missing: str = "",
-    *,
-    unit: str = "",
-    system: System = System.AIRWAY,
-    rank: int | None = None,
-    cautions: Sequence[str] = (),
-    sources: Iterable[Source] = (),
-) -> Item:
-    """Return an item whose value is missing; ``missing`` says what was needed for it."""
-    shown = f"not computed: {missing}" if missing else NOT_RECORDED
-    return fact(
-        key,
-        label,
-        shown,
-        unit=unit,
-        flag=Flag.NOT_RECORDED,
-        system=system,
-        rank=rank,
-        cautions=cautions,
-        sources=sources,
-    )
+fact = partial(item_of, system=System.AIRWAY)
+gap = partial(gap_of, system=System.AIRWAY)
 
 
 def not_asked(key: str, label: str, unit: str) -> Item:

@@ -176,7 +176,7 @@ def items(case: Case, seen: Exposure, run: Watch) -> tuple[Item, ...]:
 
 
 def _next(case: Case, seen: Exposure, run: Watch) -> Item:
-    key, label = "next_check", "Next airway check"
+    key, label = "airway_watch.next_check", "Next airway check"
     if run.ended is not None:
         shown = f"none: the watch ended {say.at(case, run.ended)}"
         return say.fact(key, label, shown, unit="time", as_of=run.ended, sources=(run.schedule.source,))
@@ -205,7 +205,7 @@ def _due(case: Case, run: Watch, due: datetime) -> Item:
     what = "tube check, " if run.tube.in_place else ""
     rule = _rule(case, run)
     return say.fact(
-        "next_check",
+        "airway_watch.next_check",
         "Next airway check",
         f"{what}{when}; {last}",
         value=due,
@@ -239,7 +239,7 @@ def _missed(case: Case, run: Watch) -> Item:
     last = say.at(case, run.missed[-1])
     shown = f"{plural(len(run.missed), 'check')} of the timetable without an entry, the last at {last}"
     return say.fact(
-        "missed_checks",
+        "airway_watch.missed_checks",
         "Airway checks without an entry",
         shown,
         value=len(run.missed),

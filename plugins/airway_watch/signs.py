@@ -20,7 +20,7 @@ def items(case: Case, seen: Exposure, run: Watch) -> tuple[Item, ...]:
 
 
 def _count(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> Item:
-    key, label = "signs_present", "Airway signs"
+    key, label = "airway_watch.signs_present", "Airway signs"
     source = case.parameters.source_of("signs.value")
     if not signs:
         return say.gap(key, label, unit="count", rank=10 if seen.watched else None, cautions=(NO_ALL_CLEAR,))
@@ -78,7 +78,7 @@ def _list(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> It
     old = any(run.is_old(sign.at) for sign in signs)
     flag = Flag.NOT_RECORDED if not signs else Flag.REVIEW if old and seen.watched else Flag.NONE
     return say.fact(
-        "signs",
+        "airway_watch.signs",
         "Airway signs, one by one",
         shown,
         as_of=max((sign.at for sign in signs), default=None),

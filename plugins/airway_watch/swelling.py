@@ -23,7 +23,7 @@ def items(case: Case, seen: Exposure) -> tuple[Item, ...]:
 def _phase(case: Case, seen: Exposure) -> tuple[Item, ...]:
     if not seen.watched:
         return ()
-    key, label = "swelling_phase", "Airway swelling, usual course"
+    key, label = "airway_watch.swelling_phase", "Airway swelling, usual course"
     burn = case.state.burn_time
     if burn is None:
         return (say.gap(key, label, "time of the burn"),)
@@ -59,7 +59,7 @@ def _phase(case: Case, seen: Exposure) -> tuple[Item, ...]:
 
 
 def _bronchoscopy(case: Case) -> tuple[Item, ...]:
-    key, label = "bronchoscopy", "Bronchoscopy"
+    key, label = "airway_watch.bronchoscopy", "Bronchoscopy"
     rows = charted.block_rows(case, "bronchoscopy")
     done = [row.at for row in case.state.events("bronchoscopy")]
     if not rows:

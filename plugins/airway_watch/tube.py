@@ -64,7 +64,7 @@ def _tube(case: Case, run: Watch, since: datetime) -> Item:
     if missing:
         shown += f"; not recorded: {', '.join(missing)}"
     return say.fact(
-        "tube",
+        "airway_watch.tube",
         "Tube in the airway",
         shown,
         as_of=since,
@@ -89,7 +89,7 @@ def _marks(run: Watch, checks: tuple[Row, ...]) -> list[tuple[datetime, float, s
 
 
 def _depth(case: Case, run: Watch, checks: tuple[Row, ...]) -> tuple[Item, ...]:
-    key, label = "tube_depth", "Tube mark"
+    key, label = "airway_watch.tube_depth", "Tube mark"
     marks = _marks(run, checks)
     if not marks:
         return (say.gap(key, label, unit="cm"),)
@@ -110,7 +110,7 @@ def _depth(case: Case, run: Watch, checks: tuple[Row, ...]) -> tuple[Item, ...]:
 
 
 def _drift(case: Case, marks: list[tuple[datetime, float, str]]) -> Item:
-    key, label = "tube_drift", "Tube moved since the last check"
+    key, label = "airway_watch.tube_drift", "Tube moved since the last check"
     if len(marks) < 2:
         return say.gap(key, label, "one mark only is recorded", unit="cm")
     (first_at, first, first_mark), (before_at, before, before_mark), (at, depth, mark) = (
@@ -152,7 +152,7 @@ def _way(moved: float) -> str:
 
 
 def _cuff(case: Case, run: Watch, checks: tuple[Row, ...]) -> Item:
-    key, label = "cuff_pressure", "Cuff pressure"
+    key, label = "airway_watch.cuff_pressure", "Cuff pressure"
     read = [
         (row, value)
         for row in checks
@@ -185,7 +185,7 @@ def _cuff(case: Case, run: Watch, checks: tuple[Row, ...]) -> Item:
 
 
 def _ties(case: Case, run: Watch, checks: tuple[Row, ...]) -> Item:
-    key, label = "tube_ties", "Tube ties"
+    key, label = "airway_watch.tube_ties", "Tube ties"
     read = [row for row in checks if words(row.entry.get("ties")) not in ("", "not assessed")]
     if not read:
         return say.gap(key, label)
@@ -207,7 +207,7 @@ def _ties(case: Case, run: Watch, checks: tuple[Row, ...]) -> Item:
 
 
 def _head_up(case: Case, seen: Exposure) -> tuple[Item, ...]:
-    key, label = "head_up", "Head of the bed"
+    key, label = "airway_watch.head_up", "Head of the bed"
     if not seen.watched:
         return ()
     readings: tuple[Reading, ...] = case.state.series("head_up_degrees")

@@ -20,7 +20,7 @@ def items(case: Case, run: Watch) -> tuple[Item, ...]:
 
 
 def _predicted(case: Case) -> Item:
-    key, label = "predicted_body_weight", "Predicted body weight"
+    key, label = "airway_watch.predicted_body_weight", "Predicted body weight"
     patient, age = case.state.patient, case.state.age_at(case.now)
     height, sex = patient.get("height"), words(patient.get("sex"))
     tall = amount(height, "cm")
@@ -68,7 +68,7 @@ def _predicted(case: Case) -> Item:
 
 
 def _tidal(case: Case, rows: tuple[Row, ...], weight: Item) -> tuple[Item, ...]:
-    key, label = "tidal_per_kg", "Tidal volume for predicted body weight"
+    key, label = "airway_watch.tidal_per_kg", "Tidal volume for predicted body weight"
     read = [
         (row, value) for row in rows if (value := amount(row.entry.get("tidal_volume"), "mL")) is not None
     ]
@@ -114,7 +114,7 @@ def _plateau(case: Case, rows: tuple[Row, ...]) -> tuple[Item, ...]:
     said = f"{with_unit(value, 'cmH2O', say.PLACES)} at {say.at(case, row.at)}"
     return (
         say.fact(
-            "plateau",
+            "airway_watch.plateau",
             "Plateau pressure",
             f"{said}, above {number_text(highest)}: ask" if above else said,
             value=value,

@@ -17,12 +17,12 @@ from handoff.plugin import (
     amount,
     child,
     entries,
+    fact,
     number_text,
     words,
 )
 
 from . import formula
-from .say import fact
 
 COMFORT = "comfort care"
 RANK_HF = 36
@@ -92,7 +92,13 @@ def _rinsed(case: Case, cause: Map) -> Item:
     if had is None:
         flag = Flag.ACTION if asks else Flag.NOT_RECORDED
         return fact(
-            "rinsed", LABEL, "not recorded", system=System.ELECTRICAL, unit="min", flag=flag, sources=sources
+            "chemical.rinsed",
+            LABEL,
+            "not recorded",
+            system=System.ELECTRICAL,
+            unit="min",
+            flag=flag,
+            sources=sources,
         )
     left = formula.minutes_left(had, long)
     said = [f"{number_text(had)} min{', still running' if running(case) else ''}"]
@@ -103,7 +109,7 @@ def _rinsed(case: Case, cause: Map) -> Item:
     )
     short = left > 0 and decides and asks and not running(case)
     return fact(
-        "rinsed",
+        "chemical.rinsed",
         LABEL,
         "; ".join(said),
         system=System.ELECTRICAL,
@@ -148,7 +154,7 @@ def _acidity(case: Case) -> tuple[Item, ...]:
     differs = words(last.get("skin")) not in ("", words(last.get("wound")))
     return (
         fact(
-            "acidity",
+            "chemical.acidity",
             "Acidity by strip",
             "; ".join(said),
             system=System.ELECTRICAL,
@@ -181,7 +187,7 @@ def _agent(case: Case, cause: Map) -> Item:
         else Flag.NOT_RECORDED
     )
     return fact(
-        "agent",
+        "chemical.agent",
         "Chemical",
         "; ".join(said),
         system=System.ELECTRICAL,

@@ -17,12 +17,12 @@ from handoff.plugin import (
     System,
     Working,
     amount,
+    fact,
     number_text,
     pressure_pair,
 )
 
 from . import formula, patient
-from .say import fact
 
 RANK_HYPOTENSION, RANK_BREATHS = 34, 24
 SIGNS = (
@@ -96,7 +96,7 @@ def _sign(
     if not said:
         return None
     return fact(
-        f"child_{column}",
+        f"early_warning.child_{column}",
         label,
         f"{number_text(value)} {unit} at {age.shown()}: {said}",
         system=system,

@@ -2,10 +2,9 @@
 
 from __future__ import annotations
 
-from handoff.plugin import Case, Flag, Item, Map, Reading, Source, System, Working, number_text, words
+from handoff.plugin import Case, Flag, Item, Map, Reading, Source, System, Working, fact, number_text, words
 
 from . import formula, patient
-from .say import fact
 
 PARTS = ("eye", "verbal", "motor")
 RANK = 17
@@ -34,7 +33,7 @@ def _level(case: Case) -> tuple[Item, ...]:
     about, sources = _median(case, last, said)
     return (
         fact(
-            "consciousness",
+            "early_warning.consciousness",
             "Level of consciousness (ACVPU)",
             shown + about,
             system=System.DISABILITY,
@@ -101,7 +100,7 @@ def _coma(case: Case) -> tuple[Item, ...]:
         shown += f"; before: total {earlier[-1][1]} at {case.clock.time(earlier[-1][0].at, case.now)}"
     return (
         fact(
-            "coma_scale",
+            "early_warning.coma_scale",
             "Coma scale",
             shown,
             system=System.DISABILITY,
@@ -136,7 +135,7 @@ def _pupils(case: Case) -> tuple[Item, ...]:
         why = "pupils not visible" if not count.isdigit() else "no coma scale total charted with the pupils"
         return (
             fact(
-                "coma_pupils",
+                "early_warning.coma_pupils",
                 label,
                 f"not computed: {why}",
                 system=System.DISABILITY,
@@ -151,7 +150,7 @@ def _pupils(case: Case) -> tuple[Item, ...]:
     value = formula.coma_pupils(total, int(count))
     return (
         fact(
-            "coma_pupils",
+            "early_warning.coma_pupils",
             label,
             str(value),
             system=System.DISABILITY,

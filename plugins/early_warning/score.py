@@ -5,11 +5,22 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any
 
-from handoff.plugin import Action, Case, Flag, Item, System, Urgency, Working, joined, number_text
+from handoff.plugin import (
+    NOT_RECORDED,
+    Action,
+    Case,
+    Flag,
+    Item,
+    System,
+    Urgency,
+    Working,
+    fact,
+    joined,
+    number_text,
+)
 
 from . import formula, patient
 from .readings import SignSet, set_times, sign_set
-from .say import NOT_RECORDED, fact
 
 LABEL = "Early warning score (NEWS2)"
 RANKS = {"emergency threshold": 38, "urgent threshold": 39}
@@ -70,10 +81,17 @@ def _no_score(case: Case) -> Item:
     reason = patient.not_for(case, moment)
     if reason:
         return fact(
-            "score", LABEL, f"not computed: {reason}", system=System.GENERAL, unit="points", detail=True
+            "early_warning.score",
+            LABEL,
+            f"not computed: {reason}",
+            system=System.GENERAL,
+            unit="points",
+            detail=True,
         )
     shown = "not computed: age is not recorded" if times else NOT_RECORDED
-    return fact("score", LABEL, shown, system=System.GENERAL, unit="points", flag=Flag.NOT_RECORDED)
+    return fact(
+        "early_warning.score", LABEL, shown, system=System.GENERAL, unit="points", flag=Flag.NOT_RECORDED
+    )
 
 
 def _score(case: Case, found: Scored) -> Item:
@@ -84,7 +102,7 @@ def _score(case: Case, found: Scored) -> Item:
     gap = bool(signs.missing)
     flag = Flag.ACTION if asks else Flag.NOT_RECORDED if gap else Flag.NONE
     return fact(
-        "score",
+        "early_warning.score",
         LABEL,
         _shown(case, found, doubt),
         system=System.GENERAL,

@@ -4,10 +4,9 @@ from __future__ import annotations
 
 from datetime import datetime, timedelta
 
-from handoff.plugin import Case, Flag, Item, Part, System, Working, hours_text
+from handoff.plugin import Case, Flag, Item, Part, System, Working, fact, hours_text
 
 from . import patient
-from .say import fact
 from .score import ASK, Scored, answered
 
 FLOOR = "A minimum: it never makes the burn unit's own checks rarer."
@@ -35,7 +34,7 @@ def _due(case: Case, found: Scored, hours: float, name: str) -> Item:
     label = "Early warning score due again"
     if hours == 0:
         return fact(
-            "next_due",
+            "early_warning.next_due",
             label,
             "continuous monitoring of the signs",
             system=System.GENERAL,
@@ -50,7 +49,7 @@ def _due(case: Case, found: Scored, hours: float, name: str) -> Item:
     if late > 0:
         shown += f", overdue by {hours_text(late)}"
     return fact(
-        "next_due",
+        "early_warning.next_due",
         label,
         shown,
         system=System.GENERAL,
@@ -79,7 +78,7 @@ def _response(case: Case, found: Scored) -> tuple[Item, ...]:
     said = answered(case, found)
     return (
         fact(
-            "response",
+            "early_warning.response",
             "What the early warning score asks for",
             f"{ASK[found.step]}. {said or 'no call or review recorded since'}",
             system=System.GENERAL,

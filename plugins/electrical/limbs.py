@@ -4,10 +4,9 @@ from __future__ import annotations
 
 from datetime import timedelta
 
-from handoff.plugin import Action, Case, Flag, Item, System, Urgency, child, entries, joined, words
+from handoff.plugin import Action, Case, Flag, Item, System, Urgency, child, entries, fact, joined, words
 
 from .injury import Injury
-from .say import fact
 
 ARM = ("arm", "hand", "finger", "wrist", "elbow", "shoulder", "palm", "thumb")
 LEG = ("leg", "foot", "toe", "ankle", "knee", "thigh", "heel", "sole", "calf")
@@ -39,7 +38,7 @@ def items(case: Case, found: Injury) -> tuple[Item, ...]:
     flag = Flag.NONE if points else Flag.NOT_RECORDED
     return (
         fact(
-            "contact",
+            "electrical.contact",
             "Source and contact points",
             "; ".join([found.voltage, joined(said) or _not_recorded(case, found), *told]),
             system=System.ELECTRICAL,

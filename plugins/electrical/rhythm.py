@@ -14,13 +14,13 @@ from handoff.plugin import (
     Urgency,
     Working,
     child,
+    fact,
     hours_text,
     joined,
     words,
 )
 
 from .injury import Injury, ecgs
-from .say import fact
 
 RANK_RHYTHM, RANK_MONITOR, RANK_ECG = 33, 34, 35
 NO_PROOF = "Creatine kinase, its heart fraction too, does not tell whether the heart is hurt."
@@ -88,7 +88,7 @@ def _rhythms(case: Case, found: Injury) -> tuple[Item, ...]:
     asks = recent and not found.comfort
     return (
         fact(
-            "rhythm",
+            "electrical.rhythm",
             "Arrhythmia after electrical injury",
             "; ".join(said),
             system=System.ELECTRICAL,
@@ -108,7 +108,7 @@ def _ecg(case: Case, found: Injury) -> Item:
     label = "12-lead electrocardiogram"
     if not rows:
         return fact(
-            "ecg",
+            "electrical.ecg",
             label,
             "not recorded",
             system=System.ELECTRICAL,
@@ -122,7 +122,7 @@ def _ecg(case: Case, found: Injury) -> Item:
         words(last.entry.get("abnormal")), ""
     )
     return fact(
-        "ecg",
+        "electrical.ecg",
         label,
         f"{said}{called}",
         system=System.ELECTRICAL,
@@ -151,7 +151,7 @@ def _monitoring(case: Case, found: Injury) -> Item:
     elif not asks and since is None and lack and not have and not _spans(case):
         flag = Flag.NOT_RECORDED
     return fact(
-        "monitoring",
+        "electrical.monitoring",
         "Rhythm monitoring",
         "; ".join(said),
         system=System.ELECTRICAL,

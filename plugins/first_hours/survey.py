@@ -5,9 +5,21 @@ from __future__ import annotations
 from dataclasses import dataclass
 from datetime import datetime
 
-from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, child, joined, plural, words
-
-from .say import NOT_RECORDED, fact
+from handoff.plugin import (
+    NOT_RECORDED,
+    Action,
+    Case,
+    Flag,
+    Item,
+    Map,
+    System,
+    Urgency,
+    child,
+    fact,
+    joined,
+    plural,
+    words,
+)
 
 COMFORT = "comfort care"
 BACK = "back"
@@ -73,7 +85,7 @@ def _summary(case: Case, found: tuple[Step, ...], asked: bool) -> Item:
     source = case.parameters.source_of("steps")
     if len(missing) == len(found):
         return fact(
-            "survey",
+            "first_hours.survey",
             LABEL,
             f"{NOT_RECORDED} step by step",
             system=System.GENERAL,
@@ -87,7 +99,7 @@ def _summary(case: Case, found: tuple[Step, ...], asked: bool) -> Item:
     if asked:
         flag = Flag.REVIEW if left or BACK in missing else Flag.NOT_RECORDED if missing else Flag.NONE
     return fact(
-        "survey",
+        "first_hours.survey",
         LABEL,
         "; ".join(said),
         system=System.GENERAL,
@@ -104,7 +116,7 @@ def _item(step: Step) -> Item:
     who = f"by {step.by}" if step.by else "by whom not recorded"
     shown = f"not done: {step.left}, {who}" if step.left else f"{step.found or 'no finding recorded'}, {who}"
     return fact(
-        step.name.replace(" ", "_"),
+        f"first_hours.{step.name.replace(' ', '_')}",
         f"Survey: {step.name}",
         shown,
         system=System.GENERAL,

@@ -43,7 +43,6 @@ def _order(course: Course) -> Item:
         value=plan.said,
         shown=plan.said.removeprefix("order of "),
         as_of=plan.at,
-        repeats=True,
         line=plan.line,
         cautions=(f"{course.no_plan.removeprefix('no plan: ')}.",) if course.no_plan else (),
     )

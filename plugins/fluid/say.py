@@ -5,9 +5,8 @@ from __future__ import annotations
 from collections.abc import Iterable, Sequence
 from typing import Any
 
-from handoff.plugin import Flag, Input, Item, Part, Source, System, joined, number_text
+from handoff.plugin import NOT_RECORDED, Flag, Input, Item, Source, System, fact, joined, number_text
 
-NOT_RECORDED = "not recorded"
 RATE_PLACES = 0
 INDEX_PLACES = 2
 PER_KG_PLACES = 2
@@ -61,23 +60,18 @@ def why_not(missing: Sequence[str]) -> str:
 def figure(key: str, label: str, **more: Any) -> Item:
     """Return an item of the assessment under fluid and urine, in the unit of its key."""
     more.setdefault("unit", UNITS.get(key, ""))
-    return Item(
-        key=f"fluid.{key}",
-        label=label,
-        part=more.pop("part", Part.ASSESSMENT),
-        system=more.pop("system", System.FLUID),
-        **more,
-    )
+    more.setdefault("system", System.FLUID)
+    return fact(f"fluid.{key}", label, **more)
 
 
 def absent(key: str, label: str, shown: str = NOT_RECORDED, **more: Any) -> Item:
     """Return the item of a figure that is not there; it says so."""
-    return figure(key, label, shown=shown, flag=Flag.NOT_RECORDED, repeats=True, **more)
+    return figure(key, label, shown=shown, flag=Flag.NOT_RECORDED, **more)
 
 
 def unflagged(key: str, label: str, shown: str, **more: Any) -> Item:
     """Return the item of a figure that does not apply: nothing is missing, and it says why."""
-    return figure(key, label, shown=shown, repeats=True, **more)
+    return figure(key, label, shown=shown, **more)
 
 
 def once(sources: Iterable[Source]) -> tuple[Source, ...]:

@@ -86,7 +86,6 @@ def _sodium(course: Course, hours: float) -> tuple[Item, ...]:
             "Sodium since the first 24 h",
             shown="not recorded since the first 24 h passed; it can rise as water is lost",
             flag=Flag.NOT_RECORDED,
-            repeats=True,
             as_of=course.now,
         ),
     )

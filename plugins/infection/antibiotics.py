@@ -2,10 +2,9 @@
 
 from __future__ import annotations
 
-from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, child, entries, words
+from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, child, entries, fact, words
 
 from . import patient
-from .say import fact
 
 LABEL = "Antibiotics"
 PROMPT = "no routine systemic prophylaxis is advised for a fresh burn"
@@ -28,14 +27,18 @@ def items(case: Case) -> tuple[Item, ...]:
     sources = (case.parameters.source_of("prophylaxis"), case.parameters.source_of("prophylaxis.review"))
     if not found:
         shown = f"none charted; {PROMPT}"
-        return (fact("antibiotics", LABEL, shown, system=System.INFECTION, sources=sources, detail=True),)
+        return (
+            fact(
+                "infection.antibiotics", LABEL, shown, system=System.INFECTION, sources=sources, detail=True
+            ),
+        )
     asked = any(words(entry.get("why")) in ASKED or _overdue(case, entry) for entry in found)
     said = "; ".join(_said(case, entry) for entry in found)
     if any(words(entry.get("why")) in ASKED for entry in found):
         said += f"; {PROMPT}: ask the prescriber what it is for"
     return (
         fact(
-            "antibiotics",
+            "infection.antibiotics",
             LABEL,
             said,
             system=System.INFECTION,

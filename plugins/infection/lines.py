@@ -4,10 +4,9 @@ from __future__ import annotations
 
 from datetime import timedelta
 
-from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, entries, words
+from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, entries, fact, words
 
 from . import formula, patient
-from .say import fact
 
 
 def in_place(case: Case) -> tuple[Map, ...]:
@@ -37,7 +36,7 @@ def items(case: Case) -> tuple[Item, ...]:
     flag = Flag.REVIEW if missing or burned else Flag.NONE
     return (
         fact(
-            "line_days",
+            "infection.line_days",
             "Days of lines",
             "; ".join(_said(line, day) for line, day in ordered),
             system=System.INFECTION,

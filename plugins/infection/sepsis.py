@@ -15,6 +15,7 @@ from handoff.plugin import (
     System,
     Urgency,
     Working,
+    fact,
     joined,
     line_of,
     number_text,
@@ -22,7 +23,6 @@ from handoff.plugin import (
 )
 
 from . import formula, patient
-from .say import fact
 from .signs import Sign, label_of, sign
 
 RANK = 37
@@ -146,7 +146,14 @@ def items(case: Case, found: Triggers | None) -> tuple[Item, ...]:
         label = f"Sepsis triggers, {found.title}"
         shown = "not computed: none of the signs of its rows is charted in the window"
         return (
-            fact("sepsis", label, shown, system=System.INFECTION, unit="rows met", flag=Flag.NOT_RECORDED),
+            fact(
+                "infection.sepsis",
+                label,
+                shown,
+                system=System.INFECTION,
+                unit="rows met",
+                flag=Flag.NOT_RECORDED,
+            ),
         )
     asks = found.reached and found.decides and not patient.is_comfort(case)
     early = _is_early(case)
@@ -155,7 +162,7 @@ def items(case: Case, found: Triggers | None) -> tuple[Item, ...]:
         flag = Flag.REVIEW if early else Flag.ACTION
     return (
         fact(
-            "sepsis",
+            "infection.sepsis",
             f"Sepsis triggers, {found.title}",
             _shown(found),
             system=System.INFECTION,

@@ -18,6 +18,7 @@ from handoff.plugin import (
     Working,
     amount,
     child,
+    fact,
     joined,
     number_text,
     with_unit,
@@ -25,7 +26,6 @@ from handoff.plugin import (
 )
 
 from . import formula, patient
-from .say import fact
 
 RANK_COLD = 50
 LABEL = "Temperature, site and room"
@@ -76,7 +76,7 @@ def items(case: Case) -> tuple[Item, ...]:
     comfort = patient.is_comfort(case)
     return (
         fact(
-            "temperature",
+            "infection.temperature",
             LABEL,
             said + _before(case, reading),
             system=System.EXPOSURE,

@@ -4,10 +4,23 @@ from __future__ import annotations
 
 from datetime import datetime, timedelta
 
-from handoff.plugin import Action, Case, Flag, Item, Source, System, Urgency, amount, child, joined, words
+from handoff.plugin import (
+    NOT_RECORDED,
+    Action,
+    Case,
+    Flag,
+    Item,
+    Source,
+    System,
+    Urgency,
+    amount,
+    child,
+    fact,
+    joined,
+    words,
+)
 
 from . import formula, patient
-from .say import NOT_RECORDED, fact
 from .temperature import latest
 
 RANK = 36
@@ -23,14 +36,18 @@ def items(case: Case) -> tuple[Item, ...]:
     hot = _hot(case)
     found = [*present, *([hot] if hot else [])]
     if not looked and not found:
-        return (fact("toxic_shock", LABEL, NOT_RECORDED, system=System.INFECTION, flag=Flag.NOT_RECORDED),)
+        return (
+            fact(
+                "infection.toxic_shock", LABEL, NOT_RECORDED, system=System.INFECTION, flag=Flag.NOT_RECORDED
+            ),
+        )
     said = [f"present: {joined(found)}"] if found else []
     said += [f"looked for and absent: {joined(absent)}"] if absent else []
     asks = bool(found) and not patient.is_comfort(case)
     reading = latest(case)
     return (
         fact(
-            "toxic_shock",
+            "infection.toxic_shock",
             LABEL,
             "; ".join(said) or "looked for, nothing assessed",
             system=System.INFECTION,

@@ -4,11 +4,24 @@ from __future__ import annotations
 
 from datetime import datetime, timedelta
 
-from handoff.plugin import Action, Case, Flag, Item, List, Map, System, Urgency, child, hours_text, words
+from handoff.plugin import (
+    Action,
+    Case,
+    Flag,
+    Item,
+    List,
+    Map,
+    System,
+    Urgency,
+    child,
+    fact,
+    gap,
+    hours_text,
+    words,
+)
 
 from . import formula
 from .feeding import is_comfort
-from .say import NOT_RECORDED, fact
 
 CHARTS = ("doses", "infusions", "patient_controlled")
 LABEL = "Bowels"
@@ -52,7 +65,7 @@ def items(case: Case) -> tuple[Item, ...]:
     if entry is None:
         if not is_asked(case):
             return ()
-        return (fact("bowels", LABEL, NOT_RECORDED, system=System.NUTRITION, flag=Flag.NOT_RECORDED),)
+        return (gap("nutrition.bowels", LABEL, system=System.NUTRITION),)
     start = opened or (case.state.burn_time.earliest if case.state.burn_time else None)
     hours = case.hours_between(start, case.now) if start else None
     long = hours is not None and formula.is_longer(max(hours, 0.0), case.parameters.number("bowels.within"))
@@ -62,7 +75,7 @@ def items(case: Case) -> tuple[Item, ...]:
     parts += [f"none for {hours_text(hours)}"] if long and hours is not None else []
     return (
         fact(
-            "bowels",
+            "nutrition.bowels",
             LABEL,
             "; ".join(part for part in parts if part),
             system=System.NUTRITION,

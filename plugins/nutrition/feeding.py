@@ -15,12 +15,12 @@ from handoff.plugin import (
     Working,
     amount,
     child,
+    fact,
     number_text,
     words,
 )
 
 from . import formula
-from .say import fact
 
 RANK_TUBE = 28
 COMFORT = "comfort care"
@@ -51,7 +51,15 @@ def _last_food(case: Case) -> tuple[Item, ...]:
         return ()
     shown = words(node.get("what")) or "what is not recorded"
     return (
-        fact("last_food", "Last food", shown, system=System.NUTRITION, value=shown, as_of=at, line=node.line),
+        fact(
+            "nutrition.last_food",
+            "Last food",
+            shown,
+            system=System.NUTRITION,
+            value=shown,
+            as_of=at,
+            line=node.line,
+        ),
     )
 
 
@@ -77,7 +85,7 @@ def _feed(case: Case) -> tuple[Item, ...]:
         said += f"; stopped since {case.clock.time(stopped, case.now)} ({why})"
     return (
         fact(
-            "tube_feed",
+            "nutrition.tube_feed",
             "Feed by tube",
             said,
             system=System.NUTRITION,
@@ -101,7 +109,7 @@ def _tube(case: Case) -> tuple[Item, ...]:
     if not rows:
         return (
             fact(
-                "tube_position",
+                "nutrition.tube_position",
                 label,
                 "no check charted while feed runs",
                 system=System.NUTRITION,
@@ -119,7 +127,7 @@ def _tube(case: Case) -> tuple[Item, ...]:
     danger = not confirmed and runs
     return (
         fact(
-            "tube_position",
+            "nutrition.tube_position",
             label,
             "; ".join(part for part in parts if part),
             system=System.NUTRITION,
@@ -137,7 +145,9 @@ def _dietitian(case: Case) -> tuple[Item, ...]:
     node = child(case.block, "dietitian")
     if not said or node is None:
         return ()
-    return (fact("dietitian", "Dietitian", said, system=System.NUTRITION, value=said, line=node.line),)
+    return (
+        fact("nutrition.dietitian", "Dietitian", said, system=System.NUTRITION, value=said, line=node.line),
+    )
 
 
 def actions(case: Case) -> tuple[Action, ...]:

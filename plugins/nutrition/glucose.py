@@ -4,10 +4,21 @@ from __future__ import annotations
 
 from datetime import timedelta
 
-from handoff.plugin import Action, Case, Flag, Item, Reading, System, Urgency, amount, number_text, words
+from handoff.plugin import (
+    Action,
+    Case,
+    Flag,
+    Item,
+    Reading,
+    System,
+    Urgency,
+    amount,
+    fact,
+    number_text,
+    words,
+)
 
 from .feeding import feed_now, is_comfort
-from .say import fact
 
 RANK_LOW = 35
 
@@ -48,7 +59,7 @@ def items(case: Case) -> tuple[Item, ...]:
         flag = Flag.ACTION
     return (
         fact(
-            "glucose",
+            "nutrition.glucose",
             "Glucose beside insulin" if runs else "Glucose, low",
             "; ".join(parts),
             system=System.NUTRITION,

@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from datetime import timedelta
 
 from handoff.plugin import (
+    NOT_RECORDED,
     Action,
     Case,
     Flag,
@@ -14,11 +15,10 @@ from handoff.plugin import (
     System,
     Urgency,
     child,
+    fact,
     number_text,
     words,
 )
-
-from .say import NOT_RECORDED, fact
 
 COMFORT = "comfort care"
 BLEEDING = "Bleeding, surgery to come and kidneys are for the prescriber to weigh."
@@ -92,7 +92,7 @@ def _item(case: Case, matter: Matter) -> Item | None:
             return None
         late = is_late(case, matter)
         return fact(
-            matter.key,
+            f"prevention.{matter.key}",
             matter.label,
             f"no decision recorded; {matter.because}" if late else NOT_RECORDED,
             system=System.CIRCULATION if matter.key == "clots" else System.NUTRITION,
@@ -106,7 +106,7 @@ def _item(case: Case, matter: Matter) -> Item | None:
     parts.append(f"decided by {by}" if by else "by whom not recorded")
     parts += [f"review {case.clock.day_and_time(review)}{', overdue' if late else ''}"] if review else []
     return fact(
-        matter.key,
+        f"prevention.{matter.key}",
         matter.label,
         "; ".join(part for part in parts if part),
         system=System.CIRCULATION if matter.key == "clots" else System.NUTRITION,

@@ -16,13 +16,13 @@ from handoff.plugin import (
     Urgency,
     Working,
     child,
+    fact,
     hours_text,
     joined,
     words,
 )
 
 from . import formula
-from .say import fact
 
 KINDS = ("food", "other milk", "breast milk", "clear")
 SAID = {"food": "food", "other milk": "other milk", "breast milk": "breast milk", "clear": "clear drinks"}
@@ -103,7 +103,7 @@ def _operation(case: Case, entry: Map, start: datetime) -> Item:
         said.append("its time is past and it is not charted as done")
     ask = (bool(missing) and _soon(case, start)) or start < case.now
     return fact(
-        "operation",
+        "theatre.operation",
         "Next operation",
         "; ".join(said),
         system=System.GENERAL,
@@ -126,7 +126,7 @@ def _fasting(case: Case, entry: Map, start: datetime) -> Item:
     if not intakes(case):
         shown += "; last food and drink not recorded"
     return fact(
-        "fasting",
+        "theatre.fasting",
         f"Fasting before theatre ({title})",
         shown,
         system=System.NUTRITION,
@@ -171,7 +171,13 @@ def _blood(case: Case, start: datetime | None) -> tuple[Item, ...]:
         if start is None or not _soon(case, start):
             return ()
         return (
-            fact("blood", "Blood for theatre", "not recorded", system=System.GENERAL, flag=Flag.NOT_RECORDED),
+            fact(
+                "theatre.blood",
+                "Blood for theatre",
+                "not recorded",
+                system=System.GENERAL,
+                flag=Flag.NOT_RECORDED,
+            ),
         )
     last = rows[-1].entry
     until = case.when(last.get("valid_until"))
@@ -182,7 +188,7 @@ def _blood(case: Case, start: datetime | None) -> tuple[Item, ...]:
     said.append(words(last.get("ready")) or "what is ready is not recorded")
     return (
         fact(
-            "blood",
+            "theatre.blood",
             "Blood for theatre" if start else "Blood sample",
             "; ".join(said),
             system=System.GENERAL,

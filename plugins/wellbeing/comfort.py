@@ -4,10 +4,22 @@ from __future__ import annotations
 
 from datetime import timedelta
 
-from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, child, joined, words
+from handoff.plugin import (
+    NOT_RECORDED,
+    Action,
+    Case,
+    Flag,
+    Item,
+    Map,
+    System,
+    Urgency,
+    child,
+    fact,
+    joined,
+    words,
+)
 
 from . import patient
-from .say import NOT_RECORDED, fact
 
 RANK = 60
 LABEL = "Goals of comfort"
@@ -26,7 +38,14 @@ def items(case: Case) -> tuple[Item, ...]:
         return ()
     if not matters:
         return (
-            fact("comfort", LABEL, NOT_RECORDED, system=System.GENERAL, flag=Flag.NOT_RECORDED, rank=RANK),
+            fact(
+                "wellbeing.comfort",
+                LABEL,
+                NOT_RECORDED,
+                system=System.GENERAL,
+                flag=Flag.NOT_RECORDED,
+                rank=RANK,
+            ),
         )
     ready, stopped = words(node.get("medicines_ready")), case.state.texts(node.get("stopped"))
     said = [joined(matters)]
@@ -36,7 +55,7 @@ def items(case: Case) -> tuple[Item, ...]:
     lacks = patient.is_comfort(case) and ready != "yes"
     return (
         fact(
-            "comfort",
+            "wellbeing.comfort",
             LABEL,
             "; ".join(said),
             system=System.GENERAL,

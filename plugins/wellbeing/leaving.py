@@ -13,6 +13,7 @@ from handoff.plugin import (
     System,
     child,
     entries,
+    fact,
     joined,
     line_of,
     read_date,
@@ -20,7 +21,6 @@ from handoff.plugin import (
 )
 
 from . import patient
-from .say import fact
 
 
 def planned(case: Case) -> date | None:
@@ -64,7 +64,7 @@ def _teaching(case: Case) -> tuple[Item, ...]:
     said += [f"not shown back: {joined(missing)}"] if missing else []
     return (
         fact(
-            "teaching",
+            "wellbeing.teaching",
             "Teaching",
             "; ".join(said),
             system=System.PEOPLE,
@@ -100,7 +100,7 @@ def _discharge(case: Case) -> tuple[Item, ...]:
     parts.append(f"follow-up: {words(node.get('follow_up')) or 'not recorded'}")
     return (
         fact(
-            "discharge",
+            "wellbeing.discharge",
             "Going home or on",
             "; ".join(parts),
             system=System.PEOPLE,

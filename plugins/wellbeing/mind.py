@@ -4,10 +4,9 @@ from __future__ import annotations
 
 from datetime import timedelta
 
-from handoff.plugin import Action, Case, Flag, Item, System, Urgency, child, line_of, words
+from handoff.plugin import Action, Case, Flag, Item, System, Urgency, child, fact, gap, line_of, words
 
 from . import patient
-from .say import NOT_RECORDED, fact
 
 PLAIN = (
     ("body_image", "Body image"),
@@ -24,7 +23,7 @@ def items(case: Case) -> tuple[Item, ...]:
 def _gap(case: Case, key: str, label: str) -> tuple[Item, ...]:
     if not patient.is_asked(case):
         return ()
-    return (fact(key, label, NOT_RECORDED, system=System.PEOPLE, flag=Flag.NOT_RECORDED),)
+    return (gap(f"wellbeing.{key}", label, system=System.PEOPLE),)
 
 
 def _mood(case: Case) -> tuple[Item, ...]:
@@ -40,7 +39,7 @@ def _mood(case: Case) -> tuple[Item, ...]:
     ]
     return (
         fact(
-            "mood",
+            "wellbeing.mood",
             "Mood",
             "; ".join(part for part in parts if part) or "asked, no finding recorded",
             system=System.PEOPLE,
@@ -59,7 +58,7 @@ def _confusion(case: Case) -> tuple[Item, ...]:
     result = words(last.get("result"))
     return (
         fact(
-            "confusion",
+            "wellbeing.confusion",
             "Screen for acute confusion",
             f"{words(last.get('tool')) or 'tool not recorded'}: {result}",
             system=System.DISABILITY,
@@ -79,7 +78,7 @@ def _sleep(case: Case) -> tuple[Item, ...]:
     slept = words(last.get("slept"))
     parts = [f"slept {slept}" if slept else "", words(last.get("found"))]
     shown = "; ".join(part for part in parts if part) or "charted without a finding"
-    return (fact("sleep", "Sleep", shown, system=System.PEOPLE, as_of=rows[-1].at, line=last.line),)
+    return (fact("wellbeing.sleep", "Sleep", shown, system=System.PEOPLE, as_of=rows[-1].at, line=last.line),)
 
 
 def _plain(case: Case) -> tuple[Item, ...]:
@@ -88,7 +87,9 @@ def _plain(case: Case) -> tuple[Item, ...]:
         node = child(case.block, key)
         said = words(node)
         if said:
-            made.append(fact(key, label, said, system=System.PEOPLE, value=said, line=line_of(node)))
+            made.append(
+                fact(f"wellbeing.{key}", label, said, system=System.PEOPLE, value=said, line=line_of(node))
+            )
     return tuple(made)
 
 

@@ -16,6 +16,8 @@ from handoff.plugin import (
     Urgency,
     Working,
     child,
+    fact,
+    gap,
     hours_text,
     number_text,
     words,
@@ -23,7 +25,6 @@ from handoff.plugin import (
 
 from . import formula
 from .burned import Burned, is_comfort
-from .say import NOT_RECORDED, fact
 
 WORSE = ("smell", "spreading redness")
 
@@ -83,7 +84,7 @@ def items(case: Case, skin: Burned) -> tuple[Item, ...]:
     if not found:
         if not skin.burns:
             return ()
-        return (fact("dressings", "Dressings", NOT_RECORDED, system=System.WOUND, flag=Flag.NOT_RECORDED),)
+        return (gap("wounds.dressings", "Dressings", system=System.WOUND),)
     return tuple(_item(case, index, one) for index, one in enumerate(found, start=1))
 
 
@@ -99,7 +100,7 @@ def _item(case: Case, index: int, one: Dressing) -> Item:
             rule=one.product,
         )
     return fact(
-        f"dressing.{index}",
+        f"wounds.dressing.{index}",
         f"Dressing: {one.where}",
         _said(case, one, late),
         system=System.WOUND,

@@ -4,10 +4,9 @@ from __future__ import annotations
 
 from datetime import datetime, timedelta
 
-from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, child, words
+from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, child, fact, gap, words
 
 from .burned import Burned, is_comfort
-from .say import NOT_RECORDED, fact
 
 EYES = ("lids", "cornea", "sight", "lenses")
 HURT = {"cornea": ("stains", "cloudy"), "lids": ("do not close",), "lenses": ("still in",)}
@@ -38,7 +37,7 @@ def items(case: Case, skin: Burned) -> tuple[Item, ...]:
 
 def _eyes(case: Case, entry: Map | None) -> Item:
     if entry is None:
-        return fact("eyes", "Eyes", NOT_RECORDED, system=System.WOUND, flag=Flag.NOT_RECORDED)
+        return gap("wounds.eyes", "Eyes", system=System.WOUND)
     at = case.when(entry.get("at"))
     said = [f"{name} {words(entry.get(name)) or 'not recorded'}" for name in EYES]
     said.append(f"drops or ointment given: {words(entry.get('lubricated')) or 'not recorded'}")
@@ -48,7 +47,7 @@ def _eyes(case: Case, entry: Map | None) -> Item:
         said.append(f"not looked at again since {case.clock.time(at, case.now)}")
     flag = Flag.ACTION if hurt else Flag.REVIEW if late else Flag.NONE
     return fact(
-        "eyes",
+        "wounds.eyes",
         "Eyes",
         "; ".join(said),
         system=System.WOUND,
@@ -65,7 +64,7 @@ def _other(case: Case, name: str, entry: Map | None) -> Item:
     parts += [f"opens {opening}"] if opening else []
     pressed = words(entry.get("pressure")) == "pressed"
     return fact(
-        name,
+        f"wounds.{name}",
         name.capitalize(),
         "; ".join(part for part in parts if part) or "looked at, no finding recorded",
         system=System.WOUND,

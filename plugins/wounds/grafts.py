@@ -15,13 +15,13 @@ from handoff.plugin import (
     Urgency,
     Working,
     child,
+    fact,
     number_text,
     words,
 )
 
 from . import formula
 from .burned import is_comfort
-from .say import fact
 
 BAD = ("oozing", "soaked", "smells")
 
@@ -59,7 +59,7 @@ def _graft(case: Case, index: int, row: Row) -> Item:
         how = "as charted" if "first_look" in entry else "by the days of the table"
         said.append(f"first look {case.clock.day_and_time(due)} ({how}){', overdue' if late else ''}")
     return fact(
-        f"graft.{index}",
+        f"wounds.graft.{index}",
         f"Graft: {words(entry.get('where'))}",
         "; ".join(said),
         system=System.WOUND,
@@ -89,7 +89,7 @@ def _donor(case: Case, index: int, row: Row) -> Item:
         said.append(f"left in place until healed, usually {number_text(low)} to {number_text(high)} d")
     bad = state in BAD and not is_comfort(case)
     return fact(
-        f"donor.{index}",
+        f"wounds.donor.{index}",
         f"Donor site: {words(entry.get('where'))}",
         "; ".join(said),
         system=System.WOUND,

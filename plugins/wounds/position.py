@@ -5,10 +5,9 @@ from __future__ import annotations
 from dataclasses import dataclass
 from datetime import timedelta
 
-from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, child, entries, words
+from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, child, entries, fact, words
 
 from .burned import Burned, is_comfort
-from .say import fact
 
 SIDES = ("left", "right")
 JOINTS = {
@@ -115,7 +114,7 @@ def items(case: Case, skin: Burned) -> tuple[Item, ...]:
     if said and not is_comfort(case):
         made.append(
             fact(
-                "positions",
+                "wounds.positions",
                 f"Position by burned part ({table['title']})",
                 "; ".join(said),
                 system=System.SKIN,
@@ -141,7 +140,7 @@ def _splint(case: Case, index: int, entry: Map) -> Item:
         else "skin under it not looked at as charted"
     )
     return fact(
-        f"splint.{index}",
+        f"wounds.splint.{index}",
         f"Splint: {words(entry.get('where'))}",
         "; ".join(part for part in parts if part),
         system=System.SKIN,

@@ -4,10 +4,9 @@ from __future__ import annotations
 
 from datetime import timedelta
 
-from handoff.plugin import Action, Case, Flag, Item, System, Urgency, child, joined, words
+from handoff.plugin import Action, Case, Flag, Item, System, Urgency, child, fact, joined, words
 
 from .burned import Burned, counted_pct, is_child, is_comfort
-from .say import fact
 
 BAD = ("red, does not blanch", "blister", "broken")
 BACK = ("trunk", "upper back", "lower back", "left buttock", "right buttock")
@@ -31,7 +30,7 @@ def items(case: Case) -> tuple[Item, ...]:
     said += [f"risk score {risk}"] if risk else []
     return (
         fact(
-            "pressure_areas",
+            "wounds.pressure_areas",
             "Pressure areas",
             "; ".join(said) or "looked at, no finding recorded",
             system=System.SKIN,

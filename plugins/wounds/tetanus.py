@@ -17,12 +17,12 @@ from handoff.plugin import (
     System,
     Urgency,
     Working,
+    fact,
     read_date,
     words,
 )
 
 from . import formula
-from .say import fact
 
 LABEL = "Tetanus by the wound table"
 PROMPT = "The table is a prompt; product and dose are for the prescriber and the local schedule."
@@ -102,7 +102,7 @@ def items(case: Case) -> tuple[Item, ...]:
     node = case.state.injury.get("tetanus")
     return (
         fact(
-            "tetanus",
+            "wounds.tetanus",
             LABEL,
             shown,
             system=System.WOUND,
