@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Mapping, Sequence
+from collections.abc import Sequence
 from typing import TypeAlias
 
 from handoff.plugin import FormulaInputError
@@ -174,18 +174,18 @@ def sf_from_pf(pf_mmhg: float, intercept: float, slope: float) -> float:
     return intercept + slope * _positive(pf_mmhg, "P/F")
 
 
-def pf_limit_for(sf: float, cut_offs: Mapping[float, float]) -> float | None:
+def pf_limit_for(sf: float, cut_offs: Sequence[Sequence[float]]) -> float | None:
     """Return the P/F limit in mmHg that the published cut-offs put in place of an S/F; None above them all.
 
     Args:
         sf: S/F, 0 or more.
-        cut_offs: P/F limit in mmHg -> S/F at or below which it counts as reached.
+        cut_offs: pairs of a P/F limit in mmHg and the S/F at or below which it counts as reached.
 
     Raises:
         FormulaInputError: S/F is outside its range.
     """
     _within(sf, "S/F", 0, math.inf)
-    return min((pf for pf, limit in cut_offs.items() if sf <= limit), default=None)
+    return min((pf for pf, limit in cut_offs if sf <= limit), default=None)
 
 
 def rox_index(spo2_pct: float, fio2_pct: float, breaths_per_min: float) -> float:

@@ -242,12 +242,12 @@ def _sf(case: Case, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
             ),
         )
     by = number_text(given.high / 100, 2)
-    cut_offs = {float(pf): float(sf) for pf, sf in case.parameters.table("sf.cut_offs").items()}
+    cut_offs = case.parameters["sf.cut_offs"].value
     line = case.parameters.table("sf.equation")
     near = " and ".join(
         f"{number_text(sf)} for P/F {number_text(pf)} "
         f"(the equation gives {number_text(formula.sf_from_pf(pf, line['intercept'], line['slope']))})"
-        for pf, sf in cut_offs.items()
+        for pf, sf in cut_offs
     )
     limit = formula.pf_limit_for(value, cut_offs)
     stands = f"stands for P/F {number_text(limit)} mmHg or below" if limit else "above the published cut-offs"
