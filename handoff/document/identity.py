@@ -96,11 +96,11 @@ def _numbers(state: PatientState) -> str:
 
 def _weight(assessment: Assessment) -> str:
     state = assessment.state
-    said, kinds = [], set()
-    for weight in reversed(state.weights):
-        if weight.kind in kinds:
+    said = []
+    for kind in dict.fromkeys(weight.kind for weight in reversed(state.weights)):
+        weight = state.weight(kind)
+        if weight is None:
             continue
-        kinds.add(weight.kind)
         parts = [words(weight.node.get("value")), weight.kind, weight.known]
         parts += [state.clock.time(weight.at, assessment.now)] if weight.at else ["time not recorded"]
         said.append(", ".join(part for part in parts if part))

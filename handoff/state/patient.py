@@ -16,6 +16,9 @@ from handoff.words import plural
 NOT_CLINICAL = ("collected",)
 """Keys that hold what the tool itself brought back; they do not change the digest."""
 
+KNOWN = ("measured", "from records", "reported by patient", "reported by family", "estimated")
+"""How a weight can be known, best first."""
+
 
 @dataclass(frozen=True, slots=True)
 class Age:
@@ -48,6 +51,11 @@ class Weight:
     known: str
     at: datetime | None
     node: Map
+
+    @property
+    def rank(self) -> int:
+        """How well it is known; 0 is best."""
+        return KNOWN.index(self.known) if self.known in KNOWN else len(KNOWN)
 
 
 @dataclass(frozen=True, slots=True)
@@ -143,11 +151,16 @@ class PatientState:
         return tuple(sorted(found, key=lambda weight: weight.at or oldest))
 
     def weight(self, *kinds: str) -> Weight | None:
-        """Return the latest weight of the first of ``kinds`` that is on the file, or None."""
+        """Return the weight in use of the first of ``kinds`` that is on the file, or None.
+
+        Of one kind the best known is used (measured, from records, reported, estimated), and
+        of those the latest: a later guess does not replace what was measured.
+        """
         for kind in kinds:
             matching = [weight for weight in self.weights if weight.kind == kind]
             if matching:
-                return matching[-1]
+                best = min(weight.rank for weight in matching)
+                return [weight for weight in matching if weight.rank == best][-1]
         return None
 
     def age_at(self, moment: datetime) -> Age | None:

@@ -33,11 +33,6 @@ def losses_ml(case: Case, start: datetime | None = None, end: datetime | None = 
     )
 
 
-def _drained_ml(course: Course, start: datetime) -> float:
-    catheter = course.urine.catheter
-    return course.urine.drained_ml if catheter is not None and catheter > start else 0.0
-
-
 def _charted(course: Course) -> bool:
     charted = course.given.charted or course.urine.measured or course.urine.drained_ml
     return bool(charted or losses_ml(course.case))
@@ -110,7 +105,7 @@ def _between(course: Course, key: str, label: str, start: datetime) -> Item:
     intake = course.given.between_ml(start, course.now)
     output = (
         course.urine.total_ml(start, course.now)
-        + _drained_ml(course, start)
+        + course.urine.drained_after_ml(start)
         + losses_ml(course.case, start, course.now)
     )
     value = formula.balance_ml(intake, output)

@@ -5,10 +5,12 @@ from __future__ import annotations
 from collections.abc import Iterator
 from datetime import datetime
 
-from handoff.plugin import Case, List, Map, Problem, child, words
+from handoff.plugin import Case, List, Map, Problem, amount, child, words
 
+from .amount_check import check_amounts
 from .orders import ended_by, only_ends
 from .portions import Stop, rate_of, stops_of
+from .tube_check import check_tubes
 from .weight_check import check_weights
 
 Path = tuple[str | int, ...]
@@ -18,7 +20,14 @@ SETS = ("formula", "coefficient", "rate", "urine_target", "urine_target_per_kg",
 
 def check(case: Case) -> tuple[Problem, ...]:
     """Return the faults of the fluid block and of the weight, in the order of the file."""
-    return (*check_weights(case), *_orders(case), *_given(case), *_lines(case))
+    return (
+        *check_weights(case),
+        *_orders(case),
+        *_given(case),
+        *_lines(case),
+        *check_amounts(case),
+        *check_tubes(case),
+    )
 
 
 def _rows(case: Case, name: str) -> Iterator[tuple[Map, Path]]:
@@ -50,6 +59,7 @@ def _orders(case: Case) -> Iterator[Problem]:
                 "two urine targets stand in one order",
                 "keep urine_target: or urine_target_per_kg:",
             )
+        yield from _targets(entry, path)
         yield from _ending(case, entry, path)
         at = case.when(entry.get("at"))
         for kind in ("fluid", "urine"):
@@ -64,6 +74,20 @@ def _orders(case: Case) -> Iterator[Problem]:
                     "strike one out, or write the minute at which the later one came",
                 )
             seen[at, kind] = path
+
+
+def _targets(entry: Map, path: Path) -> Iterator[Problem]:
+    """A urine target whose lowest lies above its highest."""
+    for name, unit in (("urine_target", "mL/h"), ("urine_target_per_kg", "mL/kg/h")):
+        low, high = (amount(child(entry, name, end), unit) for end in ("from", "to"))
+        node = child(entry, name, "to")
+        if low is not None and high is not None and node is not None and low > high:
+            yield Problem(
+                node,
+                (*path, name, "to"),
+                f"the highest ({words(node)}) lies below the lowest ({words(child(entry, name, 'from'))})",
+                "write the lower figure as from: and the higher as to:",
+            )
 
 
 def _ending(case: Case, entry: Map, path: Path) -> Iterator[Problem]:

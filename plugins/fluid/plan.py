@@ -10,7 +10,7 @@ from handoff.plugin import Case, Map, Row, amount, number_text, words
 
 from . import formula
 from .bands import Facts
-from .orders import SETS_FLUID, order_in_force, orders, sets
+from .orders import SETS_FLUID, ended_at, order_in_force, orders, sets
 from .person import Person
 from .rules import COEFFICIENT_PLACES, NoVolume, Volume, by_coefficient, by_rule
 from .say import ml_h
@@ -21,11 +21,16 @@ LOCAL = "local"
 
 @dataclass(frozen=True, slots=True)
 class OrderedRate:
-    """A rate that an order set, from its moment on."""
+    """A rate that an order set, from its moment on, to where the order was ended."""
 
     at: datetime
     ml_h: float
     line: int
+    until: datetime | None = None
+
+    def end(self, moment: datetime) -> datetime:
+        """When it no longer held, no later than ``moment``."""
+        return moment if self.until is None else min(self.until, moment)
 
 
 @dataclass(frozen=True, slots=True)
@@ -39,6 +44,7 @@ class Plan:
     volume: Volume | None
     rates: tuple[OrderedRate, ...] = ()
     problem: NoVolume | None = None
+    volume_until: datetime | None = None
 
     def due_ml(self, burn: datetime, moment: datetime) -> float | None:
         """Return what is due from the burn to ``moment``, in mL; None where the plan is no volume over time."""
@@ -47,20 +53,37 @@ class Plan:
         if self.volume is not None and self.volume.total_ml is None:
             return None
         parts = []
-        until = min(moment, self.rates[0].at) if self.rates else moment
+        ends = [self.rates[0].at] if self.rates else []
+        ends += [self.volume_until] if self.volume_until is not None else []
+        until = min(moment, *ends) if ends else moment
         if self.volume is not None:
             parts.append(self.volume.due_ml(max(0.0, (until - burn) / HOUR)))
         for index, rate in enumerate(self.rates):
-            end = self.rates[index + 1].at if index + 1 < len(self.rates) else moment
-            parts.append(formula.infusion_ml(rate.ml_h, max(0.0, (min(end, moment) - rate.at) / HOUR)))
+            following = self.rates[index + 1].at if index + 1 < len(self.rates) else moment
+            end = rate.end(min(following, moment))
+            parts.append(formula.infusion_ml(rate.ml_h, max(0.0, (end - rate.at) / HOUR)))
         return math.fsum(parts)
 
+    def gaps(self, moment: datetime) -> tuple[tuple[datetime, datetime], ...]:
+        """Return the times up to ``moment`` in which an order had ended and no other had come."""
+        if not self.rates:
+            return ()
+        starts = [rate.at for rate in self.rates]
+        nexts = [*starts[1:], moment]
+        ends = [rate.end(following) for rate, following in zip(self.rates, nexts, strict=True)]
+        if self.volume is None:
+            starts = starts[1:]
+        else:
+            ends = [starts[0] if self.volume_until is None else min(self.volume_until, starts[0]), *ends]
+        pairs = zip(ends, starts, strict=False)
+        return tuple((end, start) for end, start in pairs if end < start <= moment)
+
     def rate_ml_h(self, burn: datetime, moment: datetime) -> float | None:
-        """Return the rate of the plan at ``moment``, in mL/h; None when its schedule has ended."""
+        """Return the rate of the plan at ``moment``, in mL/h; None when its schedule or its order has ended."""
         ordered = [rate for rate in self.rates if rate.at <= moment]
         if ordered:
-            return ordered[-1].ml_h
-        if self.volume is None:
+            return ordered[-1].ml_h if ordered[-1].end(moment) == moment else None
+        if self.volume is None or (self.volume_until is not None and moment >= self.volume_until):
             return None
         hours = (moment - burn) / HOUR
         ended = self.volume.rate_ml_h is None and hours >= self.volume.schedule.ends_h[-1]
@@ -79,12 +102,13 @@ def ordered_plan(case: Case, person: Person, facts: Facts) -> Plan | None:
     if base is not None:
         volume = _volume_of(case, person, base.entry, facts)
     rates = [
-        OrderedRate(row.at, rate, row.line)
+        OrderedRate(row.at, rate, row.line, ended_at(case, row))
         for row in setting
         if (base is None or row.at >= base.at) and (rate := amount(row.entry.get("rate"), "mL/h")) is not None
     ]
     if isinstance(volume, Volume) and volume.rate_ml_h is not None and base is not None:
-        rates = [OrderedRate(base.at, volume.rate_ml_h, base.line), *(r for r in rates if r.at > base.at)]
+        held = OrderedRate(base.at, volume.rate_ml_h, base.line, ended_at(case, base))
+        rates = [held, *(r for r in rates if r.at > base.at)]
     return Plan(
         said=_said(case, force),
         by_order=True,
@@ -93,6 +117,7 @@ def ordered_plan(case: Case, person: Person, facts: Facts) -> Plan | None:
         volume=volume if isinstance(volume, Volume) else None,
         rates=tuple(rates),
         problem=volume if isinstance(volume, NoVolume) else None,
+        volume_until=ended_at(case, base) if base is not None else None,
     )
 
 

@@ -196,7 +196,18 @@ def _due(course: Course) -> Item:
             rule=rule,
         ),
         sources=sources,
-        cautions=tuple(dict.fromkeys((*course.cautions, *_uncertain(course), *weight_caution(course)))),
+        cautions=tuple(
+            dict.fromkeys((*_gaps(course), *course.cautions, *_uncertain(course), *weight_caution(course)))
+        ),
+    )
+
+
+def _gaps(course: Course) -> tuple[str, ...]:
+    """The times between orders in which none was in force: nothing is due for them."""
+    spans = course.plan.gaps(course.now) if course.plan else ()
+    return tuple(
+        f"No order was in force from {course.time(start)} to {course.time(end)}: nothing is due for that time."
+        for start, end in spans
     )
 
 

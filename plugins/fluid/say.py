@@ -8,6 +8,9 @@ from typing import Any
 from handoff.plugin import NOT_RECORDED, Flag, Input, Item, Source, System, fact, joined, number_text
 
 RATE_PLACES = 0
+SMALL_PLACES = 2
+NOISE = 1e-6
+"""Binary fractions: two sums that are the same to a thousandth of a drop differ by nothing."""
 INDEX_PLACES = 2
 PER_KG_PLACES = 2
 UNITS = {  # of the figures that others look up by key; a figure that is not there keeps its unit
@@ -29,13 +32,22 @@ UNITS = {  # of the figures that others look up by key; a figure that is not the
 
 
 def ml(value: float) -> str:
-    """Return a volume as printed: ``10,988 mL``."""
-    return f"{number_text(value)} mL"
+    """Return a volume as printed: ``10,988 mL``; what is above 0 is never printed as 0."""
+    return f"{_amount(value)} mL"
 
 
 def ml_h(value: float) -> str:
     """Return a rate as printed: ``687 mL/h``."""
-    return f"{number_text(value, RATE_PLACES)} mL/h"
+    return f"{_amount(value)} mL/h"
+
+
+def _amount(value: float) -> str:
+    """Whole above 1; below it the places that keep it from being printed as nothing."""
+    if NOISE < abs(value) < 1:
+        if abs(value) * 100 < 1:
+            return "under 0.01" if value > 0 else "above -0.01"
+        return number_text(value, SMALL_PLACES)
+    return number_text(value, RATE_PLACES)
 
 
 def ml_kg_h(value: float) -> str:

@@ -25,8 +25,10 @@ def _in_place(course: Course) -> list[Map]:
     return [row for row in entries(course.case.state.root.get("lines")) if "removed" not in row]
 
 
-def _is_gastric(what: str) -> bool:
-    said = what.lower()
+def _is_gastric(entry: Map) -> bool:
+    said, kind = words(entry.get("what")).lower(), words(entry.get("kind"))
+    if kind:
+        return kind == "gastric tube"
     return any(
         name in said
         for name in ("gastric", "gastrostomy", "nasogastric", "orogastric", "feeding tube", "jejunal")
@@ -35,7 +37,7 @@ def _is_gastric(what: str) -> bool:
 
 def _has(course: Course, what: str) -> bool:
     test = is_catheter if what == "catheter" else _is_gastric
-    return any(test(words(row.get("what"))) for row in _in_place(course))
+    return any(test(row) for row in _in_place(course))
 
 
 NAMES = {"catheter": "Urinary catheter", "gastric_tube": "Gastric tube"}
@@ -73,16 +75,21 @@ def _threshold(course: Course, what: str) -> tuple[Item, ...]:
 def large_cannulas(course: Course) -> tuple[int, int]:
     """Return how many large cannulas are in place, and how many of them go through a burn."""
     limit = course.number("cannulas.large_gauge")
-    large = [
-        row for row in _in_place(course) if (gauge := gauge_of(words(row.get("what")))) and gauge <= limit
-    ]
+    large = [row for row in _in_place(course) if (gauge := gauge_of(row)) and gauge <= limit]
     return len(large), sum(words(row.get("through_burn")) == "yes" for row in large)
 
 
-def gauge_of(what: str) -> float | None:
+def is_cannula(entry: Map) -> bool:
+    """Return whether a line of the file is a cannula, by its kind or else by its name."""
+    kind = words(entry.get("kind"))
+    return kind == "cannula" if kind else "cannula" in words(entry.get("what")).lower()
+
+
+def gauge_of(entry: Map) -> float | None:
     """Return the gauge written in the name of a cannula (``IV cannula 16 G``), or None."""
-    if "cannula" not in what.lower():
+    if not is_cannula(entry):
         return None
+    what = words(entry.get("what"))
     parts = what.replace("G", " G").split()
     for number, unit in pairwise(parts):
         if unit == "G" and number.isdigit():
@@ -105,7 +112,7 @@ def _cannulas(course: Course) -> tuple[Item, ...]:
     is_child = bool(course.person.is_child)
     count, burned = large_cannulas(course)
     if is_child:
-        count = sum("cannula" in words(row.get("what")).lower() for row in _in_place(course))
+        count = sum(is_cannula(row) for row in _in_place(course))
     size = "" if is_child else f"large (to {number_text(course.number('cannulas.large_gauge'))} G) "
     through = f", {burned} of them through a burn" if burned else ""
     short = count < wanted

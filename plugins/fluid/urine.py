@@ -14,6 +14,17 @@ from .say import ml
 HOUR = timedelta(hours=1)
 NOT_MEASURED = "not measured"
 LOST = "lost"
+CATHETER = "urinary catheter"
+NAMES = (
+    ("urin", "cath"),
+    ("bladder", "cath"),
+    ("urethra", "cath"),
+    ("suprapubic",),
+    ("indwelling", "cath"),
+    ("foley",),
+    ("idc",),
+)
+"""Words that together name a urinary catheter, where no kind is written."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -50,8 +61,17 @@ class Charted:
     """All measures of urine, and the catheter."""
 
     readings: tuple[Urine, ...]
-    drained_ml: float
+    drained: tuple[tuple[datetime | None, float], ...]
     catheter: datetime | None
+
+    @property
+    def drained_ml(self) -> float:
+        """What drained when catheters were placed, in mL; also where the time was not charted."""
+        return math.fsum(volume for _, volume in self.drained)
+
+    def drained_after_ml(self, start: datetime) -> float:
+        """Return what drained from catheters placed after ``start``, in mL; an undated one counts as before."""
+        return math.fsum(volume for at, volume in self.drained if at is not None and at > start)
 
     @property
     def measured(self) -> tuple[Urine, ...]:
@@ -81,7 +101,7 @@ class Charted:
 def read_urine(case: Case) -> Charted:
     """Return every measure of urine with its true interval."""
     catheters = _catheters(case)
-    placed = [at for at, _ in catheters]
+    placed = [at for at, _ in catheters if at is not None]
     grouped: dict[datetime, list[Reading]] = {}
     for reading in case.state.series("urine"):
         grouped.setdefault(reading.at, []).append(reading)
@@ -96,21 +116,25 @@ def read_urine(case: Case) -> Charted:
         if one.ml is not None or one.word == LOST:
             since = at
     last = max(placed) if placed else None
-    return Charted(tuple(found), math.fsum(drained for _, drained in catheters), last)
+    return Charted(tuple(found), tuple(catheters), last)
 
 
-def is_catheter(what: str) -> bool:
-    """Return whether a line of the file is a urinary catheter."""
-    return "urin" in what.lower() and "catheter" in what.lower()
+def is_catheter(entry: Map) -> bool:
+    """Return whether a line of the file is a urinary catheter: by its kind, by what drained, or by its name."""
+    if "drained_at_insertion" in entry or words(entry.get("kind")) == CATHETER:
+        return True
+    what = words(entry.get("what")).lower()
+    if words(entry.get("kind")) or "drain" in what:
+        return False
+    return any(all(part in what for part in parts) for parts in NAMES)
 
 
-def _catheters(case: Case) -> list[tuple[datetime, float]]:
-    found = []
-    for entry in entries(case.state.root.get("lines")):
-        at = case.when(entry.get("placed"))
-        if is_catheter(words(entry.get("what"))) and at is not None:
-            found.append((at, amount(entry.get("drained_at_insertion"), "mL") or 0.0))
-    return found
+def _catheters(case: Case) -> list[tuple[datetime | None, float]]:
+    return [
+        (case.when(entry.get("placed")), amount(entry.get("drained_at_insertion"), "mL") or 0.0)
+        for entry in entries(case.state.root.get("lines"))
+        if is_catheter(entry)
+    ]
 
 
 def _read(case: Case, reading: Reading, start: datetime | None) -> Urine:

@@ -20,11 +20,12 @@ from handoff.plugin import (
 )
 
 from . import formula
-from .weights import height_cm, kg_text
+from .weights import differing, height_cm, kg_text
 
 KG_A_POUND = 0.45359237
 TEN = 10
 MONTHS_A_YEAR = 12
+KINDS_OF_WEIGHT = ("before burn", "today", "ideal")
 SEXES = ("female", "male")
 EDITIONS = ("who-2006", "who-2007")
 CURE = "check it; if it is right, add confirmed: yes beside it"
@@ -44,7 +45,8 @@ class Range:
 
 
 def check_weights(case: Case) -> Iterator[Problem]:
-    """Yield a warning for each weight that lies far outside the tables and is not confirmed."""
+    """Yield a warning for each weight that is not confirmed and lies far outside the tables or differs."""
+    yield from _differing(case)
     node = case.state.patient.get("weights")
     if not isinstance(node, List):
         return
@@ -64,6 +66,25 @@ def check_weights(case: Case) -> Iterator[Problem]:
             CURE if height_cm(case) is not None else f"{CURE}, and add the height",
             Severity.UNUSUAL,
         )
+
+
+def _differing(case: Case) -> Iterator[Problem]:
+    """Two weights of one kind that differ: one of them is used in every figure, so which is said and asked."""
+    node = case.state.patient.get("weights")
+    for kind in KINDS_OF_WEIGHT:
+        used = case.state.weight(kind)
+        for other in differing(case, used) if used is not None else ():
+            if used is None or not isinstance(node, List) or words(other.node.get("confirmed")) == "yes":
+                continue
+            index = next(place for place, entry in enumerate(node) if entry is other.node)
+            yield Problem(
+                other.node["value"],
+                ("patient", "weights", index, "value"),
+                f"{words(other.node['value'])} differs from the other weight {kind} on line {used.node.line}: "
+                f"{words(used.node['value'])} ({used.known}), which is used",
+                "strike out the one that is wrong; if both were recorded so, add confirmed: yes beside this one",
+                Severity.UNUSUAL,
+            )
 
 
 def _fits(kg: float, expected: Range) -> str:

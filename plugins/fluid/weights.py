@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from handoff.plugin import Case, Input, Weight, amount, number_text
+from handoff.plugin import Case, Input, Weight, amount, joined, number_text
 
 from . import formula
 
@@ -43,6 +43,7 @@ def volume_weight(case: Case) -> Used | None:
         cautions.append("Today's weight may hold oedema; ask for the weight before the burn.")
     if found.known != "measured":
         cautions.append(f"The weight was {_known(found)}, not measured.")
+    cautions += others_said(case, found)
     cautions += _build(case, found)
     return Used(found.kg, _name(found), _input(case, found), tuple(cautions))
 
@@ -58,7 +59,37 @@ def urine_weight(case: Case) -> Used | None:
             return None
         caution = "The policy asks for the ideal weight for urine, and it is not recorded."
         return Used(used.kg, used.name, used.input, (*used.cautions, caution))
-    return Used(ideal.kg, _name(ideal), _input(case, ideal))
+    return Used(ideal.kg, _name(ideal), _input(case, ideal), tuple(others_said(case, ideal)))
+
+
+def differing(case: Case, used: Weight) -> tuple[Weight, ...]:
+    """Return the other weights of the kind of ``used`` that differ from it.
+
+    Weights of today follow each other day by day: of those only one that is later, or undated, differs.
+    """
+    share = case.parameters.number("weight.differs_from") / 100
+    return tuple(
+        other
+        for other in case.state.weights
+        if other.kind == used.kind
+        and other.node is not used.node
+        and abs(other.kg - used.kg) > share * used.kg
+        and (used.kind != "today" or None in (other.at, used.at) or not _before(other, used))
+    )
+
+
+def _before(one: Weight, other: Weight) -> bool:
+    return one.at is not None and other.at is not None and one.at < other.at
+
+
+def others_said(case: Case, used: Weight) -> list[str]:
+    """Return the sentence that says which of several weights of one kind is used; none where they agree."""
+    others = [f"{kg_text(one.kg)} ({_known(one)}, line {one.node.line})" for one in differing(case, used)]
+    if not others:
+        return []
+    return [
+        f"{_name(used)} ({_known(used)}) is used; another weight {_said(used.kind)} differs: {joined(others)}."
+    ]
 
 
 def height_cm(case: Case) -> float | None:

@@ -80,9 +80,10 @@ def _is_charted(case: Case, doses: tuple[Given, ...], ran: tuple[Run, ...]) -> b
 
 
 def mg_text(mg: float) -> str:
-    """Return an amount as it is printed: under 1 mg in mcg."""
+    """Return an amount as it is printed: under 1 mg in mcg; what is above 0 is never printed as 0."""
     if 0 < mg < 1:
-        return with_unit(mg * MCG_IN_MG, "mcg", 1)
+        said = with_unit(mg * MCG_IN_MG, "mcg", 1)
+        return "under 0.1 mcg" if said == "0 mcg" else said
     return with_unit(mg, "mg", 2)
 
 

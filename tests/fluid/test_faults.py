@@ -68,7 +68,7 @@ def test_a_line_seen_running_after_its_stop_is_refused() -> None:
 def test_a_line_begun_again_after_its_stop_is_accepted() -> None:
     assert not given(
         run("100 mL/h", GIVEN, stopped=LATER),
-        {"line": "R1", "from": LATER, "rate": "50 mL/h"},
+        {"line": "R1", "from": LATER, "rate": "500 mL/h"},
         {"line": "R1", "running": "2026-03-14 11:00"},
     )
 
@@ -134,7 +134,7 @@ def test_a_stop_in_the_minute_of_the_start_is_refused() -> None:
         "fluid.given[2].stopped: the line was begun in the same minute; "
         "write the minute at which it was stopped, or strike out the entry that is wrong"
     ]
-    assert not given(run("100 mL/h", GIVEN), run("50 mL/h", LATER), {"line": "R1", "stopped": LATER})
+    assert not given(run("100 mL/h", GIVEN), run("500 mL/h", LATER), {"line": "R1", "stopped": LATER})
 
 
 def test_a_line_seen_running_after_the_stop_that_ended_it_all_is_refused() -> None:
