@@ -2,16 +2,16 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
 from dataclasses import dataclass
 
 from handoff.assess import Assessment
 from handoff.document.appendix import Appendix, appendix
+from handoff.document.brief import Brief, BriefSystem, brief, brief_systems, missing_names
 from handoff.document.changes import Changes
 from handoff.document.charts import Burn, Hour, burns, hours, lost_tables
 from handoff.document.figures import Figures, figures
 from handoff.document.identity import Frame, Identity, frame, identity, person
-from handoff.document.page_one import PageOne, page_one
+from handoff.document.page_one import PageOne, keys_on_page_one, page_one
 from handoff.document.schedule import Shift
 from handoff.document.sections import (
     LEGEND,
@@ -19,15 +19,13 @@ from handoff.document.sections import (
     Band,
     Block,
     Mark,
-    Section,
     bands,
     cautions_of,
-    missing_line,
     row,
     sentence,
     shown,
 )
-from handoff.document.timeline import Moment, Pending, pending, timeline
+from handoff.document.timeline import Moment, Pending, in_brief, pending, timeline
 from handoff.plugin import Flag, Item, Part, System, words
 
 ELSEWHERE = frozenset(
@@ -53,13 +51,13 @@ IN_THE_BAND = frozenset(
 """Items that stand in the identity band; they are repeated as rows only where they carry a flag."""
 
 BEDSIDE_CHECKS = (
-    ("identity", "Identity band read together: name, birth date, record number"),
-    ("pumps", "Each pump: drug, concentration, rate and volume left, against the prescription"),
+    ("identity", "Identity band read together: name, birth date, number"),
+    ("pumps", "Each pump: drug, strength, rate, volume left, prescription"),
     ("lines", "Lines followed from bag to patient; sites and fixing seen"),
     ("airway", "Airway, tube depth and ties, oxygen device and flow"),
-    ("alarms", "Monitor and ventilator alarms: on, limits set for this patient"),
-    ("kit", "Emergency kit at the bed: suction, bag and mask, airway kit, working"),
-    ("limbs", "Circumferential burns: pulses, colour and warmth looked at together"),
+    ("alarms", "Monitor and ventilator alarms on, limits set"),
+    ("kit", "Emergency kit works: suction, bag and mask, airway kit"),
+    ("limbs", "Burns all round: pulses, colour and warmth seen together"),
     ("dressings", "Dressings and urine bag looked at together"),
 )
 
@@ -88,11 +86,11 @@ class Handover:
     page_one: PageOne
     changes: Changes
     legend: str
-    situation: Section
-    background: Section
-    systems: tuple[Block, ...]
+    situation: Brief
+    background: Brief
+    systems: tuple[BriefSystem, ...]
     assessment_missing: str
-    recommendation: Section
+    recommendation: Brief
     requests: tuple[str, ...]
     timeline: tuple[Moment, ...]
     pending: tuple[Pending, ...]
@@ -100,6 +98,8 @@ class Handover:
     burns: tuple[Burn, ...]
     hours: tuple[Hour, ...]
     figures: Figures
+    detail: tuple[Block, ...]
+    to_do: tuple[Moment, ...]
     appendix: Appendix
 
 
@@ -110,6 +110,10 @@ def handover(assessment: Assessment, changes: Changes | None = None) -> Handover
     shift = Shift(assessment.now, assessment.now + assessment.policy.shift_length, state.clock)
     assessed = [item for item in assessment.items if item.part is Part.ASSESSMENT]
     severity, said = _severity(assessment)
+    moments = timeline(assessment, shift)
+    placed = ELSEWHERE | {
+        item.key for item in assessment.items if item.key in IN_THE_BAND and item.flag is Flag.NONE
+    }
     return Handover(
         frame=frame("Burn handover", assessment),
         bands=bands(assessment, lost_tables(assessment)),
@@ -123,18 +127,20 @@ def handover(assessment: Assessment, changes: Changes | None = None) -> Handover
         page_one=page_one(assessment, shift),
         changes=changes or Changes(),
         legend=LEGEND,
-        situation=_section(assessment, Part.SITUATION),
-        background=_section(assessment, Part.BACKGROUND),
-        systems=_systems(assessed, assessment),
-        assessment_missing=missing_line(assessed),
-        recommendation=_section(assessment, Part.RECOMMENDATION),
+        situation=brief(Part.SITUATION, assessment, placed | set(BURN_LINE)),
+        background=brief(Part.BACKGROUND, assessment, placed),
+        systems=brief_systems(assessment, placed, keys_on_page_one(assessment, shift)),
+        assessment_missing=missing_names(assessed),
+        recommendation=brief(Part.RECOMMENDATION, assessment, placed),
         requests=state.texts(written.get("requests")),
-        timeline=timeline(assessment, shift),
+        timeline=in_brief(moments),
         pending=pending(assessment),
         checks=tuple(Check(text, Mark(f"check:{name}")) for name, text in BEDSIDE_CHECKS),
         burns=burns(assessment),
         hours=hours(assessment),
         figures=figures(assessment),
+        detail=_detail(assessment),
+        to_do=moments,
         appendix=appendix(assessment),
     )
 
@@ -150,33 +156,28 @@ def _severity(assessment: Assessment) -> tuple[str, str]:
     state = assessment.state
     written = state.handover
     at = state.when(written.get("at"))
-    said = f"given by {person(written.get('from'))}, received by {person(written.get('to'))}"
+    said = f"said by {person(written.get('from'))}"
     said += f", {state.clock.day_and_time(at)}" if at else ""
     return words(written.get("severity")) or "severity not recorded by the nurse", said
 
 
-def _section(assessment: Assessment, part: Part) -> Section:
-    items = [item for item in assessment.items if item.part is part]
-    printed = list(_printed(items))
-    return Section(
-        rows=tuple(row(item, assessment) for item in printed),
-        cautions=cautions_of(printed),
-        missing=missing_line(items),
-    )
-
-
-def _printed(items: Iterable[Item]) -> Iterable[Item]:
-    for item in items:
-        placed = item.key in ELSEWHERE or (item.key in IN_THE_BAND and item.flag is Flag.NONE)
-        if item.flag is not Flag.NOT_RECORDED and not item.detail and not placed:
-            yield item
-
-
-def _systems(assessed: list[Item], assessment: Assessment) -> tuple[Block, ...]:
+def _detail(assessment: Assessment) -> tuple[Block, ...]:
+    """Every item of the body in full: the parts as they are read, the assessment by system."""
     blocks = []
-    for system in System:
-        printed = list(_printed(item for item in assessed if item.system is system))
-        if printed:
-            rows = tuple(row(item, assessment) for item in printed)
-            blocks.append(Block(sentence(system.value), rows, cautions_of(printed)))
-    return tuple(blocks)
+    for part in Part:
+        items = [item for item in assessment.items if item.part is part and _is_printed(item)]
+        if part is Part.ASSESSMENT:
+            for system in System:
+                own = [item for item in items if item.system is system]
+                blocks.append(_block(system.value, own, assessment))
+        else:
+            blocks.append(_block(part.value, items, assessment))
+    return tuple(block for block in blocks if block.rows)
+
+
+def _block(title: str, items: list[Item], assessment: Assessment) -> Block:
+    return Block(sentence(title), tuple(row(item, assessment) for item in items), cautions_of(items))
+
+
+def _is_printed(item: Item) -> bool:
+    return item.flag is not Flag.NOT_RECORDED and not item.detail and item.key not in ELSEWHERE

@@ -102,8 +102,8 @@ def _set_page(section: Any, landscape: bool) -> None:
         (Twips(height), Twips(width)) if landscape else (Twips(width), Twips(height))
     )
     section.left_margin = section.right_margin = Twips(680)
-    section.top_margin, section.bottom_margin = Twips(1020), Twips(1020)
-    section.header_distance, section.footer_distance = Twips(480), Twips(400)
+    section.top_margin, section.bottom_margin = Twips(780), Twips(820)
+    section.header_distance, section.footer_distance = Twips(380), Twips(360)
 
 
 def _set_settings(settings: Any) -> None:

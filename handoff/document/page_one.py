@@ -8,6 +8,7 @@ from dataclasses import dataclass, replace
 from datetime import UTC, datetime
 
 from handoff.assess import Assessment
+from handoff.document.brief import named
 from handoff.document.references import by_area, references
 from handoff.document.schedule import Shift, is_overdue
 from handoff.document.sections import sentence, shown
@@ -16,8 +17,8 @@ from handoff.plugin import Action, Flag, Item, Urgency, entries, plural, words
 MOST_ACTIONS, MOST_TASKS, MOST_DUE = 5, 5, 4
 """Lines of each table of page one; what is left is named below it and stands in full further on."""
 
-ENOUGH_LETTERS, REASON_LETTERS = 110, 40
-"""A finding (a reason) that has said so much is cut at the end of its clause, and says that it was."""
+ENOUGH_LETTERS = 90
+"""A finding that has said so much is cut at the end of its clause, and says that it was."""
 
 
 _CLAUSE = re.compile(r"(?<=;)\s+|(?<=[\w)][\w)][\w)]\.)\s+|\n+")
@@ -36,11 +37,10 @@ class KeyRow:
 
 @dataclass(frozen=True, slots=True)
 class Task:
-    """One line of what to do: its reference in the care plan, the text and the reason."""
+    """One line of what to do: its reference in the care plan and the text; the reason stands in the plan."""
 
     ref: str
     text: str
-    why: str
 
 
 @dataclass(frozen=True, slots=True)
@@ -92,6 +92,14 @@ def page_one(assessment: Assessment, shift: Shift) -> PageOne:
     )
 
 
+def keys_on_page_one(assessment: Assessment, shift: Shift) -> frozenset[str]:
+    """Return the keys of the items that have a row of their own on page one."""
+    ranked = _by_rank(item for item in assessment.items if item.rank is not None)
+    acting = [item for item in ranked if item.flag is Flag.ACTION]
+    due = _due_in_order(assessment, shift)[:MOST_DUE]
+    return frozenset(item.key for item in (*acting[:MOST_ACTIONS], *due) if isinstance(item, Item))
+
+
 def _by_rank(items: Iterable[Item]) -> list[Item]:
     return sorted(items, key=lambda item: item.rank or 0)
 
@@ -108,7 +116,7 @@ def _why(item: Item) -> str:
 
 def _key_row(item: Item, shift: Shift) -> KeyRow:
     time = shift.time(item.as_of) if item.as_of else ""
-    return KeyRow(sentence(item.label), _in_short(shown(item)), time, _why(item))
+    return KeyRow(named(item), _in_short(shown(item)), time, _why(item))
 
 
 def _review_row(item: Item, shift: Shift) -> KeyRow:
@@ -129,7 +137,7 @@ def _task(action: Action, shift: Shift, ref: str) -> Task:
     late = ""
     if action.first_due and is_overdue(action, shift.start):
         late = f" (overdue since {shift.time(action.first_due)})"
-    return Task(ref, f"{_in_short(action.text)}{late}", _in_short(action.why, REASON_LETTERS))
+    return Task(ref, f"{_in_short(action.text)}{late}")
 
 
 def _named(action: Action) -> str:
@@ -137,16 +145,22 @@ def _named(action: Action) -> str:
 
 
 def _due(assessment: Assessment, shift: Shift, refs: dict[str, str]) -> tuple[tuple[KeyRow, ...], str]:
+    found = _due_in_order(assessment, shift)
+    rows = tuple(
+        _review_row(one, shift) if isinstance(one, Item) else _late_row(one, shift, refs)
+        for one in found[:MOST_DUE]
+    )
+    more = (sentence(one.label) if isinstance(one, Item) else refs[one.key] for one in found[MOST_DUE:])
+    return rows, "; ".join(more)
+
+
+def _due_in_order(assessment: Assessment, shift: Shift) -> list[Item | Action]:
+    """What is due: findings that can kill, then tasks that are late, then the other findings."""
     review = [item for item in assessment.items if item.flag is Flag.REVIEW]
-    ranked = _by_rank([item for item in review if item.rank is not None])
-    rest = [item for item in review if item.rank is None]
     late = [action for action in assessment.actions if is_overdue(action, shift.start)]
     late = sorted((action for action in late if action.urgency is not Urgency.NOW), key=_first_due)
-    named = [(_review_row(item, shift), sentence(item.label)) for item in ranked]
-    named += [(_late_row(action, shift, refs), refs[action.key]) for action in late]
-    named += [(_review_row(item, shift), sentence(item.label)) for item in rest]
-    more = "; ".join(name for _, name in named[MOST_DUE:])
-    return tuple(row for row, _ in named[:MOST_DUE]), more
+    ranked = _by_rank(item for item in review if item.rank is not None)
+    return [*ranked, *late, *(item for item in review if item.rank is None)]
 
 
 def _first_due(action: Action) -> datetime:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable
 from dataclasses import dataclass
 
 from handoff.assess import Assessment
@@ -19,8 +19,8 @@ FLAG_WORDS = {Flag.ACTION: "ACTION", Flag.REVIEW: "REVIEW", Flag.NONE: "", Flag.
 """How a flag is printed: a word, so that it reads without colour."""
 
 LEGEND = (
-    "ACTION: needs something now. REVIEW: due, overdue or old. No mark: no flag was raised at that time, "
-    "which does not say that the patient is well."
+    "ACTION: needs something now. REVIEW: due, overdue or old. No mark does not say that the patient is well. "
+    "[+]: in full in Detail by system."
 )
 
 
@@ -51,15 +51,6 @@ class Block:
 
 
 @dataclass(frozen=True, slots=True)
-class Section:
-    """One part of the handover: its rows, their cautions, and what is not recorded in it."""
-
-    rows: tuple[Row, ...]
-    cautions: str
-    missing: str
-
-
-@dataclass(frozen=True, slots=True)
 class Band:
     """A warning at the top of a document."""
 
@@ -81,20 +72,6 @@ def row(item: Item, assessment: Assessment) -> Row:
     """Return an item as a row; its time is short where it is of the same day as the document."""
     time = assessment.state.clock.time(item.as_of, assessment.now) if item.as_of else ""
     return Row(sentence(item.label), shown(item), time, FLAG_WORDS[item.flag], item.flag is Flag.ACTION)
-
-
-def missing_line(items: Sequence[Item]) -> str:
-    """Return in one line what is not recorded among ``items``; says so where nothing is missing."""
-    if not items:
-        return "no entry was worked out for this section; take it from the bedside"
-    labels = dict.fromkeys(named(item) for item in items if item.flag is Flag.NOT_RECORDED)
-    return "; ".join(labels) if labels else "none of the entries of this section"
-
-
-def named(item: Item) -> str:
-    """Return the label of what is missing, with the reason where it could not be computed."""
-    reason = shown(item)
-    return sentence(item.label) if reason == NOT_RECORDED else f"{sentence(item.label)} ({reason})"
 
 
 def cautions_of(items: Iterable[Item]) -> str:

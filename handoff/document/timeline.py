@@ -2,14 +2,22 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+import re
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
 from datetime import datetime
 
 from handoff.assess import Assessment
+from handoff.document.brief import shortened
 from handoff.document.references import references
 from handoff.document.schedule import UNTIMED, Shift, due_times, is_overdue
 from handoff.document.sections import NOT_RECORDED
 from handoff.plugin import Action, Urgency, entries, hours_text, words
+
+AFTERWARDS, LATER = ", after this shift", "later"
+
+TASK_LETTERS = 38
+"""How many letters a task may have in the shift in few words."""
 
 NURSE_WRITTEN = "handover."
 """Actions with such keys repeat what the nurse wrote; here they are taken from the file itself."""
@@ -17,10 +25,13 @@ NURSE_WRITTEN = "handover."
 
 @dataclass(frozen=True, slots=True)
 class Planned:
-    """One task: its reference in the care plan (empty where it has none) and what to do."""
+    """One task: its reference in the care plan (empty where it has none), what to do, its rhythm; its time where it is not that of its line."""
 
     ref: str
     text: str
+    note: str = ""
+    at: str = ""
+    is_urgent: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -55,6 +66,38 @@ def timeline(assessment: Assessment, shift: Shift) -> tuple[Moment, ...]:
     return tuple(Moment(place[2], tuple(placed[place])) for place in sorted(placed))
 
 
+def in_brief(moments: Sequence[Moment]) -> tuple[Moment, ...]:
+    """Return the same shift in fewer lines: one for each hour, each task in few words.
+
+    Of an urgent task, whose text stands on page one, only the reference is left.
+    """
+    lines: dict[str, Moment] = {}
+    for moment in moments:
+        hour = _hour(moment, lines)
+        own = "" if hour == moment.when else moment.when.removesuffix(AFTERWARDS)
+        tasks = tuple(_in_few_words(task, own) for task in moment.tasks)
+        before = lines[hour].tasks if hour in lines else ()
+        lines[hour] = Moment(hour, before + tasks)
+    return tuple(lines.values())
+
+
+def _hour(moment: Moment, lines: dict[str, Moment]) -> str:
+    """The line on which a moment stands: that of its hour, of what has no time, or of what comes after the shift."""
+    if moment.when.endswith(AFTERWARDS):
+        return LATER
+    if moment.when == UNTIMED[Urgency.ONGOING]:
+        return UNTIMED[Urgency.SHIFT]
+    clock = re.fullmatch(r"(\d\d):\d\d(.*)", moment.when)
+    same = (when for when in lines if clock and re.fullmatch(rf"{clock[1]}:\d\d{re.escape(clock[2])}", when))
+    return next(same, moment.when)
+
+
+def _in_few_words(task: Planned, at: str) -> Planned:
+    if task.is_urgent:
+        return replace(task, text="", note="")
+    return replace(task, at=at, text=shortened(task.text, TASK_LETTERS))
+
+
 def pending(assessment: Assessment) -> tuple[Pending, ...]:
     """Return what is awaited, as the nurse wrote it."""
     state = assessment.state
@@ -78,7 +121,7 @@ def _place(action: Action, shift: Shift) -> tuple[int, datetime, str]:
     if times:
         return 1, times[0], shift.time(times[0])
     if action.first_due:
-        return 3, action.first_due, f"{shift.time(action.first_due)}, after this shift"
+        return 3, action.first_due, f"{shift.time(action.first_due)}{AFTERWARDS}"
     return 2, shift.end, UNTIMED[Urgency.ONGOING if action.urgency is Urgency.ONGOING else Urgency.SHIFT]
 
 
@@ -88,4 +131,4 @@ def _task(action: Action, shift: Shift, ref: str) -> Planned:
         notes.append(f"overdue since {shift.time(action.first_due)}")
     if action.every:
         notes.append(f"every {hours_text(action.every.total_seconds() / 3600)}")
-    return Planned(ref, action.text + (f" ({', '.join(notes)})" if notes else ""))
+    return Planned(ref, action.text, ", ".join(notes), is_urgent=action.urgency is Urgency.NOW)

@@ -15,13 +15,16 @@ def made(given: object) -> bytes:
     return draft(given, STEM)[f"{STEM}-handover.docx"]  # type: ignore[arg-type]
 
 
-def test_headings_of_the_first_level_are_the_four_parts_then_tables_and_appendix(handover: bytes) -> None:
+def test_headings_of_the_first_level_are_the_four_parts_then_figures_detail_and_appendix(
+    handover: bytes,
+) -> None:
     assert headings(handover, 1) == [
         "Situation",
         "Background",
         "Assessment",
         "Recommendation",
         "Burn chart, fluid and trends",
+        "Detail by system",
         "Working and sources",
         "Not recorded",
     ]
@@ -36,7 +39,8 @@ def test_systems_are_second_level_headings_in_the_order_of_the_contract(handover
 def test_page_one_comes_before_the_situation(handover: bytes) -> None:
     page = text_of(handover)
     order = ["Could not be computed", "Tomas Ferrandel", "sick, may worsen", "NEEDS ACTION", "WHAT TO DO IF"]
-    order += ["NOT RECORDED AND NEEDED FIRST", "5 entries are not recorded", "DUE OR OVERDUE", "Situation"]
+    order[4:4] = ["DUE OR OVERDUE"]
+    order += ["NOT RECORDED AND NEEDED FIRST", "5 entries are not recorded", "Situation"]
     places = [page.index(words) for words in order]
     assert places == sorted(places)
 
@@ -101,8 +105,16 @@ def test_each_part_lists_what_is_not_recorded_in_it(handover: bytes) -> None:
     assert "Not recorded: Consciousness; Sedation score" in page
 
 
-def test_the_shift_is_laid_out_in_the_order_of_time(handover: bytes) -> None:
+def test_the_shift_has_a_line_for_each_hour_with_tasks_in_few_words(handover: bytes) -> None:
     rows = cells(tables(handover)["When"][0])
+    assert [row[0] for row in rows[1:]] == ["now", "19:30", "20:00", "21:00", "this shift", "later"]
+    assert rows[1][1].startswith("A1  | B1 Breaths")
+    assert "20:30 " in rows[3][1]
+    assert rows[-1][1].startswith("10:00 on 16 Mar ")
+
+
+def test_the_shift_is_laid_out_in_full_in_the_order_of_time(handover: bytes) -> None:
+    rows = cells(tables(handover)["When"][1])
     assert [row[0] for row in rows[1:]] == [
         "now",
         "19:30",

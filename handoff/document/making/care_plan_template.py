@@ -18,6 +18,7 @@ from handoff.document.making.markup import (
     when,
 )
 from handoff.document.making.shared import (
+    band_columns,
     identity_band,
     labelled,
     signature_row,
@@ -54,7 +55,7 @@ def body() -> str:
 
 
 def _band() -> str:
-    half = 2 * (WIDTH // 4)
+    half = sum(band_columns(WIDTH)[:2])
     burn = row(
         labelled(half, "Time of burn", "{{ identity.burn }}", span=2),
         labelled(WIDTH - half, "Since", "{{ identity.since }}", span=2),

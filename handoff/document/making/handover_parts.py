@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from handoff.document.making.markup import (
-    SHADE,
+    BLANK,
     Column,
     blank,
     cell,
@@ -18,7 +18,6 @@ from handoff.document.making.markup import (
     tick_box,
     when,
 )
-from handoff.document.making.shared import signature_row
 
 WIDTH = 10546
 """Text width of the page in twentieths of a point."""
@@ -46,12 +45,31 @@ def values(source: str, caption: str, heading: str = "") -> str:
 
 
 def section(name: str) -> str:
-    """Return the rows of a part, their cautions, and what is not recorded in it."""
+    """Return a part in few lines, and the names of what is not recorded in it."""
+    return when(f"{name}.said", paragraph("Brief", _said(f"{name}.said"))) + _missing(f"{name}.missing")
+
+
+def _said(source: str) -> str:
+    """Values in one line of text, told apart by bold names and a stroke."""
     return "".join(
         (
-            when(f"{name}.rows", values(f"{name}.rows", name.capitalize())),
-            when(f"{name}.cautions", paragraph("Small", f"{{{{ {name}.cautions }}}}")),
-            _missing(f"{name}.missing"),
+            run(f"{{%r for one in {source} %}}"),
+            run("{{ one.what }}", "Strong"),
+            run("{%r if one.time %}"),
+            run(" {{ one.time }}", "Time"),
+            run("{%r endif %}"),
+            run(": {{ one.value }}"),
+            run("{%r if one.is_action %}"),
+            run(" "),
+            run("{{ one.flag }}", "FlagAction"),
+            run("{%r elif one.flag %}"),
+            run(" "),
+            run("{{ one.flag }}", "FlagReview"),
+            run("{%r endif %}"),
+            run("{%r if not loop.last %}"),
+            run("  | "),
+            run("{%r endif %}"),
+            run("{%r endfor %}"),
         )
     )
 
@@ -82,64 +100,99 @@ def _tasks(source: str, label: str) -> str:
 
 
 def systems() -> str:
-    """Return the assessment: one table for each system, its heading repeated where the page turns."""
-    return "".join(
+    """Return the assessment in few lines: one row for each system, its name a heading."""
+    title = paragraph("Heading2", "{{ block.title }}", extra='<w:spacing w:before="0" w:after="0"/>')
+    known = "".join(
         (
-            paragraph("Small", "{{ legend }}"),
-            each(
-                "block in systems",
-                values("block.rows", "Assessment of one system", heading="{{ block.title }}"),
-                when("block.cautions", paragraph("Small", "{{ block.cautions }}")),
-                paragraph("Gap"),
-            ),
-            _missing("assessment_missing"),
+            run("{%r if block.page_one %}"),
+            run("{% if block.said %}  | {% endif %}On page one: ", "Time"),
+            run("{{ block.page_one }}", "Strong"),
+            run("{%r endif %}"),
         )
     )
+    said = paragraph("Brief", _said("block.said") + known)
+    cautions = when("block.cautions", paragraph("Caution", "{{ block.cautions }}"))
+    rows = listing(
+        "Assessment by system",
+        "block in systems",
+        Column(1150, "System", title),
+        Column(WIDTH - 1150, "Values, each with its time and what it was before", said + cautions),
+    )
+    return when("systems", rows) + _missing("assessment_missing") + paragraph("Caution", "{{ legend }}")
 
 
 def recommendation() -> str:
     """Return the recommendation: what is advised, asked, to do, awaited, checked together, accepted."""
-    advice = values("recommendation.rows", "Recommendation")
+    asked = paragraph(
+        "Brief",
+        run("Asked of the next shift:", "Strong"),
+        run("{%r for request in requests %}"),
+        run(" {{ request }}{% if not loop.last %};{% endif %}"),
+        run("{%r endfor %}"),
+    )
     return "".join(
         (
-            when("recommendation.rows", advice, paragraph("Gap")),
-            when("recommendation.cautions", paragraph("Small", "{{ recommendation.cautions }}")),
-            when("requests", _requests(), paragraph("Gap")),
-            when("timeline", _timeline(), paragraph("Gap")),
-            when("pending", _pending()),
-            _missing("recommendation.missing"),
+            section("recommendation"),
+            when("requests", asked),
+            when(
+                "timeline",
+                to_do(
+                    "timeline",
+                    "To do in the coming shift (references of the care plan; a reference alone: see page one)",
+                ),
+                paragraph("Gap"),
+            ),
+            when("pending", _pending(), paragraph("Gap")),
             _bedside(),
-            paragraph("Gap"),
-            _acceptance(),
+        )
+    )
+
+
+def detail() -> str:
+    """Return every value in full, by part and by system, and the shift with every task in full."""
+    return "".join(
+        (
+            paragraph("Heading1", "Detail by system", extra="<w:pageBreakBefore/>"),
+            each(
+                "block in detail",
+                values("block.rows", "Every value of one part or system", heading="{{ block.title }}"),
+                when("block.cautions", paragraph("Small", "{{ block.cautions }}")),
+                paragraph("Gap"),
+            ),
+            when("not detail", paragraph("Normal", "No value was worked out.")),
+            when(
+                "to_do",
+                paragraph("Heading2", "To do in the coming shift, in full"),
+                to_do("to_do", "Task (reference of the care plan)"),
+            ),
         )
     )
 
 
 def _missing(name: str) -> str:
-    return paragraph("Missing", run("Not recorded: ", "Strong"), run(f"{{{{ {name} }}}}"))
+    return when(name, paragraph("Missing", run("Not recorded: ", "Strong"), run(f"{{{{ {name} }}}}")))
 
 
-def _requests() -> str:
-    return listing(
-        "Requests to the next shift",
-        "request in requests",
-        column(WIDTH, "Asked of the next shift", "request"),
-    )
-
-
-def _timeline() -> str:
+def to_do(source: str, label: str) -> str:
+    """Return the coming shift on a line of time; ``label`` heads the tasks."""
     tasks = paragraph(
-        "Normal",
+        "Brief",
         run("{%r for task in moment.tasks %}"),
+        run("{%r if task.at %}"),
+        run("{{ task.at }} ", "Strong"),
+        run("{%r endif %}"),
         run("{{ task.ref }}", "Reference"),
-        run(" {{ task.text }}{% if not loop.last %}.  {% endif %}"),
+        run("{% if task.text %} {{ task.text }}{% endif %}{% if task.note %} ({{ task.note }}){% endif %}"),
+        run("{%r if not loop.last %}"),
+        run("  | "),
+        run("{%r endif %}"),
         run("{%r endfor %}"),
     )
     return listing(
         "To do in the coming shift",
-        "moment in timeline",
-        column(1700, "When", "moment.when", look="Strong"),
-        Column(8846, "To do in the coming shift (references of the care plan)", tasks),
+        f"moment in {source}",
+        column(900, "When", "moment.when", "Brief", "Strong"),
+        Column(WIDTH - 900, label, tasks),
     )
 
 
@@ -147,44 +200,47 @@ def _pending() -> str:
     return listing(
         "What is awaited",
         "wait in pending",
-        column(5000, "Awaited", "wait.what"),
-        column(2200, "Due", "wait.due"),
-        column(3346, "Telephone it to", "wait.phone"),
+        column(5000, "Awaited", "wait.what", "Brief"),
+        column(2200, "Due", "wait.due", "Brief"),
+        column(3346, "Who telephones whom", "wait.phone", "Brief"),
     )
 
 
 def _bedside() -> str:
-    half = WIDTH // 2
-    head = cell(WIDTH, paragraph("CellHead", "Looked at together at the bedside"), fill=SHADE, span=2)
-    left, right = _ticks(":checks|length // 2"), _ticks("checks|length // 2:")
-    return table(
-        "Joint bedside check",
-        [half, WIDTH - half],
-        row(head, header=True),
-        row(cell(half, left), cell(WIDTH - half, right)),
-    )
-
-
-def _ticks(part: str) -> str:
+    """What is looked at together, and beside it the read-back and the names that take it on."""
+    looked, taken = 5200, WIDTH - 5200
     tick = tick_box("{{ check.tag }}", "Looked at together")
-    return each(f"check in checks[{part}]", paragraph("Ticks", tick, run(" {{ check.text }}")))
-
-
-def _acceptance() -> str:
-    widths = [2000, 3600, 2900, 2046]
-    read_back = paragraph(
-        "Boxes",
-        tick_box("check:read-back", "Read-back done"),
-        run(" Read back by the receiver and corrected   "),
-        tick_box("check:questions", "Questions answered"),
-        run(" Questions asked and answered   Responsibility accepted at "),
-        blank("sign:accepted:time", "Responsibility accepted: date and time"),
-    )
+    ticks = each("check in checks", paragraph("Ticks", tick, run(" {{ check.text }}")))
     return table(
-        "Read-back and acceptance",
-        widths,
-        header_row(widths, "Acceptance", "Name, role, telephone", "Signature", "Date and time"),
-        signature_row(widths, "Given by", "{{ given_by }}", "given"),
-        signature_row(widths, "Received by", "{{ received_by }}", "received"),
-        row(cell(WIDTH, read_back, span=4)),
+        "Joint bedside check and acceptance",
+        [looked, taken],
+        header_row([looked, taken], "Looked at together at the bedside", "Read-back and acceptance"),
+        row(cell(looked, ticks), cell(taken, *_acceptance())),
+    )
+
+
+def _acceptance() -> tuple[str, ...]:
+    return (
+        paragraph(
+            "Ticks", tick_box("check:read-back", "Read-back done"), " Read back by the receiver and corrected"
+        ),
+        paragraph(
+            "Ticks", tick_box("check:questions", "Questions answered"), " Questions asked and answered"
+        ),
+        *_signed("Given by", "{{ given_by }}", "given"),
+        *_signed("Received by", "{{ received_by }}", "received"),
+        paragraph(
+            "Boxes",
+            "Responsibility accepted at ",
+            blank("sign:accepted:time", "Responsibility accepted: date and time", BLANK * 2),
+        ),
+    )
+
+
+def _signed(label: str, who: str, key: str) -> tuple[str, str]:
+    signature = blank(f"sign:{key}:signature", f"{label}: signature", BLANK * 2)
+    time = blank(f"sign:{key}:time", f"{label}: date and time", BLANK + "_")
+    return (
+        paragraph("Brief", run(f"{label}: ", "Strong"), run(who)),
+        paragraph("Boxes", "Signature ", signature, run("  date and time "), time),
     )

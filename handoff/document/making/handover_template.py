@@ -3,7 +3,14 @@
 from __future__ import annotations
 
 from handoff.document.making.handover_appendix import appendix, charts
-from handoff.document.making.handover_parts import WIDTH, changes, recommendation, section, systems
+from handoff.document.making.handover_parts import (
+    WIDTH,
+    changes,
+    detail,
+    recommendation,
+    section,
+    systems,
+)
 from handoff.document.making.markup import (
     Column,
     cell,
@@ -14,7 +21,7 @@ from handoff.document.making.markup import (
     run,
     when,
 )
-from handoff.document.making.shared import identity_band, labelled, title, unit_line, warnings
+from handoff.document.making.shared import band_columns, identity_band, labelled, title, unit_line, warnings
 
 
 def body() -> str:
@@ -28,9 +35,9 @@ def body() -> str:
             paragraph("Gap"),
             _needs_action(),
             _do_now(),
+            _due(),
             _if_then(),
             _gaps(),
-            _due(),
             changes(),
             paragraph("Heading1", "Situation"),
             section("situation"),
@@ -41,13 +48,14 @@ def body() -> str:
             paragraph("Heading1", "Recommendation"),
             recommendation(),
             charts(),
+            detail(),
             appendix(),
         )
     )
 
 
 def _band() -> str:
-    half = 2 * (WIDTH // 4)
+    half = sum(band_columns(WIDTH)[:2])
     severity = cell(
         half,
         paragraph("Label", "Severity, in the nurse's own word"),
@@ -57,23 +65,26 @@ def _band() -> str:
     )
     burn = labelled(WIDTH - half, "Time of burn", "{{ identity.burn }}", "{{ identity.since }}", span=2)
     worries = cell(
-        WIDTH,
-        paragraph("Label", "What worries the nurse"),
-        paragraph("Key", "{{ concerns }}"),
-        span=4,
+        WIDTH, paragraph("Brief", run("What worries the nurse: ", "Quiet"), run("{{ concerns }}")), span=4
     )
-    story = cell(WIDTH, paragraph("Label", "The burn"), paragraph("Key", "{{ burn }}"), span=4)
+    story = cell(WIDTH, paragraph("Brief", run("The burn: ", "Quiet"), run("{{ burn }}")), span=4)
     return identity_band(WIDTH, row(severity, burn), row(story), row(worries))
 
 
-def _key_listing(caption: str, loop: str, label: str, found_label: str, time: str) -> str:
-    found = paragraph("Key", "{{ row.value }}") + when("row.why", paragraph("Small", "{{ row.why }}"))
+def _key_listing(caption: str, loop: str, label: str, found_label: str, time: str, what: int) -> str:
+    found = paragraph(
+        "Key",
+        run("{{ row.value }}"),
+        run("{%r if row.why %}"),
+        run("  {{ row.why }}", "Aside"),
+        run("{%r endif %}"),
+    )
     return listing(
         caption,
         loop,
-        column(2900, label, "row.what", "Key", "Strong"),
-        Column(6500, found_label, found),
-        column(1146, time, "row.time", "Key"),
+        column(what, label, "row.what", "Key", "Strong"),
+        Column(WIDTH - 800 - what, found_label, found),
+        column(800, time, "row.time", "Key"),
     )
 
 
@@ -91,6 +102,7 @@ def _needs_action() -> str:
                 "NEEDS ACTION",
                 "What was found, and why it matters",
                 "Time",
+                2600,
             ),
             when("not page_one.actions", paragraph("KeyNote", nothing)),
             _more("page_one.more_actions", "Also flagged ACTION"),
@@ -102,9 +114,8 @@ def _do_now() -> str:
     tasks = listing(
         "What to do now",
         "task in page_one.tasks",
-        column(1000, "DO NOW", "task.ref", "Key", "Reference"),
-        column(6200, "Task (reference of the care plan)", "task.text"),
-        column(3346, "Why", "task.why", "Small"),
+        column(900, "DO NOW", "task.ref", "Key", "Reference"),
+        column(WIDTH - 900, "Task (reference of the care plan, where the reason stands)", "task.text", "Key"),
     )
     return when("page_one.tasks", paragraph("Gap"), tasks) + _more("page_one.more_tasks", "Also to do now")
 
@@ -116,6 +127,7 @@ def _due() -> str:
         "DUE OR OVERDUE",
         "What was found, or what to do",
         "Since",
+        3050,
     )
     return when("page_one.due", paragraph("Gap"), due) + _more("page_one.more_due", "Also due for review")
 

@@ -78,12 +78,19 @@ def labelled(width: int, label: str, *fields: str, span: int = 1, style: str = "
     return cell(width, paragraph("Label", label), *(paragraph(style, value) for value in fields), span=span)
 
 
+def band_columns(width: int) -> list[int]:
+    """Return the widths of the four columns of the identity band; a decision needs the most room."""
+    hundredth = width // 100
+    widths = [21 * hundredth, 23 * hundredth, 34 * hundredth]
+    return [*widths, width - sum(widths)]
+
+
 def identity_band(width: int, *further: str) -> str:
     """Return the identity band; ``further`` are rows of four cells below it."""
-    quarter = width // 4
-    widths = [quarter, quarter, quarter, width - 3 * quarter]
+    widths = band_columns(width)
+    half = sum(widths[:2])
     name = cell(
-        2 * quarter,
+        half,
         paragraph("Label", "Patient"),
         paragraph("BandName", "{{ identity.name }}"),
         paragraph("BandValue", "{{ identity.born }}, {{ identity.age }}"),
@@ -91,11 +98,10 @@ def identity_band(width: int, *further: str) -> str:
         fill="F2F3F4",
     )
     numbers = cell(
-        width - 2 * quarter,
+        width - half,
         paragraph("Label", "Identifiers (a bed is never one)"),
         paragraph("BandValue", "{{ identity.numbers }}"),
-        paragraph("Label", "Location"),
-        paragraph("Normal", "{{ identity.location }}"),
+        paragraph("BandValue", run("Location: ", "Quiet"), run("{{ identity.location }}")),
         span=2,
         fill="F2F3F4",
     )

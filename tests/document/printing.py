@@ -1,0 +1,44 @@
+"""Documents of the examples as a printer would get them."""
+
+from __future__ import annotations
+
+import subprocess
+from collections.abc import Mapping
+from functools import lru_cache
+from pathlib import Path
+
+from handoff.document import draft
+from tests.conftest import needs_tool
+from tests.shift.helpers import EXAMPLES, assessed, text_of_example
+
+
+@lru_cache(maxsize=1)
+def example_documents() -> dict[str, bytes]:
+    """Return the handover and the care plan of every example by file name."""
+    made: dict[str, bytes] = {}
+    for name, at in EXAMPLES.items():
+        made |= draft(assessed(text_of_example(name), at), name)
+    return made
+
+
+def converted(contents: Mapping[str, bytes], kind: str, folder: Path) -> dict[str, Path]:
+    """Return documents turned into ``kind`` (pdf, docx) by an office program, by their stems.
+
+    Skips the test where the program is missing; that fails where every test must run.
+    """
+    office = needs_tool("soffice")
+    source, target = folder / "source", folder / kind
+    source.mkdir(parents=True, exist_ok=True)
+    for name, content in contents.items():
+        (source / name).write_bytes(content)
+    command = [office, f"-env:UserInstallation={(folder / 'profile').as_uri()}", "--headless"]
+    command += ["--convert-to", kind, "--outdir", str(target), *(str(source / name) for name in contents)]
+    subprocess.run(command, check=True, capture_output=True, timeout=300)
+    return {Path(name).stem: target / f"{Path(name).stem}.{kind}" for name in contents}
+
+
+def pages(pdf: Path) -> list[str]:
+    """Return the text of each page of a PDF file."""
+    command = [needs_tool("pdftotext"), "-layout", str(pdf), "-"]
+    said = subprocess.run(command, check=True, capture_output=True, timeout=60).stdout.decode()
+    return said.split("\f")[:-1]
