@@ -25,7 +25,10 @@ NURSE_WRITTEN = "handover."
 
 @dataclass(frozen=True, slots=True)
 class Planned:
-    """One task: its reference in the care plan (empty where it has none), what to do, its rhythm; its time where it is not that of its line."""
+    """One task: its reference in the care plan (empty where it has none), what to do, and its rhythm.
+
+    ``at`` is its own time where that is not the time of its line.
+    """
 
     ref: str
     text: str
