@@ -7,7 +7,7 @@ from dataclasses import dataclass, field
 from datetime import datetime
 from typing import NamedTuple
 
-from handoff.plugin import Case, Map, Row, amount, child, entries, number, number_text, words
+from handoff.plugin import Case, List, Map, Row, amount, child, entries, number, number_text, words
 
 from . import depth as depths
 from . import formula
@@ -104,9 +104,17 @@ class Assessment:
 
 
 def assessments(case: Case) -> tuple[Assessment, ...]:
-    """Return every assessment with burns, measured, oldest first; struck-out ones left aside."""
+    """Return every assessment of burns, measured, oldest first; struck-out ones left aside."""
     rows = case.state.dated(case.block)
-    return tuple(measure(case, row) for row in rows if entries(row.entry.get("burns")))
+    return tuple(
+        measure(case, row) for row in rows if entries(row.entry.get("burns")) or found_none(row.entry)
+    )
+
+
+def found_none(entry: Map) -> bool:
+    """Return whether an assessment says that no burn was found: an empty list that somebody confirmed."""
+    node = entry.get("burns")
+    return isinstance(node, List) and not node and words(entry.get("confirmed")) == "yes"
 
 
 def measure(case: Case, row: Row) -> Assessment:

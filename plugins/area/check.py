@@ -13,6 +13,7 @@ from . import formula
 from .age import age_at_burn
 from .assessment import PLACES, Burn, find_table, read_burn
 from .regions import FACES, full_name, lies_within, needs_side
+from .side_check import limb_faults, side_faults
 from .tables import BUILD_VARIANTS, METHODS, WITHOUT_REGIONS, RegionTable, lund_browder
 
 EXTENTS = ("of_region", "tbsa", "palms")
@@ -40,13 +41,15 @@ def check(case: Case) -> tuple[Problem, ...]:
     An extent is written exactly once, as a share of the region, of the body or in palms; the
     region exists in the named method; the parts of a region add to no more than the region.
     """
-    if not isinstance(case.block, List):
-        return ()
-    return tuple(
-        problem
-        for index, entry in enumerate(case.block)
-        if isinstance(entry, Map) and "struck" not in entry
-        for problem in _assessment(case, entry, ("area", index))
+    block = case.block if isinstance(case.block, List) else ()
+    return (
+        *(
+            problem
+            for index, entry in enumerate(block)
+            if isinstance(entry, Map) and "struck" not in entry
+            for problem in _assessment(case, entry, ("area", index))
+        ),
+        *limb_faults(case),
     )
 
 
@@ -54,6 +57,14 @@ def _assessment(case: Case, entry: Map, path: Path) -> Iterator[Problem]:
     if not any(isinstance(entry.get(name), List) for name in LISTS):
         yield Problem(
             entry, path, "the assessment has no burns", "add burns: with a region, its extent and its depth"
+        )
+    burns = entry.get("burns")
+    if isinstance(burns, List) and not burns and words(entry.get("confirmed")) != "yes":
+        yield Problem(
+            burns,
+            (*path, "burns"),
+            "the list of burns is empty, and an earlier assessment would no longer count",
+            "add the burns, delete the key, or add confirmed: yes to the assessment if no burn was found",
         )
     method = words(entry.get("method"))
     if method == "direct" and not words(entry.get("by")):
@@ -100,6 +111,7 @@ def _entry(entry: Map, method: str, table: RegionTable | None, path: Path) -> It
     if needs_side(region) and not side:
         cure = f"write region: left {region} or region: right {region}"
         yield Problem(entry["region"], (*path, "region"), f"'{region}' has no side", cure)
+    yield from side_faults(entry, path)
     if words(entry.get("depth")) == depths.AMBIGUOUS:
         yield Problem(
             entry["depth"],

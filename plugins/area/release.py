@@ -36,8 +36,8 @@ def _released(case: Case) -> list[Row]:
 
 
 def _waits(case: Case, request: Row) -> bool:
-    """Whether nobody has answered, and no release of that site followed."""
-    if "answered" in request.entry or "outcome" in request.entry:
+    """Whether its outcome is not charted, and no release of that site followed."""
+    if "outcome" in request.entry:
         return False
     site = words(request.entry.get("site"))
     return not any(
@@ -55,15 +55,21 @@ def _same(site: str, other: str) -> bool:
 def _request(case: Case, row: Row, index: int) -> Item:
     waited = hours_text(case.hours_between(row.at, case.now))
     site = words(row.entry.get("site"))
+    answered = case.when(row.entry.get("answered"))
     asked = f"; charted as: {words(row.entry.get('who'))}" if words(row.entry.get("who")) else ""
     return Item(
         key=f"area.release_requested.{index}",
         label=f"Release of a tight burn requested{f', {site}' if site else ''}",
         part=Part.ASSESSMENT,
         system=System.LIMBS,
-        shown=f"requested at {case.clock.time(row.at, case.now)}{asked}; no answer charted for {waited}",
-        as_of=row.at,
-        flag=Flag.NONE if is_comfort(case) else Flag.ACTION,
+        shown=f"requested at {case.clock.time(row.at, case.now)}{asked}; "
+        + (
+            f"no answer charted for {waited}"
+            if answered is None
+            else f"answered at {case.clock.time(answered, case.now)}, what was decided is not recorded"
+        ),
+        as_of=answered or row.at,
+        flag=Flag.NONE if is_comfort(case) else Flag.ACTION if answered is None else Flag.REVIEW,
         repeats=True,
         rank=None if is_comfort(case) else RANK_CIRCUMFERENTIAL,
         line=row.line,

@@ -63,6 +63,15 @@ TOTALS = (
     Total("not_assessed", "Depth not assessed", lambda burn: burn.counted is None, True),
     Total("not_counted", "Epidermal, shown and not counted", lambda burn: burn.counted is False),
 )
+UNDIVIDED = {
+    "partial thickness": ("superficial_partial", "deep_partial"),
+    "indeterminate": ("superficial_partial", "deep_partial", "full_thickness"),
+}
+"""Classes of depth that leave open to which of the finer totals a burn belongs."""
+OPEN = {
+    "partial thickness": "partial thickness, superficial or deep not stated",
+    "indeterminate": "of indeterminate depth",
+}
 
 
 def pct_text(value: float) -> str:
@@ -71,14 +80,24 @@ def pct_text(value: float) -> str:
 
 
 def total_of(assessment: Assessment, total: Total) -> float | None:
-    """Return the total in % of body surface; None where an extent or, for the count, a depth is missing."""
+    """Return the total in % of body surface; None where an extent is missing, or a depth that may belong to it."""
     burns = [burn for burn in assessment.burns if total.takes(burn)]
-    if total.key == "counted" and any(burn.counted is None for burn in assessment.burns):
+    if not total.only_if_present and any(burn.counted is None for burn in assessment.burns):
         return None
     known = [burn.tbsa_pct for burn in burns if burn.tbsa_pct is not None]
     if len(known) < len(burns):
         return None
     return formula.at_most_whole_body_pct(formula.total_pct(known))
+
+
+def _beside(assessment: Assessment, total: Total) -> str:
+    """The burns charted in a class that leaves open whether they belong to this total; empty for none."""
+    found = []
+    for depth, keys in UNDIVIDED.items():
+        sizes = [burn.tbsa_pct or 0.0 for burn in assessment.burns if burn.depth == depth]
+        if total.key in keys and sizes:
+            found.append(f"; {pct_text(formula.total_pct(sizes))} more is {OPEN[depth]}")
+    return "".join(found)
 
 
 def items(case: Case, assessment: Assessment | None) -> tuple[Item, ...]:
@@ -122,7 +141,7 @@ def _item(case: Case, assessment: Assessment, total: Total) -> Item:
         system=System.BURN,
         value=value,
         unit="%",
-        shown=pct_text(value),
+        shown=f"{pct_text(value)}{_beside(assessment, total)}",
         as_of=assessment.at,
         working=_working(assessment, burns, value),
         sources=_sources(case, assessment, burns),
@@ -182,8 +201,6 @@ def _cautions(case: Case, assessment: Assessment, total: Total, burns: list[Burn
         found.append(
             "a palm is the patient's own hand, fingers closed; measured palms run from about 0.5 to 1.1 %"
         )
-    if total.key != "counted" and any(burn.counted is None for burn in assessment.burns):
-        found.append("the depth of some burn is not assessed and is not in this figure")
     if total.key == "counted":
         found.append("early estimates often run high: reassess once redness has settled")
         kinds = [words(cause.get("kind")) for cause in entries(case.state.injury.get("causes"))]

@@ -259,7 +259,11 @@ def test_a_request_for_release_waits_until_it_is_answered_or_done() -> None:
         events=[request, {"at": "2026-03-14 18:00", "what": "escharotomy", "site": "right forearm and hand"}]
     )
     other = charted(events=[request, {"at": "2026-03-14 18:00", "what": "escharotomy", "site": "left leg"}])
-    assert answered.item("area.release_requested.1") is None
+    undecided = item(answered, "area.release_requested.1")
+    assert undecided.flag is Flag.REVIEW
+    assert undecided.shown.endswith("answered at 17:40, what was decided is not recorded")
+    decided = charted(events=[{**request, "answered": "2026-03-14 17:40", "outcome": "not wanted now"}])
+    assert decided.item("area.release_requested.1") is None
     assert done.item("area.release_requested.1") is None
     assert other.item("area.release_requested.1") is not None
 
