@@ -50,6 +50,7 @@ from handoff.words import joined, plural, with_unit
 from handoff.words import number as number_text
 
 API_VERSION = 1
+COMFORT_CARE = "comfort care"
 
 
 @dataclass(frozen=True, slots=True)
@@ -66,6 +67,11 @@ class Case:
     def clock(self) -> Clock:
         """The clock of the state file."""
         return self.state.clock
+
+    @property
+    def comfort(self) -> bool:
+        """Whether comfort is the recorded goal of care, so that prompts to rescue fall silent."""
+        return words(child(self.state.patient, "resuscitation", "decision")) == COMFORT_CARE
 
     def when(self, node: Node | None) -> datetime | None:
         """Return the instant written at ``node``, or None."""

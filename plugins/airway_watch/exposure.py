@@ -19,7 +19,6 @@ NECK = ("neck", "head and neck", "whole body")
 DEEP = ("deep partial", "full thickness", "deeper than full thickness")
 SHALLOW = ("superficial partial", "mid partial")
 FULL = ("full thickness", "deeper than full thickness")
-COMFORT = "comfort care"
 CAUSE, SETTING, SMOKE = "cause of the burn", "enclosed space or open air", "smoke breathed or not"
 CAUSE_GAPS = (CAUSE, SETTING, f"{SETTING} and {SMOKE}")
 REGIONS, LOOKED_FOR = "burned regions", "airway signs"
@@ -129,8 +128,7 @@ def exposure(case: Case) -> Exposure:
         reasons.append("tube in the airway, now or earlier")
     if child(case.block, "watch", "start") is not None:
         reasons.append("a watch was started")
-    decision = words(child(case.state.patient, "resuscitation", "decision"))
-    return Exposure(smoke, face, neck, tuple(reasons), _missing(case), decision == COMFORT)
+    return Exposure(smoke, face, neck, tuple(reasons), _missing(case), case.comfort)
 
 
 def _smoke(case: Case) -> tuple[str, ...]:

@@ -24,7 +24,6 @@ from handoff.plugin import (
 
 from . import formula
 
-COMFORT = "comfort care"
 RANK_HF = 36
 HF = "hydrofluoric acid"
 LABEL = "Chemical rinsed off"
@@ -39,11 +38,6 @@ def cause_of(case: Case) -> Map | None:
 def is_hydrofluoric(case: Case, cause: Map) -> bool:
     """Return whether the chemical is charted as hydrofluoric acid."""
     return words(child(case.block, "group")) == HF or HF in words(cause.get("agent")).lower()
-
-
-def is_comfort(case: Case) -> bool:
-    """Return whether comfort is the recorded goal of care."""
-    return words(child(case.state.patient, "resuscitation", "decision")) == COMFORT
 
 
 def running(case: Case) -> bool:
@@ -88,7 +82,7 @@ def _rinsed(case: Case, cause: Map) -> Item:
     long, name, decides = wanted(case)
     had = minutes(case, cause)
     sources = (case.parameters.source_of(name), case.parameters.source_of("rinse.until"))
-    asks = is_early(case) and not is_comfort(case)
+    asks = is_early(case) and not case.comfort
     if had is None:
         flag = Flag.ACTION if asks else Flag.NOT_RECORDED
         return fact(
@@ -159,7 +153,7 @@ def _acidity(case: Case) -> tuple[Item, ...]:
             "; ".join(said),
             system=System.ELECTRICAL,
             as_of=rows[-1].at,
-            flag=Flag.REVIEW if differs and is_early(case) and not is_comfort(case) else Flag.NONE,
+            flag=Flag.REVIEW if differs and is_early(case) and not case.comfort else Flag.NONE,
             sources=(case.parameters.source_of("rinse.until"),),
             line=last.line,
         ),
@@ -178,7 +172,7 @@ def _agent(case: Case, cause: Map) -> Item:
     clothes, eye = words(child(case.block, "clothes_off")), words(child(case.block, "in_eye"))
     said += [f"contaminated clothes off: {clothes}"] if clothes else []
     said += [f"in the eye: {eye}"] if eye else []
-    hydrofluoric = is_hydrofluoric(case, cause) and not is_comfort(case)
+    hydrofluoric = is_hydrofluoric(case, cause) and not case.comfort
     flag = (
         Flag.ACTION
         if hydrofluoric
@@ -203,7 +197,7 @@ def _agent(case: Case, cause: Map) -> Item:
 
 def actions(case: Case, cause: Map) -> tuple[Action, ...]:
     """Return the rinsing that is missing, the call to the poisons service, and the watch for hydrofluoric acid."""
-    if is_comfort(case) or not is_early(case):
+    if case.comfort or not is_early(case):
         return ()
     made = []
     long, name, decides = wanted(case)

@@ -87,9 +87,9 @@ def _sign(
         sources = [table.source]
     line_said, crossed, line_sources = _line(case, column, value, age)
     if crossed:
-        flag = Flag.NONE if patient.is_comfort(case) else Flag.ACTION
+        flag = Flag.NONE if case.comfort else Flag.ACTION
         rank = RANK_HYPOTENSION if column == "systolic" else RANK_BREATHS
-        rank = None if patient.is_comfort(case) else rank
+        rank = None if case.comfort else rank
     if column == "systolic":
         cautions = [LATE]
     said = "; ".join(part for part in (said, line_said) if part)

@@ -25,7 +25,7 @@ def _level(case: Case) -> tuple[Item, ...]:
         return ()
     last = readings[-1]
     said = words(last.node)
-    acts = said in (*DEEP, *LESS) and not patient.is_comfort(case)
+    acts = said in (*DEEP, *LESS) and not case.comfort
     before = [one for one in readings[:-1] if words(one.node) != said]
     shown = said
     if before:
@@ -83,7 +83,7 @@ def _coma(case: Case) -> tuple[Item, ...]:
     total, said = coma_of(last.node)
     earlier = [(one, found[0]) for one in readings[:-1] if (found := coma_of(one.node))[0] is not None]
     low = case.parameters.number("coma.low")
-    comfort = patient.is_comfort(case)
+    comfort = case.comfort
     shown = f"{said}; {f'total {total}' if total is not None else 'no sum'}"
     flag, rank = Flag.NONE, None
     sources = [case.parameters.source_of("coma.parts")]

@@ -12,11 +12,15 @@ AIR = "room air"
 
 @dataclass(frozen=True, slots=True)
 class Oxygen:
-    """Air or oxygen at a moment: ``on`` is None where nothing says so."""
+    """Air or oxygen at a moment: ``on`` is None where nothing says so; ``at`` is when a row said it.
+
+    A device holds from its start, which ``said`` names, and so has no time of its own.
+    """
 
     on: bool | None
     said: str
     node: Node | None
+    at: datetime | None = None
 
 
 def oxygen_at(case: Case, moment: datetime, window: timedelta) -> Oxygen:
@@ -32,7 +36,7 @@ def oxygen_at(case: Case, moment: datetime, window: timedelta) -> Oxygen:
     ]
     if charted:
         last = charted[-1]
-        return Oxygen(words(last.node) == "yes", "", last.node)
+        return Oxygen(words(last.node) == "yes", "", last.node, last.at)
     entries = case.state.dated(case.state.at_path("airway_watch", "oxygen"), "from")
     started = [row for row in entries if row.at <= moment]
     if not started:
@@ -42,4 +46,5 @@ def oxygen_at(case: Case, moment: datetime, window: timedelta) -> Oxygen:
     stopped = case.when(entry.get("stopped"))
     if stopped is not None and stopped <= moment:
         return Oxygen(False, f"{device} stopped {case.clock.time(stopped, case.now)}", entry)
-    return Oxygen(device != AIR, device if device != AIR else "", entry)
+    since = f"since {case.clock.time(started[-1].at, case.now)}"
+    return Oxygen(device != AIR, f"{device} {since}" if device != AIR else since, entry)

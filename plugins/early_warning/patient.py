@@ -4,15 +4,10 @@ from __future__ import annotations
 
 from datetime import datetime
 
-from handoff.plugin import Age, Case, amount, child, entries, words
+from handoff.plugin import Age, Case, amount, entries, words
 
 FIRE = ("flame", "flash", "explosion")
 CLOSED = ("enclosed space", "vehicle")
-
-
-def is_comfort(case: Case) -> bool:
-    """Return whether comfort is the recorded goal of care, so that prompts to rescue stop."""
-    return words(child(case.state.patient, "resuscitation", "decision")) == "comfort care"
 
 
 def age_at(case: Case, moment: datetime) -> Age | None:

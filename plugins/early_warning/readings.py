@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from datetime import datetime, timedelta
 
 from handoff.plugin import (
@@ -20,7 +20,7 @@ from handoff.plugin import (
 )
 
 from . import formula
-from .oxygen import oxygen_at
+from .oxygen import Oxygen, oxygen_at
 
 SIGNS = ("resp", "spo2", "bp", "pulse", "consciousness", "temp")
 """The observations that a set is made of, in the order in which the parts are printed."""
@@ -37,14 +37,16 @@ class SetPart:
     at: datetime | None
     node: Node | None
     source: Source
+    older: str = ""
 
     def said(self) -> str:
-        """Return the part with its points: ``breaths 22 /min (2)``."""
-        return f"{self.name} {self.shown}".strip() + f" ({self.points})"
+        """Return the part with its points, and its time where it is older than the set: ``breaths 22 /min (2)``."""
+        return " ".join(part for part in (self.name, self.shown, self.older, f"({self.points})") if part)
 
     def input(self) -> Input:
         """Return it as an input of the sum."""
-        return Input(self.name, f"{self.shown} = {self.points}".strip(), line_of(self.node))
+        shown = " ".join(part for part in (self.shown, self.older, f"= {self.points}") if part)
+        return Input(self.name, shown, line_of(self.node))
 
 
 @dataclass(frozen=True, slots=True)
@@ -100,13 +102,20 @@ def sign_set(case: Case, moment: datetime) -> SignSet:
     parts = (
         _measured(case, "breaths", latest("resp"), "resp", "news2.resp", _per_minute),
         _saturation(case, latest("spo2"), scale, oxygen.on),
-        _oxygen(case, oxygen.on, oxygen.said, oxygen.node, moment),
+        _oxygen(case, oxygen),
         _measured(case, "systolic", latest("bp"), "systolic", "news2.systolic", _systolic),
         _measured(case, "pulse", latest("pulse"), "pulse", "news2.pulse", _per_minute),
         _consciousness(case, latest("consciousness")),
         _measured(case, "temperature", latest("temp"), "temp", "news2.temp", _celsius),
     )
-    return SignSet(moment, parts, scale)
+    return SignSet(moment, tuple(_aged(case, part, moment) for part in parts), scale)
+
+
+def _aged(case: Case, part: SetPart, moment: datetime) -> SetPart:
+    """Return the part with its own time where it was charted before the others."""
+    if part.at is None or part.at == moment:
+        return part
+    return replace(part, older=f"at {case.clock.time(part.at, case.now)}")
 
 
 def _scale(case: Case, moment: datetime) -> str:
@@ -168,13 +177,13 @@ def _percent(case: Case, reading: Reading | None, scale: str, table: str) -> Set
     return _measured(case, f"SpO2 ({scale})", reading, "spo2", table, lambda node: amount(node, "%"))
 
 
-def _oxygen(case: Case, on: bool | None, said: str, node: Node | None, moment: datetime) -> SetPart:
+def _oxygen(case: Case, found: Oxygen) -> SetPart:
     source = case.parameters.source_of("news2.oxygen")
-    if on is None:
+    if found.on is None:
         return SetPart("oxygen", "", None, "air or oxygen", None, None, source)
-    points = int(case.parameters.table("news2.oxygen")["yes" if on else "no"])
-    name = "on oxygen" if on else "on air"
-    return SetPart(name, said, points, "", moment, node, source)
+    points = int(case.parameters.table("news2.oxygen")["yes" if found.on else "no"])
+    name = "on oxygen" if found.on else "on air"
+    return SetPart(name, found.said, points, "", found.at, found.node, source)
 
 
 def _consciousness(case: Case, reading: Reading | None) -> SetPart:

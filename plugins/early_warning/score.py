@@ -25,6 +25,7 @@ from .readings import SignSet, set_times, sign_set
 LABEL = "Early warning score (NEWS2)"
 RANKS = {"emergency threshold": 38, "urgent threshold": 39}
 ANSWERS = ("review by doctor", "call for help")
+COMFORT = "the goal of care is comfort, and the score asks for nothing"
 EARLIER = 3
 LOOK_BACK = 12
 """How many earlier moments are tried for the trend; a long stay is not read from its start."""
@@ -53,9 +54,14 @@ class Scored:
 
 
 def scored(case: Case) -> Scored | None:
-    """Return the latest set of signs, judged; None where there is none or the method does not fit."""
+    """Return the latest set of signs, judged; None where there is none, or the method or the goal does not fit."""
     times = set_times(case)
-    if not times or patient.not_for(case, times[-1]) or patient.age_at(case, times[-1]) is None:
+    if (
+        not times
+        or case.comfort
+        or patient.not_for(case, times[-1])
+        or patient.age_at(case, times[-1]) is None
+    ):
         return None
     signs = sign_set(case, times[-1])
     reached = _step(case, signs)
@@ -78,7 +84,7 @@ def items(case: Case, found: Scored | None) -> tuple[Item, ...]:
 def _no_score(case: Case) -> Item:
     times = set_times(case)
     moment = times[-1] if times else case.now
-    reason = patient.not_for(case, moment)
+    reason = patient.not_for(case, moment) or (COMFORT if case.comfort else "")
     if reason:
         return fact(
             "early_warning.score",
@@ -96,8 +102,7 @@ def _no_score(case: Case) -> Item:
 
 def _score(case: Case, found: Scored) -> Item:
     signs = found.signs
-    comfort = patient.is_comfort(case)
-    asks = found.step in ASK and not comfort
+    asks = found.step in ASK
     doubt = patient.saturation_doubt(case)
     gap = bool(signs.missing)
     flag = Flag.ACTION if asks else Flag.NOT_RECORDED if gap else Flag.NONE
@@ -162,14 +167,12 @@ def _cautions(case: Case, doubt: str) -> tuple[str, ...]:
         )
     if patient.pregnancy_unknown(case):
         found.append("Pregnancy is not recorded; the score is not for pregnancy.")
-    if patient.is_comfort(case):
-        found.append("The goal of care is comfort: the score asks for nothing.")
     return tuple(found)
 
 
 def actions(case: Case, found: Scored | None) -> tuple[Action, ...]:
     """Return the call that the score asks for, unless a call or a review after it is recorded."""
-    if found is None or found.step not in ASK or patient.is_comfort(case) or answered(case, found):
+    if found is None or found.step not in ASK or answered(case, found):
         return ()
     signs = found.signs
     score = str(signs.total) if signs.total is not None else f"at least {signs.at_least}"

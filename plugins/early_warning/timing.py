@@ -6,7 +6,6 @@ from datetime import datetime, timedelta
 
 from handoff.plugin import Case, Flag, Item, Part, System, Working, fact, hours_text
 
-from . import patient
 from .score import ASK, Scored, answered
 
 FLOOR = "A minimum: it never makes the burn unit's own checks rarer."
@@ -22,7 +21,7 @@ def every_hours(case: Case, step: str) -> tuple[float, str]:
 
 def items(case: Case, found: Scored | None) -> tuple[Item, ...]:
     """Return when the score is due again and what its step asks for; nothing where there is no step."""
-    if found is None or found.step is None or patient.is_comfort(case):
+    if found is None or found.step is None:
         return ()
     hours, name = every_hours(case, found.step)
     return (_due(case, found, hours, name), *_response(case, found))

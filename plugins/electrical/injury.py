@@ -9,7 +9,6 @@ from handoff.plugin import Case, Map, Row, amount, child, entries, words
 from . import formula
 
 KINDS = ("electrical", "lightning")
-COMFORT = "comfort care"
 KNOWN = {"yes": True, "no": False, "present": True, "absent": False}
 UNKNOWN_VOLTAGE = "voltage not recorded"
 
@@ -49,8 +48,7 @@ def injury(case: Case) -> Injury | None:
         "heart disease": _heart(case),
         "high voltage": high,
     }
-    decision = words(child(case.state.patient, "resuscitation", "decision"))
-    return Injury(cause, voltage, high, facts, rhythms, decision == COMFORT)
+    return Injury(cause, voltage, high, facts, rhythms, case.comfort)
 
 
 def _voltage(case: Case, cause: Map) -> tuple[str, bool | None]:

@@ -21,7 +21,6 @@ from handoff.plugin import (
     words,
 )
 
-COMFORT = "comfort care"
 BACK = "back"
 LABEL = "First-hours survey"
 
@@ -60,7 +59,7 @@ def _step(case: Case, name: str) -> Step:
 
 def is_asked(case: Case, found: tuple[Step, ...]) -> bool:
     """Return whether missing steps are asked about: begun, or still in its window, and not for comfort."""
-    if words(child(case.state.patient, "resuscitation", "decision")) == COMFORT:
+    if case.comfort:
         return False
     if any(step.entry is not None for step in found):
         return True

@@ -4,8 +4,6 @@ from __future__ import annotations
 
 from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, child, entries, fact, words
 
-from . import patient
-
 LABEL = "Antibiotics"
 PROMPT = "no routine systemic prophylaxis is advised for a fresh burn"
 ASKED = ("prophylaxis", "not known")
@@ -42,7 +40,7 @@ def items(case: Case) -> tuple[Item, ...]:
             LABEL,
             said,
             system=System.INFECTION,
-            flag=Flag.REVIEW if asked and not patient.is_comfort(case) else Flag.NONE,
+            flag=Flag.REVIEW if asked and not case.comfort else Flag.NONE,
             sources=sources,
             cautions=("Prophylaxis around surgery is another matter.",),
             line=found[0].line,
@@ -65,7 +63,7 @@ def _said(case: Case, entry: Map) -> str:
 def actions(case: Case) -> tuple[Action, ...]:
     """Return the question to the prescriber where an antibiotic has no reason, or its review is overdue."""
     asked = [entry for entry in running(case) if words(entry.get("why")) in ASKED or _overdue(case, entry)]
-    if not asked or patient.is_comfort(case):
+    if not asked or case.comfort:
         return ()
     names = ", ".join(words(entry.get("drug")) for entry in asked)
     return (

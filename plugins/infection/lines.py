@@ -6,7 +6,7 @@ from datetime import timedelta
 
 from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, entries, fact, words
 
-from . import formula, patient
+from . import formula
 
 
 def in_place(case: Case) -> tuple[Map, ...]:
@@ -43,7 +43,7 @@ def items(case: Case) -> tuple[Item, ...]:
             value=oldest,
             unit="days, the oldest",
             as_of=case.now,
-            flag=Flag.NONE if patient.is_comfort(case) else flag,
+            flag=Flag.NONE if case.comfort else flag,
             detail=flag is Flag.NONE,
             sources=(case.parameters.source_of("lines.every"),),
             line=ordered[0][0].line,
@@ -65,7 +65,7 @@ def _said(line: Map, day: int | None) -> str:
 def actions(case: Case) -> tuple[Action, ...]:
     """Return the daily question whether each line is still needed."""
     found = in_place(case)
-    if not found or patient.is_comfort(case):
+    if not found or case.comfort:
         return ()
     hours = case.parameters.number("lines.every")
     names = ", ".join(_name(line) for line in found)

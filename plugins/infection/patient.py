@@ -2,14 +2,7 @@
 
 from __future__ import annotations
 
-from handoff.plugin import Case, child, words
-
-COMFORT = "comfort care"
-
-
-def is_comfort(case: Case) -> bool:
-    """Return whether comfort is the recorded goal of care, so that prompts to rescue stop."""
-    return words(child(case.state.patient, "resuscitation", "decision")) == COMFORT
+from handoff.plugin import Case
 
 
 def is_child(case: Case) -> bool:

@@ -155,7 +155,7 @@ def items(case: Case, found: Triggers | None) -> tuple[Item, ...]:
                 flag=Flag.NOT_RECORDED,
             ),
         )
-    asks = found.reached and found.decides and not patient.is_comfort(case)
+    asks = found.reached and found.decides and not case.comfort
     early = _is_early(case)
     flag = Flag.NONE
     if asks:
@@ -221,7 +221,7 @@ def _cautions(found: Triggers, early: bool) -> tuple[str, ...]:
 
 def actions(case: Case, found: Triggers | None) -> tuple[Action, ...]:
     """Return the prompt to look for infection, where the list is reached after the first day."""
-    if found is None or not found.reached or not found.decides or patient.is_comfort(case) or _is_early(case):
+    if found is None or not found.reached or not found.decides or case.comfort or _is_early(case):
         return ()
     return (
         Action(

@@ -73,7 +73,7 @@ def items(case: Case) -> tuple[Item, ...]:
         sources += [case.parameters.source_of("fever"), case.parameters.source_of("set_point")]
         said += f"; above {number_text(fever[who], 1)} C, at which burn centres suspect infection"
     flag = Flag.ACTION if cold else Flag.REVIEW if hot else Flag.NONE
-    comfort = patient.is_comfort(case)
+    comfort = case.comfort
     return (
         fact(
             "infection.temperature",
@@ -146,7 +146,7 @@ def actions(case: Case) -> tuple[Action, ...]:
     pct = patient.counted_pct(case)
     area = f"warming.area.{_who(case)}"
     large = pct is not None and pct > case.parameters.number(area)
-    if patient.is_comfort(case) or not (cold or large):
+    if case.comfort or not (cold or large):
         return ()
     sources: list[Source] = []
     reasons = []

@@ -43,7 +43,7 @@ def items(case: Case) -> tuple[Item, ...]:
         )
     said = [f"present: {joined(found)}"] if found else []
     said += [f"looked for and absent: {joined(absent)}"] if absent else []
-    asks = bool(found) and not patient.is_comfort(case)
+    asks = bool(found) and not case.comfort
     reading = latest(case)
     return (
         fact(
@@ -98,7 +98,7 @@ def _hot(case: Case) -> str:
 
 def actions(case: Case) -> tuple[Action, ...]:
     """Return the look for toxic-shock signs in a child, and the call where one is there."""
-    if not patient.is_child(case) or patient.is_comfort(case):
+    if not patient.is_child(case) or case.comfort:
         return ()
     present, _, looked = _signs(case)
     hot = _hot(case)

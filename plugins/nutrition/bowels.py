@@ -21,7 +21,6 @@ from handoff.plugin import (
 )
 
 from . import formula
-from .feeding import is_comfort
 
 CHARTS = ("doses", "infusions", "patient_controlled")
 LABEL = "Bowels"
@@ -82,7 +81,7 @@ def items(case: Case) -> tuple[Item, ...]:
             value=opened,
             unit="time" if opened else "",
             as_of=case.when(entry.get("at")),
-            flag=Flag.REVIEW if long and not is_comfort(case) else Flag.NONE,
+            flag=Flag.REVIEW if long and not case.comfort else Flag.NONE,
             sources=(case.parameters.source_of("bowels.within"),),
             line=entry.line,
         ),

@@ -23,12 +23,6 @@ from handoff.plugin import (
 from . import formula
 
 RANK_TUBE = 28
-COMFORT = "comfort care"
-
-
-def is_comfort(case: Case) -> bool:
-    """Return whether comfort is the recorded goal of care."""
-    return words(child(case.state.patient, "resuscitation", "decision")) == COMFORT
 
 
 def feed_now(case: Case) -> tuple[Map, datetime, bool] | None:
@@ -92,7 +86,7 @@ def _feed(case: Case) -> tuple[Item, ...]:
             value=value,
             unit="%" if value is not None else "",
             as_of=since,
-            flag=Flag.NONE if runs or is_comfort(case) else Flag.REVIEW,
+            flag=Flag.NONE if runs or case.comfort else Flag.REVIEW,
             working=working,
             line=entry.line,
         ),
@@ -160,7 +154,7 @@ def actions(case: Case) -> tuple[Action, ...]:
     every = timedelta(hours=case.parameters.number("tube.every"))
     source = case.parameters.source_of("tube.every")
     if not runs:
-        if is_comfort(case):
+        if case.comfort:
             return ()
         return (
             Action(

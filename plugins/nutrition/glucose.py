@@ -18,7 +18,7 @@ from handoff.plugin import (
     words,
 )
 
-from .feeding import feed_now, is_comfort
+from .feeding import feed_now
 
 RANK_LOW = 35
 
@@ -53,7 +53,7 @@ def items(case: Case) -> tuple[Item, ...]:
     found = feed_now(case)
     if runs and found is not None and not found[2]:
         parts.append("insulin runs while the feed is stopped")
-    comfort = is_comfort(case)
+    comfort = case.comfort
     flag = Flag.ACTION if low or "stopped" in parts[-1] else Flag.NONE
     if last is None:
         flag = Flag.ACTION
@@ -76,7 +76,7 @@ def items(case: Case) -> tuple[Item, ...]:
 
 def actions(case: Case) -> tuple[Action, ...]:
     """Return the check of glucose while insulin runs, and what to do about a low one."""
-    if is_comfort(case):
+    if case.comfort:
         return ()
     last = _latest(case.state.result_series("glucose"))
     made = []

@@ -56,7 +56,7 @@ def vital_items(case: Case) -> tuple[Item, ...]:
     items = []
     for name, label, system in VITALS:
         readings = case.state.series(name)
-        if readings or name in ASKED:
+        if readings or (name in ASKED and not case.comfort):
             items.append(_latest(case, f"vital.{name}", label, system, readings))
     items += _results(case)
     return tuple(items)
@@ -80,7 +80,7 @@ def _latest(case: Case, key: str, label: str, system: System, readings: tuple[Re
     age = case.now - last.at
     interval = timedelta(minutes=case.parameters.number("vital.check_interval"))
     flag = Flag.NONE
-    if age > interval:
+    if age > interval and not case.comfort:
         flag = Flag.REVIEW
         shown += f"; not rechecked since {case.clock.time(last.at, case.now)}"
     return Item(
@@ -142,7 +142,12 @@ def _results(case: Case) -> list[Item]:
 
 
 def vital_actions(case: Case) -> tuple[Action, ...]:
-    """Return the check of vital signs, due from the last row with most of them by the check interval."""
+    """Return the check of vital signs, due from the last row with most of them by the check interval.
+
+    Where the goal is comfort nothing is asked: looking at comfort has a line of its own.
+    """
+    if case.comfort:
+        return ()
     interval = timedelta(minutes=case.parameters.number("vital.check_interval"))
     rows = [
         row.at for row in case.state.rows if sum(name in row.entry for name in FULL_ROW) > len(FULL_ROW) / 2

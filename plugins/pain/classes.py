@@ -112,13 +112,7 @@ def item(case: Case, charted: Charted) -> Item:
 
 def severe_rank(case: Case) -> int:
     """Return where severe pain stands on page one; with comfort as the goal of care it leads."""
-    return SEVERE_RANK_IN_COMFORT_CARE if comfort_care(case) else SEVERE_RANK
-
-
-def comfort_care(case: Case) -> bool:
-    """Whether the decision in force is comfort care."""
-    node = case.state.at_path("patient", "resuscitation", "decision")
-    return node is not None and str(node) == "comfort care"
+    return SEVERE_RANK_IN_COMFORT_CARE if case.comfort else SEVERE_RANK
 
 
 def _flag(found: Class) -> Flag:

@@ -28,7 +28,6 @@ from handoff.plugin import (
 
 from . import formula
 from .charted import Charted, mg_text
-from .classes import comfort_care
 from .given import PUMP
 from .infusions import Run
 from .names import OPIOID
@@ -150,10 +149,10 @@ def _sedation_item(case: Case, charted: Charted) -> Item:
     if old:
         shown += f"; not reassessed since {at}, an opioid was given after it"
     if level.prompt:
-        shown += f"; {COMFORT if comfort_care(case) else level.prompt}"
+        shown += f"; {COMFORT if case.comfort else level.prompt}"
     flag = Flag.REVIEW if old else Flag.NONE
     if level.urgent:
-        flag = Flag.REVIEW if comfort_care(case) else Flag.ACTION
+        flag = Flag.REVIEW if case.comfort else Flag.ACTION
     return Item(
         key=SEDATION,
         label=label,
@@ -176,7 +175,7 @@ def _sedation_item(case: Case, charted: Charted) -> Item:
 def _reduction(case: Case, charted: Charted, level: Level) -> Working | None:
     """The published reduction worked out for the one opioid infusion that runs, for the prescriber to weigh."""
     running = [run for run in charted.runs if run.open and run.drug.group == OPIOID and run.mg_h is not None]
-    if not level.reduce or len(running) != 1 or comfort_care(case):
+    if not level.reduce or len(running) != 1 or case.comfort:
         return None
     run, (low, high) = running[0], case.parameters["sedation.poss_reduction"].value
     return Working(
@@ -228,9 +227,9 @@ def _breathing_item(case: Case, charted: Charted) -> Item:
     risks = _risks(case, charted, opioid)
     cautions = [f"raises the risk of slow breathing: {'; '.join(said for said, _ in risks)}"] if risks else []
     if opioid and adult and rate < limit:
-        flag = Flag.REVIEW if comfort_care(case) else Flag.ACTION
+        flag = Flag.REVIEW if case.comfort else Flag.ACTION
         shown += f"; under {number_text(limit)} with an opioid given: "
-        shown += COMFORT if comfort_care(case) else "the published prompt is oxygen, stop the infusion, call"
+        shown += COMFORT if case.comfort else "the published prompt is oxygen, stop the infusion, call"
     elif opioid and not adult:
         cautions.append("no limit of this set is for a child: use the limit set for the child")
     return Item(

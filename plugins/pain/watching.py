@@ -7,7 +7,6 @@ from datetime import datetime, timedelta
 from handoff.plugin import Action, Case, System, Urgency
 
 from .charted import Charted
-from .classes import comfort_care
 from .names import OPIOID
 from .pumps import pumps
 from .sedation import Level, breathing, latest_level
@@ -19,7 +18,7 @@ def actions(case: Case, charted: Charted) -> tuple[Action, ...]:
     found = [_routine(case, charted)]
     if opioid_runs(case, charted):
         found.append(_watch(case, level))
-    if level is not None and level.urgent and not comfort_care(case):
+    if level is not None and level.urgent and not case.comfort:
         found.append(_call(case, level))
     return tuple(found)
 

@@ -20,7 +20,6 @@ from handoff.plugin import (
     words,
 )
 
-COMFORT = "comfort care"
 BLEEDING = "Bleeding, surgery to come and kidneys are for the prescriber to weigh."
 
 
@@ -33,10 +32,6 @@ class Matter:
     because: str
     hours: str
     sources: tuple[str, ...]
-
-
-def _is_comfort(case: Case) -> bool:
-    return words(child(case.state.patient, "resuscitation", "decision")) == COMFORT
 
 
 def _ventilated(case: Case) -> bool:
@@ -88,7 +83,7 @@ def _item(case: Case, matter: Matter) -> Item | None:
     entry = decision(case, matter)
     sources = tuple(case.parameters.source_of(name) for name in matter.sources)
     if entry is None:
-        if not matter.because or _is_comfort(case):
+        if not matter.because or case.comfort:
             return None
         late = is_late(case, matter)
         return fact(
@@ -100,7 +95,7 @@ def _item(case: Case, matter: Matter) -> Item | None:
             sources=sources,
         )
     at, review = case.when(entry.get("at")), case.when(entry.get("review"))
-    late = review is not None and review < case.now and not _is_comfort(case)
+    late = review is not None and review < case.now and not case.comfort
     parts = [words(entry.get("decided")), words(entry.get("what")), words(entry.get("why"))]
     by = words(entry.get("by_doctor"))
     parts.append(f"decided by {by}" if by else "by whom not recorded")
@@ -121,7 +116,7 @@ def _item(case: Case, matter: Matter) -> Item | None:
 
 def actions(case: Case) -> tuple[Action, ...]:
     """Return the question where nothing is decided or its review is overdue, and the look at pumped legs."""
-    if _is_comfort(case):
+    if case.comfort:
         return ()
     made = []
     for matter in matters(case):

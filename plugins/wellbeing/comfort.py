@@ -19,8 +19,6 @@ from handoff.plugin import (
     words,
 )
 
-from . import patient
-
 RANK = 60
 LABEL = "Goals of comfort"
 
@@ -34,7 +32,7 @@ def items(case: Case) -> tuple[Item, ...]:
     """Return what matters to this patient; nothing unless comfort is the goal, or it is charted."""
     node = _block(case)
     matters = case.state.texts(node.get("matters"))
-    if not matters and not patient.is_comfort(case):
+    if not matters and not case.comfort:
         return ()
     if not matters:
         return (
@@ -52,7 +50,7 @@ def items(case: Case) -> tuple[Item, ...]:
     said.append(f"talked over with {words(node.get('agreed_with')) or 'whom is not recorded'}")
     said.append(f"medicines for comfort prescribed: {ready or 'not recorded'}")
     said += [f"stopped: {joined(stopped)}"] if stopped else []
-    lacks = patient.is_comfort(case) and ready != "yes"
+    lacks = case.comfort and ready != "yes"
     return (
         fact(
             "wellbeing.comfort",
@@ -70,7 +68,7 @@ def items(case: Case) -> tuple[Item, ...]:
 
 def actions(case: Case) -> tuple[Action, ...]:
     """Return the care that comfort asks for; nothing unless it is the goal."""
-    if not patient.is_comfort(case):
+    if not case.comfort:
         return ()
     node = _block(case)
     source = case.parameters.source_of("comfort.every")

@@ -20,8 +20,6 @@ from handoff.plugin import (
     words,
 )
 
-from . import patient
-
 
 def planned(case: Case) -> date | None:
     """Return the planned day of going home, or None."""
@@ -68,7 +66,7 @@ def _teaching(case: Case) -> tuple[Item, ...]:
             "Teaching",
             "; ".join(said),
             system=System.PEOPLE,
-            flag=Flag.REVIEW if missing and not patient.is_comfort(case) else Flag.NONE,
+            flag=Flag.REVIEW if missing and not case.comfort else Flag.NONE,
             sources=(case.parameters.source_of("teaching.needed"),),
             line=taught[-1].line if taught else 0,
         ),
@@ -106,7 +104,7 @@ def _discharge(case: Case) -> tuple[Item, ...]:
             system=System.PEOPLE,
             value=left,
             unit="days" if left is not None else "",
-            flag=Flag.REVIEW if needs and is_near(case) and not patient.is_comfort(case) else Flag.NONE,
+            flag=Flag.REVIEW if needs and is_near(case) and not case.comfort else Flag.NONE,
             sources=(case.parameters.source_of("teaching.before"),),
             line=line_of(node),
         ),
@@ -115,7 +113,7 @@ def _discharge(case: Case) -> tuple[Item, ...]:
 
 def actions(case: Case) -> tuple[Action, ...]:
     """Return the teaching and the needs that are left when going home is near."""
-    if patient.is_comfort(case) or not is_near(case):
+    if case.comfort or not is_near(case):
         return ()
     made = []
     missing = not_shown_back(case)

@@ -64,7 +64,7 @@ def _confusion(case: Case) -> tuple[Item, ...]:
             system=System.DISABILITY,
             value=result,
             as_of=rows[-1].at,
-            flag=Flag.ACTION if result == "positive" and not patient.is_comfort(case) else Flag.NONE,
+            flag=Flag.ACTION if result == "positive" and not case.comfort else Flag.NONE,
             line=last.line,
         ),
     )
@@ -124,7 +124,7 @@ def actions(case: Case) -> tuple[Action, ...]:
             )
         )
     screens = case.state.dated(child(case.block, "confusion_screen"))
-    if screens and words(screens[-1].entry.get("result")) == "positive" and not patient.is_comfort(case):
+    if screens and words(screens[-1].entry.get("result")) == "positive" and not case.comfort:
         made.append(
             Action(
                 key="wellbeing.confusion_call",

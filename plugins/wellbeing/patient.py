@@ -2,14 +2,7 @@
 
 from __future__ import annotations
 
-from handoff.plugin import Case, child, words
-
-COMFORT = "comfort care"
-
-
-def is_comfort(case: Case) -> bool:
-    """Return whether comfort is the recorded goal of care."""
-    return words(child(case.state.patient, "resuscitation", "decision")) == COMFORT
+from handoff.plugin import Case
 
 
 def is_asked(case: Case) -> bool:

@@ -5,9 +5,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Protocol
 
-from handoff.plugin import Case, Map, amount, child, entries, words
+from handoff.plugin import Case, Map, amount, entries, words
 
-COMFORT = "comfort care"
 HEAD, NECK = ("head", "head and neck", "whole body"), ("neck", "head and neck", "whole body")
 WHOLE_PCT = 100
 HEALS = ("superficial partial",)
@@ -124,11 +123,6 @@ def counted_pct(case: Case) -> float | None:
     """Return the counted burn in %TBSA, or None."""
     pct = case.findings["area"].values.get("counted_pct")
     return float(pct) if isinstance(pct, (int, float)) else None
-
-
-def is_comfort(case: Case) -> bool:
-    """Return whether comfort is the recorded goal of care."""
-    return words(child(case.state.patient, "resuscitation", "decision")) == COMFORT
 
 
 def is_child(case: Case) -> bool:

@@ -24,7 +24,7 @@ from handoff.plugin import (
 )
 
 from . import formula
-from .burned import Burned, is_comfort
+from .burned import Burned
 
 WORSE = ("smell", "spreading redness")
 
@@ -107,7 +107,7 @@ def _item(case: Case, index: int, one: Dressing) -> Item:
         value=one.due,
         unit="time" if one.due else "",
         as_of=one.done,
-        flag=Flag.NONE if is_comfort(case) else flag,
+        flag=Flag.NONE if case.comfort else flag,
         working=working,
         sources=(one.source,) if one.source else (),
         cautions=(
@@ -138,7 +138,7 @@ def _said(case: Case, one: Dressing, late: bool) -> str:
 def actions(case: Case, skin: Burned) -> tuple[Action, ...]:
     """Return each change of dressing that is due, and the first one where none is charted."""
     found = dressings(case)
-    if is_comfort(case):
+    if case.comfort:
         return _for_comfort(found)
     if not found and skin.burns:
         return (

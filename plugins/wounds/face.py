@@ -6,7 +6,7 @@ from datetime import datetime, timedelta
 
 from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, child, fact, gap, words
 
-from .burned import Burned, is_comfort
+from .burned import Burned
 
 EYES = ("lids", "cornea", "sight", "lenses")
 HURT = {"cornea": ("stains", "cloudy"), "lids": ("do not close",), "lenses": ("still in",)}
@@ -52,7 +52,7 @@ def _eyes(case: Case, entry: Map | None) -> Item:
         "; ".join(said),
         system=System.WOUND,
         as_of=at,
-        flag=Flag.NONE if is_comfort(case) else flag,
+        flag=Flag.NONE if case.comfort else flag,
         line=entry.line,
     )
 
@@ -69,7 +69,7 @@ def _other(case: Case, name: str, entry: Map | None) -> Item:
         "; ".join(part for part in parts if part) or "looked at, no finding recorded",
         system=System.WOUND,
         as_of=case.when(entry.get("at")),
-        flag=Flag.ACTION if pressed and not is_comfort(case) else Flag.NONE,
+        flag=Flag.ACTION if pressed and not case.comfort else Flag.NONE,
         line=entry.line,
     )
 
@@ -110,7 +110,7 @@ def _eye_care(case: Case) -> list[Action]:
                 text="Have both eyes examined before the lids swell shut; contact lenses out; write down sight",
                 why="the face is burned and no examination of the cornea is recorded",
                 system=System.WOUND,
-                urgency=Urgency.SHIFT if is_comfort(case) else Urgency.NOW,
+                urgency=Urgency.SHIFT if case.comfort else Urgency.NOW,
                 sources=(case.parameters.source_of("eyes.look_every"),),
             )
         )

@@ -21,7 +21,6 @@ from handoff.plugin import (
 )
 
 from . import formula
-from .burned import is_comfort
 
 BAD = ("oozing", "soaked", "smells")
 
@@ -51,7 +50,7 @@ def items(case: Case) -> tuple[Item, ...]:
 def _graft(case: Case, index: int, row: Row) -> Item:
     entry, due = row.entry, first_look(case, row.entry, row.at)
     looked, taken = case.when(entry.get("looked")), words(entry.get("taken"))
-    late = looked is None and due < case.now and not is_comfort(case)
+    late = looked is None and due < case.now and not case.comfort
     said = [f"{words(entry.get('kind')) or 'kind not recorded'}, placed {case.clock.day_and_time(row.at)}"]
     if looked is not None:
         said.append(f"looked at {case.clock.day_and_time(looked)}, taken {taken or 'not recorded'}")
@@ -87,7 +86,7 @@ def _donor(case: Case, index: int, row: Row) -> Item:
     said.append(state or "state not recorded")
     if state != "healed":
         said.append(f"left in place until healed, usually {number_text(low)} to {number_text(high)} d")
-    bad = state in BAD and not is_comfort(case)
+    bad = state in BAD and not case.comfort
     return fact(
         f"wounds.donor.{index}",
         f"Donor site: {words(entry.get('where'))}",
@@ -104,7 +103,7 @@ def _donor(case: Case, index: int, row: Row) -> Item:
 
 def actions(case: Case) -> tuple[Action, ...]:
     """Return the first look at each graft, its protection, and the look at each donor site."""
-    if is_comfort(case):
+    if case.comfort:
         return ()
     made = []
     for index, row in enumerate(_latest(case, "grafts"), start=1):

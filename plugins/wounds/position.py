@@ -7,7 +7,7 @@ from datetime import timedelta
 
 from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, child, entries, fact, words
 
-from .burned import Burned, is_comfort
+from .burned import Burned
 
 SIDES = ("left", "right")
 JOINTS = {
@@ -111,7 +111,7 @@ def items(case: Case, skin: Burned) -> tuple[Item, ...]:
     """Return the positions of this patient's burned parts, and each splint."""
     said, (name, table) = _said(case, skin), table_of(case)
     made = []
-    if said and not is_comfort(case):
+    if said and not case.comfort:
         made.append(
             fact(
                 "wounds.positions",
@@ -132,7 +132,7 @@ def items(case: Case, skin: Burned) -> tuple[Item, ...]:
 def _splint(case: Case, index: int, entry: Map) -> Item:
     checked = case.when(entry.get("checked"))
     every = timedelta(hours=case.parameters.number("splint.every"))
-    late = (checked is None or checked + every < case.now) and not is_comfort(case)
+    late = (checked is None or checked + every < case.now) and not case.comfort
     parts = [words(entry.get("regime")) or "regime not recorded", words(entry.get("skin"))]
     parts.append(
         f"skin looked at {case.clock.time(checked, case.now)}"
@@ -152,7 +152,7 @@ def _splint(case: Case, index: int, entry: Map) -> Item:
 
 def actions(case: Case, skin: Burned) -> tuple[Action, ...]:
     """Return one line for the positions of this patient and one for the skin under splints."""
-    if is_comfort(case):
+    if case.comfort:
         return ()
     made = []
     said, (name, _) = _said(case, skin), table_of(case)

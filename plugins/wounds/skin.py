@@ -6,7 +6,7 @@ from datetime import timedelta
 
 from handoff.plugin import Action, Case, Flag, Item, System, Urgency, child, fact, joined, words
 
-from .burned import Burned, counted_pct, is_child, is_comfort
+from .burned import Burned, counted_pct, is_child
 
 BAD = ("red, does not blanch", "blister", "broken")
 BACK = ("trunk", "upper back", "lower back", "left buttock", "right buttock")
@@ -35,7 +35,7 @@ def items(case: Case) -> tuple[Item, ...]:
             "; ".join(said) or "looked at, no finding recorded",
             system=System.SKIN,
             as_of=last.at,
-            flag=Flag.ACTION if bad and not is_comfort(case) else Flag.NONE,
+            flag=Flag.ACTION if bad and not case.comfort else Flag.NONE,
             line=last.entry.line,
         ),
     )
@@ -46,7 +46,7 @@ def actions(case: Case, skin: Burned) -> tuple[Action, ...]:
     rows = case.state.dated(child(case.block, "pressure_areas"))
     pct = counted_pct(case)
     lies = pct is not None and pct >= case.parameters.number("turning.area")
-    if is_comfort(case) or not (lies or rows):
+    if case.comfort or not (lies or rows):
         return ()
     name = f"turning.{case.chosen('turning').name}"
     every = timedelta(hours=float(case.parameters.table(name)["child" if is_child(case) else "adult"]))

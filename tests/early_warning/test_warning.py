@@ -169,12 +169,40 @@ def test_scale_two_without_its_prescriber_is_refused() -> None:
     assert any("prescribed_by" in fault for fault in said)
 
 
-def test_comfort_as_the_goal_of_care_asks_for_nothing() -> None:
+def test_comfort_as_the_goal_of_care_asks_for_nothing_and_names_no_threshold() -> None:
     comfort = {"resuscitation": {"decision": "comfort care"}}
     row = {**SICK, "consciousness": "unresponsive", "gcs": {"eye": "1", "verbal": "1", "motor": "1"}}
     made = assessed(NAMES, state_text({"19:00": row}, patient=comfort))
     assert action_keys(made) == []
     assert all(one.flag is Flag.NONE and one.rank is None for one in made.items)
+    found = item(made, "early_warning.score")
+    assert found.shown == "not computed: the goal of care is comfort, and the score asks for nothing"
+    assert found.detail
+    assert not [
+        one.key for one in made.items if "threshold" in one.shown or one.key == "early_warning.next_due"
+    ]
+
+
+def test_a_value_older_than_the_set_carries_its_own_time() -> None:
+    early = {key: WELL[key] for key in ("temp", "on_oxygen")}
+    late = {key: value for key, value in WELL.items() if key not in early}
+    made = assessed(NAMES, state_text({"18:30": early, "19:00": late}))
+    found = item(made, "early_warning.score")
+    assert found.value == 0
+    assert "temperature 37 C at 18:30 (0)" in found.shown
+    assert "on air at 18:30 (0)" in found.shown
+    assert "pulse 80 /min (0)" in found.shown
+    assert found.working is not None
+    shown = {one.label: one.shown for one in found.working.inputs}
+    assert shown["temperature"] == "37 C at 18:30 = 0"
+    assert shown["pulse"] == "80 /min = 0"
+
+
+def test_oxygen_by_its_device_carries_its_start() -> None:
+    block = {"oxygen": [{"from": "2026-03-14 17:35", "device": "simple mask", "flow": "6 L/min"}]}
+    row = {key: value for key, value in WELL.items() if key != "on_oxygen"}
+    made = assessed(["area", *NAMES, "airway_watch"], state_text({"19:00": row}, airway_watch=block))
+    assert "on oxygen simple mask since 17:35 (2)" in item(made, "early_warning.score").shown
 
 
 def test_the_trend_names_the_complete_scores_before() -> None:
