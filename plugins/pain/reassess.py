@@ -108,10 +108,11 @@ def _after_dose(case: Case, due: tuple[Due, ...]) -> Item:
     at = clock.time(first.at, now)
     dose = f"{first.dose.drug.name} {first.dose.route} at {clock.time(first.dose.latest, now)}"
     minutes = number_text(first.interval.minutes)
-    state = "due"
-    if now > first.overdue_from:
-        state = "overdue since"
+    judged = decides(case, first.interval)
+    state = "overdue since" if judged and now > first.overdue_from else "due"
     shown = f"{state} {at}, {minutes} min after {dose}"
+    if not judged:
+        shown += "; this interval is from memory: use your unit's"
     more = len({other.dose.latest for other in due[1:]} - {first.dose.latest})
     if more:
         shown += f"; {more} later {'dose' if more == 1 else 'doses'} not reassessed"
@@ -124,7 +125,7 @@ def _after_dose(case: Case, due: tuple[Due, ...]) -> Item:
         unit="time",
         shown=shown,
         as_of=first.dose.latest,
-        flag=Flag.REVIEW if flagged(case, first) else Flag.NONE,
+        flag=Flag.REVIEW if judged and now >= first.at else Flag.NONE,
         working=Working(
             formula="time of the dose plus the interval of its route",
             sum=f"{clock.time(first.dose.latest, now)} + {minutes} min = {at}",
@@ -136,13 +137,24 @@ def _after_dose(case: Case, due: tuple[Due, ...]) -> Item:
     )
 
 
-def flagged(case: Case, due: Due) -> bool:
-    """Whether a dose is past its interval; one from memory decides only past the longest published one."""
-    if case.parameters[due.interval.identifier].kind != "from memory":
+def decides(case: Case, after: Interval) -> bool:
+    """Return whether an interval may flag: a published one, or one from memory that local policy took as its own."""
+    taken = case.chosen("other_routes")
+    by_policy = taken.by_policy and taken.name == "judged"
+    return by_policy or case.parameters[after.identifier].kind != "from memory"
+
+
+def unwatched_for_long(case: Case, due: Due) -> bool:
+    """Return whether a dose is past its interval; one from memory counts from the longest published interval.
+
+    A route whose interval from memory is longer than every published one (a patch) never counts by itself.
+    """
+    if decides(case, due.interval):
         return case.now >= due.at
     table = case.parameters.table(f"reassess.{case.chosen('reassess').name}")
     longest = max(float(pair[1]) for pair in table.values())
-    return case.now >= due.dose.latest + timedelta(minutes=max(longest, due.interval.minutes))
+    passed = case.now >= due.dose.latest + timedelta(minutes=longest)
+    return passed and due.interval.minutes <= longest
 
 
 def _routine(case: Case, charted: Charted) -> Item:
@@ -191,7 +203,7 @@ def actions(case: Case, charted: Charted) -> tuple[Action, ...]:
             why=f"{first.dose.drug.name} {first.dose.route} given {case.clock.time(first.dose.latest, case.now)}",
             system=System.PAIN,
             first_due=first.at,
-            urgency=Urgency.NOW if first.at <= case.now else Urgency.TIMED,
+            urgency=Urgency.NOW if first.at <= case.now and decides(case, first.interval) else Urgency.TIMED,
             sources=(case.parameters.source_of(first.interval.identifier),),
         ),
     )

@@ -31,7 +31,7 @@ from .charted import Charted, mg_text
 from .given import PUMP
 from .infusions import Run
 from .names import OPIOID
-from .reassess import Due, flagged, interval
+from .reassess import Due, interval, unwatched_for_long
 from .scores import scale_of
 
 SEDATION, BREATHING = "pain.sedation", "pain.breathing"
@@ -129,7 +129,7 @@ def stale(case: Case, charted: Charted, at: datetime) -> bool:
         after = interval(case, one.route, one.release)
         if one.drug.group != OPIOID or one.how == PUMP or after is None or one.latest < at:
             continue
-        if flagged(case, Due(one, after)):
+        if unwatched_for_long(case, Due(one, after)):
             return True
     return False
 
