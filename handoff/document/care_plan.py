@@ -7,10 +7,13 @@ from dataclasses import dataclass
 from handoff.assess import Assessment
 from handoff.document.appendix import Citations, Cited
 from handoff.document.identity import Frame, Identity, frame, identity
-from handoff.document.references import by_area, references
+from handoff.document.references import BY_HAND, by_area, references
 from handoff.document.schedule import Shift, overdue_slot, slots, when
 from handoff.document.sections import Band, Mark, bands, sentence
 from handoff.plugin import Action, Urgency
+
+BLANK_ROWS, BLANK_BOXES = 5, 6
+"""Rows for tasks that are added by hand, and boxes of each."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -48,6 +51,29 @@ class Area:
 
 
 @dataclass(frozen=True, slots=True)
+class BlankBox:
+    """One box of a row that is added by hand: room for the time due beside it."""
+
+    due_tag: Mark
+    due_title: Mark
+    tag: Mark
+    title: Mark
+    by_tag: Mark
+    by_title: Mark
+
+
+@dataclass(frozen=True, slots=True)
+class BlankRow:
+    """One row for a task that is added by hand."""
+
+    ref: str
+    tag: Mark
+    text_tag: Mark
+    text_title: Mark
+    boxes: tuple[BlankBox, ...]
+
+
+@dataclass(frozen=True, slots=True)
 class CarePlan:
     """Everything that the care plan prints."""
 
@@ -58,6 +84,7 @@ class CarePlan:
     end: str
     now: str
     areas: tuple[Area, ...]
+    by_hand: tuple[BlankRow, ...]
     sources: tuple[Cited, ...]
 
 
@@ -80,6 +107,7 @@ def care_plan(assessment: Assessment) -> CarePlan:
         end=clock.day_and_time(shift.end),
         now=", ".join(task.ref for task in urgent),
         areas=areas,
+        by_hand=tuple(_blank_row(f"{BY_HAND}{number}") for number in range(1, BLANK_ROWS + 1)),
         sources=citations.cited(),
     )
 
@@ -106,4 +134,26 @@ def _box(ref: str, label: str, stamp: str) -> Box:
         title=Mark(f"{ref} {label} done"),
         by_tag=Mark(f"by:{ref}:{stamp}"),
         by_title=Mark(f"{ref} {label} time and initials"),
+    )
+
+
+def _blank_row(ref: str) -> BlankRow:
+    return BlankRow(
+        ref=ref,
+        tag=Mark(f"row:{ref}"),
+        text_tag=Mark(f"text:{ref}"),
+        text_title=Mark(f"{ref} what to do, and why"),
+        boxes=tuple(_blank_box(ref, number) for number in range(1, BLANK_BOXES + 1)),
+    )
+
+
+def _blank_box(ref: str, number: int) -> BlankBox:
+    name = f"{ref} box {number}"
+    return BlankBox(
+        due_tag=Mark(f"due:{ref}:{number}"),
+        due_title=Mark(f"{name} when due"),
+        tag=Mark(f"row:{ref}:{number}"),
+        title=Mark(f"{name} done"),
+        by_tag=Mark(f"by:{ref}:{number}"),
+        by_title=Mark(f"{name} time and initials"),
     )

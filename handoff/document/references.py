@@ -10,6 +10,9 @@ from handoff.plugin import Action, System
 LIKE_DIGITS = "IO"
 """Letters that a pen makes look like digits; no reference begins with them."""
 
+BY_HAND = "X"
+"""The letter of rows that are added by hand; no area gets it."""
+
 _SYSTEMS = [system for system in System if system is not System.GENERAL] + [System.GENERAL]
 
 
@@ -36,7 +39,7 @@ def references(actions: Sequence[Action]) -> dict[str, str]:
 def _letter(area: str, used: set[str]) -> str:
     words = area.upper().split()
     wanted: Iterable[str] = [word[0] for word in words] + list("".join(words)) + list(ascii_uppercase)
-    free = [letter for letter in wanted if letter in ascii_uppercase and letter not in LIKE_DIGITS]
+    free = [letter for letter in wanted if letter in ascii_uppercase and letter not in LIKE_DIGITS + BY_HAND]
     single = next((letter for letter in free if letter not in used), None)
     if single:
         return single

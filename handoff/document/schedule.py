@@ -7,8 +7,8 @@ from datetime import datetime, timedelta
 
 from handoff.plugin import Action, Clock, Urgency, hours_text, plural
 
-MOST_BOXES = 14
-"""More boxes than this do not fit a row; what is due more often is ticked by the hour."""
+MOST_BOXES = 48
+"""A shift of twelve hours by the quarter of an hour. What is due more often is ticked by the hour."""
 
 HOUR = timedelta(hours=1)
 
@@ -76,8 +76,7 @@ def slots(action: Action, shift: Shift) -> tuple[Slot, ...]:
     made: list[Slot] = []
     if not times and not action.first_due:
         return (Slot(UNTIMED[action.urgency], "once"),)
-    often = action.every is not None and action.every < HOUR
-    grouped = _blocks(times, shift) if often or len(times) > MOST_BOXES else [(at, "") for at in times]
+    grouped = _blocks(times, shift) if len(times) > MOST_BOXES else [(at, "") for at in times]
     for at, note in grouped:
         label = f"{shift.clock.local(at):%H:%M}"
         made.append(Slot(f"{label} {note}".strip(), _stamp(at, shift)))

@@ -4,17 +4,21 @@ from __future__ import annotations
 
 from dataclasses import replace
 from datetime import timedelta
+from io import BytesIO
 
 import pytest
+from docx import Document
 
 from handoff.document import draft
+from handoff.document.care_plan import BLANK_BOXES, BLANK_ROWS
 from handoff.document.names import WORD, WORD_2010
 from handoff.document.read_back import text_of
 from handoff.document.references import references
 from handoff.document.schedule import MOST_BOXES, Shift, overdue_slot, slots
 from handoff.plugin import Action, System, Urgency
+from handoff.policy import Policy
 from tests.document.fake import STEM, actions, assessment, at, state
-from tests.document.reading import body, cells, headings, tables, tags
+from tests.document.reading import body, cells, headings, tables, tags, text
 
 
 def action(**given: object) -> Action:
@@ -35,7 +39,7 @@ def labels(given: Action, hours: int = 12) -> list[str]:
 def test_areas_are_headings_with_the_airway_first(plan: bytes) -> None:
     found = headings(plan, 1)
     assert found[:2] == ["Airway", "Observations"]
-    assert found[-2:] == ["Planned and awaited", "Sources"]
+    assert found[-3:] == ["Planned and awaited", "Added by hand in this shift", "Sources"]
 
 
 def test_each_row_has_a_reference_a_text_and_a_reason(plan: bytes) -> None:
@@ -77,10 +81,17 @@ def test_an_hourly_task_has_one_box_an_hour() -> None:
     assert labels(hourly)[-1] == "07:00"
 
 
-def test_a_task_every_quarter_of_an_hour_is_ticked_by_the_hour() -> None:
+def test_a_task_every_quarter_of_an_hour_has_a_box_for_each_quarter() -> None:
     often = action(first_due=at(state(), "19:30"), every=timedelta(minutes=15))
-    assert labels(often)[:2] == ["19:00 (2 checks)", "20:00 (4 checks)"]
-    assert labels(often)[-1] == "07:00 (2 checks)"
+    assert labels(often)[:3] == ["19:30", "19:45", "20:00"]
+    assert labels(often)[-1] == "07:15"
+    assert len(labels(often)) == 48
+
+
+def test_a_task_that_is_due_more_often_is_ticked_by_the_hour() -> None:
+    often = action(first_due=at(state(), "19:30"), every=timedelta(minutes=10))
+    assert labels(often)[:2] == ["19:00 (3 checks)", "20:00 (6 checks)"]
+    assert labels(often)[-1] == "07:00 (3 checks)"
     assert len(labels(often)) == 13
 
 
@@ -94,8 +105,8 @@ def test_a_row_never_has_more_boxes_than_fit_and_each_label_is_its_own(minutes: 
 
 
 def test_every_check_is_counted_in_some_box() -> None:
-    often = action(first_due=at(state(), "19:30"), every=timedelta(minutes=15))
-    assert sum(int(label.split("(")[1].split()[0]) for label in labels(often)) == 48
+    often = action(first_due=at(state(), "19:30"), every=timedelta(minutes=10))
+    assert sum(int(label.split("(")[1].split()[0]) for label in labels(often)) == 72
 
 
 def test_an_overdue_task_has_a_box_for_what_was_missed_and_keeps_its_rhythm() -> None:
@@ -135,7 +146,7 @@ def test_an_hour_that_the_clock_shows_twice_has_two_boxes_told_apart() -> None:
 def test_boxes_are_real_tick_boxes_and_each_has_room_for_initials(plan: bytes) -> None:
     root = body(plan)
     ticks = [tag for tag in tags(plan) if tag.startswith("row:") and tag.count(":") == 2]
-    assert len(list(root.iter(f"{WORD_2010}checkbox"))) == len(ticks) > 50
+    assert len(list(root.iter(f"{WORD_2010}checkbox"))) == len(ticks) > 70
     assert {f"by:{tag[4:]}" for tag in ticks} <= set(tags(plan))
     assert "row:F1:2000" in ticks
     assert "row:A1:1515-overdue" in ticks
@@ -145,7 +156,7 @@ def test_each_row_has_a_bookmark_around_its_reference(plan: bytes) -> None:
     root = body(plan)
     names = [mark.get(f"{WORD}name") for mark in root.iter(f"{WORD}bookmarkStart")]
     assert names[:2] == ["row_A1", "row_A2"]
-    assert len(names) == len(actions(state()))
+    assert len(names) == len(actions(state())) + BLANK_ROWS
     assert len(list(root.iter(f"{WORD}bookmarkEnd"))) == len(names)
 
 
@@ -167,3 +178,32 @@ def test_a_plan_without_tasks_says_so() -> None:
 def test_there_are_lines_to_sign(plan: bytes) -> None:
     assert "sign:nurse:signature" in tags(plan)
     assert "Plan read and taken on" in text_of(plan)
+
+
+def test_there_are_blank_rows_with_references_bookmarks_and_tags_of_their_own(plan: bytes) -> None:
+    found = tags(plan)
+    for number in range(1, BLANK_ROWS + 1):
+        ref = f"X{number}"
+        assert {f"row:{ref}", f"text:{ref}"} <= set(found)
+        for box in range(1, BLANK_BOXES + 1):
+            assert {f"row:{ref}:{box}", f"due:{ref}:{box}", f"by:{ref}:{box}"} <= set(found)
+        assert f"row_{ref}" in [mark.get(f"{WORD}name") for mark in body(plan).iter(f"{WORD}bookmarkStart")]
+
+
+def test_no_task_of_the_plan_gets_the_letter_of_the_rows_added_by_hand() -> None:
+    assert list(references([action(area="X-ray")]).values()) == ["R1"]
+
+
+def test_why_is_in_small_print_and_the_task_is_not(plan: bytes) -> None:
+    styles = Document(BytesIO(plan)).styles
+    assert styles["Small"].font.size.pt <= 8 < styles["Key"].font.size.pt
+    (why,) = [p for p in body(plan).iter(f"{WORD}p") if text(p).startswith("swelling grows for a day")]
+    assert why.find(f"{WORD}pPr/{WORD}pStyle").get(f"{WORD}val") == "Small"
+
+
+def test_the_same_plan_lies_on_its_side_or_stands_as_the_policy_says() -> None:
+    for orientation, turned in (("landscape", True), ("portrait", False)):
+        made = draft(assessment(Policy(care_plan_orientation=orientation)), STEM)[f"{STEM}-care-plan.docx"]
+        section = Document(BytesIO(made)).sections[0]
+        assert (section.page_width > section.page_height) is turned
+        assert tags(made) == tags(draft(assessment(), STEM)[f"{STEM}-care-plan.docx"])

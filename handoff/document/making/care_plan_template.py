@@ -28,8 +28,14 @@ from handoff.document.making.shared import (
     warnings,
 )
 
+ROOM = "_" * 12
+"""Room for a time and initials written by hand."""
+
 WIDTH = 15478
 """Text width of the page in twentieths of a point."""
+
+WIDTHS = (700, 5200, 9578)
+"""Reference, task and boxes."""
 
 
 def body() -> str:
@@ -46,6 +52,8 @@ def body() -> str:
             when("now", paragraph("Key", run("DO NOW: ", "Strong"), run("{{ now }}", "Reference"))),
             when("not areas", paragraph("Key", nothing)),
             each("area in areas", paragraph("Heading1", "{{ area.title }}"), _tasks()),
+            paragraph("Heading1", "Added by hand in this shift"),
+            _by_hand(),
             paragraph("Gap"),
             _signatures(),
             when("sources", paragraph("Heading1", "Sources"), sources("sources", 800, WIDTH - 800)),
@@ -85,10 +93,10 @@ def _tasks() -> str:
     return listing(
         "Tasks of one problem area",
         "task in area.tasks",
-        Column(700, "Ref", paragraph("Key", reference)),
-        Column(5200, "What to do, and why", task + paragraph("Small", "{{ task.why }}") + note),
+        Column(WIDTHS[0], "Ref", paragraph("Key", reference)),
+        Column(WIDTHS[1], "What to do, and why", task + paragraph("Small", "{{ task.why }}") + note),
         Column(
-            9578,
+            WIDTHS[2],
             "When due: tick, time done, initials",
             when("task.when or task.late", rhythm) + paragraph("Boxes", _boxes("task.boxes")),
         ),
@@ -101,10 +109,35 @@ def _boxes(source: str) -> str:
             run(f"{{%r for box in {source} %}}"),
             tick_box("{{ box.tag }}", "{{ box.title }}"),
             run("\u00a0{{ box.label }}\u00a0"),
-            blank("{{ box.by_tag }}", "{{ box.by_title }}", BLANK[1:]),
+            blank("{{ box.by_tag }}", "{{ box.by_title }}", ROOM),
             run("   "),
             run("{%r endfor %}"),
         )
+    )
+
+
+def _by_hand() -> str:
+    """Rows to be filled in by pen or in Word, found again by their references like the others."""
+    reference = marked("{{ blank.tag }}", "Row", run("{{ blank.ref }}", "Reference"))
+    line = blank("{{ blank.text_tag }}", "{{ blank.text_title }}", BLANK * 4)
+    boxes = "".join(
+        (
+            run("{%r for box in blank.boxes %}"),
+            tick_box("{{ box.tag }}", "{{ box.title }}"),
+            run("\u00a0due\u00a0"),
+            blank("{{ box.due_tag }}", "{{ box.due_title }}", "_" * 6),
+            run("\u00a0"),
+            blank("{{ box.by_tag }}", "{{ box.by_title }}", ROOM),
+            run("   "),
+            run("{%r endfor %}"),
+        )
+    )
+    return listing(
+        "Tasks added by hand",
+        "blank in by_hand",
+        Column(WIDTHS[0], "Ref", paragraph("Key", reference)),
+        Column(WIDTHS[1], "What to do, and why", paragraph("Boxes", line)),
+        Column(WIDTHS[2], "When due: tick, time done, initials", paragraph("Boxes", boxes)),
     )
 
 
