@@ -87,6 +87,12 @@ def mg_text(mg: float) -> str:
     return with_unit(mg, "mg", 2)
 
 
+def total_text(mg: float, places: int = 1) -> str:
+    """Return a total as it is printed in mg; one above 0 that would be printed as 0 is said in mcg."""
+    said = with_unit(mg, "mg", places)
+    return mg_text(mg) if mg > 0 and said == "0 mg" else said
+
+
 def _portions(case: Case, doses: tuple[Given, ...], ran: tuple[Run, ...]) -> tuple[Portion, ...]:
     found = []
     for one in doses:

@@ -5,14 +5,13 @@ from __future__ import annotations
 from collections.abc import Iterator
 from itertools import pairwise
 
-from handoff.plugin import Case, Map, Problem, Severity, unit_of, words
+from handoff.plugin import Case, Map, Problem, unit_of
 
-from . import formula
-from .charted import mg_text
-from .given import mass_mg, moment_of
+from .dose_lines import unusual_dose, unusual_rates
+from .given import moment_of
 from .infusions import RATE, happenings, line_name
 from .living import BLOCK, Path, living
-from .names import PATCH, drug_of, factor_heading, route_of
+from .names import PATCH, route_of
 
 
 def faults(case: Case) -> Iterator[Problem]:
@@ -20,6 +19,7 @@ def faults(case: Case) -> Iterator[Problem]:
     yield from _doses(case)
     yield from _infusions(case)
     yield from _pumps(case)
+    yield from unusual_rates(case)
 
 
 def _doses(case: Case) -> Iterator[Problem]:
@@ -40,7 +40,7 @@ def _doses(case: Case) -> Iterator[Problem]:
                 "keep contains for a combination product",
             )
         yield from _route(case, entry, path)
-        yield from _unusual(case, entry, path)
+        yield from unusual_dose(case, entry, path)
         for name in () if has_contents else ("drug", "dose"):
             if entry.get(name) is None:
                 yield Problem(
@@ -53,31 +53,6 @@ def _route(case: Case, entry: Map, path: Path) -> Iterator[Problem]:
     if node is not None and route_of(case, node) == PATCH:
         cure = "write it under infusions: with from: and rate: in mcg/h"
         yield Problem(node, (*path, "route"), "a patch has a rate and no single dose", cure)
-
-
-def _unusual(case: Case, entry: Map, path: Path) -> Iterator[Problem]:
-    """A single dose far above what is usual is asked about once; most often the point has slipped."""
-    heading = factor_heading(case, route_of(case, entry.get("route")))
-    contents = entry.get("contains")
-    parts = list(living(contents, (*path, "contains"))) if contents is not None else [(entry, path)]
-    for part, place in parts:
-        drug, dose = drug_of(case, part.get("drug")), part.get("dose")
-        limits = case.parameters.table("unusual_dose").get(drug.name if drug else "", {})
-        mg, _ = mass_mg(dose, entry.get("concentration"))
-        limit = limits.get(heading)
-        if (
-            dose is None
-            or drug is None
-            or mg is None
-            or limit is None
-            or words(entry.get("confirmed")) == "yes"
-        ):
-            continue
-        if formula.exceeds(mg, float(limit)):
-            by = words(entry.get("route"))
-            what = f"{words(dose)} of {drug.name} {by} is unusual (above {mg_text(float(limit))})"
-            cure = "check it; if it is right, add confirmed: yes beside it"
-            yield Problem(dose, (*place, "dose"), what, cure, Severity.UNUSUAL)
 
 
 def _infusions(case: Case) -> Iterator[Problem]:

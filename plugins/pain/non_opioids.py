@@ -19,7 +19,7 @@ from handoff.plugin import (
 )
 
 from . import formula
-from .charted import Charted, Portion
+from .charted import Charted, Portion, total_text
 from .early import unasked
 from .limits import Limit, limit
 from .names import IBUPROFEN, PARACETAMOL
@@ -130,7 +130,7 @@ def _flag(total: _Total) -> Flag:
 
 
 def _shown(case: Case, total: _Total) -> str:
-    mg = with_unit(total.mg, "mg", 1)
+    mg = total_text(total.mg)
     if total.unknown:
         gaps = "; ".join(f"{portion.missing}: {portion.said}" for portion in total.unknown)
         said = f"not computed: {gaps}; at least {mg}"
@@ -156,10 +156,10 @@ def _not_asked(case: Case) -> str:
 
 
 def _working(total: _Total) -> Working:
-    terms = [f"{number_text(portion.mg, 1)} mg" for portion in total.portions if portion.mg is not None]
+    terms = [total_text(portion.mg) for portion in total.portions if portion.mg is not None]
     return Working(
         formula="sum of every dose of the last 24 h, all routes and products",
-        sum=f"{' + '.join(terms) or '0 mg'} = {with_unit(total.mg, 'mg', 1)}",
+        sum=f"{' + '.join(terms) or '0 mg'} = {total_text(total.mg)}",
         inputs=tuple(portion.input() for portion in total.portions),
         rule=_rule(total),
     )

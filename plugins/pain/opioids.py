@@ -15,16 +15,16 @@ from handoff.plugin import (
     hours_text,
     joined,
     number_text,
-    with_unit,
 )
 
 from . import formula
-from .charted import Charted, Portion
+from .charted import Charted, Portion, total_text
 from .names import OPIOID, factor_heading
 from .pumps import pumps
 
 KEY = "pain.opioid_equivalent_24h"
 LABEL = "Opioid exposure in 24 h"
+MOST_PLACES = 6
 UNITS = {"": "mg", "_per_mcg": "mcg", "_per_mcg_h": "mcg/h"}
 
 
@@ -60,7 +60,7 @@ def item(case: Case, charted: Charted) -> Item:
         working=Working(
             formula="oral morphine equivalent: each amount times its factor, added",
             sum=" + ".join(said for _, said in (term for term in terms if term))
-            + f" = {with_unit(total, 'mg', 2)}"
+            + f" = {total_text(total, 2)}"
             if portions
             else "no opioid charted: 0 mg",
             inputs=tuple(portion.input() for portion in portions),
@@ -76,9 +76,15 @@ def _term(case: Case, table: Mapping[str, Any], portion: Portion) -> tuple[float
         factor = factors.get(portion.drug.name + suffix)
         if factor is not None and portion.mg is not None and portion.drug.listed:
             amount = _in_unit(portion.mg, suffix)
-            said = f"{portion.drug.name} {portion.route} {number_text(amount, 2)} {unit} x {number_text(factor, 3)}"
+            said = f"{portion.drug.name} {portion.route} {_amount_text(amount)} {unit} x {number_text(factor, 3)}"
             return formula.opioid_equivalent_mg(amount, float(factor)), said
     return None
+
+
+def _amount_text(amount: float) -> str:
+    """An amount of the sum to 2 places; a smaller one above 0 with those it needs."""
+    said = number_text(amount, 2)
+    return number_text(amount, MOST_PLACES) if said == "0" and amount > 0 else said
 
 
 def _in_unit(mg: float, suffix: str) -> float:
@@ -99,7 +105,7 @@ def _shown(charted: Charted, total: float, called: str, any_opioid: bool) -> str
     hours = f"{hours_text(charted.hours)} charted"
     if not any_opioid:
         return f"0 mg: no opioid charted in the last 24 h ({hours})"
-    return f"{with_unit(total, 'mg', 1)} oral morphine equivalent in 24 h ({hours}), factors: {called}"
+    return f"{total_text(total)} oral morphine equivalent in 24 h ({hours}), factors: {called}"
 
 
 def _by(by_policy: bool) -> str:
