@@ -73,7 +73,7 @@ def page_one(assessment: Assessment, shift: Shift) -> PageOne:
     acting = [item for item in ranked if item.flag is Flag.ACTION]
     unranked = [item for item in assessment.items if item.flag is Flag.ACTION and item.rank is None]
     ordered = [action for _, group in by_area(assessment.actions) for action in group]
-    tasks = [action for action in ordered if action.urgency is Urgency.NOW]
+    tasks = _soonest_first([action for action in ordered if action.urgency is Urgency.NOW], acting)
     due, more_due = _due(assessment, shift, refs)
     gaps = [sentence(item.label) for item in ranked if item.flag is Flag.NOT_RECORDED]
     return PageOne(
@@ -101,7 +101,25 @@ def keys_on_page_one(assessment: Assessment, shift: Shift) -> frozenset[str]:
 
 
 def _by_rank(items: Iterable[Item]) -> list[Item]:
-    return sorted(items, key=lambda item: item.rank or 0)
+    return sorted(items, key=lambda item: (item.rank or 0, item.key))
+
+
+def _soonest_first(tasks: Sequence[Action], acting: Sequence[Item]) -> list[Action]:
+    """Put the task that answers the finding which can kill first on top; those without a finding keep their order.
+
+    A task answers the findings of its plugin in its system of the body, or else of its plugin.
+    """
+    place: dict[tuple[str, str], int] = {}
+    for at, item in enumerate(acting):
+        plugin = item.key.partition(".")[0]
+        place.setdefault((plugin, item.system), at)
+        place.setdefault((plugin, ""), at)
+
+    def soon(task: Action) -> int:
+        plugin = task.key.partition(".")[0]
+        return place.get((plugin, task.system), place.get((plugin, ""), len(acting)))
+
+    return sorted(tasks, key=soon)
 
 
 def _names(items: Sequence[Item]) -> list[str]:

@@ -22,7 +22,7 @@ from handoff.plugin import (
 
 from .injury import Injury, ecgs
 
-RANK_RHYTHM, RANK_MONITOR, RANK_ECG = 33, 34, 35
+RANK_RHYTHM, RANK_MONITOR, RANK_ECG = 30, 32, 35
 NO_PROOF = "Creatine kinase, its heart fraction too, does not tell whether the heart is hurt."
 
 

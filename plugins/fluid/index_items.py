@@ -15,7 +15,7 @@ HOUR = timedelta(hours=1)
 INDEX = ("given_index", "Delivered in the first 24 h")
 PROJECTED = ("projected_24h", "Projected for the first 24 h at the present rate")
 PER_KG = ("projected_per_kg", "Projected for the first 24 h by weight")
-RANK_TOO_MUCH = 36
+RANK_TOO_MUCH = 46
 
 
 def items(course: Course) -> tuple[Item, ...]:

@@ -13,7 +13,7 @@ from .say import absent, figure, inputs_of, ml, ml_h, once, span, unflagged, why
 
 TOTAL = ("total_24h", "Resuscitation fluid in 24 h")
 FIRST = ("first_8h", "First 8 h from the burn")
-RANK_NO_ORDER = 34
+RANK_NO_ORDER = 45
 
 
 def items(course: Course) -> tuple[Item, ...]:

@@ -12,7 +12,7 @@ from .say import absent, figure, ml_h, ml_kg_h, once, unflagged
 from .targets import Target
 from .urine import Urine
 
-RANK_LOW = 32
+RANK_LOW = 44
 TREND = 4
 
 

@@ -15,8 +15,8 @@ from .say import NOT_RECORDED, figure, once, unflagged
 
 TREND = 3
 BEYOND = {"from": operator.ge, "above": operator.gt, "below": operator.lt, "to": operator.le}
-RANK = {"potassium": 33, "glucose": 38, "sodium": 39}
-RANK_OTHER = 39
+RANK = {"potassium": 33, "glucose": 38, "sodium": 47}
+RANK_OTHER = 47
 HOUR = timedelta(hours=1)
 
 

@@ -25,7 +25,7 @@ from handoff.plugin import (
 from . import formula, patient
 from .signs import Sign, label_of, sign
 
-RANK = 37
+RANK = 43
 MET, NOT_MET, UNKNOWN, NO_ROW = "met", "not met", "cannot be judged", "does not apply"
 PROMPT = "A trigger to look for infection, no diagnosis; a large burn has an inflamed body by itself."
 ADULTS_ONLY = ("china-2013", "qsofa-2016", "sirs-1992", "sirs-uk")

@@ -59,7 +59,7 @@ def test_one_that_nobody_read_is_due_for_review() -> None:
 def test_an_arrhythmia_is_on_page_one_for_a_day() -> None:
     events = [{"at": "2026-03-14 10:00", "what": "arrhythmia", "said": "run of ectopics"}]
     found = made(events=events)
-    assert (item(found, "electrical.rhythm").rank, item(found, "electrical.rhythm").flag) == (33, Flag.ACTION)
+    assert (item(found, "electrical.rhythm").rank, item(found, "electrical.rhythm").flag) == (30, Flag.ACTION)
     assert "arrhythmia at 10:00: run of ectopics" in item(found, "electrical.rhythm").shown
     assert item(made(events=events, at="2026-03-15 10:00"), "electrical.rhythm").flag is Flag.ACTION
     assert item(made(events=events, at="2026-03-15 10:01"), "electrical.rhythm").flag is Flag.NONE
@@ -85,7 +85,7 @@ def test_each_list_asks_for_its_own_criteria(
 ) -> None:
     found = made(block, choices={"electrical.monitoring": list_name}, **more)
     assert (item(found, "electrical.monitoring").flag is Flag.ACTION) is asked
-    assert (item(found, "electrical.monitoring").rank == 34) is asked
+    assert (item(found, "electrical.monitoring").rank == 32) is asked
     assert ("electrical.start_monitoring" in action_keys(found)) is asked
 
 

@@ -22,7 +22,7 @@ def test_an_entry_that_only_ends_ends_the_order_in_force() -> None:
     found = assessed(patient(order(at=FIRST), BARE))
     shown = item(found, "order")
     assert shown.shown == "order of 08:30 ended 11:00; no order in force since"
-    assert (shown.flag, shown.rank) == (Flag.REVIEW, 34)
+    assert (shown.flag, shown.rank) == (Flag.REVIEW, 45)
     assert value(found, "rate_now") is None
     assert item(found, "rate_now").shown.startswith("no order in force; ")
 
@@ -38,7 +38,7 @@ def test_an_earlier_order_that_nobody_ended_is_asked_about() -> None:
         found = computed(patient(*orders))
         shown = item(found, "order")
         assert shown.shown == "order of 10:00 ended 11:00; earlier order of 08:30 not ended: ask which holds"
-        assert (shown.flag, shown.rank) == (Flag.REVIEW, 34)
+        assert (shown.flag, shown.rank) == (Flag.REVIEW, 45)
         assert item(found, "rate_now").rank is None
         said = " ".join(one.shown for one in found.items if one.key.startswith("fluid."))
         assert "no order recorded" not in said

@@ -78,7 +78,7 @@ def test_no_temperature_is_left_to_the_vital_signs_to_say() -> None:
 
 def test_three_triggers_after_the_first_day_ask_for_a_look_now() -> None:
     found = made({"19:00": SEPTIC}, injury=DAYS_AGO)
-    assert (item(found, "infection.sepsis").flag, item(found, "infection.sepsis").rank) == (Flag.ACTION, 37)
+    assert (item(found, "infection.sepsis").flag, item(found, "infection.sepsis").rank) == (Flag.ACTION, 43)
     look = action(found, "infection.look_for_it")
     assert look.urgency is Urgency.NOW
     assert "temperature, fast pulse, fast breathing" in look.why
