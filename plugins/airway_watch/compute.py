@@ -46,6 +46,7 @@ def compute(case: Case) -> Findings:
     )
     values: dict[str, object] = {
         "spo2_doubt": gas.doubt,
+        "spo2_doubts": gases.doubts(case, seen, gas),
         "tube_in_place": run.tube.in_place,
         "watched": seen.watched,
         "reasons": seen.reasons,

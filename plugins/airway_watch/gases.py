@@ -74,6 +74,12 @@ def doubt_text(case: Case, seen: Exposure, gas: Monoxide, moment: datetime) -> s
     return f"may read falsely high: {doubt}" if doubt else ""
 
 
+def doubts(case: Case, seen: Exposure, gas: Monoxide) -> dict[datetime, str]:
+    """Return the label of every saturation that carbon monoxide makes doubtful, by its moment."""
+    said = {one.at: doubt_text(case, seen, gas, one.at) for one in case.state.series("spo2")}
+    return {moment: text for moment, text in said.items() if text}
+
+
 def _spo2(case: Case, gas: Monoxide, reading: Reading | None, doubt: str) -> tuple[Item, ...]:
     """The reading itself is a vital sign and printed with them: here it stands for its doubt."""
     key, label = "airway_watch.spo2", "Oxygen saturation, whether to trust it"

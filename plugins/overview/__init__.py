@@ -7,5 +7,6 @@ plugin = Plugin(
     title="Patient, injury and course",
     package="handoff.bundled.overview",
     compute=later("handoff.bundled.overview.compute", "compute"),
+    requires=("airway_watch",),
     owns=("patient", "injury", "vital", "result", "line", "event", "handover"),
 )

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from datetime import timedelta
+from collections.abc import Mapping
+from datetime import datetime, timedelta
 
 from handoff.bundled.overview.charted import charted
 
@@ -47,6 +48,7 @@ SAID = {
 
 FULL_ROW = tuple(SAID)
 
+SATURATION = "vital.spo2"
 GASES = ("ph", "pao2", "paco2", "base_excess", "bicarbonate")
 TREND_LENGTH = 4
 
@@ -73,9 +75,14 @@ def _latest(case: Case, key: str, label: str, system: System, readings: tuple[Re
         return charted(key, label, "", Part.ASSESSMENT, system)
     last = readings[-1]
     shown = _said(last.node)
+    doubts = _doubts(case) if key == SATURATION else {}
+    shown += f", {doubts[last.at]}" if last.at in doubts else ""
     earlier = [reading for reading in readings[-TREND_LENGTH:-1] if unit_of(reading.node)]
     if earlier and unit_of(last.node):
-        trend = ", ".join(f"{words(r.node)} at {case.clock.time(r.at, case.now)}" for r in earlier)
+        trend = ", ".join(
+            f"{words(r.node)} at {case.clock.time(r.at, case.now)}{' (in doubt)' if r.at in doubts else ''}"
+            for r in earlier
+        )
         shown += f"; before: {trend}"
     age = case.now - last.at
     interval = timedelta(minutes=case.parameters.number("vital.check_interval"))
@@ -95,6 +102,13 @@ def _latest(case: Case, key: str, label: str, system: System, readings: tuple[Re
         repeats=True,
         line=line_of(last.node),
     )
+
+
+def _doubts(case: Case) -> Mapping[datetime, str]:
+    """Return why each saturation after smoke cannot be trusted, by its moment, as the airway watch found it."""
+    airway = case.findings.get("airway_watch")
+    found = airway.values.get("spo2_doubts") if airway else None
+    return found if isinstance(found, Mapping) else {}
 
 
 def _results(case: Case) -> list[Item]:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from handoff.plugin import Flag
 from tests.small_patient import action, action_keys, assessed, item, state_text
 
-NAMES = ["overview"]
+NAMES = ["area", "airway_watch", "overview"]
 ROW = {
     "resp": "18 /min",
     "spo2": "97 %",
@@ -28,6 +28,17 @@ def test_an_old_vital_sign_is_due_again_and_says_since_when() -> None:
 def test_a_trend_names_each_value_with_its_time() -> None:
     made = assessed(NAMES, state_text({"18:00": {**ROW, "pulse": "95 /min"}, "19:00": ROW}))
     assert item(made, "vital.pulse").shown == "80 /min; before: 95 /min at 18:00"
+
+
+def test_a_saturation_after_smoke_without_carboxyhaemoglobin_may_read_falsely_high_wherever_it_is_printed() -> (
+    None
+):
+    fire = {"causes": [{"kind": "flame", "setting": "enclosed space", "smoke": "yes"}]}
+    rows = {"18:00": ROW, "19:00": ROW}
+    shown = item(assessed(NAMES, state_text(rows, injury=fire)), "vital.spo2").shown
+    assert "97 %, may read falsely high: carboxyhaemoglobin is not recorded after smoke exposure" in shown
+    assert "97 % at 18:00 (in doubt)" in shown
+    assert "falsely" not in item(assessed(NAMES, state_text(rows)), "vital.spo2").shown
 
 
 def test_where_the_goal_is_comfort_no_sign_is_called_late_or_missing_and_none_is_asked_for() -> None:
