@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import typer
 
+from handoff.cli.begin import begin
 from handoff.cli.chart import chart
 from handoff.cli.check import check
 from handoff.cli.demo import demo
@@ -26,7 +27,22 @@ app = typer.Typer(
     pretty_exceptions_enable=False,
     add_completion=True,
 )
-for command in (demo, chart, check, draft, due, show, since, note, ward, wording, working, plugins, schema):
+for command in (
+    demo,
+    begin,
+    chart,
+    check,
+    draft,
+    due,
+    show,
+    since,
+    note,
+    ward,
+    wording,
+    working,
+    plugins,
+    schema,
+):
     app.command()(command)
 
 
