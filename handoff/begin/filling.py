@@ -90,7 +90,7 @@ def faults_of(text: str, file: str, setup: Setup, at: str = "") -> tuple[list[Fa
 def _dated(text: str, clock: Clock, now: datetime) -> str:
     if not _TIME_ALONE.fullmatch(text):
         return text
-    return f"{clock.local(now):%Y-%m-%d} {text.rjust(len("13:20"), "0")}"
+    return f"{clock.local(now):%Y-%m-%d} {text.rjust(len('13:20'), '0')}"
 
 
 def _patient(answers: Answers, begun: str, confirmed: frozenset[str]) -> dict[str, Any]:

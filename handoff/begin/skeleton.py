@@ -35,7 +35,7 @@ def skeleton(schema: Schema, zone: str) -> str:
     lines += ["", "# What else the file may hold; take the # away, or let handoff chart write it:"]
     for key, form in schema["properties"].items():
         if key not in LATER:
-            lines.append(f"# {key}:{' ' * max(2, _COLUMN - 3 - len(key))}# {_short(_described(form))}")
+            lines.append(f"# {key}:{' ' * max(2, _COLUMN - len('# :') - len(key))}# {_short(_described(form))}")
     return _HEAD + "\n".join(lines) + "\n"
 
 
@@ -55,4 +55,4 @@ def _words(form: Schema) -> Iterator[str]:
 
 
 def _short(text: str) -> str:
-    return text if len(text) <= _LONGEST * 2 else f"{text[: _LONGEST * 2 - 4]} ..."
+    return text if len(text) <= _LONGEST * 2 else f"{text[: _LONGEST * 2 - len(' ...')]} ..."
