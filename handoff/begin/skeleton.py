@@ -35,7 +35,9 @@ def skeleton(schema: Schema, zone: str) -> str:
     lines += ["", "# What else the file may hold; take the # away, or let handoff chart write it:"]
     for key, form in schema["properties"].items():
         if key not in LATER:
-            lines.append(f"# {key}:{' ' * max(2, _COLUMN - len('# :') - len(key))}# {_short(_described(form))}")
+            lines.append(
+                f"# {key}:{' ' * max(2, _COLUMN - len('# :') - len(key))}# {_short(_described(form))}"
+            )
     return _HEAD + "\n".join(lines) + "\n"
 
 
