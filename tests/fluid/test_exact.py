@@ -1,20 +1,21 @@
 """Every figure agrees with a second implementation in fractions over generated patients.
 
-``FLUID_PATIENTS=20000 python -m pytest tests/fluid/test_exact.py`` runs it over 20,000 of them.
+``python -m tests.long patients --count 20000 --only fluid`` runs it over 20,000 of them.
 """
 
 from __future__ import annotations
 
-import os
 from fractions import Fraction
 
 import pytest
+
+from tests.long.patients import count
 
 from .build import computed, item
 from .exact import Exact
 from .patients import patient
 
-PATIENTS = int(os.environ.get("FLUID_PATIENTS", "500"))
+PATIENTS = count(500)
 
 
 def agree(value: object, exactly: Fraction | None) -> bool:

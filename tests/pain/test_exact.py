@@ -1,21 +1,22 @@
 """Totals, limits and due times agree with a second implementation in fractions.
 
-``PAIN_PATIENTS=20000 python -m pytest tests/pain/test_exact.py`` runs it over 20,000 patients.
+``python -m tests.long patients --count 20000 --only pain`` runs it over 20,000 patients.
 """
 
 from __future__ import annotations
 
-import os
 from datetime import timedelta
 from typing import Any
 
 import pytest
 
+from tests.long.patients import count
+
 from . import exact
 from .build import NOW, assessed, computed, item
 from .patients import patient
 
-PATIENTS = int(os.environ.get("PAIN_PATIENTS", "300"))
+PATIENTS = count(300)
 
 
 def agree(value: object, exactly: Any) -> bool:
