@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
-from handoff.plugin import Case, Findings
+from dataclasses import replace
+
+from handoff.plugin import Case, Findings, Flag, Item
 
 from . import (
     carbon_monoxide,
@@ -44,6 +46,8 @@ def compute(case: Case) -> Findings:
         *carbon_monoxide.actions(case, seen, gas),
         *cyanide.actions(case, seen, run),
     )
+    if case.comfort:
+        items = tuple(_silent(item) for item in items)
     values: dict[str, object] = {
         "spo2_doubt": gas.doubt,
         "spo2_doubts": gases.doubts(case, seen, gas),
@@ -52,3 +56,9 @@ def compute(case: Case) -> Findings:
         "reasons": seen.reasons,
     }
     return Findings(items, actions, values)
+
+
+def _silent(item: Item) -> Item:
+    """Where the goal is comfort a finding is shown and asks for nothing; what is not recorded still says so."""
+    flag = item.flag if item.flag is Flag.NOT_RECORDED else Flag.NONE
+    return replace(item, flag=flag, rank=None)

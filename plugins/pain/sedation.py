@@ -150,7 +150,7 @@ def _sedation_item(case: Case, charted: Charted) -> Item:
         shown += f"; not reassessed since {at}, an opioid was given after it"
     if level.prompt:
         shown += f"; {COMFORT if case.comfort else level.prompt}"
-    flag = Flag.REVIEW if old else Flag.NONE
+    flag = Flag.REVIEW if old and not case.comfort else Flag.NONE
     if level.urgent:
         flag = Flag.REVIEW if case.comfort else Flag.ACTION
     return Item(
@@ -220,7 +220,7 @@ def _breathing_item(case: Case, charted: Charted) -> Item:
     old = stale(case, charted, reading.at)
     if old:
         shown += f"; not reassessed since {at}, an opioid was given after it"
-    flag = Flag.REVIEW if old else Flag.NONE
+    flag = Flag.REVIEW if old and not case.comfort else Flag.NONE
     limit = case.parameters.number("respiration.hold_below")
     age = case.state.age_at(case.now)
     adult = age is not None and age.years >= case.parameters.number("adult_from")
