@@ -160,6 +160,15 @@ def _acidity(case: Case) -> tuple[Item, ...]:
     )
 
 
+def _how_far(case: Case) -> tuple[str, ...]:
+    whole, close = case.parameters["hf"].value[0], case.parameters.number("hf.close_watch")
+    return (
+        "A small patch can stop the heart through the blood: calcium falls, potassium rises.",
+        f"Over {number_text(close)} cm2 a data sheet suggests a day or two of intensive care; "
+        f"over {number_text(whole)} cm2 it warns of poisoning of the whole body.",
+    )
+
+
 def _agent(case: Case, cause: Map) -> Item:
     agent, group = words(cause.get("agent")), words(child(case.block, "group"))
     advice = child(case.block, "poisons_advice")
@@ -187,9 +196,7 @@ def _agent(case: Case, cause: Map) -> Item:
         system=System.ELECTRICAL,
         flag=flag,
         sources=(case.parameters.source_of("hf" if hydrofluoric else "poisons"),),
-        cautions=("A small patch can stop the heart through the blood: calcium falls, potassium rises.",)
-        if hydrofluoric
-        else (),
+        cautions=_how_far(case) if hydrofluoric else (),
         rank=RANK_HF if hydrofluoric else None,
         line=cause.line,
     )
@@ -238,11 +245,12 @@ def actions(case: Case, cause: Map) -> tuple[Action, ...]:
                 key="chemical.hydrofluoric",
                 area="Chemical injury",
                 text="Tell the doctor now: hydrofluoric acid. Rhythm monitor on; ask for calcium and potassium now and "
-                "again, and for calcium gel as prescribed",
+                f"again, and after {number_text(case.parameters.number('hf.rinse_first'))} min of water or more "
+                "for calcium gel as prescribed",
                 why="it can poison the whole body, and pain is the guide to whether it still acts",
                 system=System.ELECTRICAL,
                 urgency=Urgency.NOW,
-                sources=(case.parameters.source_of("hf"),),
+                sources=(case.parameters.source_of("hf"), case.parameters.source_of("hf.rinse_first")),
             )
         )
     if words(child(case.block, "in_eye")) == "yes":

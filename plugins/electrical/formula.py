@@ -20,7 +20,7 @@ def voltage_class(volts: float, line_volts: float) -> str:
         FormulaInputError: Not above 0, or not finite.
 
     Source:
-        ``voltage.high`` in parameters.yaml.
+        ``voltage_line`` in parameters.yaml.
     """
     if not math.isfinite(volts) or volts <= 0:
         raise FormulaInputError("a voltage must be above 0 V")

@@ -47,8 +47,15 @@ def injury(case: Case) -> Injury | None:
         "path across the chest": KNOWN.get(words(child(case.block, "path_across_chest"))),
         "heart disease": _heart(case),
         "high voltage": high,
+        "wet skin": KNOWN.get(words(child(case.block, "wet"))),
+        "held to the source": KNOWN.get(words(child(case.block, "held_on"))),
     }
     return Injury(cause, voltage, high, facts, rhythms, case.comfort)
+
+
+def voltage_line(case: Case) -> str:
+    """Return the parameter that holds the chosen line between low and high voltage."""
+    return f"voltage_line.{case.chosen('voltage_line').name}"
 
 
 def _voltage(case: Case, cause: Map) -> tuple[str, bool | None]:
@@ -57,7 +64,7 @@ def _voltage(case: Case, cause: Map) -> tuple[str, bool | None]:
     volts = amount(cause.get("voltage"), "V")
     if volts is None:
         return UNKNOWN_VOLTAGE, None
-    found = formula.voltage_class(volts, case.parameters.number("voltage.high"))
+    found = formula.voltage_class(volts, case.parameters.number(voltage_line(case)))
     said = f"{words(cause.get('voltage'))}, {found} voltage"
     if found == formula.AT_THE_LINE:
         said = f"{words(cause.get('voltage'))}, at the line between low and high: taken as high"

@@ -6,7 +6,7 @@ from datetime import timedelta
 
 from handoff.plugin import Action, Case, Flag, Item, System, Urgency, child, entries, fact, joined, words
 
-from .injury import Injury
+from .injury import Injury, voltage_line
 
 ARM = ("arm", "hand", "finger", "wrist", "elbow", "shoulder", "palm", "thumb")
 LEG = ("leg", "foot", "toe", "ankle", "knee", "thigh", "heel", "sole", "calf")
@@ -43,7 +43,7 @@ def items(case: Case, found: Injury) -> tuple[Item, ...]:
             "; ".join([found.voltage, joined(said) or _not_recorded(case, found), *told]),
             system=System.ELECTRICAL,
             flag=flag,
-            sources=(case.parameters.source_of("voltage.high"),),
+            sources=(case.parameters.source_of(voltage_line(case)),),
             cautions=(HIDDEN,) if found.high is not False else (),
             line=found.cause.line,
         ),

@@ -23,13 +23,22 @@ from handoff.plugin import (
 from .injury import Injury, ecgs
 
 RANK_RHYTHM, RANK_MONITOR, RANK_ECG = 30, 32, 35
+CHILD_LIST = "monitoring.emergency-text"
 NO_PROOF = "Creatine kinase, its heart fraction too, does not tell whether the heart is hurt."
 
 
 def _list(case: Case) -> tuple[str, str, list[str]]:
     name = f"monitoring.{case.chosen('monitoring').name}"
     table = case.parameters.table(name)
-    return name, str(table["title"]), [str(row) for row in table["rows"]]
+    rows = [str(row) for row in table["rows"]]
+    if name == CHILD_LIST and _is_child(case):
+        rows += [str(row) for row in case.parameters["monitoring.child_rows"].value if row not in rows]
+    return name, str(table["title"]), rows
+
+
+def _is_child(case: Case) -> bool:
+    age = case.state.age_at(case.now)
+    return age is not None and age.years < case.parameters.number("child_under")
 
 
 def met(case: Case, found: Injury) -> list[str]:
