@@ -7,7 +7,7 @@ hold. It is read by the same strict reader as the patient state.
 from __future__ import annotations
 
 import os
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, field
 from datetime import UTC, datetime, timedelta
 from pathlib import Path
@@ -16,6 +16,7 @@ from typing import Any
 from handoff.state.access import amount, words
 from handoff.state.faults import Fault, StateFaults
 from handoff.state.file_text import NotAStateFile, read_text
+from handoff.state.findings import is_blank
 from handoff.state.nodes import List, Map
 from handoff.state.reader import read_nodes
 from handoff.state.schema import expand, load_schema
@@ -43,6 +44,9 @@ class Policy:
     plugins: tuple[str, ...] = ()
     choices: Mapping[str, str] = field(default_factory=dict)
     values: Mapping[str, Mapping[str, Any]] = field(default_factory=dict)
+    file: str = field(default="policy", compare=False)
+    places: Mapping[str, tuple[int, int]] = field(default_factory=dict, compare=False)
+    """Line and column of each choice and value, by ``choices.`` or ``values.`` and its key."""
 
     def choices_of(self, plugin: str) -> dict[str, str]:
         """Return the choices that concern ``plugin``, by their short names."""
@@ -80,16 +84,30 @@ def read_policy(text: str, file: str) -> Policy:
         PolicyError: Every fault with its line.
     """
     try:
-        root, found = read_nodes(text, file)
+        root, found = read_nodes(text, file, begin="policy: 1")
     except StateFaults as error:
         raise PolicyError([fault.said(file) for fault in error.faults]) from None
     schema = load_schema("policy.schema.json")
     common = load_schema("common.schema.json")["$defs"]
-    faults: list[Fault] = [*found, *check(root, expand(schema, common), datetime.now(UTC), found)]
+    blank = list(_blank(root))
+    said = {fault.path for fault in blank}
+    checked = check(root, expand(schema, common), datetime.now(UTC), found)
+    faults = [*found, *blank, *(fault for fault in checked if fault.path not in said)]
     if faults:
-        raise PolicyError([fault.said(file) for fault in faults])
+        raise PolicyError([fault.said(file) for fault in sorted(faults)])
     kept = without_blanks(root)
     return _policy(kept if isinstance(kept, Map) else Map.at(), file)
+
+
+def _blank(root: Map) -> Iterator[Fault]:
+    """A choice or a value that names nothing: left alone, the built-in default would hold in silence."""
+    for block, due in (("choices", "a rule set"), ("values", "value:, unit: and source:")):
+        node = root.get(block)
+        for key, value in node.items() if isinstance(node, Map) else ():
+            if is_blank(value):
+                place = node.key(key) if isinstance(node, Map) else value
+                cure = f"write {due}, or delete the line to keep the built-in default"
+                yield Fault(place.line, place.column, f"{block}.{key}", "it is left blank", cure)
 
 
 def _policy(root: Map, file: str) -> Policy:
@@ -110,6 +128,13 @@ def _policy(root: Map, file: str) -> Policy:
         if isinstance(choices, Map)
         else {},
         values=_values(values) if isinstance(values, Map) else {},
+        file=file,
+        places={
+            f"{block}.{key}": (node.key(key).line, node.key(key).column)
+            for block, node in (("choices", choices), ("values", values))
+            if isinstance(node, Map)
+            for key in node
+        },
     )
 
 

@@ -20,6 +20,7 @@ from handoff.compiled import keep, kept, parsed
 from handoff.parameters import ParameterError, Parameters, read_parameters
 from handoff.plugin import API_VERSION, Plugin
 from handoff.policy import Policy, PolicyError
+from handoff.policy_check import policy_faults
 from handoff.state.schema import Schema, SchemaError, load_schema, merged_schema, schema_texts
 
 GROUP = "handoff.plugins"
@@ -163,24 +164,16 @@ def prepare(policy: Policy, plugins: Iterable[Plugin]) -> Setup:
     """
     ordered = tuple(plugins)
     schema = kept(_schema_sources(ordered)) or _merged(ordered)
-    parameters = {}
-    for plugin in ordered:
-        try:
-            parameters[plugin.name] = parameters_of(plugin).with_policy(
-                policy.choices_of(plugin.name), policy.values_of(plugin.name)
-            )
-        except ParameterError as error:
-            raise PolicyError([f"policy '{policy.name}', plugin '{plugin.name}': {error}"]) from None
-    _refuse_unknown(policy, ordered)
+    tables = {plugin.name: parameters_of(plugin) for plugin in ordered}
+    faults = policy_faults(policy, tables)
+    if faults:
+        raise PolicyError([fault.said(policy.file) for fault in faults])
+    parameters = {
+        name: table.with_policy(policy.choices_of(name), policy.values_of(name))
+        for name, table in tables.items()
+    }
     outside = tuple(plugin.name for plugin in ordered if not plugin.package.startswith(BUNDLED))
     return Setup(policy, ordered, parameters, schema, outside)
-
-
-def _refuse_unknown(policy: Policy, plugins: Iterable[Plugin]) -> None:
-    names = [plugin.name for plugin in plugins]
-    for key in (*policy.choices, *policy.values):
-        if key.partition(".")[0] not in names:
-            raise PolicyError([f"policy '{policy.name}': '{key}' names no plugin; write plugin.name"])
 
 
 def _schema_sources(plugins: Iterable[Plugin]) -> tuple[str, ...]:

@@ -34,8 +34,14 @@ MANY = 80
 _Loader = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
 
 
-def read_nodes(text: str, file: str) -> tuple[Map, list[Fault]]:
+BEGIN = "handoff: 1"
+"""How a state file begins."""
+
+
+def read_nodes(text: str, file: str, begin: str = BEGIN) -> tuple[Map, list[Fault]]:
     """Return the file's root mapping with places, and what in it is not strict YAML.
+
+    ``begin`` is the first line of a file of its kind, for the cure of an empty one.
 
     Raises:
         StateFaults: The text has no readable root mapping.
@@ -44,13 +50,14 @@ def read_nodes(text: str, file: str) -> tuple[Map, list[Fault]]:
     root = reading.root()
     if isinstance(root, Map):
         return root, reading.faults
-    raise StateFaults(file, reading.faults or [_not_a_mapping(root)])
+    raise StateFaults(file, reading.faults or [_not_a_mapping(root, begin)])
 
 
-def _not_a_mapping(root: Node | None) -> Fault:
+def _not_a_mapping(root: Node | None, begin: str) -> Fault:
     if root is None or (isinstance(root, Text) and not root):
-        return Fault(1, 1, "", "the file is empty", "begin with 'handoff: 1' and 'clock: Area/City'")
-    return Fault(root.line, root.column, "", "the file is not a list of keys", "begin with 'handoff: 1'")
+        also = " and 'clock: Area/City'" if begin == BEGIN else ""
+        return Fault(1, 1, "", "the file is empty", f"begin with '{begin}'{also}")
+    return Fault(root.line, root.column, "", "the file is not a list of keys", f"begin with '{begin}'")
 
 
 @dataclass(slots=True)

@@ -9,8 +9,8 @@ from handoff.plugin import NOT_RECORDED, Flag, Input, Item, Source, System, fact
 
 RATE_PLACES = 0
 SMALL_PLACES = 2
-NOISE = 1e-6
-"""Binary fractions: two sums that are the same to a thousandth of a drop differ by nothing."""
+NOISE = 1e-9
+"""Binary fractions: two sums that differ by less than the machine can tell differ by nothing."""
 INDEX_PLACES = 2
 PER_KG_PLACES = 2
 UNITS = {  # of the figures that others look up by key; a figure that is not there keeps its unit

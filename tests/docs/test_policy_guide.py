@@ -25,6 +25,10 @@ WRONG = {
     "'nines.adult' is a table; choose another rule set instead": (
         "policy: 1\nvalues: {area.nines.adult: {value: 9, unit: '%', source: meeting}}\n"
     ),
+    "0 h is not possible for 'line.check_interval' (0.1 to 1,000 h)": (
+        "policy: 1\nvalues: {overview.line.check_interval: {value: 0, unit: h, source: meeting}}\n"
+    ),
+    "it is left blank": "policy: 1\nchoices: {area.palm_value: }\n",
     "'8' has no unit; write 8 min or 8 h": "policy: 1\nshift_length: 8\n",
     "the policy names the plugin 'frostbite', which is not installed": "policy: 1\nplugins: [frostbite]\n",
 }
