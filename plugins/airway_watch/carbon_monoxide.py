@@ -84,6 +84,17 @@ def _antidote_before(case: Case, moment: datetime) -> str:
     return say.at(case, rows[-1].at) if rows else ""
 
 
+def _chamber(case: Case) -> str:
+    """Who may be thought of for a pressure chamber, while it is early enough; the doctor decides."""
+    burn, hours = case.state.burn_time, case.parameters.number("pressure_chamber")
+    if burn is None or case.hours_between(burn.earliest, case.now) > hours:
+        return ""
+    return (
+        f"A pressure chamber is weighed within {number_text(hours)} h where the patient was unconscious, has nerve "
+        "signs or heart ischaemia, or is pregnant; the evidence is mixed, and a large burn counts against it."
+    )
+
+
 def _now(case: Case, seen: Exposure, gas: Monoxide, expected: Expected) -> Item:
     level = expected.level
     key, label = f"airway_watch.{CO}_now", "Carboxyhaemoglobin expected now"
@@ -101,6 +112,9 @@ def _now(case: Case, seen: Exposure, gas: Monoxide, expected: Expected) -> Item:
         cautions.append(
             "No half-life is published between room air and 100 % oxygen: counted as room air, the slower fall."
         )
+    chamber = _chamber(case) if flag is Flag.ACTION else ""
+    if chamber:
+        cautions.append(chamber)
     return say.fact(
         key,
         label,
@@ -112,7 +126,10 @@ def _now(case: Case, seen: Exposure, gas: Monoxide, expected: Expected) -> Item:
         rank=rank,
         system=System.BREATHING,
         working=_working(case, expected),
-        sources=_sources(case, kinds),
+        sources=[
+            *_sources(case, kinds),
+            *([case.parameters.source_of("pressure_chamber")] if chamber else []),
+        ],
         cautions=cautions,
     )
 

@@ -8,8 +8,11 @@ from typing import TypeAlias
 
 from handoff.plugin import FormulaInputError
 
+from . import formula_tube
+
 MMHG_PER_KPA = 7.50062
 HALF = 1 / 2
+tube_depth_cm = formula_tube.tube_depth_cm
 
 FlowRow: TypeAlias = Sequence[float]
 """One row of an oxygen table: lowest and highest flow in L/min, lowest and highest oxygen in %."""

@@ -22,7 +22,7 @@ from handoff.plugin import (
     words,
 )
 
-from . import charted, formula, say
+from . import charted, formula, say, tube_lines
 from .exposure import Exposure
 from .schedule import Watch
 
@@ -39,7 +39,8 @@ def items(case: Case, seen: Exposure, run: Watch) -> tuple[Item, ...]:
         return head
     checks = tuple(row for row in charted.block_rows(case, "tube_checks") if row.at >= since)
     read = (_cuff(case, run, checks), _ties(case, run, checks))
-    return (_tube(case, run, since), *_depth(case, run, checks), *read, *head)
+    lines = tube_lines.items(case, _entry(run))
+    return (_tube(case, run, since), *_depth(case, run, checks), *lines, *read, *head)
 
 
 def _entry(run: Watch) -> Map:
