@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import replace
+from pathlib import Path
 
 import pytest
 
@@ -11,7 +12,7 @@ from handoff.document.brief import LETTERS, MORE, earns, named, shortened
 from handoff.document.read_back import text_of
 from handoff.plugin import Flag, Part
 from tests.document.fake import STEM, assessment, item
-from tests.document.printing import converted, example_documents, pages
+from tests.document.printing import example_documents, pages
 from tests.document.reading import body, cells, tables
 from tests.document.reading import text as text_below
 from tests.shift.helpers import EXAMPLES, assessed, text_of_example
@@ -20,12 +21,10 @@ ADULT = "house-fire"
 FIGURES = "Burn chart, fluid and trends"
 
 
-@pytest.fixture(scope="module")
-def adult(tmp_path_factory: pytest.TempPathFactory) -> list[str]:
+@pytest.fixture
+def adult(example_pdfs: dict[str, Path]) -> list[str]:
     """The pages of the handover of the adult example."""
-    name = f"{ADULT}-handover.docx"
-    folder = tmp_path_factory.mktemp("two-pages")
-    return pages(converted({name: example_documents()[name]}, "pdf", folder)[f"{ADULT}-handover"])
+    return pages(example_pdfs[f"{ADULT}-handover"])
 
 
 def test_the_adult_example_has_at_most_two_pages_before_the_figures(adult: list[str]) -> None:
