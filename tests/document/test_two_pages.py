@@ -40,7 +40,7 @@ def test_page_one_holds_what_is_needed_at_the_bed(adult: list[str]) -> None:
 
 
 def test_the_second_page_ends_with_the_joint_check_and_the_acceptance(adult: list[str]) -> None:
-    order = ["Assessment", "Recommendation", "To do in the coming shift", "Awaited", "Who telephones whom"]
+    order = ["Assessment", "Recommendation", "To do in the coming shift", "Awaited", "who telephones whom"]
     order += ["Looked at together at the bedside", "Responsibility accepted at"]
     places = [adult[1].index(words) for words in order]
     assert places == sorted(places)

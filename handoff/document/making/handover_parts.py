@@ -202,7 +202,7 @@ def _pending() -> str:
         "wait in pending",
         column(5000, "Awaited", "wait.what", "Brief"),
         column(2200, "Due", "wait.due", "Brief"),
-        column(3346, "Who telephones whom", "wait.phone", "Brief"),
+        column(3346, "Result telephoned to (who telephones whom)", "wait.phone", "Brief"),
     )
 
 
