@@ -156,7 +156,7 @@ def _severity(assessment: Assessment) -> tuple[str, str]:
     state = assessment.state
     written = state.handover
     at = state.when(written.get("at"))
-    said = f"said by {person(written.get('from'))}"
+    said = f"said by: {person(written.get('from'))}"
     said += f", {state.clock.day_and_time(at)}" if at else ""
     return words(written.get("severity")) or "severity not recorded by the nurse", said
 
