@@ -24,8 +24,13 @@ from handoff.cli.edge import (
 from handoff.cli.since import changes_or_stop
 
 if TYPE_CHECKING:
+    from handoff.assess import Assessment
+    from handoff.document.changes import Changes
     from handoff.registry import Setup
     from handoff.state.load import Loaded
+
+STEM = "case"
+"""What de-identified documents are called: the name of the file may be the patient's."""
 
 OutOption = Annotated[
     Path | None,
@@ -37,6 +42,18 @@ EarlierOption = Annotated[
 ]
 
 
+ConfidentialOption = Annotated[
+    bool, typer.Option("--confidential", help="Write the confidential entries too, on a sheet of their own")
+]
+ProtectOption = Annotated[
+    bool, typer.Option("--protect", help="Encrypt what is written; the password is asked for twice")
+]
+DeidentifiedOption = Annotated[
+    bool,
+    typer.Option("--deidentified", help="For teaching: hours since the burn, no names, places or numbers"),
+]
+
+
 def draft(
     file: FileArgument,
     at: AtOption = "",
@@ -44,39 +61,82 @@ def draft(
     policy: PolicyOption = None,
     bundled_only: BundledOption = False,
     since: EarlierOption = None,
+    confidential: ConfidentialOption = False,
+    protect: ProtectOption = False,
+    deidentified: DeidentifiedOption = False,
 ) -> None:
     """Draft the handover, the care plan and items.json; with --since what changed as well.
 
     Example: handoff draft ferrandel.yaml --at "2026-03-14 19:30" --out documents
-    """
-    from handoff.document import DocumentError
-    from handoff.document import draft as draft_documents
-    from handoff.files import CannotWrite, write_all
-    from handoff.items_json import as_json
-    from handoff.work import assess_loaded
 
+    Example: handoff draft ferrandel.yaml --deidentified --out teaching
+    """
+    from handoff.files import CannotWrite, write_all
+
+    if deidentified and (confidential or since):
+        other = "--confidential" if confidential else "--since"
+        stop(Exit.USAGE, f"--deidentified makes a case for teaching and goes without {other}; leave one out")
     setup = setup_or_stop(policy, bundled_only)
     loaded = open_or_stop(file, setup, at)
-    assessment = assess_loaded(loaded, setup)
+    assessment, report = _assessed(loaded, setup, deidentified)
+    stem = STEM if deidentified else file.stem
     changes = changes_or_stop(assessment, setup, since) if since else None
+    documents = _made(assessment, stem, changes, confidential)
+    if protect:
+        documents = _protected(documents, stem)
     try:
-        documents = draft_documents(assessment, file.stem, changes)
-    except DocumentError as error:
-        stop(Exit.SETUP, f"the documents could not be made: {error}")
-    documents[f"{file.stem}.items.json"] = as_json(assessment).encode()
-    folder = out or file.parent
-    try:
-        written = write_all(folder, documents)
+        written = write_all(out or file.parent, documents)
     except CannotWrite as error:
         stop(Exit.USAGE, str(error))
-    say(who(assessment.state))
+    say(who(loaded.state))
     for fault in assessment.warnings:
         complain(fault.said(assessment.state.file))
     for path in written:
         say(f"written: {path}")
+    for line in report:
+        say(line)
+    if confidential and f"{stem}-confidential.docx" not in documents:
+        say("no confidential sheet: the file holds no confidential entry")
     _say_wording(loaded, setup)
     say("Check them against the patient, the prescription and local policy before you sign.")
     leave(assessment)
+
+
+def _assessed(loaded: Loaded, setup: Setup, deidentified: bool) -> tuple[Assessment, list[str]]:
+    """Return the assessment, and what is to be said of it where it was de-identified."""
+    from handoff.work import assess_loaded
+
+    if not deidentified:
+        return assess_loaded(loaded, setup), []
+    from handoff.privacy.deidentify import deidentified as without_identifiers
+
+    assessment, report = without_identifiers(loaded, setup)
+    return assessment, report.lines()
+
+
+def _made(
+    assessment: Assessment, stem: str, changes: Changes | None, confidential: bool
+) -> dict[str, bytes]:
+    from handoff.document import DocumentError, confidential_document
+    from handoff.document import draft as draft_documents
+    from handoff.items_json import as_json
+
+    try:
+        documents = draft_documents(assessment, stem, changes)
+        if confidential:
+            documents |= confidential_document(assessment, stem)
+    except DocumentError as error:
+        stop(Exit.SETUP, f"the documents could not be made: {error}")
+    return documents | {f"{stem}.items.json": as_json(assessment).encode()}
+
+
+def _protected(documents: dict[str, bytes], stem: str) -> dict[str, bytes]:
+    from handoff.privacy.protect import CannotProtect, ask_password, protected
+
+    try:
+        return protected(documents, stem, ask_password())
+    except CannotProtect as error:
+        stop(Exit.USAGE, str(error))
 
 
 def _say_wording(loaded: Loaded, setup: Setup) -> None:

@@ -7,6 +7,7 @@ from datetime import datetime
 from handoff.assess import Assessment
 from handoff.document.care_plan import care_plan
 from handoff.document.changes import Changes
+from handoff.document.confidential import confidential_sheet
 from handoff.document.context import Data, context
 from handoff.document.figures import drawings
 from handoff.document.finish import Properties, finish
@@ -17,6 +18,7 @@ from handoff.document.ward import Ward
 
 HANDOVER = "handover.docx"
 CARE_PLAN = "care-plan.docx"
+CONFIDENTIAL = "confidential.docx"
 NOTE = "note.docx"
 WARD = "ward.docx"
 
@@ -49,6 +51,12 @@ def draft(assessment: Assessment, stem: str, changes: Changes | None = None) -> 
 def note_document(note: Note, assessment: Assessment) -> bytes:
     """Return the nursing note as a Word file; raises as :func:`draft`."""
     return _of_patient(NOTE, context(note), assessment, Page(assessment.policy.paper))
+
+
+def confidential_document(assessment: Assessment, stem: str) -> dict[str, bytes]:
+    """Return the confidential sheet by file name, empty where nothing is confidential; raises as :func:`draft`."""
+    sheet = confidential_sheet(assessment)
+    return {} if sheet is None else {f"{stem}-{CONFIDENTIAL}": note_document(sheet, assessment)}
 
 
 def ward_document(ward: Ward, made_at: datetime, digest: str, paper: str) -> bytes:

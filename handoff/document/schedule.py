@@ -78,7 +78,7 @@ def slots(action: Action, shift: Shift) -> tuple[Slot, ...]:
         return (Slot(UNTIMED[action.urgency], "once"),)
     grouped = _blocks(times, shift) if len(times) > MOST_BOXES else [(at, "") for at in times]
     for at, note in grouped:
-        label = f"{shift.clock.local(at):%H:%M}"
+        label = shift.clock.time(at)
         made.append(Slot(f"{label} {note}".strip(), _stamp(at, shift)))
     return _told_apart(made)
 
@@ -114,7 +114,7 @@ def _blocks(times: list[datetime], shift: Shift) -> list[tuple[datetime, str]]:
             break
     made = []
     for start, count in blocks.items():
-        until = f"to {shift.clock.local(start + hours * HOUR):%H:%M} " if hours > 1 else ""
+        until = f"to {shift.clock.time(start + hours * HOUR)} " if hours > 1 else ""
         made.append((start, f"{until}({plural(count, 'check')})"))
     return made
 
