@@ -114,9 +114,7 @@ def _assessed(loaded: Loaded, setup: Setup, deidentified: bool) -> tuple[Assessm
     return assessment, report.lines()
 
 
-def _made(
-    assessment: Assessment, stem: str, changes: Changes | None, confidential: bool
-) -> dict[str, bytes]:
+def _made(assessment: Assessment, stem: str, changes: Changes | None, confidential: bool) -> dict[str, bytes]:
     from handoff.document import DocumentError, confidential_document
     from handoff.document import draft as draft_documents
     from handoff.items_json import as_json

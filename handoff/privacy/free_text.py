@@ -90,7 +90,12 @@ class Scrubber:
             text, times = pattern.subn(NUMBER, text)
             self.counted[NUMBER] += times
         text = self.dates_out(self.known_out(text))
-        patterns = [(_YEARS_AND_WEEKDAYS, DATE), (CLOCK_TIMES, TIME), (_TITLED, PERSON), (_INITIAL_AND_NAME, PERSON)]
+        patterns = [
+            (_YEARS_AND_WEEKDAYS, DATE),
+            (CLOCK_TIMES, TIME),
+            (_TITLED, PERSON),
+            (_INITIAL_AND_NAME, PERSON),
+        ]
         patterns += [(pattern, NUMBER) for pattern in _NUMBERS]
         for pattern, instead in patterns:
             text, times = pattern.subn(instead, text)
@@ -126,7 +131,9 @@ def known_terms(whole: Iterable[tuple[str, str]], trade: frozenset[str]) -> tupl
             is_name = word[:1].isupper() or word.isdigit()
             if instead != NUMBER and is_name and word.lower() not in ROLES:
                 found.setdefault(word, instead)
-    usable = [(text, instead) for text, instead in found.items() if len(text) > 1 and not _is_small_number(text)]
+    usable = [
+        (text, instead) for text, instead in found.items() if len(text) > 1 and not _is_small_number(text)
+    ]
     return tuple(sorted(usable, key=lambda term: (-len(term[0]), term[0])))
 
 
@@ -144,12 +151,12 @@ def _patterns(known: tuple[tuple[str, str], ...]) -> list[tuple[re.Pattern[str],
 
 
 ROLES = frozenset(
-    (
-        "a an and at by for from in of on the to with after before dr mr mrs ms miss mx prof rn sister nurse nurses "
-        "doctor doctors registrar consultant surgeon anaesthetist anaesthetics anaesthetic intensivist physiotherapist "
-        "dietitian pharmacist psychologist chaplain crew ambulance paramedic paramedics team on-call on call burn "
-        "burns plastics emergency charge ward bed room bay unit hospital icu centre night day shift patient parent "
-        "parents mother father brother wife husband son daughter partner family neighbour friend interpreter none"
-    ).split()
+    """
+    a an and at by for from in of on the to with after before dr mr mrs ms miss mx prof rn sister nurse nurses
+    doctor doctors registrar consultant surgeon anaesthetist anaesthetics anaesthetic intensivist physiotherapist
+    dietitian pharmacist psychologist chaplain crew ambulance paramedic paramedics team on-call call burn burns
+    plastics emergency charge ward bed room bay unit hospital icu centre night day shift patient parent parents
+    mother father brother wife husband son daughter partner family neighbour friend interpreter none
+    """.split()
 )
 """Words that say what somebody is or which kind of place it is, and not who or which."""

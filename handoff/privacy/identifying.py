@@ -9,12 +9,24 @@ from handoff.privacy.free_text import NUMBER, PERSON, PLACE
 from handoff.state.nodes import List, Map, Node, Text, path_text
 
 PEOPLE = frozenset(
-    ("by", "who", "told", "contact", "phone_to", "agreed_with", "position_confirmed", "by_doctor", "turned_by")
+    (
+        "by",
+        "who",
+        "told",
+        "contact",
+        "phone_to",
+        "agreed_with",
+        "position_confirmed",
+        "by_doctor",
+        "turned_by",
+    )
 )
 """Keys that hold people, wherever they stand; those that end in ``_by`` do as well."""
 
 PLACES = frozenset(("location", "hospital", "ward", "unit_name", "address"))
-NUMBERS = frozenset(("phone", "record_number", "temporary", "national", "earlier", "unit_number", "lot", "serial"))
+NUMBERS = frozenset(
+    ("phone", "record_number", "temporary", "national", "earlier", "unit_number", "lot", "serial")
+)
 PEOPLE_AT = frozenset((("from", "name"), ("to", "name"), ("patient", "name"), ("patient", "earlier_names")))
 """The same for keys that hold people only below a certain key."""
 
@@ -66,7 +78,7 @@ def vocabulary(schema: Mapping[str, Any]) -> frozenset[str]:
 def _gather(schema: object, found: set[str]) -> None:
     if isinstance(schema, Mapping):
         for key, value in schema.items():
-            if key == "enum" or key == "x-words":
+            if key in ("enum", "x-words"):
                 found.update(word for one in value for word in str(one).lower().split())
             elif key == "description":
                 found.update(word.strip(".,:;()'") for word in str(value).lower().split())
@@ -77,10 +89,10 @@ def _gather(schema: object, found: set[str]) -> None:
             _gather(value, found)
 
 
-_EPONYMS = (
-    "doppler glasgow parkland brooke lund browder foley hartmann hartmann's ringer ringer's evans galveston "
-    "haifa muir barclay guedel yankauer boyle fr spo2 fio2 pao2 paco2 etco2 ph cpr ecg iv hb na nacl co"
-).split()
+_EPONYMS = """
+    doppler glasgow parkland brooke lund browder foley hartmann hartmann's ringer ringer's evans galveston haifa muir
+    barclay guedel yankauer boyle fr spo2 fio2 pao2 paco2 etco2 ph cpr ecg iv hb na nacl co
+    """.split()
 """Names that are methods, fluids and things of the trade, and its abbreviations."""
 
 

@@ -26,7 +26,7 @@ class SinceBurn(Clock):
         days = (instant - ZERO) // timedelta(days=1)
         return f"day {days + 1} after the burn" if days >= 0 else f"day {-days} before the burn"
 
-    def time(self, instant: datetime, near: datetime | None = None) -> str:
+    def time(self, instant: datetime, near: datetime | None = None) -> str:  # noqa: ARG002 (of any clock)
         """Return ``+06:10``; another day needs no mark of its own."""
         minutes = round((instant - ZERO).total_seconds() / 60)
         hours, rest = divmod(abs(minutes), 60)

@@ -16,6 +16,7 @@ NAMES_OF_FORMATS = {
     "purl.org",
     "www.w3.org",
     "purl.oclc.org",
+    "openoffice.org",
 }
 """Hosts in the names of namespaces: identifiers that nobody fetches."""
 

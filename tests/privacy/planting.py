@@ -57,9 +57,13 @@ def planted_text() -> str:
     """Return the state file of the example with identifiers in every free text, and a confidential entry."""
     written = (ROOT / "examples" / "house-fire.yaml").read_text(encoding="utf-8")
     root = open_text(written, "house-fire.yaml", setup(), AT).state.written
-    made = {str(key): _planted(value, setup().schema["properties"][key], (key,)) for key, value in root.items()}
+    made = {
+        str(key): _planted(value, setup().schema["properties"][key], (key,)) for key, value in root.items()
+    }
     made["confidential"] = {
-        "safeguarding": [{"at": "2026-03-14 16:00", "by": "EM", "note": "SECRETWORD heard", "told": "Dr A. Quill"}]
+        "safeguarding": [
+            {"at": "2026-03-14 16:00", "by": "EM", "note": "SECRETWORD heard", "told": "Dr A. Quill"}
+        ]
     }
     return yaml.dump(made, Dumper=_NoAliases, sort_keys=False, allow_unicode=True, width=10**6)
 
@@ -70,18 +74,23 @@ def _planted(node: Node, schema: Any, path: tuple[str | int, ...]) -> object:
         if "x-row" in schema:
             return {
                 str(day): {
-                    str(time): _planted(entry, schema["x-row"], path) if isinstance(entry, Map) else plain(entry)
+                    str(time): _planted(entry, schema["x-row"], path)
+                    if isinstance(entry, Map)
+                    else plain(entry)
                     for time, entry in times.items()
                 }
                 for day, times in node.items()
                 if isinstance(times, Map)
             }
         known = schema.get("properties", {})
-        made = {str(key): _planted(value, known.get(key, {}), (*path, str(key))) for key, value in node.items()}
+        made = {
+            str(key): _planted(value, known.get(key, {}), (*path, str(key))) for key, value in node.items()
+        }
         if "note" in known and "struck" in known:
             made.setdefault("note", PLANTED)
         return made
     if isinstance(node, List):
         return [_planted(value, schema.get("items", {}), (*path, index)) for index, value in enumerate(node)]
-    plantable = is_text(schema) and not node[:1].isdigit() and not instead_of(path) and schema.get("maxLength", 0) > len(PLANTED) + len(node)
-    return f"{node} {PLANTED}" if plantable and not schema.get("x-name") else str(node)
+    room = schema.get("maxLength", 0) > len(PLANTED) + len(node) and not schema.get("x-name")
+    plantable = is_text(schema) and not instead_of(path) and not node[:1].isdigit() and room
+    return f"{node} {PLANTED}" if plantable else str(node)

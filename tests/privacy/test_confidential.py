@@ -14,19 +14,23 @@ from handoff.document.read_back import text_of
 from tests.packaging.project import ROOT
 
 AT = "2026-03-14 19:30"
-SECRET = "bruises of different age on both arms"
+SECRET = "bruises of different age on both arms"  # noqa: S105 (no password)
 CONFIDENTIAL = f"""
 confidential:
   safeguarding:
     - {{at: 2026-03-14 15:30, by: EM, note: {SECRET}, told: Dr A. Quill at 15:40}}
-    - {{at: 2026-03-14 16:30, by: EM, note: wrong patient {SECRET}, struck: {{by: EM, at: 2026-03-14 16:31, why: wrong patient}}}}
+    - at: 2026-03-14 16:30
+      note: wrong patient {SECRET}
+      struck: {{by: EM, at: 2026-03-14 16:31, why: wrong patient}}
 """
 
 
 @pytest.fixture
 def file(tmp_path: Path) -> Path:
     path = tmp_path / "ferrandel.yaml"
-    path.write_text((ROOT / "examples" / "house-fire.yaml").read_text(encoding="utf-8") + CONFIDENTIAL, encoding="utf-8")
+    path.write_text(
+        (ROOT / "examples" / "house-fire.yaml").read_text(encoding="utf-8") + CONFIDENTIAL, encoding="utf-8"
+    )
     return path
 
 

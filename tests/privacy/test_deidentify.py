@@ -128,6 +128,8 @@ def test_draft_writes_it_under_a_name_of_its_own_and_says_what_to_look_at(tmp_pa
 
 def test_it_goes_without_the_confidential_sheet(tmp_path: Path) -> None:
     source = str(ROOT / "examples" / "house-fire.yaml")
-    done = CliRunner().invoke(app, ["draft", source, "--deidentified", "--confidential", "--out", str(tmp_path)])
+    done = CliRunner().invoke(
+        app, ["draft", source, "--deidentified", "--confidential", "--out", str(tmp_path)]
+    )
     assert done.exit_code == 2
     assert list(tmp_path.iterdir()) == []

@@ -12,6 +12,7 @@ import zlib
 from functools import lru_cache
 from io import BytesIO
 from pathlib import Path
+from typing import Any
 from zipfile import ZipFile
 
 import pytest
@@ -33,6 +34,7 @@ from tests.document.printing import example_documents
 from tests.packaging.project import ROOT
 
 PASSWORD = "kettle harbour nine ropes"  # noqa: S105 (of a test)
+QUIETLY: Any = {"capture_output": True, "timeout": 120, "check": False}
 WRONG = "kettle harbour nine rope"
 
 
@@ -60,19 +62,9 @@ def opened_in_the_office(content: bytes, password: str, folder: Path) -> str:
     folder.mkdir(parents=True, exist_ok=True)
     source, target = folder / "in.docx", folder / "out.txt"
     source.write_bytes(content)
-    library = folder / "profile" / "user" / "basic" / "Standard"
-    library.mkdir(parents=True)
-    head = '<?xml version="1.0" encoding="UTF-8"?>\n'
-    space = 'xmlns:library="http://openoffice.org/2000/library"'
-    (library / "script.xlb").write_text(
-        f'{head}<library:library {space} library:name="Standard" library:readonly="false" '
-        'library:passwordprotected="false"><library:element library:name="Opens"/></library:library>'
-    )
-    (library.parent / "script.xlc").write_text(
-        f'{head}<library:libraries {space} xmlns:xlink="http://www.w3.org/1999/xlink"><library:library '
-        'library:name="Standard" xlink:href="$(USER)/basic/Standard/script.xlb/" xlink:type="simple" '
-        'library:link="false"/></library:libraries>'
-    )
+    profile = f"-env:UserInstallation={(folder / 'profile').as_uri()}"
+    # The first start lays out the profile with an empty macro module, which then takes ours.
+    subprocess.run([office, profile, "--headless", "--norestore", "--terminate_after_init"], **QUIETLY)  # noqa: PLW1510
     basic = f"""Sub Main
   On Error Goto Leave
   Dim given(1) As New com.sun.star.beans.PropertyValue
@@ -90,13 +82,14 @@ Leave:
   StarDesktop.terminate()
 End Sub"""
     escaped = basic.replace("&", "&amp;").replace("<", "&lt;").replace('"', "&quot;")
-    (library / "Opens.xba").write_text(
-        f'{head}<script:module xmlns:script="http://openoffice.org/2000/script" script:name="Opens" '
+    (folder / "profile" / "user" / "basic" / "Standard" / "Module1.xba").write_text(
+        '<?xml version="1.0" encoding="UTF-8"?>\n<script:module '
+        'xmlns:script="http://openoffice.org/2000/script" script:name="Module1" '
         f'script:language="StarBasic">{escaped}</script:module>'
     )
-    profile = f"-env:UserInstallation={(folder / 'profile').as_uri()}"
-    command = [office, profile, "--headless", "--norestore", "macro:///Standard.Opens.Main"]
-    subprocess.run(command, capture_output=True, timeout=120, check=False)
+    subprocess.run(
+        [office, profile, "--headless", "--norestore", "macro:///Standard.Module1.Main"], **QUIETLY
+    )  # noqa: PLW1510
     return target.read_text(encoding="utf-8-sig") if target.exists() else ""
 
 
@@ -112,7 +105,10 @@ def read_aes(content: bytes, password: str) -> bytes:
         (part,) = archive.infolist()
         extra = part.extra
     at = part.header_offset
-    lengths = int.from_bytes(content[at + 26 : at + 28], "little"), int.from_bytes(content[at + 28 : at + 30], "little")
+    lengths = (
+        int.from_bytes(content[at + 26 : at + 28], "little"),
+        int.from_bytes(content[at + 28 : at + 30], "little"),
+    )
     data = content[at + 30 + sum(lengths) :][: part.compress_size]
     assert extra[:2] == b"\x01\x99"
     assert extra[8] == 3, "AES of 256 bits"
@@ -213,7 +209,12 @@ def test_without_a_terminal_nothing_is_written(tmp_path: Path) -> None:
     example = str(ROOT / "examples" / "nearly-empty.yaml")
     command = [sys.executable, "-m", "handoff", "draft", example, "--out", str(tmp_path), "--protect"]
     done = subprocess.run(
-        command, input=f"{PASSWORD}\n{PASSWORD}\n", capture_output=True, text=True, start_new_session=True, check=False
+        command,
+        input=f"{PASSWORD}\n{PASSWORD}\n",
+        capture_output=True,
+        text=True,
+        start_new_session=True,
+        check=False,
     )
     assert done.returncode == 2, done.stderr
     assert "asks for the password at the terminal" in done.stderr
@@ -221,7 +222,9 @@ def test_without_a_terminal_nothing_is_written(tmp_path: Path) -> None:
 
 
 def test_no_option_takes_a_password() -> None:
-    done = subprocess.run([sys.executable, "-m", "handoff", "draft", "--help"], capture_output=True, text=True, check=True)
+    done = subprocess.run(
+        [sys.executable, "-m", "handoff", "draft", "--help"], capture_output=True, text=True, check=True
+    )
     assert "--protect" in done.stdout
     assert "--password" not in done.stdout
 
