@@ -92,7 +92,7 @@ def _gather(schema: object, found: set[str]) -> None:
 _EPONYMS = """
     doppler glasgow parkland brooke lund browder foley hartmann hartmann's ringer ringer's evans galveston haifa muir
     barclay guedel yankauer boyle fr spo2 fio2 pao2 paco2 etco2 ph cpr ecg iv hb na nacl co
-    """.split()
+    """.split()  # noqa: SIM905 (a list of so many words is read as words)
 """Names that are methods, fluids and things of the trade, and its abbreviations."""
 
 

@@ -12,7 +12,6 @@ import zlib
 from functools import lru_cache
 from io import BytesIO
 from pathlib import Path
-from typing import Any
 from zipfile import ZipFile
 
 import pytest
@@ -34,7 +33,6 @@ from tests.document.printing import example_documents
 from tests.packaging.project import ROOT
 
 PASSWORD = "kettle harbour nine ropes"  # noqa: S105 (of a test)
-QUIETLY: Any = {"capture_output": True, "timeout": 120, "check": False}
 WRONG = "kettle harbour nine rope"
 
 
@@ -56,6 +54,11 @@ def test_a_protected_document_says_nothing_without_the_password() -> None:
     assert PASSWORD.encode() not in made
 
 
+def quietly(office: str, profile: str, what: str) -> None:
+    command = [office, profile, "--headless", "--norestore", what]
+    subprocess.run(command, capture_output=True, timeout=120, check=False)
+
+
 def opened_in_the_office(content: bytes, password: str, folder: Path) -> str:
     """Return what an office program reads with a password, empty where it does not open."""
     office = needs_tool("soffice")
@@ -64,7 +67,7 @@ def opened_in_the_office(content: bytes, password: str, folder: Path) -> str:
     source.write_bytes(content)
     profile = f"-env:UserInstallation={(folder / 'profile').as_uri()}"
     # The first start lays out the profile with an empty macro module, which then takes ours.
-    subprocess.run([office, profile, "--headless", "--norestore", "--terminate_after_init"], **QUIETLY)  # noqa: PLW1510
+    quietly(office, profile, "--terminate_after_init")
     basic = f"""Sub Main
   On Error Goto Leave
   Dim given(1) As New com.sun.star.beans.PropertyValue
@@ -87,9 +90,7 @@ End Sub"""
         'xmlns:script="http://openoffice.org/2000/script" script:name="Module1" '
         f'script:language="StarBasic">{escaped}</script:module>'
     )
-    subprocess.run(
-        [office, profile, "--headless", "--norestore", "macro:///Standard.Module1.Main"], **QUIETLY
-    )  # noqa: PLW1510
+    quietly(office, profile, "macro:///Standard.Module1.Main")
     return target.read_text(encoding="utf-8-sig") if target.exists() else ""
 
 
