@@ -52,16 +52,8 @@ EXCEPTIONS: dict[str, dict[float, str]] = {
     "handoff/document/finish.py": {1980: "the oldest year that a zip file knows"},
     "handoff/document/printable.py": {0xFFFE: "code point", 0xFDD0: "code point", 0xFDEF: "code point"},
     "handoff/document/timeline.py": {3: "place in an order"},
-    "handoff/privacy/deidentify.py": {
-        90: "years from which an age alone can name somebody",
-        10: "letters of a date",
-        11: "letters of a date and a space",
-    },
-    "handoff/privacy/protect.py": {
-        10: "letters of a password",
-        1980: "the oldest year that a zip file knows",
-        256: "bits of a key",
-    },
+    "handoff/privacy/deidentify.py": {90: "years from which an age alone can name somebody"},
+    "handoff/privacy/protect.py": {1980: "the oldest year that a zip file knows", 256: "bits of a key"},
     "handoff/privacy/since_burn.py": {2001: "a year that says nothing"},
     "handoff/start.py": {3: "version of Python", 11: "version of Python"},
     "handoff/state/keywords.py": {0.6: "likeness of names", 3: "parts of a number"},
