@@ -24,6 +24,6 @@ def voltage_class(volts: float, line_volts: float) -> str:
     """
     if not math.isfinite(volts) or volts <= 0:
         raise FormulaInputError("a voltage must be above 0 V")
-    if volts == line_volts:
-        return AT_THE_LINE
-    return HIGH if volts > line_volts else LOW
+    if volts > line_volts:
+        return HIGH
+    return AT_THE_LINE if volts == line_volts else LOW

@@ -30,14 +30,15 @@ def is_beyond(value: float, how: str, line: float) -> bool:
         ``sepsis.*`` and ``hypothermia.*`` in parameters.yaml.
     """
     same = math.isclose(_finite("value", value), _finite("line", line), rel_tol=0.0, abs_tol=1e-9)
+    apart = 0 if same else value - line
     if how == ABOVE:
-        return value > line and not same
+        return apart > 0
     if how == BELOW:
-        return value < line and not same
+        return apart < 0
     if how == AT_LEAST:
-        return value > line or same
+        return apart >= 0
     if how == AT_MOST:
-        return value < line or same
+        return apart <= 0
     raise FormulaInputError(f"'{how}' is no way to compare")
 
 

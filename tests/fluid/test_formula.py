@@ -253,3 +253,14 @@ def test_a_refusal_names_the_argument_its_value_and_the_limits() -> None:
         formula.crystalloid_24h_ml(70, 101, 2)
     with pytest.raises(FormulaInputError, match=r"^mass_kg is 0; it must be finite and above 0$"):
         formula.crystalloid_24h_ml(0, 10, 2)
+
+
+def test_a_step_of_one_kilogram_begins_above_the_line_and_not_at_it() -> None:
+    ten = {**TEN, "step_kg": 1}
+    assert formula.rule_of_ten_ml_h(80, 40, **ten) == 400
+    assert formula.rule_of_ten_ml_h(81, 40, **ten) == 500
+
+
+def test_a_distance_from_the_middle_of_a_growth_table_must_be_a_number() -> None:
+    with pytest.raises(FormulaInputError):
+        formula.at_z_score(math.nan, power=1, median=10, spread=0.1)

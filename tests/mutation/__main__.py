@@ -20,6 +20,12 @@ from .runner import Mutations, Outcome
 
 PAGE = ROOT / "docs" / "long-runs" / "mutation.md"
 
+HEAD = """# Mutation testing: recorded runs
+
+`python -m tests.mutation --write` runs them all again and writes this page; with `--only AREA ...` those
+areas alone. [What is changed, and why by a module of our own](../decisions/mutation.md).
+"""
+
 
 def main(arguments: list[str] | None = None) -> int:
     """Run, print the table and the survivors; 1 where a survivor is not explained, 2 where a test fails anyway."""
@@ -35,15 +41,17 @@ def main(arguments: list[str] | None = None) -> int:
     parser.add_argument("--write", action="store_true", help=f"put the result into {PAGE.relative_to(ROOT)}")
     asked = parser.parse_args(arguments)
     outcomes: list[Outcome] = []
+    sections: dict[str, str] = {}
     for name in asked.only:
         found = run(known[name], asked.sample, asked.seed)
         if found is None:
             return 2
         outcomes += found
+        sections[name] = section(known[name], found, asked.sample, asked.seed)
         print(f"{name}: {len(found)} mutants, {len(survivors(found))} not noticed", flush=True)
     print(table(outcomes), listed(outcomes), sep="\n\n")
     if asked.write:
-        PAGE.write_text(page(outcomes, asked.sample, asked.seed), "utf-8")
+        PAGE.write_text(page(PAGE.read_text("utf-8") if PAGE.is_file() else "", sections), "utf-8")
     return int(any(not why(one, reasons()) for one in survivors(outcomes)))
 
 
@@ -86,23 +94,23 @@ def picked(sources: list[Source], sample: int | None, seed: int) -> list[tuple[i
     return sorted(random.Random(seed).sample(every, sample))  # noqa: S311  (no secret)
 
 
-def page(outcomes: list[Outcome], sample: int | None, seed: int) -> str:
-    """Return the page of a recorded run."""
+def section(area: Area, outcomes: list[Outcome], sample: int | None, seed: int) -> str:
+    """Return what the page says of one area: when, at which commit, the table and the survivors."""
     commit = subprocess.run(
-        ["git", "rev-parse", "--short", "HEAD"],
-        cwd=ROOT,
-        capture_output=True,
-        text=True,
-        check=True,
+        ["git", "rev-parse", "--short", "HEAD"], cwd=ROOT, capture_output=True, text=True, check=True
     ).stdout.strip()
-    which = f"--sample {sample} --seed {seed} " if sample else ""
-    return (
-        "# Mutation testing: recorded run\n\n"
-        f"{datetime.now(UTC):%Y-%m-%d %H:%M} UTC, commit {commit}, Python {sys.version.split()[0]}.\n"
-        f"Repeat it with `python -m tests.mutation {which}--write`; "
-        "[what is changed and why](../decisions/mutation.md).\n\n"
-        f"{table(outcomes)}\n\n## Survivors\n\n{listed(outcomes)}\n"
-    )
+    which = f", {sample} mutants picked by seed {seed}" if sample else ""
+    when = f"{datetime.now(UTC):%Y-%m-%d}, commit {commit}, Python {sys.version.split()[0]}{which}."
+    left = listed(outcomes)
+    survived = f"\n\n{left}" if survivors(outcomes) else ""
+    return f"{area.name}\n\n{when} Wanted: {area.wanted_pct} %.\n\n{table(outcomes)}{survived}\n"
+
+
+def page(earlier: str, sections: dict[str, str]) -> str:
+    """Return the page with the new sections in the place of the earlier ones of the same areas."""
+    kept = {part.partition("\n")[0]: part.rstrip("\n") + "\n" for part in earlier.split("\n## ")[1:]}
+    kept.update(sections)
+    return HEAD + "".join(f"\n## {kept[name]}" for name in areas() if name in kept)
 
 
 if __name__ == "__main__":

@@ -40,7 +40,8 @@ def table(outcomes: list[Outcome]) -> str:
         "|---|--:|--:|--:|--:|--:|",
     ]
     known = reasons()
-    for path in [*dict.fromkeys(one.path for one in outcomes), ""]:
+    paths = list(dict.fromkeys(one.path for one in outcomes))
+    for path in [*paths, ""] if len(paths) > 1 else paths:
         part = [one for one in outcomes if path in ("", one.path)]
         left = survivors(part)
         noticed = len(part) - len(left)
