@@ -47,6 +47,9 @@ _ENDS_CLAUSE = re.compile(r"(?:[;,:?]|[^A-Z]\.)$")
 """How a clause ends; the point of an initial (E. Marsh) ends none."""
 
 
+_HANGING = re.compile(r"(?: (?!not?\b)[a-z]{1,3})+$")
+"""Short words that lead nowhere where a line was cut (``write mL and the``); a ``no`` or ``not`` stays."""
+
 _WITH_UNIT = re.compile(r"[-+\d.,/]+ (?P<unit>[^\s\d]\S*)")
 
 
@@ -138,7 +141,7 @@ def shortened(text: str, letters: int) -> str:
     whole = [match.start() for match in re.finditer(r"\s", line) if _is_whole(line[: match.start()])]
     fitting = [end for end in whole if end <= letters] or [letters]
     clauses = [end for end in fitting if _ENDS_CLAUSE.search(line[:end]) and end >= NEAR * letters]
-    return line[: (clauses or fitting)[-1]].rstrip(" ;,:.") + MORE
+    return _HANGING.sub("", line[: (clauses or fitting)[-1]]).rstrip(" ;,:.") + MORE
 
 
 def missing_names(items: Sequence[Item]) -> str:

@@ -27,7 +27,7 @@ NURSE_WRITTEN = "handover."
 class Planned:
     """One task: its reference in the care plan (empty where it has none), what to do, and its rhythm.
 
-    ``at`` is its own time where that is not the time of its line.
+    ``at`` is its own time where that is neither the time of its line nor that of the task before it.
     """
 
     ref: str
@@ -78,7 +78,7 @@ def in_brief(moments: Sequence[Moment]) -> tuple[Moment, ...]:
     for moment in moments:
         hour = _hour(moment, lines)
         own = "" if hour == moment.when else moment.when.removesuffix(AFTERWARDS)
-        tasks = tuple(_in_few_words(task, own) for task in moment.tasks)
+        tasks = tuple(_in_few_words(task, "" if number else own) for number, task in enumerate(moment.tasks))
         before = lines[hour].tasks if hour in lines else ()
         lines[hour] = Moment(hour, before + tasks)
     return tuple(lines.values())

@@ -77,6 +77,8 @@ def test_what_was_charted_or_carries_a_flag_or_leads_its_system_earns_its_place(
         ("one clause here; another clause there", 20, "one clause here [+]"),
         ("stay whole (a, b, c and d, all of it) then end", 20, "stay whole [+]"),
         ("looked at by E. Marsh of the burn unit", 20, "looked at by E. [+]"),
+        ("write mL and the interval", 17, "write mL [+]"),
+        ("stridor was not looked for at all", 15, "stridor was not [+]"),
         ("x" * 60, 20, "x" * 20 + " [+]"),
         ("two\nlines", 20, "two lines"),
     ],

@@ -200,9 +200,9 @@ def _pending() -> str:
     return listing(
         "What is awaited",
         "wait in pending",
-        column(5000, "Awaited", "wait.what", "Brief"),
-        column(2200, "Due", "wait.due", "Brief"),
-        column(3346, "Result telephoned to (who telephones whom)", "wait.phone", "Brief"),
+        column(4600, "Awaited", "wait.what", "Brief"),
+        column(1500, "Due", "wait.due", "Brief"),
+        column(4446, "Result telephoned to (who telephones whom)", "wait.phone", "Brief"),
     )
 
 
