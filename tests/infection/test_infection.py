@@ -254,3 +254,21 @@ def test_no_sign_at_all_is_left_to_the_vital_signs_in_the_first_day() -> None:
     assert made().item("infection.sepsis") is None
     assert made(injury={"at": None}).item("infection.sepsis") is None
     assert item(made(injury=DAYS_AGO), "infection.sepsis").flag is Flag.NOT_RECORDED
+
+
+def test_the_question_about_every_line_is_one_line_of_the_care_plan() -> None:
+    lines = [
+        {"what": "arterial line", "site": "left radial", "placed": "2026-03-12 09:00"},
+        {
+            "what": "urinary catheter",
+            "site": "urethra",
+            "placed": "2026-03-14 09:00",
+            "removed": "2026-03-14 10:00",
+        },
+    ]
+    asked = action(made(lines=lines), "infection.line_need")
+    assert "arterial line" in asked.text
+    assert "urinary catheter" not in asked.text
+    assert asked.every == timedelta(hours=24)
+    comfort = {"resuscitation": {"decision": "comfort care"}}
+    assert "infection.line_need" not in action_keys(made(lines=lines, patient=comfort))

@@ -131,3 +131,9 @@ def test_comfort_as_the_goal_of_care_flags_nothing() -> None:
     found = made({"tube_feed": stopped, "bowels": bowels}, patient=COMFORT, results=results, **LATE)
     assert all(item(found, key).flag is Flag.NONE for key in mine(found))
     assert "nutrition.low_glucose" not in action_keys(found)
+
+
+def test_the_plan_of_the_dietitian_is_repeated_in_its_words() -> None:
+    found = made({"dietitian": "asked 16:00, plan tomorrow"})
+    assert item(found, "nutrition.dietitian").shown == "asked 16:00, plan tomorrow"
+    assert not [one for one in made().items if one.key == "nutrition.dietitian"]

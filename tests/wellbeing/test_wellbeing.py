@@ -86,6 +86,7 @@ def test_comfort_not_talked_over_is_a_gap_on_page_one() -> None:
     )
     assert action(found, "wellbeing.comfort_ask").urgency is Urgency.NOW
     assert action(found, "wellbeing.comfort_round").every == timedelta(hours=2)
+    assert action(found, "wellbeing.comfort_medicines").urgency is Urgency.NOW
 
 
 def test_comfort_talked_over_with_medicines_ready_asks_only_for_its_round() -> None:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from datetime import timedelta
+from datetime import UTC, datetime, timedelta
 from typing import Any
 
 import pytest
@@ -319,3 +319,23 @@ def test_a_change_that_is_due_has_its_time_in_the_plan_and_one_without_a_time_ha
 
 def test_comfort_without_a_dressing_has_no_line_about_dressings() -> None:
     assert "wounds.dressing_comfort" not in action_keys(made({"region": "trunk"}, patient=COMFORT))
+
+
+def test_the_look_under_every_splint_is_one_line_due_from_the_oldest() -> None:
+    worn = [
+        {"where": "right hand", "checked": "2026-03-14 18:00"},
+        {"where": "left elbow", "checked": "2026-03-14 17:00"},
+    ]
+    line = action(made(wounds={"splints": worn}), "wounds.splints")
+    assert line.text == "Skin and feeling under the splint: right hand, left elbow"
+    oldest = datetime(2026, 3, 14, 17, 0, tzinfo=UTC)
+    assert line.first_due == oldest + line.every
+    never = made(wounds={"splints": [*worn, {"where": "neck"}]})
+    assert action(never, "wounds.splints").first_due == never.now
+    assert "wounds.splints" not in action_keys(made(wounds={"splints": worn}, patient=COMFORT))
+
+
+def test_a_burned_face_has_its_mouth_cleaned_and_a_burned_leg_has_not() -> None:
+    found = made({"region": "head", "face": "front"})
+    assert "open wide" in action(found, "wounds.mouth_care").text
+    assert "wounds.mouth_care" not in action_keys(made({"region": "left leg"}))
