@@ -13,6 +13,9 @@ import pytest
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 
+from tests.small_patient import assessed as small_assessed
+from tests.small_patient import state_text
+
 from .build import burned, computed, item, order, run, value
 from .exact import POUND
 from .patients import patient
@@ -206,3 +209,31 @@ def test_nothing_is_called_behind_while_urine_is_in_its_target(seed: int) -> Non
     found = computed(state, at)
     if found.values["urine_in_target"] is not False:
         assert "ehind the plan" not in " ".join(one.shown for one in found.items)
+
+
+MOLAR = {"glucose": 180.156, "lactate": 90.08}
+"""g/mol: mmol/L x g/mol / 10 = mg/dL."""
+
+
+@given(st.integers(5, 400), st.sampled_from(sorted(MOLAR)))
+@slow
+def test_si_and_conventional_results_agree(tenth: int, name: str) -> None:
+    # half a hundredth off the tenths, so that no figure lies on a line of a table
+    mmol = (tenth + 0.05) / 10
+    both = (f"{mmol:.4f} mmol/L", f"{mmol * MOLAR[name] / 10:.6f} mg/dL")
+    made = [computed(burned(results=[{"at": "2026-03-14 11:00", name: written}])) for written in both]
+    first, second = ([(one.key, one.flag, one.shown) for one in found.items] for found in made)
+    assert [one for one in first if name in one[0]] == [one for one in second if name in one[0]]
+    assert first == second
+
+
+@given(st.integers(3200, 4150))
+@slow
+def test_celsius_and_fahrenheit_agree(hundredth: int) -> None:
+    # half a hundredth off, so that no figure lies on a line of a table
+    celsius = (hundredth + 0.5) / 100
+    flags = []
+    for written in (f"{celsius:.3f} C", f"{celsius * 9 / 5 + 32:.4f} F"):
+        made = small_assessed(("infection", "area"), state_text({"11:00": {"temp": written}}))
+        flags.append([(one.key, one.flag) for one in made.items])
+    assert flags[0] == flags[1]
