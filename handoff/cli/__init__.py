@@ -15,6 +15,7 @@ from handoff.cli.plugins import plugins
 from handoff.cli.schema import schema
 from handoff.cli.show import show
 from handoff.cli.since import since
+from handoff.cli.verify import verify
 from handoff.cli.ward import ward
 from handoff.cli.wording import wording
 from handoff.cli.working import working
@@ -33,6 +34,7 @@ for command in (
     chart,
     check,
     draft,
+    verify,
     due,
     show,
     since,

@@ -21,6 +21,7 @@ from handoff.cli.edge import (
     stop,
     who,
 )
+from handoff.cli.keeping import ReplaceOption, kept_or_stop
 from handoff.cli.since import changes_or_stop
 
 if TYPE_CHECKING:
@@ -64,6 +65,7 @@ def draft(
     confidential: ConfidentialOption = False,
     protect: ProtectOption = False,
     deidentified: DeidentifiedOption = False,
+    replace: ReplaceOption = False,
 ) -> None:
     """Draft the handover, the care plan and items.json; with --since what changed as well.
 
@@ -84,8 +86,10 @@ def draft(
     documents = _made(assessment, stem, changes, confidential)
     if protect:
         documents = _protected(documents, stem)
+    folder = out or file.parent
+    documents |= kept_or_stop(folder, documents, replace)
     try:
-        written = write_all(out or file.parent, documents)
+        written = write_all(folder, documents)
     except CannotWrite as error:
         stop(Exit.USAGE, str(error))
     say(who(loaded.state))

@@ -20,6 +20,7 @@ from handoff.cli.edge import (
     stop,
     who,
 )
+from handoff.cli.keeping import ReplaceOption, kept_or_stop
 
 if TYPE_CHECKING:
     from handoff.assess import Assessment
@@ -42,6 +43,7 @@ def note(
     out: NoteOutOption = None,
     policy: PolicyOption = None,
     bundled_only: BundledOption = False,
+    replace: ReplaceOption = False,
 ) -> None:
     """Write the nursing note of the shift, by system, from what was charted in it.
 
@@ -59,9 +61,11 @@ def note(
     from handoff.files import CannotWrite, write_all
 
     try:
-        written = write_all(out, {f"{file.stem}-note.docx": note_document(made, assessment)})
+        documents = {f"{file.stem}-note.docx": note_document(made, assessment)}
     except DocumentError as error:
         stop(Exit.SETUP, f"the note could not be made: {error}")
+    try:
+        written = write_all(out, documents | kept_or_stop(out, documents, replace))
     except CannotWrite as error:
         stop(Exit.USAGE, str(error))
     say(who(assessment.state))

@@ -9,6 +9,7 @@ import typer
 
 from handoff.cli.console import draw
 from handoff.cli.edge import AtOption, BundledOption, Exit, PolicyOption, say, setup_or_stop, stop, who
+from handoff.cli.keeping import ReplaceOption, kept_or_stop
 from handoff.cli.many import leave_many, lost_lines, mixed_up_lines, read_many, unread_lines
 
 if TYPE_CHECKING:
@@ -37,6 +38,7 @@ def ward(
     jobs: JobsOption = 1,
     policy: PolicyOption = None,
     bundled_only: BundledOption = False,
+    replace: ReplaceOption = False,
 ) -> None:
     """Show a whole ward on one page: who needs action first, what is overdue, what comes next.
 
@@ -55,7 +57,7 @@ def ward(
     )
     draw(lambda console: print_ward(page, console))
     if out is not None:
-        _write(page, patients, setup.policy.paper, out)
+        _write(page, patients, setup.policy.paper, out, replace)
     leave_many(read, unread, said=True)
 
 
@@ -69,7 +71,7 @@ def _made(assessment: Assessment) -> Patient[Standing]:
     return Patient(said, person_of(assessment.state), lost, standing(assessment, said))
 
 
-def _write(page: Ward, patients: Sequence[Standing], paper: str, out: Path) -> None:
+def _write(page: Ward, patients: Sequence[Standing], paper: str, out: Path, replace: bool) -> None:
     from handoff.document import DocumentError, ward_document
     from handoff.files import CannotWrite, write_all
     from handoff.shift.ward import digest_of
@@ -78,9 +80,11 @@ def _write(page: Ward, patients: Sequence[Standing], paper: str, out: Path) -> N
         stop(Exit.FAULTS, "no patient could be read; ward.docx was not written")
     made_at = max(one.now for one in patients)
     try:
-        written = write_all(out, {"ward.docx": ward_document(page, made_at, digest_of(patients), paper)})
+        documents = {"ward.docx": ward_document(page, made_at, digest_of(patients), paper)}
     except DocumentError as error:
         stop(Exit.SETUP, f"the page could not be made: {error}")
+    try:
+        written = write_all(out, documents | kept_or_stop(out, documents, replace))
     except CannotWrite as error:
         stop(Exit.USAGE, str(error))
     say(f"written: {written[0]}")

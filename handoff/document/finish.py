@@ -10,6 +10,7 @@ from itertools import count
 from typing import Any
 from zipfile import ZIP_DEFLATED, ZipFile, ZipInfo
 
+from handoff.document.edited import MARK, UNSET, sealed
 from handoff.document.names import DRAWING, SHAPE, WORD, WORD_2010, XML
 from handoff.document.paper import Page, fit
 
@@ -147,14 +148,15 @@ def _describe(core: Any, properties: Properties) -> None:
     core.subject = core.keywords = core.comments = core.category = ""
     core.created = core.modified = made_at
     core.revision = 1
+    core.version = f"{MARK}{UNSET}"
 
 
 def repacked(saved: BytesIO) -> bytes:
     """Return a saved .docx file with the same parts in the same order and no times of its own."""
     made = BytesIO()
     with ZipFile(saved) as old, ZipFile(made, "w", ZIP_DEFLATED) as new:
-        for name in old.namelist():
+        for name, content in sealed({name: old.read(name) for name in old.namelist()}).items():
             part = ZipInfo(name, _EPOCH)
             part.compress_type = ZIP_DEFLATED
-            new.writestr(part, old.read(name))
+            new.writestr(part, content)
     return made.getvalue()
