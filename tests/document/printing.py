@@ -7,7 +7,10 @@ from collections.abc import Mapping
 from functools import lru_cache
 from pathlib import Path
 
-from handoff.document import draft
+from handoff.document import draft, note_document, ward_document
+from handoff.document.confidential import confidential_sheet
+from handoff.shift.note import shift_note
+from handoff.shift.ward import digest_of, standing, ward_page
 from tests.conftest import needs_tool
 from tests.shift.helpers import EXAMPLES, assessed, text_of_example
 
@@ -19,6 +22,23 @@ def example_documents() -> dict[str, bytes]:
     for name, at in EXAMPLES.items():
         made |= draft(assessed(text_of_example(name), at), name)
     return made
+
+
+@lru_cache(maxsize=1)
+def all_documents() -> dict[str, bytes]:
+    """Return every document that can be made of the examples by file name, notes and the ward page too."""
+    given = {name: assessed(text_of_example(name), at) for name, at in EXAMPLES.items()}
+    patients = [standing(one, one.state.name) for one in given.values()]
+    page = ward_page(patients, "Invented ward", ("one and another",), ("a file",), ("a plugin",))
+    made = {
+        "ward.docx": ward_document(page, max(one.now for one in given.values()), digest_of(patients), "A4")
+    }
+    for name, one in given.items():
+        made[f"{name}-note.docx"] = note_document(shift_note(one, one.now - one.policy.shift_length), one)
+        sheet = confidential_sheet(one)
+        if sheet:
+            made[f"{name}-confidential.docx"] = note_document(sheet, one)
+    return {**example_documents(), **made}
 
 
 def converted(contents: Mapping[str, bytes], kind: str, folder: Path) -> dict[str, Path]:

@@ -12,11 +12,13 @@ from docx import Document
 from lxml import etree
 
 from handoff.document.names import DRAWING, WORD
-from tests.document.printing import example_documents
+from tests.document.printing import all_documents
 from tests.document.reading import body, parts, text
 from tests.shift.helpers import EXAMPLES
 
-NAMES = [f"{stem}-{kind}.docx" for stem in EXAMPLES for kind in ("handover", "care-plan")]
+NAMES = [f"{stem}-{kind}.docx" for stem in EXAMPLES for kind in ("handover", "care-plan", "note")] + [
+    "ward.docx"
+]
 LEAST_CONTRAST = 4.5
 """Web Content Accessibility Guidelines 2.2, success criterion 1.4.3 (AA), for text of any size."""
 
@@ -26,7 +28,7 @@ WHITE, BLACK = "FFFFFF", "000000"
 @pytest.fixture(params=NAMES)
 def document(request: pytest.FixtureRequest) -> bytes:
     """Each document in turn."""
-    return example_documents()[request.param]
+    return all_documents()[request.param]
 
 
 def levels(content: bytes) -> list[int]:

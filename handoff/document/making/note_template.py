@@ -23,6 +23,7 @@ def body() -> str:
             title(),
             unit_line(paragraph("Subtitle", "{{ window }}")),
             paragraph("Small", "{{ rule }}"),
+            paragraph("Heading1", "What was charted"),
             each("system in systems", lines, paragraph("Gap")),
             when("not systems", paragraph("Normal", "Nothing was charted in this time.")),
             when("silent", paragraph("Missing", "No entry in this time: {{ silent }}")),

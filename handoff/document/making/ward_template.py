@@ -37,6 +37,7 @@ def body() -> str:
             title(),
             unit_line(paragraph("Subtitle", made)),
             warnings(WIDTH),
+            paragraph("Heading1", "Patients, who needs action first on top"),
             when("rows", rows),
             when("not rows", nobody),
             paragraph("Gap"),
