@@ -14,6 +14,7 @@ from handoff.policy import Policy
 from handoff.registry import Setup
 from handoff.state.faults import Fault
 from handoff.state.patient import PatientState
+from handoff.ticks import known_done
 
 
 @dataclass(frozen=True, slots=True)
@@ -76,7 +77,7 @@ def assess(state: PatientState, setup: Setup, now: datetime, warnings: tuple[Fau
         now=now,
         policy=setup.policy,
         items=tuple(item for found in findings.values() for item in found.items),
-        actions=tuple(action for found in findings.values() for action in found.actions),
+        actions=known_done([action for found in findings.values() for action in found.actions], state, now),
         findings=findings,
         failures=tuple(failures),
         warnings=warnings,

@@ -7,6 +7,7 @@ import typer
 from handoff.cli.begin import begin
 from handoff.cli.chart import chart
 from handoff.cli.check import check
+from handoff.cli.collect import collect
 from handoff.cli.demo import demo
 from handoff.cli.draft import draft
 from handoff.cli.due import due
@@ -38,6 +39,7 @@ for command in (
     due,
     show,
     since,
+    collect,
     note,
     ward,
     wording,

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from datetime import datetime
 
 from handoff.assess import Assessment
@@ -12,6 +13,7 @@ from handoff.document.context import Data, context
 from handoff.document.figures import drawings
 from handoff.document.finish import Properties, finish
 from handoff.document.handover import handover
+from handoff.document.made_from import made_from
 from handoff.document.note import Note
 from handoff.document.paper import Page
 from handoff.document.ward import Ward
@@ -65,10 +67,18 @@ def ward_document(ward: Ward, made_at: datetime, digest: str, paper: str) -> byt
 
 
 def _of_patient(template: str, data: dict[str, Data], assessment: Assessment, page: Page) -> bytes:
-    return _made(template, data, assessment.now, assessment.state.digest, page)
+    carried = made_from(assessment) if template == CARE_PLAN else {}
+    return _made(template, data, assessment.now, assessment.state.digest, page, carried)
 
 
-def _made(template: str, data: dict[str, Data], made_at: datetime, digest: str, page: Page) -> bytes:
+def _made(
+    template: str,
+    data: dict[str, Data],
+    made_at: datetime,
+    digest: str,
+    page: Page,
+    carried: Mapping[str, str] | None = None,
+) -> bytes:
     # The Word libraries are heavy; whoever only needs the sections or the references does not load them.
     from handoff.document.read_back import check_document  # noqa: PLC0415
     from handoff.document.render import fill, template_bytes  # noqa: PLC0415
@@ -76,7 +86,7 @@ def _made(template: str, data: dict[str, Data], made_at: datetime, digest: str, 
     filled = fill(template_bytes(template), template, data)
     frame = data["frame"]
     title = f"{frame['title']}, made at {frame['made_at']}" if isinstance(frame, dict) else template
-    properties = Properties(title, made_at, digest)
+    properties = Properties(title, made_at, digest, carried or {})
     content, printed = finish(filled.template.docx, properties, page, drawings(data)), filled.printed
     del filled  # the filled tree is let go before the finished one is read
     check_document(content, printed, data)

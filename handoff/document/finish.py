@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from datetime import UTC, datetime
 from io import BytesIO
 from itertools import count
@@ -11,6 +11,7 @@ from typing import Any
 from zipfile import ZIP_DEFLATED, ZipFile, ZipInfo
 
 from handoff.document.edited import MARK, UNSET, sealed
+from handoff.document.made_from import put_in
 from handoff.document.names import DRAWING, SHAPE, WORD, WORD_2010, XML
 from handoff.document.paper import Page, fit
 
@@ -24,11 +25,15 @@ _EPOCH = (1980, 1, 1, 0, 0, 0)
 
 @dataclass(frozen=True, slots=True)
 class Properties:
-    """The document properties: title, moment of making, digest of the clinical content."""
+    """The document properties: title, moment of making, digest of the clinical content.
+
+    ``made_from`` holds what a care plan carries to be read back.
+    """
 
     title: str
     made_at: datetime
     digest: str
+    made_from: Mapping[str, str] = field(default_factory=dict)
 
 
 def finish(
@@ -47,6 +52,8 @@ def finish(
     _draw(document.part.element, drawings or {})
     _renumber(roots)
     _describe(document.core_properties, properties)
+    if properties.made_from:
+        put_in(document.part.package, properties.made_from)
     saved = BytesIO()
     document.save(saved)
     return repacked(saved)

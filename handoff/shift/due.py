@@ -12,6 +12,7 @@ from handoff.document.printable import visible
 from handoff.document.references import references
 from handoff.document.schedule import HOUR, UNTIMED, Shift, due_times, is_overdue
 from handoff.plugin import Action, PatientState, Urgency, hours_text
+from handoff.ticks import ticks
 
 
 class Group(IntEnum):
@@ -58,13 +59,14 @@ def due_list(assessment: Assessment) -> DueList:
     """Return what is due for one patient from its moment to the end of the shift."""
     state = assessment.state
     shift = Shift(assessment.now, assessment.now + assessment.policy.shift_length, state.clock)
-    refs = references(assessment.actions)
+    refs, known = references(assessment.actions), ticks(state, assessment.now)
     lines, ongoing, later = [], 0, 0
     for action in assessment.actions:
         placed = _placed(action, shift)
         if placed:
             group, at, time = placed
-            text = action.text + _rhythm(action)
+            tick = f"; {known[action.key].said(state, assessment.now)}" if action.key in known else ""
+            text = action.text + _rhythm(action) + tick
             lines.append(Due(group, at, time, short_name(state), refs[action.key], text))
         elif action.first_due is not None:
             later += 1

@@ -49,7 +49,7 @@ def lines_of(content: bytes) -> list[tuple[str, str]]:
             left = MOST_PARTS_BYTES
             found: list[tuple[str, str]] = []
             for info in sorted(names, key=lambda info: (_rank(info.filename), info.filename)):
-                part = _unpacked(file, info, left)
+                part = unpacked(file, info, left)
                 left -= len(part)
                 found += _lines(part, info.filename.removeprefix("word/").removesuffix(".xml"))
             return found
@@ -69,8 +69,12 @@ def _rank(name: str) -> int:
     return next(index for index, start in enumerate(READ) if name.startswith(start))
 
 
-def _unpacked(file: ZipFile, info: ZipInfo, left: int) -> bytes:
-    """Return a part; stops as soon as it grows beyond the limit, whatever the file says of its size."""
+def unpacked(file: ZipFile, info: ZipInfo, left: int) -> bytes:
+    """Return a part; stops as soon as it grows beyond the limit, whatever the file says of its size.
+
+    Raises:
+        NotADocument: It is larger.
+    """
     limit = min(MOST_PART_BYTES, left)
     chunks, size = [], 0
     with file.open(info) as part:
@@ -82,11 +86,22 @@ def _unpacked(file: ZipFile, info: ZipInfo, left: int) -> bytes:
     return b"".join(chunks)
 
 
-def _lines(part: bytes, name: str) -> Iterator[tuple[str, str]]:
+def parsed(part: bytes) -> Any:
+    """Return the root of a part; nothing that it names is fetched or expanded.
+
+    Raises:
+        NotADocument: It holds a document type.
+        XMLSyntaxError: It is damaged.
+    """
     parser = etree.XMLParser(resolve_entities=False, no_network=True, load_dtd=False, huge_tree=False)
     root = etree.fromstring(part, parser)
     if root.getroottree().docinfo.doctype:
         raise NotADocument("it holds a document type, which Word never writes; it was not read")
+    return root
+
+
+def _lines(part: bytes, name: str) -> Iterator[tuple[str, str]]:
+    root = parsed(part)
     where = "" if name == "document" else f"{name}, "
     rows = 0
     for number, node in enumerate(_blocks(root), start=1):
