@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
-from handoff.plugin import Case, Findings
+from dataclasses import replace
+
+from handoff.plugin import Case, Findings, Item
 
 from . import (
     abdomen_items,
@@ -25,12 +27,25 @@ from .course import Course, read_course
 from .hours import hour_rows
 from .targets import Target
 
+BY_WEIGHT = (
+    "fluid.catch_up_rate",
+    "fluid.given_index",
+    "fluid.projected_24h",
+    "fluid.projected_per_kg",
+    "fluid.evaporation",
+    "fluid.maintenance_rate",
+    "fluid.second_day_colloid",
+    "fluid.protein",
+)
+"""Figures by weight whose weight is said here; those of the plan and of urine say it where they are made."""
+
 
 def compute(case: Case) -> Findings:
     """Return the items and actions of fluid; ``values`` holds the course by the hour and what others read."""
     course = read_course(case)
     return Findings(
-        items=(
+        items=_weighed(
+            course,
             *plan_items.items(course),
             *rate_items.items(course),
             *given_items.items(course),
@@ -54,6 +69,20 @@ def compute(case: Case) -> Findings:
             *tubes.actions(course),
         ),
         values=_values(course),
+    )
+
+
+def _weighed(course: Course, *items: Item) -> tuple[Item, ...]:
+    """The items, each figure by weight with the weight that it used, and with another that differs from it."""
+    weight = course.person.weight
+    if weight is None:
+        return items
+    said = (f"Weight used: {weight.name}.", *weight.others)
+    return tuple(
+        replace(item, cautions=tuple(dict.fromkeys((*item.cautions, *said))))
+        if item.key in BY_WEIGHT and item.value is not None
+        else item
+        for item in items
     )
 
 

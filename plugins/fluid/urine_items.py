@@ -100,6 +100,7 @@ def _cautions(course: Course, last: Urine) -> tuple[str, ...]:
     used = course.urine_kg
     if used is not None:
         found.append(f"Weight used for urine: {used.name}.")
+        found += used.others
     if last.how:
         found.append("Urine of a pad by weight.")
     if course.urine.drained_ml:

@@ -7,11 +7,22 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from datetime import timedelta
 
-from handoff.plugin import Flag, Input, Item, Parameter, Reading, System, amount, number_text, words
+from handoff.plugin import (
+    NOT_RECORDED,
+    Flag,
+    Input,
+    Item,
+    Parameter,
+    Reading,
+    System,
+    amount,
+    number_text,
+    words,
+)
 
 from .bands import Band, pick
 from .course import COMFORT, Course
-from .say import NOT_RECORDED, figure, once, unflagged
+from .say import figure, once, unflagged
 
 TREND = 3
 BEYOND = {"from": operator.ge, "above": operator.gt, "below": operator.lt, "to": operator.le}

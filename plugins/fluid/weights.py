@@ -17,12 +17,13 @@ KG_PLACES = 1
 
 @dataclass(frozen=True, slots=True)
 class Used:
-    """A weight in use: kg, what it is called in print, where it stands, and its cautions."""
+    """A weight in use: kg, what it is called in print, where it stands, its cautions, and others that differ."""
 
     kg: float
     name: str
     input: Input
     cautions: tuple[str, ...] = ()
+    others: tuple[str, ...] = ()
 
 
 def kg_text(kg: float) -> str:
@@ -40,12 +41,13 @@ def volume_weight(case: Case) -> Used | None:
     if found.kind != wanted[0]:
         cautions.append(f"Weight {found.kind} is used: weight {_said(wanted[0])} is not recorded.")
     if found.kind == "today":
-        cautions.append("Today's weight may hold oedema; ask for the weight before the burn.")
+        height = "" if height_cm(case) is not None else " and the height"
+        cautions.append(f"Today's weight may hold oedema; ask for the weight before the burn{height}.")
     if found.known != "measured":
         cautions.append(f"The weight was {_known(found)}, not measured.")
-    cautions += others_said(case, found)
-    cautions += _build(case, found)
-    return Used(found.kg, _name(found), _input(case, found), tuple(cautions))
+    others = others_said(case, found)
+    cautions += [*others, *_build(case, found)]
+    return Used(found.kg, _name(found), _input(case, found), tuple(cautions), tuple(others))
 
 
 def urine_weight(case: Case) -> Used | None:
@@ -58,8 +60,9 @@ def urine_weight(case: Case) -> Used | None:
         if used is None:
             return None
         caution = "The policy asks for the ideal weight for urine, and it is not recorded."
-        return Used(used.kg, used.name, used.input, (*used.cautions, caution))
-    return Used(ideal.kg, _name(ideal), _input(case, ideal), tuple(others_said(case, ideal)))
+        return Used(used.kg, used.name, used.input, (*used.cautions, caution), used.others)
+    others = tuple(others_said(case, ideal))
+    return Used(ideal.kg, _name(ideal), _input(case, ideal), others, others)
 
 
 def differing(case: Case, used: Weight) -> tuple[Weight, ...]:

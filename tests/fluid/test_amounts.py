@@ -207,3 +207,35 @@ def test_weights_of_today_follow_each_other_and_the_same_weight_in_pounds_does_n
         ("181 lb", "before burn", "reported by patient", "2026-03-14 11:00"),
     )
     assert faults(pounds) == []
+
+
+BY_WEIGHT = (
+    "total_24h",
+    "rate_now",
+    "catch_up_rate",
+    "given_index",
+    "projected_24h",
+    "projected_per_kg",
+    "urine_rate",
+)
+
+
+@pytest.mark.parametrize("key", BY_WEIGHT)
+def test_each_figure_by_weight_names_the_weight_and_the_one_that_differs(key: str) -> None:
+    state = weighed(
+        ("82 kg", "before burn", "measured", "2026-03-14 08:30"),
+        ("90 kg", "before burn", "estimated", "2026-03-14 11:00"),
+    )
+    state["fluid"]["given"] = [run("500 mL/h", "2026-03-14 09:00", running="2026-03-14 12:00")]
+    state["observations"] = {"2026-03-14": {"11:00": {"urine": {"volume": "40 mL", "over": "1 h"}}}}
+    said = " ".join(item(computed(state), key).cautions)
+    assert "82 kg before burn" in said
+    assert "90 kg (estimated, " in said
+
+
+def test_oedema_asks_for_the_weight_before_the_burn_and_the_height() -> None:
+    today = [{"value": "90 kg", "kind": "today", "known": "measured"}]
+    for height, asked_for in (({}, " and the height."), ({"height": "180 cm"}, "before the burn.")):
+        state = burned(None, patient={"weights": today, **height}, orders=[order()])
+        cautions = item(computed(state), "total_24h").cautions
+        assert any("may hold oedema" in one and one.endswith(asked_for) for one in cautions)
