@@ -65,7 +65,7 @@ def _band() -> str:
     )
     burn = labelled(WIDTH - half, "Time of burn", "{{ identity.burn }}", "{{ identity.since }}", span=2)
     worries = cell(
-        WIDTH, paragraph("Brief", run("What worries the nurse: ", "Quiet"), run("{{ concerns }}")), span=4
+        WIDTH, paragraph("Brief", run("Worries: ", "Quiet"), run("{{ concerns }}")), span=4
     )
     story = cell(WIDTH, paragraph("Brief", run("The burn: ", "Quiet"), run("{{ burn }}")), span=4)
     return identity_band(WIDTH, row(severity, burn), row(story), row(worries))

@@ -81,7 +81,7 @@ def labelled(width: int, label: str, *fields: str, span: int = 1, style: str = "
 def band_columns(width: int) -> list[int]:
     """Return the widths of the four columns of the identity band; a decision needs the most room."""
     hundredth = width // 100
-    widths = [21 * hundredth, 23 * hundredth, 34 * hundredth]
+    widths = [24 * hundredth, 24 * hundredth, 32 * hundredth]
     return [*widths, width - sum(widths)]
 
 
