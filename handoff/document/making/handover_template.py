@@ -64,9 +64,7 @@ def _band() -> str:
         span=2,
     )
     burn = labelled(WIDTH - half, "Time of burn", "{{ identity.burn }}", "{{ identity.since }}", span=2)
-    worries = cell(
-        WIDTH, paragraph("Brief", run("Worries: ", "Quiet"), run("{{ concerns }}")), span=4
-    )
+    worries = cell(WIDTH, paragraph("Brief", run("Worries: ", "Quiet"), run("{{ concerns }}")), span=4)
     story = cell(WIDTH, paragraph("Brief", run("The burn: ", "Quiet"), run("{{ burn }}")), span=4)
     return identity_band(WIDTH, row(severity, burn), row(story), row(worries))
 
