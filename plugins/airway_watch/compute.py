@@ -40,8 +40,8 @@ def compute(case: Case) -> Findings:
         *ventilation.items(case, run),
     )
     actions = (
+        *concern.actions(case, seen, run),  # where help is called for, the call comes before the look
         *schedule.actions(case, seen, run),
-        *concern.actions(case, seen, run),
         *tube.actions(case, seen),
         *carbon_monoxide.actions(case, seen, gas),
         *cyanide.actions(case, seen, run),

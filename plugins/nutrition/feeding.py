@@ -16,6 +16,7 @@ from handoff.plugin import (
     amount,
     child,
     fact,
+    gap,
     number_text,
     words,
 )
@@ -42,7 +43,7 @@ def _last_food(case: Case) -> tuple[Item, ...]:
     node = child(case.block, "last_food")
     at = case.when(child(node, "at"))
     if not isinstance(node, Map) or at is None or "struck" in node:
-        return ()
+        return (gap("nutrition.last_food", "Last food", system=System.NUTRITION),) if _is_asked(case) else ()
     shown = words(node.get("what")) or "what is not recorded"
     return (
         fact(
@@ -55,6 +56,12 @@ def _last_food(case: Case) -> tuple[Item, ...]:
             line=node.line,
         ),
     )
+
+
+def _is_asked(case: Case) -> bool:
+    """Return whether a blank is a gap: early after the burn, when an anaesthetic may come at any time."""
+    burn, hours = case.state.burn_time, case.parameters.number("last_food.window")
+    return not case.comfort and burn is not None and case.hours_between(burn.earliest, case.now) <= hours
 
 
 def _feed(case: Case) -> tuple[Item, ...]:

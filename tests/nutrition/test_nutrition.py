@@ -26,9 +26,9 @@ def mine(found: Any) -> list[str]:
     return [one.key for one in found.items if one.key.startswith("nutrition")]
 
 
-def test_in_the_first_day_nothing_charted_is_nothing_asked() -> None:
+def test_in_the_first_day_nothing_charted_leaves_last_food_a_gap_and_asks_for_nothing() -> None:
     found = made()
-    assert mine(found) == []
+    assert mine(found) == ["nutrition.last_food"]
     assert not [key for key in action_keys(found) if key.startswith("nutrition")]
 
 
@@ -137,3 +137,15 @@ def test_the_plan_of_the_dietitian_is_repeated_in_its_words() -> None:
     found = made({"dietitian": "asked 16:00, plan tomorrow"})
     assert item(found, "nutrition.dietitian").shown == "asked 16:00, plan tomorrow"
     assert not [one for one in made().items if one.key == "nutrition.dietitian"]
+
+
+def test_last_food_is_a_gap_in_the_first_day_and_not_in_comfort_care() -> None:
+    def gaps(found: Any) -> list[str]:
+        return [one.key for one in found.items if one.flag is Flag.NOT_RECORDED]
+
+    assert "nutrition.last_food" in gaps(made())
+    assert "nutrition.last_food" not in gaps(
+        made({"last_food": {"at": "2026-03-14 07:30", "what": "porridge"}})
+    )
+    assert "nutrition.last_food" not in gaps(made(patient=COMFORT))
+    assert "nutrition.last_food" not in gaps(made(**LATE))
