@@ -29,10 +29,19 @@ class _NoAliases(yaml.SafeDumper):
 
 
 @lru_cache(maxsize=64)
+def with_required(names: tuple[str, ...]) -> tuple[str, ...]:
+    """Return the names and, after them, those of the plugins that they require."""
+    found = dict.fromkeys(names)
+    for name in names:
+        found.update(dict.fromkeys(with_required(import_module(f"handoff.bundled.{name}").plugin.requires)))
+    return tuple(found)
+
+
+@lru_cache(maxsize=64)
 def setup_of(names: tuple[str, ...], choices: tuple[tuple[str, str], ...] = ()) -> Setup:
-    """Return the setup of some bundled plugins with choices of a policy."""
+    """Return the setup of some bundled plugins, and of those they require, with choices of a policy."""
     text = yaml.safe_dump({"policy": "1", "choices": dict(choices)})
-    plugins = [import_module(f"handoff.bundled.{name}").plugin for name in names]
+    plugins = [import_module(f"handoff.bundled.{name}").plugin for name in with_required(names)]
     return prepare(read_policy(text, "test policy"), in_order(plugins))
 
 

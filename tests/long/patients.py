@@ -6,8 +6,6 @@ import os
 import random
 from collections.abc import Iterator, Mapping
 from datetime import UTC, datetime, timedelta
-from functools import lru_cache
-from importlib import import_module
 from typing import Any
 
 from handoff.assess import Assessment, assess
@@ -77,23 +75,13 @@ def node(data: Any) -> Node:
     return Text.at(str(data))
 
 
-@lru_cache(maxsize=64)
-def _with_required(names: tuple[str, ...]) -> tuple[str, ...]:
-    found = dict.fromkeys(names)
-    for name in names:
-        found.update(
-            dict.fromkeys(_with_required(tuple(import_module(f"handoff.bundled.{name}").plugin.requires)))
-        )
-    return tuple(found)
-
-
 def assessed(
     names: tuple[str, ...], data: Mapping[str, Any], now: int, choices: Mapping[str, str] | None = None
 ) -> Assessment:
     """Return the assessment so many minutes after the burn, without the text of a file; none may fail."""
     root = node(data)
     assert isinstance(root, Map)
-    setup = setup_of(_with_required(names), tuple(sorted((choices or {}).items())))
+    setup = setup_of(names, tuple(sorted((choices or {}).items())))
     made = assess(PatientState(root, "made-up"), setup, at(now))
     assert not made.failures, made.failures
     return made
