@@ -37,6 +37,7 @@ class Policy:
 
     name: str = "built-in defaults"
     unit_name: str = ""
+    country: str = ""
     paper: str = "A4"
     care_plan_orientation: str = "landscape"
     shift_length: timedelta = timedelta(hours=12)
@@ -119,6 +120,7 @@ def _policy(root: Map, file: str) -> Policy:
     return Policy(
         name=f"{name}, {dated}" if dated else name,
         unit_name=words(root.get("unit_name")),
+        country=words(root.get("country")),
         paper=words(root.get("paper")) or built_in.paper,
         care_plan_orientation=words(root.get("care_plan_orientation")) or built_in.care_plan_orientation,
         shift_length=_minutes(minutes["shift_length"], built_in.shift_length),

@@ -16,6 +16,7 @@ from handoff.cli.plugins import plugins
 from handoff.cli.schema import schema
 from handoff.cli.show import show
 from handoff.cli.since import since
+from handoff.cli.transfer import transfer
 from handoff.cli.verify import verify
 from handoff.cli.ward import ward
 from handoff.cli.wording import wording
@@ -41,6 +42,7 @@ for command in (
     since,
     collect,
     note,
+    transfer,
     ward,
     wording,
     working,

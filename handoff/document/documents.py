@@ -61,6 +61,11 @@ def confidential_document(assessment: Assessment, stem: str) -> dict[str, bytes]
     return {} if sheet is None else {f"{stem}-{CONFIDENTIAL}": note_document(sheet, assessment)}
 
 
+def patient_document(template: str, section: object, assessment: Assessment, page: Page) -> bytes:
+    """Return the section of a patient in the built-in ``template`` on ``page``; raises as :func:`draft`."""
+    return _of_patient(template, context(section), assessment, page)
+
+
 def ward_document(ward: Ward, made_at: datetime, digest: str, paper: str) -> bytes:
     """Return the page of a ward as a Word file on ``paper``; raises as :func:`draft`."""
     return _made(WARD, context(ward), made_at, digest, Page(paper, landscape=True))

@@ -139,7 +139,7 @@ def handover(assessment: Assessment, changes: Changes | None = None) -> Handover
         burns=burns(assessment),
         hours=hours(assessment),
         figures=figures(assessment),
-        detail=_detail(assessment),
+        detail=detail_blocks(assessment),
         to_do=moments,
         appendix=appendix(assessment),
     )
@@ -161,8 +161,8 @@ def _severity(assessment: Assessment) -> tuple[str, str]:
     return words(written.get("severity")) or "severity not recorded by the nurse", said
 
 
-def _detail(assessment: Assessment) -> tuple[Block, ...]:
-    """Every item of the body in full: the parts as they are read, the assessment by system."""
+def detail_blocks(assessment: Assessment) -> tuple[Block, ...]:
+    """Return every item of the body in full: the parts as they are read, the assessment by system."""
     blocks = []
     for part in Part:
         items = [item for item in assessment.items if item.part is part and _is_printed(item)]

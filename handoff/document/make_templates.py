@@ -18,7 +18,15 @@ from docx.oxml.ns import qn
 from docx.shared import Twips
 
 from handoff.document.finish import TOOL, repacked
-from handoff.document.making import care_plan_template, handover_template, note_template, ward_template
+from handoff.document.making import (
+    care_plan_template,
+    handover_template,
+    note_template,
+    transfer_journey,
+    transfer_summary,
+    transfer_templates,
+    ward_template,
+)
 from handoff.document.making.handover_parts import WIDTH
 from handoff.document.making.shared import page_footer, page_header
 from handoff.document.making.styles import styles_xml
@@ -47,6 +55,11 @@ def make_all() -> dict[str, bytes]:
             header=ward_template.header(),
             footer=ward_template.footer(),
         ),
+        "transfer-phone.docx": make(transfer_templates.phone_body(), WIDTH, landscape=False),
+        "transfer-summary.docx": make(transfer_summary.body(), WIDTH, landscape=False),
+        "transfer-working.docx": make(transfer_summary.working_body(), WIDTH, landscape=False),
+        "transfer-journey.docx": make(transfer_journey.body(), transfer_journey.WIDTH, landscape=True),
+        "transfer-addendum.docx": make(transfer_templates.addendum_body(), WIDTH, landscape=False),
         "care-plan.docx": make(care_plan_template.body(), care_plan_template.WIDTH, landscape=True),
     }
 

@@ -97,6 +97,7 @@ KINDS: dict[str, dict[str, Unit]] = {
     "c_reactive": {"mg/L": _PLAIN},
     "cyanide": {"umol/L": _PLAIN, "mg/L": Unit(1000 / 26.017)},
     "procalcitonin": {"mcg/L": _PLAIN, "ng/mL": _PLAIN},
+    "gas_pressure": {"kPa": _PLAIN, "bar": Unit(100), "psi": Unit(6.894757293168)},
 }
 
 ALIASES = {

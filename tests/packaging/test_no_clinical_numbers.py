@@ -63,6 +63,13 @@ EXCEPTIONS: dict[str, dict[float, str]] = {
     "handoff/state/reader.py": {80: "letters looked back"},
     "handoff/state/schema.py": {200: "letters of a name", 4000: "letters of a note"},
     "handoff/state/time_keywords.py": {125: "years before a date is taken for a slip"},
+    "handoff/transfer/journey.py": {12: "lines of a sheet", 28: "lines of a sheet", 4: "spare lines"},
+    "handoff/transfer/packet.py": {
+        1980: "the oldest year that a zip file knows",
+        0o600: "rights of a file",
+        16: "bits",
+    },
+    "handoff/transfer/sent.py": {50_000_000: "bytes of a file"},
     "plugins/fluid/weight_check.py": {0.45359237: "kg in a pound", 10: "a decimal place lost"},
     "plugins/pain/comfort.py": {10: "upper end of a score whose name is its ends"},
     "plugins/pain/score_faults.py": {10: "upper end of a score whose name is its ends"},

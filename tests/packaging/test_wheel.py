@@ -17,6 +17,7 @@ HELD = (
     "handoff/document/templates/*.docx",
     "handoff/shift/wording/rules.yaml",
     "handoff/shift/wording/rules.schema.json",
+    "handoff/transfer/profiles/*.yaml",
     "handoff/bundled/*/*.json",
     "handoff/bundled/*/*.yaml",
     "handoff/bundled/*/README.md",

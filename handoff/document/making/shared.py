@@ -122,6 +122,14 @@ def identity_band(width: int, *further: str) -> str:
     )
 
 
+def burn_band(width: int) -> str:
+    """Return the identity band with the time of the burn below it."""
+    half = sum(band_columns(width)[:2])
+    burn = labelled(half, "Time of burn", "{{ identity.burn }}", span=2)
+    since = labelled(width - half, "Since then, at the time of this sheet", "{{ identity.since }}", span=2)
+    return identity_band(width, row(burn, since))
+
+
 def signature_row(widths: list[int], label: str, who: str, key: str) -> str:
     """Return a row to be signed: who, signature, date and time; without ``who`` the name is left blank."""
     name = blank(f"sign:{key}:name", f"{label}: name and role", BLANK * 3)

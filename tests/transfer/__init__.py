@@ -1,0 +1,1 @@
+"""The transfer packet."""
