@@ -21,30 +21,16 @@ def kept_or_stop(folder: Path, documents: Mapping[str, bytes], replace: bool) ->
 
     Leaves with exit code 2 where a document in ``folder`` was changed by hand and ``replace`` is not asked for.
     """
-    from handoff.document.edited import is_as_drafted
+    from handoff.document.kept import changed_by_hand
 
-    kept: dict[str, bytes] = {}
-    for name, new in documents.items():
-        path = folder / name
-        if path.suffix != ".docx" or not path.is_file():
-            continue
-        try:
-            old = path.read_bytes()
-        except OSError as error:
-            stop(Exit.USAGE, f"{path} cannot be read ({error.strerror}); nothing was written")
-        if old != new and not is_as_drafted(old):
-            kept[_free_name(folder, path)] = old
-            if not replace:
-                stop(
-                    Exit.USAGE,
-                    f"{path} was changed since it was drafted, or is protected; nothing was written",
-                    "to write over it add --replace (a copy is kept), or name another folder with --out",
-                )
-    return kept
-
-
-def _free_name(folder: Path, path: Path) -> str:
-    number = 1
-    while (folder / f"{path.stem}-kept-{number}{path.suffix}").exists():
-        number += 1
-    return f"{path.stem}-kept-{number}{path.suffix}"
+    try:
+        changed = changed_by_hand(folder, documents)
+    except OSError as error:
+        stop(Exit.USAGE, f"{error.filename} cannot be read ({error.strerror}); nothing was written")
+    if changed and not replace:
+        stop(
+            Exit.USAGE,
+            f"{changed[0].path} was changed since it was drafted, or is protected; nothing was written",
+            "to write over it add --replace (a copy is kept), or name another folder with --out",
+        )
+    return {one.copy_name: one.content for one in changed}

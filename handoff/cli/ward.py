@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from functools import partial
 from pathlib import Path
 from typing import TYPE_CHECKING, Annotated
 
@@ -26,6 +27,12 @@ WardArgument = Annotated[
 WardOutOption = Annotated[
     Path | None, typer.Option("--out", metavar="DIR", help="Write ward.docx into this folder as well")
 ]
+DocumentsOption = Annotated[
+    Path | None,
+    typer.Option(
+        "--documents", metavar="DIR", help="Draft each patient's documents below this folder as well"
+    ),
+]
 JobsOption = Annotated[
     int, typer.Option("--jobs", metavar="N", min=1, help="How many files are read side by side")
 ]
@@ -39,10 +46,13 @@ def ward(
     policy: PolicyOption = None,
     bundled_only: BundledOption = False,
     replace: ReplaceOption = False,
+    documents: DocumentsOption = None,
 ) -> None:
     """Show a whole ward on one page: who needs action first, what is overdue, what comes next.
 
     Example: handoff ward patients --at "2026-03-14 19:30" --jobs 4 --out documents
+
+    Example: handoff ward patients --documents drafts --jobs 2
     """
     from handoff.shift.ward import ward_page
     from handoff.shift.ward_screen import print_ward
@@ -50,7 +60,8 @@ def ward(
     setup = setup_or_stop(policy, bundled_only)
     if not folder.is_dir():
         stop(Exit.USAGE, f"{folder} is not a folder; name the one that holds the patients' files")
-    read, unread = read_many([folder], _made, at, policy, bundled_only, jobs)
+    make = partial(_made, root=folder, documents=documents, replace=replace)
+    read, unread = read_many([folder], make, at, policy, bundled_only, jobs)
     patients = [one.made.made for one in read]
     page = ward_page(
         patients, setup.policy.unit_name, mixed_up_lines(read), unread_lines(unread), lost_lines(read)
@@ -58,16 +69,22 @@ def ward(
     draw(lambda console: print_ward(page, console))
     if out is not None:
         _write(page, patients, setup.policy.paper, out, replace)
+    if documents is not None:
+        say(f"documents of each patient: below {documents}")
+        say("Check them against the patient, the prescription and local policy before you sign.")
     leave_many(read, unread, said=True)
 
 
-def _made(assessment: Assessment) -> Patient[Standing]:
+def _made(assessment: Assessment, root: Path, documents: Path | None, replace: bool) -> Patient[Standing]:
+    from handoff.shift.drafting import draft_below
     from handoff.shift.many import Patient
     from handoff.shift.people import person_of
     from handoff.shift.ward import standing
 
     said = who(assessment.state)
     lost = tuple(f"{one.title}: {one.what}" for one in assessment.failures)
+    if documents is not None:
+        lost += draft_below(assessment, root, documents, replace)
     return Patient(said, person_of(assessment.state), lost, standing(assessment, said))
 
 
