@@ -7,6 +7,7 @@ from dataclasses import replace
 from handoff.plugin import Case, Findings, Flag, Item
 
 from . import (
+    antidote,
     carbon_monoxide,
     concern,
     cyanide,
@@ -35,6 +36,7 @@ def compute(case: Case) -> Findings:
         *tube.items(case, seen, run),
         *carbon_monoxide.items(case, seen, gas),
         *cyanide.items(case, seen, run),
+        *antidote.items(case),
         *oxygen.items(case, seen.watched),
         *gases.items(case, seen, gas),
         *ventilation.items(case, run),

@@ -1,4 +1,4 @@
-"""What is said of a pressure chamber, and of the depth of a tube by published lines."""
+"""What is said of a pressure chamber, of the depth of a tube by published lines, and after an antidote."""
 
 from __future__ import annotations
 
@@ -52,3 +52,16 @@ def test_no_line_is_used_where_it_was_not_made() -> None:
     assert lines_of({"born": "2025-01-01", "height": "75 cm"}, size="4 mm") == []
     (child,) = lines_of({"born": "2020-01-01", "height": "115 cm"}, size="5 mm")
     assert child.value == 15
+
+
+def after_antidote(at: str, drug: str = "hydroxocobalamin") -> list[Any]:
+    block = {"antidotes": [{"at": "2026-03-14 09:00", "drug": drug}]}
+    made = assessed(NAMES, state_text(injury=FIRE, airway_watch=block), at=at)
+    return [one for one in made.items if one.key == "airway_watch.antidote"]
+
+
+def test_red_urine_after_the_antidote_is_explained_for_five_weeks() -> None:
+    (found,) = after_antidote("2026-03-14 19:30")
+    assert any("tell the laboratory" in caution for caution in found.cautions)
+    assert after_antidote("2026-04-18 08:59") != []
+    assert after_antidote("2026-04-18 12:00") == []
