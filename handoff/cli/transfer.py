@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING, Annotated
 
 import typer
 
+from handoff.cli.draft import DeidentifiedOption, ProtectOption
 from handoff.cli.edge import (
     AtOption,
     BundledOption,
@@ -25,6 +26,7 @@ from handoff.cli.edge import (
 if TYPE_CHECKING:
     from handoff.assess import Assessment
     from handoff.registry import Setup
+    from handoff.state.load import Loaded
     from handoff.transfer.packet import Made, Sent
     from handoff.transfer.profile import Profile
 
@@ -56,6 +58,8 @@ def transfer(
     bundled_only: BundledOption = False,
     addendum: AddendumOption = None,
     confidential: ConfidentialOption = False,
+    protect: ProtectOption = False,
+    deidentified: DeidentifiedOption = False,
 ) -> None:
     """Make the transfer packet: one folder, and the same as one zip to send.
 
@@ -63,19 +67,28 @@ def transfer(
     """
     from handoff.work import assess_loaded
 
+    if deidentified and (confidential or addendum):
+        other = "--confidential" if confidential else "--addendum"
+        stop(Exit.USAGE, f"--deidentified makes a case for teaching and goes without {other}; leave one out")
     profile = _profile_or_stop(to)
     setup = _setup_for(profile, setup_or_stop(policy, bundled_only))
     loaded = open_or_stop(file, setup, at)
-    assessment = assess_loaded(loaded, setup)
-    sent = _sent_or_stop(addendum) if addendum else None
-    made = _packet_or_stop(assessment, profile, setup, file, confidential, sent)
-    written = _write_or_stop(out or file.parent, made)
-    say(who(assessment.state))
+    report: list[str] = []
+    if deidentified:
+        assessment, profile, made, report = _teaching_or_stop(loaded, profile, setup)
+    else:
+        assessment = assess_loaded(loaded, setup)
+        sent = _sent_or_stop(addendum) if addendum else None
+        made = _packet_or_stop(assessment, profile, setup, file, confidential, sent)
+    written = _write_or_stop(out or file.parent, made, file.stem if not deidentified else made.name, protect)
+    say(who(loaded.state))
     for fault in assessment.warnings:
         complain(fault.said(assessment.state.file))
     _say_missing(assessment, profile, setup)
     for path in written:
         say(f"written: {path}")
+    for line in report:
+        say(line)
     say("Check every sheet against the patient and the prescription before it leaves.")
     leave(assessment)
 
@@ -161,13 +174,42 @@ def _packet_or_stop(
         stop(Exit.USAGE, f"--addendum: {error}")
 
 
-def _write_or_stop(folder: Path, made: Made) -> list[Path]:
+def _teaching_or_stop(
+    loaded: Loaded, profile: Profile, setup: Setup
+) -> tuple[Assessment, Profile, Made, list[str]]:
+    """Return the case without identifiers, the receiver without a name, its packet, and what is to be said of it."""
+    from handoff.document import DocumentError
+    from handoff.privacy.deidentify import STEM
+    from handoff.privacy.deidentify import deidentified as without_identifiers
+    from handoff.transfer.packet import packet
+    from handoff.transfer.profile import nameless
+
+    assessment, report = without_identifiers(loaded, setup)
+    bare = nameless(profile)
+    try:
+        made = packet(assessment, bare, setup.parameters, STEM, None, name=f"{STEM}-transfer")
+    except DocumentError as error:
+        stop(Exit.SETUP, f"the packet could not be made: {error}")
+    return assessment, bare, made, report.lines()
+
+
+def _protected(made: Made, stem: str) -> tuple[dict[str, bytes], bytes]:
+    """Return the files of the folder and the one to send, encrypted."""
+    from handoff.privacy.protect import CannotProtect, ask_password, protected, protected_bundle
+
+    try:
+        password = ask_password()
+        return protected(made.files, stem, password), protected_bundle(made.files, password)
+    except CannotProtect as error:
+        stop(Exit.USAGE, str(error))
+
+
+def _write_or_stop(folder: Path, made: Made, stem: str, protect: bool) -> list[Path]:
     from handoff.files import CannotWrite, write_all
 
+    files, bundle = _protected(made, stem) if protect else (dict(made.files), made.zipped())
     place = folder / made.name
-    strays = (
-        sorted(one.name for one in place.iterdir() if one.name not in made.files) if place.is_dir() else []
-    )
+    strays = sorted(one.name for one in place.iterdir() if one.name not in files) if place.is_dir() else []
     if strays:
         stop(
             Exit.USAGE,
@@ -175,8 +217,8 @@ def _write_or_stop(folder: Path, made: Made) -> list[Path]:
         )
     try:
         place.mkdir(parents=True, exist_ok=True)
-        contents = {f"{made.name}/{name}": content for name, content in made.files.items()}
-        return write_all(folder, {**contents, f"{made.name}.zip": made.zipped()})
+        contents = {f"{made.name}/{name}": content for name, content in files.items()}
+        return write_all(folder, {**contents, f"{made.name}.zip": bundle})
     except OSError as error:
         stop(Exit.USAGE, f"the folder {place} cannot be made ({error.strerror}); name another with --out")
     except CannotWrite as error:

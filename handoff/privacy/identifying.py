@@ -23,11 +23,22 @@ PEOPLE = frozenset(
 )
 """Keys that hold people, wherever they stand; those that end in ``_by`` do as well."""
 
-PLACES = frozenset(("location", "hospital", "ward", "unit_name", "address"))
+PLACES = frozenset(("location", "hospital", "centre", "ward", "unit_name", "address"))
 NUMBERS = frozenset(
     ("phone", "record_number", "temporary", "national", "earlier", "unit_number", "lot", "serial")
 )
-PEOPLE_AT = frozenset((("from", "name"), ("to", "name"), ("patient", "name"), ("patient", "earlier_names")))
+PEOPLE_AT = frozenset(
+    (
+        ("from", "name"),
+        ("to", "name"),
+        ("patient", "name"),
+        ("patient", "earlier_names"),
+        ("accepted_by", "name"),
+        ("certified_by", "name"),
+        ("escort", "name"),
+        ("advice", "to"),
+    )
+)
 """The same for keys that hold people only below a certain key."""
 
 PLACES_AT = frozenset((("discharge", "to"), ("patient", "location")))

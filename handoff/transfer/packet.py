@@ -67,6 +67,7 @@ def packet(
     *,
     with_confidential: bool = False,
     sent: Sent | None = None,
+    name: str = "",
 ) -> Made:
     """Return the packet of ``assessment`` for the receiver of ``profile``.
 
@@ -78,6 +79,7 @@ def packet(
         state_text: The state file as it may leave; None leaves it out.
         with_confidential: Add the confidential sheet.
         sent: The packet that has left, for an addendum.
+        name: What the folder is called, where it may not tell the time.
 
     Raises:
         DocumentError: A template is at fault, or a text would have been lost.
@@ -106,7 +108,7 @@ def packet(
         made[f"{stem}.yaml"] = state_text
     made[CONTENTS] = contents(assessment, profile, made).encode()
     local = assessment.state.clock.local(assessment.now)
-    return Made(f"{stem}-transfer-{local:%Y-%m-%d-%H%M}", made)
+    return Made(name or f"{stem}-transfer-{local:%Y-%m-%d-%H%M}", made)
 
 
 def contents(assessment: Assessment, profile: Profile, files: Mapping[str, bytes]) -> str:

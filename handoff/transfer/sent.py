@@ -40,7 +40,7 @@ def read_sent(path: Path) -> tuple[Sent, tuple[str, ...]]:
     return Sent(name or path.name, snapshot), _changed(files)
 
 
-_CURE = "give the folder or the zip that handoff transfer wrote, or its items.json"
+_CURE = "give the folder or the zip that handoff transfer wrote, or its items.json; a protected one is opened first"
 
 
 def _files(path: Path) -> Mapping[str, bytes]:
