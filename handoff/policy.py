@@ -42,6 +42,8 @@ class Policy:
     care_plan_orientation: str = "landscape"
     shift_length: timedelta = timedelta(hours=12)
     late_entry_after: timedelta = timedelta(hours=1)
+    templates: str = ""
+    """Folder of the unit's own templates; empty for the built-in ones."""
     plugins: tuple[str, ...] = ()
     choices: Mapping[str, str] = field(default_factory=dict)
     values: Mapping[str, Mapping[str, Any]] = field(default_factory=dict)
@@ -73,9 +75,17 @@ def load_policy(path: Path | None) -> Policy:
     if path is None:
         return Policy()
     try:
-        return read_policy(read_text(path), os.fspath(path))
+        policy = read_policy(read_text(path), os.fspath(path))
     except NotAStateFile as error:
         raise PolicyError([str(error)]) from None
+    if policy.templates and not Path(policy.templates).is_dir():
+        raise PolicyError(
+            [
+                f"{path}: templates: there is no folder {policy.templates}; write the built-in ones into it with "
+                f"handoff templates write {policy.templates}"
+            ]
+        )
+    return policy
 
 
 def read_policy(text: str, file: str) -> Policy:
@@ -125,6 +135,7 @@ def _policy(root: Map, file: str) -> Policy:
         care_plan_orientation=words(root.get("care_plan_orientation")) or built_in.care_plan_orientation,
         shift_length=_minutes(minutes["shift_length"], built_in.shift_length),
         late_entry_after=_minutes(minutes["late_entry_after"], built_in.late_entry_after),
+        templates=_beside(words(root.get("templates")), file),
         plugins=tuple(words(entry) for entry in plugins) if isinstance(plugins, List) else (),
         choices={str(key): words(value) for key, value in choices.items()}
         if isinstance(choices, Map)
@@ -138,6 +149,11 @@ def _policy(root: Map, file: str) -> Policy:
             for key in node
         },
     )
+
+
+def _beside(folder: str, file: str) -> str:
+    """A folder is meant from where the policy lies, so that both can be moved together."""
+    return os.fspath(Path(file).parent / folder) if folder else ""
 
 
 def _minutes(value: float | None, default: timedelta) -> timedelta:

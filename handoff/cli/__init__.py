@@ -16,6 +16,7 @@ from handoff.cli.plugins import plugins
 from handoff.cli.schema import schema
 from handoff.cli.show import show
 from handoff.cli.since import since
+from handoff.cli.templates import templates
 from handoff.cli.transfer import transfer
 from handoff.cli.verify import verify
 from handoff.cli.ward import ward
@@ -50,6 +51,7 @@ for command in (
     schema,
 ):
     app.command()(command)
+app.add_typer(templates)
 
 
 def main() -> None:

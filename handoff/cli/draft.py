@@ -19,6 +19,7 @@ from handoff.cli.edge import (
     say,
     setup_or_stop,
     stop,
+    stop_for,
     who,
 )
 from handoff.cli.keeping import ReplaceOption, kept_or_stop
@@ -83,7 +84,8 @@ def draft(
     assessment, report = _assessed(loaded, setup, deidentified)
     stem = STEM if deidentified else file.stem
     changes = changes_or_stop(assessment, setup, since) if since else None
-    documents = _made(assessment, stem, changes, confidential)
+    trouble: list[str] = []
+    documents = _made(assessment, stem, changes, confidential, trouble)
     if protect:
         documents = _protected(documents, stem)
     folder = out or file.parent
@@ -103,6 +105,7 @@ def draft(
         say("no confidential sheet: the file holds no confidential entry")
     _say_wording(loaded, setup)
     say("Check them against the patient, the prescription and local policy before you sign.")
+    stop_for(trouble)
     leave(assessment)
 
 
@@ -118,15 +121,17 @@ def _assessed(loaded: Loaded, setup: Setup, deidentified: bool) -> tuple[Assessm
     return assessment, report.lines()
 
 
-def _made(assessment: Assessment, stem: str, changes: Changes | None, confidential: bool) -> dict[str, bytes]:
+def _made(
+    assessment: Assessment, stem: str, changes: Changes | None, confidential: bool, trouble: list[str]
+) -> dict[str, bytes]:
     from handoff.document import DocumentError, confidential_document
     from handoff.document import draft as draft_documents
     from handoff.items_json import as_json
 
     try:
-        documents = draft_documents(assessment, stem, changes)
+        documents = draft_documents(assessment, stem, changes, trouble)
         if confidential:
-            documents |= confidential_document(assessment, stem)
+            documents |= confidential_document(assessment, stem, trouble)
     except DocumentError as error:
         stop(Exit.SETUP, f"the documents could not be made: {error}")
     return documents | {f"{stem}.items.json": as_json(assessment).encode()}

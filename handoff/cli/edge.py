@@ -124,6 +124,17 @@ def leave(assessment: Assessment) -> None:
         raise SystemExit(int(Exit.INCOMPLETE))
 
 
+def stop_for(trouble: list[str]) -> None:
+    """Leave with exit code 4 where a unit's own template was at fault; the documents were made all the same."""
+    if trouble:
+        lines = [f"template fault: {one}" for one in dict.fromkeys(trouble)]
+        stop(
+            Exit.SETUP,
+            *lines,
+            "the built-in template was used in its place; the document says so where it can",
+        )
+
+
 def guarded(run: Callable[[], object]) -> None:
     """Run the command line; no traceback reaches the reader.
 

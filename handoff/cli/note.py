@@ -18,6 +18,7 @@ from handoff.cli.edge import (
     leave,
     say,
     stop,
+    stop_for,
     who,
 )
 from handoff.cli.keeping import ReplaceOption, kept_or_stop
@@ -60,8 +61,9 @@ def note(
     from handoff.document import DocumentError, note_document
     from handoff.files import CannotWrite, write_all
 
+    trouble: list[str] = []
     try:
-        documents = {f"{file.stem}-note.docx": note_document(made, assessment)}
+        documents = {f"{file.stem}-note.docx": note_document(made, assessment, trouble)}
     except DocumentError as error:
         stop(Exit.SETUP, f"the note could not be made: {error}")
     try:
@@ -71,6 +73,7 @@ def note(
     say(who(assessment.state))
     say(f"written: {written[0]}")
     say("Check it against the patient before you sign.")
+    stop_for(trouble)
     leave(assessment)
 
 

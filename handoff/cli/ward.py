@@ -9,7 +9,17 @@ from typing import TYPE_CHECKING, Annotated
 import typer
 
 from handoff.cli.console import draw
-from handoff.cli.edge import AtOption, BundledOption, Exit, PolicyOption, say, setup_or_stop, stop, who
+from handoff.cli.edge import (
+    AtOption,
+    BundledOption,
+    Exit,
+    PolicyOption,
+    say,
+    setup_or_stop,
+    stop,
+    stop_for,
+    who,
+)
 from handoff.cli.keeping import ReplaceOption, kept_or_stop
 from handoff.cli.many import leave_many, lost_lines, mixed_up_lines, read_many, unread_lines
 
@@ -18,6 +28,7 @@ if TYPE_CHECKING:
 
     from handoff.assess import Assessment
     from handoff.document.ward import Ward
+    from handoff.policy import Policy
     from handoff.shift.many import Patient
     from handoff.shift.ward import Standing
 
@@ -68,7 +79,7 @@ def ward(
     )
     draw(lambda console: print_ward(page, console))
     if out is not None:
-        _write(page, patients, setup.policy.paper, out, replace)
+        _write(page, patients, setup.policy, out, replace)
     if documents is not None:
         say(f"documents of each patient: below {documents}")
         say("Check them against the patient, the prescription and local policy before you sign.")
@@ -88,7 +99,7 @@ def _made(assessment: Assessment, root: Path, documents: Path | None, replace: b
     return Patient(said, person_of(assessment.state), lost, standing(assessment, said))
 
 
-def _write(page: Ward, patients: Sequence[Standing], paper: str, out: Path, replace: bool) -> None:
+def _write(page: Ward, patients: Sequence[Standing], policy: Policy, out: Path, replace: bool) -> None:
     from handoff.document import DocumentError, ward_document
     from handoff.files import CannotWrite, write_all
     from handoff.shift.ward import digest_of
@@ -96,8 +107,9 @@ def _write(page: Ward, patients: Sequence[Standing], paper: str, out: Path, repl
     if not patients:
         stop(Exit.FAULTS, "no patient could be read; ward.docx was not written")
     made_at = max(one.now for one in patients)
+    trouble: list[str] = []
     try:
-        documents = {"ward.docx": ward_document(page, made_at, digest_of(patients), paper)}
+        documents = {"ward.docx": ward_document(page, made_at, digest_of(patients), policy, trouble)}
     except DocumentError as error:
         stop(Exit.SETUP, f"the page could not be made: {error}")
     try:
@@ -106,3 +118,4 @@ def _write(page: Ward, patients: Sequence[Standing], paper: str, out: Path, repl
         stop(Exit.USAGE, str(error))
     say(f"written: {written[0]}")
     say("Check it at the bedside; it is of the moment that stands on it.")
+    stop_for(trouble)

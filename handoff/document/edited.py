@@ -8,7 +8,7 @@ from collections.abc import Mapping
 from io import BytesIO
 from zipfile import BadZipFile, ZipFile
 
-UNSET = "0" * 64
+UNSET = "0" * 2 * hashlib.sha256().digest_size
 """Stands in the properties until the parts are known; has the length of a digest."""
 
 MARK = "as drafted: "

@@ -43,7 +43,7 @@ def fill(template: bytes, name: str, data: Mapping[str, Data]) -> Filled:
     printed: list[str] = []
     document = DocxTemplate(BytesIO(template))
     try:
-        document.render(dict(data), _environment(printed), autoescape=True)
+        document.render(dict(data), environment(printed), autoescape=True)
     except TemplateError as error:
         raise DocumentError(
             f"the template {name} cannot be filled: {error.message}; correct that field in it"
@@ -56,7 +56,9 @@ def template_bytes(name: str) -> bytes:
     return (Path(__file__).parent / "templates" / name).read_bytes()
 
 
-def _environment(printed: list[str]) -> SandboxedEnvironment:
+def environment(printed: list[str]) -> SandboxedEnvironment:
+    """Return the sandbox in which templates are filled; it writes every text that is printed into ``printed``."""
+
     class KeysFirst(SandboxedEnvironment):
         """``{{ a.items }}`` means the key ``items``, never the method."""
 
@@ -73,9 +75,9 @@ def _environment(printed: list[str]) -> SandboxedEnvironment:
             printed.append(str(value))
         return Markup(_escaped(str(value)))  # noqa: S704 (every character of markup was escaped)
 
-    environment = KeysFirst(undefined=StrictUndefined, finalize=print_text, autoescape=True)
-    environment.filters = {name: environment.filters[name] for name in FILTERS}
-    return environment
+    made = KeysFirst(undefined=StrictUndefined, finalize=print_text, autoescape=True)
+    made.filters = {name: made.filters[name] for name in FILTERS}
+    return made
 
 
 def _escaped(text: str) -> str:

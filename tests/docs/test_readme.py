@@ -14,6 +14,10 @@ README = (ROOT / "README.md").read_text(encoding="utf-8")
 DEVELOPERS = (ROOT / "DEVELOPERS.md").read_text(encoding="utf-8")
 COMMANDS = {
     command.callback.__name__.replace("_", "-") for command in app.registered_commands if command.callback
+} | {
+    str(group.name or group.typer_instance.info.name)
+    for group in app.registered_groups
+    if group.typer_instance
 }
 
 

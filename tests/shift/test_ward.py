@@ -17,6 +17,7 @@ from handoff.assess import Assessment
 from handoff.document import ward_document
 from handoff.document.read_back import text_of
 from handoff.plugin import Findings, Flag, Item, Part, Urgency
+from handoff.policy import Policy
 from handoff.shift.ward import NO_FLAG, in_order, standing, ward_page
 from tests.conftest import ROOT
 from tests.core.helpers import AT, action, assessment_of, item, plugin_of
@@ -213,7 +214,7 @@ def test_the_word_page_is_the_same_for_the_same_ward_and_takes_any_text() -> Non
     made = patient("<Ada> & \u05d0\u05d1")
     ones = [standing(made, "<Ada> & \u05d0\u05d1, born 11 Feb 1985")]
     page = ward_page(ones, "Unit <1>", ("a & b",), ("x <y>",), ())
-    first, second = (ward_document(page, made.now, "0" * 64, "A4") for _ in range(2))
+    first, second = (ward_document(page, made.now, "0" * 64, Policy()) for _ in range(2))
     assert first == second
     assert "<Ada> & \u05d0\u05d1" in text_of(first)
     assert "Unit <1>" in text_of(first)

@@ -1,0 +1,72 @@
+"""The process of its own that fills a unit's template: asked on its input, answers on its output, writes no file."""
+
+from __future__ import annotations
+
+import contextlib
+import json
+import sys
+from base64 import b64decode, b64encode
+from datetime import datetime
+from typing import Any
+
+LARGEST_BYTES = 1_000_000_000
+"""Address space that the process may have; one of our own templates takes a fifth of it."""
+
+AFTER_S = 20
+"""Seconds of work after which the system ends the process."""
+
+
+def main() -> None:
+    """Fill one template and answer as JSON: the file and what was printed, or the fault."""
+    from handoff.document import finish, outside, render  # noqa: PLC0415 (loaded before the limits are set)
+
+    asked = json.loads(sys.stdin.buffer.read())
+    _limit()
+    try:
+        answer = _filled(asked, finish, outside, render)
+    except MemoryError:
+        answer = {
+            "fault": f"the template {asked['name']} was stopped: it fills the memory; look for a loop in it"
+        }
+    sys.stdout.write(json.dumps(answer))
+
+
+def _limit() -> None:
+    # Windows knows no such limits; there the time alone is watched, by the one who asked.
+    with contextlib.suppress(ImportError):
+        import resource  # noqa: PLC0415
+
+        resource.setrlimit(resource.RLIMIT_AS, (LARGEST_BYTES, LARGEST_BYTES))
+        resource.setrlimit(resource.RLIMIT_CPU, (AFTER_S, AFTER_S))
+        resource.setrlimit(resource.RLIMIT_FSIZE, (0, 0))
+
+
+def _filled(asked: dict[str, Any], finish: Any, outside: Any, render: Any) -> dict[str, Any]:
+    from jinja2.exceptions import SecurityError  # noqa: PLC0415
+
+    from handoff.document.errors import DocumentError  # noqa: PLC0415
+    from handoff.document.paper import Page  # noqa: PLC0415
+
+    name = asked["name"]
+    title, made_at, digest, carried = asked["properties"]
+    properties = finish.Properties(title, datetime.fromisoformat(made_at), digest, carried)
+    try:
+        filled = render.fill(b64decode(asked["template"]), name, outside.unpacked(asked["data"]))
+        content = finish.finish(filled.template.docx, properties, Page(*asked["page"]), asked["drawings"])
+    except DocumentError as error:
+        if isinstance(error.__cause__, SecurityError):
+            return {
+                "fault": f"the template {name} was stopped: it reaches for the program itself ({error.__cause__})"
+            }
+        return {"fault": str(error)}
+    except MemoryError:
+        raise
+    except Exception as error:  # a foreign template may fail in any way
+        if "loader" in str(error):
+            return {"fault": f"the template {name} was stopped: it asks for another file"}
+        return {"fault": f"the template {name} was stopped: it failed with {type(error).__name__}"}
+    return {"content": b64encode(content).decode(), "printed": filled.printed}
+
+
+if __name__ == "__main__":
+    main()
