@@ -9,6 +9,7 @@ from pathlib import Path
 
 from handoff.document import draft, note_document, ward_document
 from handoff.document.confidential import confidential_sheet
+from handoff.policy import Policy
 from handoff.shift.note import shift_note
 from handoff.shift.ward import digest_of, standing, ward_page
 from tests.conftest import needs_tool
@@ -31,7 +32,9 @@ def all_documents() -> dict[str, bytes]:
     patients = [standing(one, one.state.name) for one in given.values()]
     page = ward_page(patients, "Invented ward", ("one and another",), ("a file",), ("a plugin",))
     made = {
-        "ward.docx": ward_document(page, max(one.now for one in given.values()), digest_of(patients), "A4")
+        "ward.docx": ward_document(
+            page, max(one.now for one in given.values()), digest_of(patients), Policy()
+        )
     }
     for name, one in given.items():
         made[f"{name}-note.docx"] = note_document(shift_note(one, one.now - one.policy.shift_length), one)
