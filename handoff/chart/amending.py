@@ -13,7 +13,7 @@ from handoff.chart.describing import describe_entry, describe_key, named, same
 from handoff.chart.drafting import Draft
 from handoff.chart.entries import ROWS
 from handoff.chart.insertion import Entry, Value
-from handoff.chart.meanings import GROUP, LIST, RESULT, Lexicon
+from handoff.chart.meanings import ADDITION, GROUP, LIST, RESULT, Lexicon
 from handoff.chart.phrases import NotUnderstood, Said, understand
 from handoff.chart.restating import Restating, SameAlready, tree_of
 from handoff.chart.shape import Schema
@@ -87,7 +87,7 @@ class _Work:
         work, text = self._of_author(text)
         said = understand(text, work.words)
         new = said.value(work.spelled, "")
-        if said.meaning.kind == GROUP:
+        if said.meaning.kind in (GROUP, ADDITION):
             raise Refused(f"'{text}': this stands once in the file; change it by hand")
         if said.meaning.kind == LIST:
             return work._correct_entry(said, new if isinstance(new, Mapping) else {})

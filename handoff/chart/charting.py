@@ -8,13 +8,14 @@ from dataclasses import dataclass, field
 from datetime import datetime
 from typing import Any
 
+from handoff.chart.adding import added_to
 from handoff.chart.amending import Amendment, amend
 from handoff.chart.asking import Ask, Question, Refused
 from handoff.chart.describing import describe_entry, describe_key, same
 from handoff.chart.drafting import Draft
 from handoff.chart.entries import Moment, Placed, Write, gathered, placed, rows_at
 from handoff.chart.layout import CannotInsert
-from handoff.chart.meanings import GROUP, LIST, OBSERVATION, Lexicon
+from handoff.chart.meanings import ADDITION, GROUP, LIST, OBSERVATION, Lexicon
 from handoff.chart.phrases import NotUnderstood, Said, understand
 from handoff.chart.standing import listed_entries, stands, words_that_stand
 from handoff.chart.times import meant, spelled
@@ -149,7 +150,8 @@ class _Work:
             made = _Made(Draft(self.text, self.file))
             for write in gathered(phrases, moment, schema, confirmed):
                 made.lines += [*_said(write), *_beside_another(made.draft.root, write, moment)]
-                made.placed.append(placed(made.draft, write, moment))
+                put_in = added_to if write.kind == ADDITION else placed
+                made.placed.append(put_in(made.draft, write, moment))
             for one in made.placed:  # a later entry of the same minute made a list of an earlier one
                 if not isinstance(made.draft.node(one.path), dict):
                     one.path = (*one.path, 0)
@@ -215,7 +217,7 @@ def _without_places(fault: Fault) -> tuple[str, str]:
 
 def _said(write: Write) -> Iterator[str]:
     if not write.first.is_row:
-        yield f"  {write.first.means}: {describe_entry(write.keys) or write.path[-1]}"
+        yield f"  {write.first.means}: {describe_entry({**write.which, **write.keys}) or write.path[-1]}"
     else:
         yield from (f"  {describe_key(key, value)}" for key, value in write.keys.items())
 
@@ -224,8 +226,8 @@ def _again(root: Map, writes: list[Write], moment: Moment) -> Iterator[Question]
     """What stands there already, the same value in the same minute, whoever charted it."""
     clock = moment.clock
     for write in writes:
-        if write.kind == GROUP:
-            continue  # a group stands once and is refused a second time
+        if write.kind in (GROUP, ADDITION):
+            continue  # these stand once and are refused a second time
         if write.kind == LIST:
             for _, entry in listed_entries(root, write.path):
                 if same({**write.keys, "note": ""}, {**_dict(plain(entry)), "note": ""}):

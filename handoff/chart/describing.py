@@ -8,7 +8,7 @@ from typing import Any
 from handoff.state.schema import ENTRY
 
 SIGNED = tuple(key for key in ENTRY if key != "note")
-MOMENTS = ("at", "from", "running", "stopped", "placed", "started")
+MOMENTS = ("at", "from", "to", "running", "stopped", "placed", "started", "removed", "answered")
 
 
 def named(key: str) -> str:

@@ -72,7 +72,7 @@ class Draft:
             node = node[step]
         return node  # type: ignore[no-any-return]
 
-    def append(self, path: Sequence[str], entry: Entry) -> Path:
+    def append(self, path: Sequence[str | int], entry: Entry) -> Path:
         """Add ``entry`` at the end of the list at ``path``, made if missing; return the path of the entry.
 
         Raises:
@@ -85,7 +85,8 @@ class Draft:
             place[path[-1]] = [*(place.get(path[-1]) or []), _copy(entry)]
             return len(place[path[-1]]) - 1
 
-        index = self._change(path[0], lambda layout: layout.into_list(path, entry), meant)
+        block = "" if any(isinstance(step, int) for step in path) else str(path[0])
+        index = self._change(block, lambda layout: layout.into_list(path, entry), meant)
         return (*path, index)
 
     def put(
@@ -258,9 +259,9 @@ def _copy(value: Value) -> Any:
     return [_copy(part) for part in value]
 
 
-def _made(tree: Tree, path: Sequence[str]) -> Any:
+def _made(tree: Tree, path: Sequence[str | int]) -> Any:
     for name in path:
-        if not tree.get(name):
+        if isinstance(name, str) and not tree.get(name):
             tree[name] = {}
         tree = tree[name]
     return tree

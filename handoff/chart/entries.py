@@ -11,7 +11,7 @@ from handoff.chart import shape
 from handoff.chart.asking import Refused
 from handoff.chart.drafting import Draft, Path
 from handoff.chart.insertion import Entry, Value
-from handoff.chart.meanings import GROUP, LIST, OBSERVATION, Meaning
+from handoff.chart.meanings import GROUP, LIST, OBSERVATION, Meaning, filled
 from handoff.chart.phrases import Said
 from handoff.chart.shape import Schema
 from handoff.chart.times import spelled
@@ -52,6 +52,7 @@ class Write:
     keys: Mapping[str, Value]
     said: Mapping[str, Said]
     confirmed: bool = False
+    which: Mapping[str, Value] = field(default_factory=dict)
 
     @property
     def first(self) -> Meaning:
@@ -153,7 +154,9 @@ def _into_list(writes: list[Write], said: Said, value: Value, is_checked: bool) 
                 confirmed=other.confirmed or is_checked,
             )
             return
-    writes.append(Write(said.meaning.kind, path, value, about, is_checked))
+    which = filled(said.meaning.which or {}, said.values, "", "")
+    about_it = which if isinstance(which, Mapping) else {}
+    writes.append(Write(said.meaning.kind, path, value, about, is_checked, about_it))
 
 
 def with_confirmed(value: Value, form: Schema) -> Value | None:

@@ -29,7 +29,7 @@ class Layout:
         first = _BREAK.search(text)
         self.newline = first.group() if first and first.group() in ("\r\n", "\r") else "\n"
 
-    def into_list(self, path: Sequence[str], entry: Value) -> list[Insertion]:
+    def into_list(self, path: Sequence[str | int], entry: Value) -> list[Insertion]:
         """Return what adds ``entry`` at the end of the list at ``path``, made if missing.
 
         Raises:
@@ -40,7 +40,7 @@ class Layout:
             return [self._into_map(node, rest, f"- {flow(entry)}", f"[{flow(entry)}]")]
         if isinstance(node, List):
             return [self._append(node, flow(entry))]
-        raise CannotInsert(f"line {node.line}: {'.'.join(path)} is not a list; change it by hand")
+        raise CannotInsert(f"line {node.line}: {'.'.join(map(str, path))} is not a list; change it by hand")
 
     def into_map(
         self, path: Sequence[str], key: str, value: Value, is_later: Callable[[str], bool] | None = None
@@ -106,12 +106,15 @@ class Layout:
         added = f"{self.newline}{' ' * column}- {flow(entry)}"
         return [Insertion(begin, "- "), *deeper, Insertion(end, added)]
 
-    def _deepest(self, path: Sequence[str]) -> tuple[Node, list[str]]:
+    def _deepest(self, path: Sequence[str | int]) -> tuple[Node, list[str]]:
         node: Node = self.root
         for index, name in enumerate(path):
-            if not isinstance(node, Map) or name not in node or _is_blank(node[name]):
-                return node, list(path[index:])
-            node = node[name]
+            if isinstance(name, int) and isinstance(node, List):
+                node = node[name]
+                continue
+            if not isinstance(node, Map) or name not in node or _is_blank(node[str(name)]):
+                return node, [str(step) for step in path[index:]]
+            node = node[str(name)]
         return node, []
 
     def _append(self, node: List, item: str) -> Insertion:

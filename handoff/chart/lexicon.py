@@ -9,7 +9,18 @@ from dataclasses import dataclass
 from typing import Any
 
 from handoff.chart import shape
-from handoff.chart.meanings import GROUP, LIST, OBSERVATION, REST, RESULT, SLOT, Lexicon, Meaning, Template
+from handoff.chart.meanings import (
+    ADDITION,
+    GROUP,
+    LIST,
+    OBSERVATION,
+    REST,
+    RESULT,
+    SLOT,
+    Lexicon,
+    Meaning,
+    Template,
+)
 from handoff.chart.shape import Schema
 from handoff.chart.slots import Free, Known, Listed, NotThat, Pairs, Quantity, Slot, Word, slot_for
 from handoff.plugin import Plugin
@@ -91,13 +102,14 @@ class _Maker:
 
     def phrase(self, group: str, phrase: Mapping[str, Any]) -> Meaning:
         """One phrase of ``words.json``."""
-        kind = next(kind for kind in (OBSERVATION, RESULT, LIST, GROUP) if kind in phrase)
+        kind = next(kind for kind in (OBSERVATION, RESULT, LIST, GROUP, ADDITION) if kind in phrase)
         place = str(phrase[kind])
-        template = phrase["entry" if kind in (LIST, GROUP) else "value"]
+        template = phrase["entry" if kind in (LIST, GROUP, ADDITION) else "value"]
         says = tuple([phrase["say"]] if isinstance(phrase["say"], str) else phrase["say"])
         examples = phrase["example"]
         schema, forms = self._place(kind, place)
-        forms |= dict(self._forms(template, schema))
+        which = phrase.get("which")
+        forms |= dict(self._forms(template, schema)) | dict(self._forms(which or {}, schema))
         kinds = {match["name"]: match["kind"] or "" for say in says for match in SLOT.finditer(say)}
         slots = {name: self._slot(name, kind, forms, place) for name, kind in kinds.items()}
         unsaid = sorted(set(forms) - set(slots))
@@ -113,11 +125,12 @@ class _Maker:
             template,
             slots,
             bool(phrase.get("together", False)),
+            which,
         )
 
     def _place(self, kind: str, place: str) -> tuple[Schema, dict[str, tuple[str, Slot]]]:
         """The schema of what stands at a place, and the slot where its last step is one."""
-        if kind == LIST:
+        if kind in (LIST, ADDITION):
             return self._list_schema(place), {}
         if kind != GROUP:
             return self._value_schema(kind, place), {}

@@ -13,7 +13,7 @@ from handoff.chart.slots import Slot
 
 Template: TypeAlias = Any
 SLOT = re.compile(r"<(?P<name>\w+)(?::(?P<kind>\w+))?>")
-OBSERVATION, RESULT, LIST, GROUP = "observation", "result", "list", "group"
+OBSERVATION, RESULT, LIST, GROUP, ADDITION = "observation", "result", "list", "group", "addition"
 REST = "*"
 
 
@@ -21,9 +21,10 @@ REST = "*"
 class Meaning:
     """One thing that can be charted: how it is said, what it means, where it goes.
 
-    ``kind`` is observation, result, list or group; ``place`` is the key of the row, or the path of
-    the list or group, whose last step may be a slot. ``template`` is the value or entry with
-    ``<slot>``, ``@at`` and ``@by`` in it.
+    ``kind`` is observation, result, list, group or addition; ``place`` is the key of the row, or the
+    path of the list or group, whose last step may be a slot. ``template`` is the value or entry with
+    ``<slot>``, ``@at`` and ``@by`` in it. An addition puts its keys into the one entry of the list
+    that ``which`` describes.
     """
 
     group: str
@@ -35,6 +36,7 @@ class Meaning:
     template: Template
     slots: Mapping[str, Slot]
     together: bool = False
+    which: Template = None
 
     @property
     def is_row(self) -> bool:
