@@ -202,6 +202,8 @@ class _Work:
                 known[kind] -= 1
                 continue
             phrase = made.said_at(fault.path) or self.request.correct or fault.path
+            if f"again {phrase}" in self.yes and fault.what.startswith("the same entry"):
+                continue  # that was asked before, in other words
             yield Question(
                 f"unusual {phrase}: {fault.what.replace(': ', ' ')}",
                 f"{phrase}: {fault.what}. Is it right?",

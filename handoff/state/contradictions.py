@@ -50,8 +50,9 @@ def _is_timed(entry: Map) -> bool:
 
 
 def _content(entry: Map) -> object:
-    """What an entry says, whoever charted it and whenever it was written."""
-    return {str(key): plain(value) for key, value in entry.items() if key not in WHO_CHARTED}
+    """What an entry says, whoever charted it and whenever it was written; a note where it says nothing else."""
+    said = {str(key): plain(value) for key, value in entry.items() if key not in WHO_CHARTED}
+    return {**said, "note": words(entry.get("note"))} if set(said) <= set(TIMED) else said
 
 
 def _age(state: PatientState, now: datetime) -> Iterator[Fault]:
