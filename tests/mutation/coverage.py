@@ -11,7 +11,7 @@ from typing import Any
 
 @dataclass
 class Seen:
-    """What one test ran: (file, line) pairs, and its seconds."""
+    """What one test ran: (file, line) pairs, and its seconds while it was watched."""
 
     seconds: float = 0.0
     passed: bool = True

@@ -109,12 +109,9 @@ def _covering(mutant: Mutant, file: str, seen: list[Seen], lately: list[int]) ->
 
 
 def _once(item: pytest.Item, files: frozenset[str], items: list[pytest.Item]) -> Seen:
-    seen = Seen()
+    seen, start = Seen(), time.perf_counter()
     traced(files, seen, lambda: _passes(item, _after(item, items)))
-    start = time.perf_counter()
-    if seen.lines:
-        seen.passed = _passes(item, None) and seen.passed
-        seen.seconds = time.perf_counter() - start
+    seen.seconds = time.perf_counter() - start
     return seen
 
 
