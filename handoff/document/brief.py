@@ -13,8 +13,11 @@ from handoff.plugin import Flag, Item, Part, System
 MORE = " [+]"
 """Ends a text that was shortened; the legend says where it stands in full."""
 
-LETTERS = {Part.SITUATION: 280, Part.BACKGROUND: 52, Part.ASSESSMENT: 52, Part.RECOMMENDATION: 52}
+LETTERS = {Part.SITUATION: 280, Part.BACKGROUND: 66, Part.ASSESSMENT: 48, Part.RECOMMENDATION: 60}
 """How many letters a value may have before it is shortened; the nurse's own account is hardly ever."""
+
+FLAGGED_LETTERS = 72
+"""The same for a value that carries a flag."""
 
 TREND_LETTERS = 96
 """The same for a value that says what it was before."""
@@ -176,9 +179,12 @@ def _one(item: Item, assessment: Assessment) -> Said:
 
 def _value(item: Item) -> str:
     """A value in few words; what it was before goes without the unit, which the value itself names."""
+    most = LETTERS[item.part]
+    if item.flag in (Flag.ACTION, Flag.REVIEW):
+        most = max(most, FLAGGED_LETTERS)
     now, said, before = shown(item).partition(BEFORE)
-    if not said or len(now) > LETTERS[item.part]:
-        return shortened(now, LETTERS[item.part])
+    if not said or len(now) > most:
+        return shortened(shown(item), most)
     found = _WITH_UNIT.fullmatch(now)
     unit = found.group("unit") if found else item.unit
     return shortened(f"{now}{BEFORE}{before.replace(f' {unit}', '') if unit else before}", TREND_LETTERS)
