@@ -121,8 +121,11 @@ def oxygen(assessment: Assessment) -> tuple[Line, ...]:
         sources += item.sources
     if found:
         # One source stands behind several numbers; its citation is printed once.
-        said = dict.fromkeys(f"{source.citation or source.kind} {source.locator}" for source in sources)
-        found.append(Line("Sources", "; ".join(said)))
+        places: dict[str, dict[str, None]] = {}
+        for source in sources:
+            places.setdefault(source.citation or f"{source.kind}:", {})[source.locator] = None
+        said = (f"{citation} {'; '.join(named)}" for citation, named in places.items())
+        found.append(Line("Sources", ". ".join(said)))
     lines = dict.fromkeys(found)
     return tuple(lines) or (Line("Oxygen for the journey", NOT_RECORDED),)
 

@@ -61,7 +61,7 @@ FACTS: Mapping[str, tuple[str, tuple[str, ...]]] = {
 }
 """Label and item keys of each fact; a key that ends in ``.*`` stands for every item that begins so."""
 
-OPTIONAL = frozenset(("limbs", "pumps", "scores", "lines"))
+OPTIONAL = frozenset(("earlier areas", "limbs", "pumps", "scores", "lines"))
 """Facts of which there may be none: what is not there is not missing."""
 
 
@@ -89,7 +89,7 @@ def answer_of(assessment: Assessment, label: str, keys: tuple[str, ...], *, opti
         partly = "; ".join(f"{item.label}: {shown(item)}" for item in items if shown(item) != NOT_RECORDED)
         missing = () if optional and not items else (label,)
         return Answer(label, partly or NOT_RECORDED, missing)
-    alone = len(items) == 1
+    alone = len(items) == 1 and not keys[0].endswith(".*")
     said = [_said(item, assessment, alone or _repeats(item, label)) for item in known]
     said += [f"{name}: {NOT_RECORDED}" for name in lacking]
     return Answer(label, ". ".join(part.rstrip(".") for part in said) + ".", lacking)

@@ -22,9 +22,13 @@ def state_text(text: str, file: str, *, with_confidential: bool) -> str | None:
         return text
     lines = text.splitlines(keepends=True)
     first = root.key(CONFIDENTIAL).line
+    begin = first - 1
+    # Remarks right above and below the block may be about it, and go with it.
+    while begin and lines[begin - 1].startswith("#"):
+        begin -= 1
     later = [root.key(key).line for key in root if root.key(key).line > first]
     end = min(later) - 1 if later else len(lines)
-    kept = "".join((*lines[: first - 1], *lines[end:]))
+    kept = "".join((*lines[:begin], *lines[end:]))
     try:
         read, _ = read_nodes(kept, file)
     except StateFaults:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from handoff.document.making.handover_appendix import appendix, charts
+from handoff.document.making.handover_appendix import NEXT_PAGE, appendix, charts
 from handoff.document.making.handover_parts import WIDTH, detail, section, systems
 from handoff.document.making.markup import (
     BLANK,
@@ -30,10 +30,10 @@ def body() -> str:
         (
             title(),
             unit_line(paragraph("Subtitle", "Asked for by: {{ profile }}")),
-            missing_on_top(),
             airway(),
             lines("airway_plan", "Airway plan for the journey", "Airway"),
             paragraph("Gap"),
+            missing_on_top(),
             warnings(WIDTH),
             burn_band(WIDTH),
             paragraph("Gap"),
@@ -59,7 +59,7 @@ def body() -> str:
 
 def working_body() -> str:
     """Return the body of the sheet that a reader checks the figures by."""
-    return "".join((title(), unit_line(), burn_band(WIDTH), detail(), appendix()))
+    return "".join((title(), unit_line(), burn_band(WIDTH), detail().replace(NEXT_PAGE, ""), appendix()))
 
 
 def _actions() -> str:
