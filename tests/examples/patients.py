@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import re
-from functools import lru_cache
+from functools import cache, lru_cache
 from pathlib import Path
 
 from handoff.assess import Assessment
@@ -32,7 +32,7 @@ def _local() -> Setup:
     return make_setup(POLICY, bundled_only=True)
 
 
-@lru_cache(maxsize=None)
+@cache
 def assessment_of(name: str, policy: bool = False) -> Assessment:
     """Return the assessment of an example at its moment, by the built-in policy or the one of the examples."""
     path = FILES[name]
@@ -42,7 +42,7 @@ def assessment_of(name: str, policy: bool = False) -> Assessment:
     return assess_loaded(open_text(text, path.name, _local(), at), _local())
 
 
-@lru_cache(maxsize=None)
+@cache
 def pages_of(name: str, policy: bool = False) -> str:
     """Return the text of the handover and the care plan of an example, each run of white space made one."""
     made = draft(assessment_of(name, policy), name)

@@ -24,15 +24,17 @@ HOLE = "{}"
 @lru_cache(maxsize=1)
 def patterns() -> tuple[str, ...]:
     """Return the patterns of keys with a part that depends on the patient, the longest first."""
-    found = {key for key in _written() if key.endswith(f".{HOLE}") and key.count(".") > 1 and key.count(HOLE) == 1}
+    found = {
+        key for key in _written() if key.endswith(f".{HOLE}") and key.count(".") > 1 and key.count(HOLE) == 1
+    }
     return tuple(sorted(found, key=len, reverse=True))
 
 
 @lru_cache(maxsize=1)
 def whole_keys() -> frozenset[str]:
     """Return the keys that the source of the plugins writes out in full."""
-    asked = {key for key in _written() if HOLE not in key and not key.endswith((".", "_"))}
-    return frozenset(asked)
+    names = _written() - _parameters()
+    return frozenset(key for key in names if HOLE not in key and not key.endswith((".", "_")))
 
 
 def named(key: str) -> str:
@@ -49,6 +51,11 @@ def worked_examples() -> Iterator[dict[str, object]]:
         for case in yaml.safe_load(part_of(plugin, "cases.yaml") or "[]"):
             if "state" in case:
                 yield case
+
+
+def _parameters() -> set[str]:
+    plugins = find_plugins(Policy(), bundled_only=True)
+    return {name for one in plugins for name in yaml.safe_load(part_of(one, "parameters.yaml"))["parameters"]}
 
 
 @lru_cache(maxsize=1)
