@@ -97,7 +97,7 @@ def items(case: Case) -> tuple[Item, ...]:
     vaccine = found.vaccine or f"cannot be judged, {found.missing}"
     shown = f"vaccine: {vaccine}; immunoglobulin: {found.immunoglobulin} ({title}; {found.why})"
     shown += f"; given: {given or 'not recorded'}"
-    open_ended = bool(found.asks) and given in ("", "no")
+    open_ended = bool(found.asks) and given in ("", "no") and not case.comfort
     flag = Flag.REVIEW if open_ended else Flag.NOT_RECORDED if found.missing else Flag.NONE
     node = case.state.injury.get("tetanus")
     return (
@@ -128,7 +128,9 @@ def _given(case: Case) -> str:
 
 
 def actions(case: Case) -> tuple[Action, ...]:
-    """Return the question to the prescriber, or to the patient where nothing is recorded."""
+    """Return the question to the prescriber, or to the patient where nothing is recorded; none in comfort."""
+    if case.comfort:
+        return ()
     found = answer(case)
     if found is None or found.missing:
         what = found.missing if found else "nothing is recorded"
