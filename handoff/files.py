@@ -10,6 +10,9 @@ import tempfile
 from collections.abc import Mapping, Sequence
 from pathlib import Path
 
+PART = ".handoff-"
+"""What a temporary file is called; the number of the process that made it follows."""
+
 OWNER_ONLY = stat.S_IRUSR | stat.S_IWUSR
 
 
@@ -32,6 +35,8 @@ def write_all(folder: Path, contents: Mapping[str, bytes]) -> list[Path]:
         raise CannotWrite(
             f"the folder {folder} cannot be made ({error.strerror}); name another with --out"
         ) from None
+    for place in {(folder / name).parent for name in contents}:
+        _sweep(place)
     ready: list[tuple[Path, Path, Path]] = []
     replaced: list[Path] = []
     try:
@@ -69,7 +74,9 @@ def _beside(path: Path, target: Path, content: bytes) -> Path:
         if target.is_dir():
             raise IsADirectoryError(errno.EISDIR, os.strerror(errno.EISDIR))
         mode = stat.S_IMODE(target.stat().st_mode) if target.exists() else OWNER_ONLY
-        handle, temporary = tempfile.mkstemp(prefix=".handoff-", suffix=".part", dir=target.parent)
+        handle, temporary = tempfile.mkstemp(
+            prefix=f"{PART}{os.getpid()}-", suffix=".part", dir=target.parent
+        )
         with os.fdopen(handle, "wb") as file:
             file.write(content)
             file.flush()
@@ -89,6 +96,28 @@ def _replace(path: Path, target: Path, temporary: Path, replaced: list[Path]) ->
     except OSError as error:
         raise _refused(path, error, replaced) from None
     _sync_folder(target.parent)
+
+
+def _sweep(folder: Path) -> None:
+    """Remove what a killed process left half-written: it may hold patient data and is of no use to anybody."""
+    for left in folder.glob(f"{PART}*.part"):
+        number = left.name.removeprefix(PART).partition("-")[0]
+        if not (number.isdigit() and runs(int(number))):
+            with contextlib.suppress(OSError):
+                left.unlink()
+
+
+def runs(number: int) -> bool:
+    """Return whether a process of that number may still run on this machine; on Windows nobody can say."""
+    if os.name == "nt":
+        return True
+    try:
+        os.kill(number, 0)
+    except ProcessLookupError:
+        return False
+    except OSError:
+        return True
+    return True
 
 
 def _refused(path: Path, error: OSError, replaced: Sequence[Path] = ()) -> CannotWrite:

@@ -15,7 +15,7 @@ import time
 from collections.abc import Callable, Iterator
 from pathlib import Path
 
-from handoff.files import CannotWrite
+from handoff.files import CannotWrite, runs
 
 LEFT_OVER_AFTER_S = 30.0
 GIVE_UP_AFTER_S = 90.0
@@ -112,15 +112,7 @@ def _is_gone(mark: str) -> bool:
     """Whether the maker of a lock ran on this machine and runs no more."""
     host, _, rest = mark.partition(" ")
     number = rest.partition(" ")[0]
-    if os.name == "nt" or host != socket.gethostname() or not number.isdigit():
-        return False
-    try:
-        os.kill(int(number), 0)
-    except ProcessLookupError:
-        return True
-    except OSError:
-        return False
-    return False
+    return host == socket.gethostname() and number.isdigit() and not runs(int(number))
 
 
 def _remove(lock: Path, mark: str) -> None:

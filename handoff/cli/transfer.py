@@ -205,11 +205,12 @@ def _protected(made: Made, stem: str) -> tuple[dict[str, bytes], bytes]:
 
 
 def _write_or_stop(folder: Path, made: Made, stem: str, protect: bool) -> list[Path]:
-    from handoff.files import CannotWrite, write_all
+    from handoff.files import PART, CannotWrite, write_all
 
     files, bundle = _protected(made, stem) if protect else (dict(made.files), made.zipped())
     place = folder / made.name
-    strays = sorted(one.name for one in place.iterdir() if one.name not in files) if place.is_dir() else []
+    there = [one.name for one in place.iterdir()] if place.is_dir() else []
+    strays = sorted(name for name in there if name not in files and not name.startswith(PART))
     if strays:
         stop(
             Exit.USAGE,

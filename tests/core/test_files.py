@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 import os
+import subprocess
 import sys
 from pathlib import Path
 
 import pytest
 
-from handoff.files import CannotWrite, write_all, write_file
+from handoff.files import PART, CannotWrite, write_all, write_file
 from tests.core.test_command_line import run
 
 NEW = {"a.docx": b"new a", "b.docx": b"new b", "c.json": b"new c"}
@@ -88,3 +89,14 @@ def test_a_pipe_given_by_mistake_is_refused_and_not_waited_for(tmp_path: Path) -
     done = run("check", tmp_path / "pipe.yaml")
     assert done.returncode == 2
     assert "a device or a pipe" in done.stderr
+
+
+def test_what_a_killed_process_left_half_written_is_removed_and_what_a_running_one_writes_is_not(
+    tmp_path: Path,
+) -> None:
+    gone = subprocess.Popen([sys.executable, "-c", ""])
+    gone.wait()
+    for number in (gone.pid, os.getpid()):
+        (tmp_path / f"{PART}{number}-abc.part").write_bytes(b"half")
+    write_all(tmp_path, NEW)
+    assert names(tmp_path) == [f"{PART}{os.getpid()}-abc.part", *NEW]
