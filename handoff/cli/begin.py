@@ -8,7 +8,16 @@ from typing import TYPE_CHECKING, Annotated
 
 import typer
 
-from handoff.cli.edge import BundledOption, Exit, PolicyOption, complain, say, setup_or_stop, stop, who
+from handoff.cli.edge import (
+    BundledOption,
+    Exit,
+    PolicyOption,
+    look_alikes,
+    say,
+    setup_or_stop,
+    stop,
+    who,
+)
 
 if TYPE_CHECKING:
     from handoff.begin.conversation import Conversation
@@ -116,7 +125,6 @@ def _asked(conversation: Conversation) -> str:
 
 
 def _tell(file: Path, setup: Setup, conversation: Conversation) -> None:
-    from handoff.shift.neighbours import neighbours
     from handoff.work import open_file
 
     say(who(open_file(file, setup, conversation.moment).state))
@@ -124,5 +132,4 @@ def _tell(file: Path, setup: Setup, conversation: Conversation) -> None:
     if missing := conversation.skipped():
         say(f"not recorded yet: {'; '.join(missing)}")
     say(f'next: handoff chart {file} "pulse 118 /min" "urine 35 mL" --by EM')
-    for line in neighbours(file):
-        complain(line)
+    look_alikes(file)

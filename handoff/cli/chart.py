@@ -8,7 +8,18 @@ from typing import TYPE_CHECKING, Annotated
 
 import typer
 
-from handoff.cli.edge import BundledOption, Exit, PolicyOption, complain, leave, say, setup_or_stop, stop, who
+from handoff.cli.edge import (
+    BundledOption,
+    Exit,
+    PolicyOption,
+    complain,
+    leave,
+    look_alikes,
+    say,
+    setup_or_stop,
+    stop,
+    who,
+)
 
 if TYPE_CHECKING:
     from handoff.chart.asking import Ask
@@ -182,4 +193,5 @@ def _tell(charted: Charted, setup: Setup, known: Lexicon) -> None:
         say("changed by it:")
     for line in changed:
         say(f"  {line}")
+    look_alikes(Path(after.state.file))
     leave(after)

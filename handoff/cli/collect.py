@@ -8,7 +8,18 @@ from typing import TYPE_CHECKING, Annotated
 
 import typer
 
-from handoff.cli.edge import BundledOption, Exit, PolicyOption, complain, leave, say, setup_or_stop, stop, who
+from handoff.cli.edge import (
+    BundledOption,
+    Exit,
+    PolicyOption,
+    complain,
+    leave,
+    look_alikes,
+    say,
+    setup_or_stop,
+    stop,
+    who,
+)
 
 if TYPE_CHECKING:
     from handoff.collect.collecting import Collected
@@ -133,11 +144,9 @@ def _ask(question: str) -> None:
 
 
 def _tell(file: Path, setup: Setup, written: Collected) -> None:
-    from handoff.shift.neighbours import neighbours
     from handoff.work import assess_loaded
 
     count = len(written.charted.lines)
     say(f"written: {count} tick{'s' if count > 1 else ''} into {file}")
-    for line in neighbours(file):
-        complain(line)
+    look_alikes(file)
     leave(assess_loaded(written.charted.after, setup))

@@ -15,6 +15,7 @@ from handoff.cli.edge import (
     PolicyOption,
     complain,
     leave,
+    look_alikes,
     open_or_stop,
     say,
     setup_or_stop,
@@ -95,6 +96,7 @@ def draft(
     except CannotWrite as error:
         stop(Exit.USAGE, str(error))
     say(who(loaded.state))
+    look_alikes(file)
     for fault in assessment.warnings:
         complain(fault.said(assessment.state.file))
     for path in written:

@@ -116,6 +116,14 @@ def who(assessment_state: object) -> str:
     return ", ".join([assessment_state.name, said, *(numbers[:1] or ["no identifier recorded"])])
 
 
+def look_alikes(file: Path) -> None:
+    """Name on the error stream each patient of the same folder who could be taken for the one in ``file``."""
+    from handoff.shift.neighbours import neighbours
+
+    for line in neighbours(file):
+        complain(line)
+
+
 def leave(assessment: Assessment) -> None:
     """Say what could not be computed and leave with exit code 3, if anything."""
     for failure in assessment.failures:

@@ -16,6 +16,7 @@ from handoff.cli.edge import (
     PolicyOption,
     assessed,
     leave,
+    look_alikes,
     say,
     stop,
     stop_for,
@@ -71,6 +72,7 @@ def note(
     except CannotWrite as error:
         stop(Exit.USAGE, str(error))
     say(who(assessment.state))
+    look_alikes(file)
     say(f"written: {written[0]}")
     say("Check it against the patient before you sign.")
     stop_for(trouble)

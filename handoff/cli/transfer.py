@@ -16,6 +16,7 @@ from handoff.cli.edge import (
     PolicyOption,
     complain,
     leave,
+    look_alikes,
     open_or_stop,
     say,
     setup_or_stop,
@@ -82,6 +83,7 @@ def transfer(
         made = _packet_or_stop(assessment, profile, setup, file, confidential, sent)
     written = _write_or_stop(out or file.parent, made, file.stem if not deidentified else made.name, protect)
     say(who(loaded.state))
+    look_alikes(file)
     for fault in assessment.warnings:
         complain(fault.said(assessment.state.file))
     _say_missing(assessment, profile, setup)
