@@ -42,6 +42,9 @@ class Policy:
     care_plan_orientation: str = "landscape"
     shift_length: timedelta = timedelta(hours=12)
     late_entry_after: timedelta = timedelta(hours=1)
+    units: str = "as charted"
+    dates: str = "day month year"
+    spelling: str = "as written"
     templates: str = ""
     """Folder of the unit's own templates; empty for the built-in ones."""
     plugins: tuple[str, ...] = ()
@@ -135,6 +138,9 @@ def _policy(root: Map, file: str) -> Policy:
         care_plan_orientation=words(root.get("care_plan_orientation")) or built_in.care_plan_orientation,
         shift_length=_minutes(minutes["shift_length"], built_in.shift_length),
         late_entry_after=_minutes(minutes["late_entry_after"], built_in.late_entry_after),
+        units=words(root.get("units")) or built_in.units,
+        dates=words(root.get("dates")) or built_in.dates,
+        spelling=words(root.get("spelling")) or built_in.spelling,
         templates=_beside(words(root.get("templates")), file),
         plugins=tuple(words(entry) for entry in plugins) if isinstance(plugins, List) else (),
         choices={str(key): words(value) for key, value in choices.items()}

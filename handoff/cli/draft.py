@@ -51,6 +51,9 @@ ConfidentialOption = Annotated[
 ProtectOption = Annotated[
     bool, typer.Option("--protect", help="Encrypt what is written; the password is asked for twice")
 ]
+PdfOption = Annotated[
+    bool, typer.Option("--pdf", help="Write each document as PDF too; needs LibreOffice on this machine")
+]
 DeidentifiedOption = Annotated[
     bool,
     typer.Option("--deidentified", help="For teaching: hours since the burn, no names, places or numbers"),
@@ -68,6 +71,7 @@ def draft(
     protect: ProtectOption = False,
     deidentified: DeidentifiedOption = False,
     replace: ReplaceOption = False,
+    pdf: PdfOption = False,
 ) -> None:
     """Draft the handover, the care plan and items.json; with --since what changed as well.
 
@@ -87,6 +91,8 @@ def draft(
     changes = changes_or_stop(assessment, setup, since) if since else None
     trouble: list[str] = []
     documents = _made(assessment, stem, changes, confidential, trouble)
+    if pdf:
+        documents |= _pdf(documents)
     if protect:
         documents = _protected(documents, stem)
     folder = out or file.parent
@@ -137,6 +143,15 @@ def _made(
     except DocumentError as error:
         stop(Exit.SETUP, f"the documents could not be made: {error}")
     return documents | {f"{stem}.items.json": as_json(assessment).encode()}
+
+
+def _pdf(documents: dict[str, bytes]) -> dict[str, bytes]:
+    from handoff.document.pdf import NoPdf, as_pdf
+
+    try:
+        return as_pdf(documents)
+    except NoPdf as error:
+        stop(Exit.USAGE, str(error), "nothing was written")
 
 
 def _protected(documents: dict[str, bytes], stem: str) -> dict[str, bytes]:

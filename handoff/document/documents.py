@@ -18,6 +18,7 @@ from handoff.document.made_from import made_from
 from handoff.document.note import Note
 from handoff.document.paper import Page
 from handoff.document.printable import visible
+from handoff.document.style import in_style, in_units
 from handoff.document.ward import Ward
 from handoff.policy import Policy
 
@@ -49,7 +50,7 @@ def draft(
     Raises:
         DocumentError: A template is at fault, or a text would have been lost.
     """
-    policy = assessment.policy
+    assessment, policy = in_units(assessment), assessment.policy
     turned = policy.care_plan_orientation == "landscape"
     return {
         f"{stem}-{HANDOVER}": _of_patient(
@@ -86,7 +87,8 @@ def ward_document(
 ) -> bytes:
     """Return the page of a ward as a Word file; ``trouble`` and what is raised as in :func:`draft`."""
     page = Page(policy.paper, landscape=True)
-    return _made(WARD, context(ward), Properties("", made_at, digest), page, policy.templates, trouble)
+    data = _styled(context(ward), policy)
+    return _made(WARD, data, Properties("", made_at, digest), page, policy.templates, trouble)
 
 
 def _of_patient(
@@ -98,7 +100,7 @@ def _of_patient(
 ) -> bytes:
     carried = made_from(assessment) if template == CARE_PLAN else {}
     made = Properties("", assessment.now, assessment.state.digest, carried)
-    return _made(template, data, made, page, assessment.policy.templates, trouble)
+    return _made(template, _styled(data, assessment.policy), made, page, assessment.policy.templates, trouble)
 
 
 def _made(
@@ -134,6 +136,10 @@ def _made(
     del filled  # the filled tree is let go before the finished one is read
     check_document(content, printed, data)
     return content
+
+
+def _styled(data: dict[str, Data], policy: Policy) -> dict[str, Data]:
+    return {name: in_style(value, policy, name) for name, value in data.items()}
 
 
 def _with_band(data: dict[str, Data], why: str) -> dict[str, Data]:

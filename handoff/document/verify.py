@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from datetime import UTC, datetime
 from typing import Any
 
@@ -15,7 +15,9 @@ from handoff.document.names import WORD
 from handoff.document.printable import visible
 from handoff.document.read_back import text_of
 from handoff.document.sections import sentence, shown
+from handoff.document.style import ORDERS, in_units, styled
 from handoff.plugin import Flag, Item, words
+from handoff.policy import Policy
 from handoff.privacy.deidentify import DIGEST as DEIDENTIFIED
 from handoff.state.clock import read_date
 from handoff.state.patient import PatientState
@@ -117,7 +119,8 @@ def is_of(made: Made, state: PatientState) -> bool:
     born = words(state.patient.get("born"))
     names = (state.name, *state.texts(state.patient.get("earlier_names")))
     named = any(visible(name) in made.text for name in names if name and name != "unknown")
-    return named and bool(born) and read_date(born).shown() in made.text
+    date = read_date(born).shown() if born else ""
+    return named and any(styled(date, Policy(dates=order)) in made.text for order in ORDERS if date)
 
 
 def matches(made: Made, state: PatientState) -> bool:
@@ -128,7 +131,9 @@ def matches(made: Made, state: PatientState) -> bool:
 def moved(made: Made, assessment: Assessment) -> list[Moved]:
     """Return what the file says now, for the moment of the document, and the document does not, by system."""
     found = []
-    for item in sorted(assessment.items, key=_system):
+    policy = assessment.policy
+    for one in sorted(in_units(assessment).items, key=_system):
+        item = replace(one, label=styled(one.label, policy), shown=styled(one.shown, policy))
         before = _printed(made, item)
         now = _flat(visible(shown(item)))
         if before is not None and before != now:
@@ -154,5 +159,5 @@ def tasks_moved(made: Made, assessment: Assessment) -> Iterable[str]:
     """Yield the tasks that the file asks for now and a care plan does not hold."""
     text = _flat(made.text)
     for action in assessment.actions:
-        if _flat(visible(action.text)) not in text:
+        if _flat(visible(styled(action.text, assessment.policy))) not in text:
             yield f"{action.area}: the document does not ask for: {action.text}"
