@@ -14,6 +14,7 @@ from handoff.shift.note import shift_note
 from handoff.shift.ward import digest_of, standing, ward_page
 from tests.conftest import needs_tool
 from tests.shift.helpers import EXAMPLES, assessed, text_of_example
+from tests.transfer.helpers import made as leaving
 
 
 @lru_cache(maxsize=1)
@@ -41,7 +42,10 @@ def all_documents() -> dict[str, bytes]:
         sheet = confidential_sheet(one)
         if sheet:
             made[f"{name}-confidential.docx"] = note_document(sheet, one)
-    return {**example_documents(), **made}
+    packet = {
+        f"packet-{name}": content for name, content in leaving().files.items() if name.endswith(".docx")
+    }
+    return {**example_documents(), **made, **packet}
 
 
 def converted(contents: Mapping[str, bytes], kind: str, folder: Path) -> dict[str, Path]:

@@ -17,7 +17,11 @@ from tests.document.reading import body, parts, text
 from tests.shift.helpers import EXAMPLES
 
 NAMES = [f"{stem}-{kind}.docx" for stem in EXAMPLES for kind in ("handover", "care-plan", "note")] + [
-    "ward.docx"
+    "ward.docx",
+    "packet-fire-1-phone-report.docx",
+    "packet-fire-2-transfer-summary.docx",
+    "packet-fire-3-journey-sheet.docx",
+    "packet-fire-4-working-and-sources.docx",
 ]
 LEAST_CONTRAST = 4.5
 """Web Content Accessibility Guidelines 2.2, success criterion 1.4.3 (AA), for text of any size."""

@@ -71,6 +71,7 @@ def phone_body() -> str:
             numbers,
             paragraph("KeyNote", run("{{ opening }}")),
             paragraph("KeyNote", run("Caller: ", "Strong"), run("{{ caller }}")),
+            paragraph("Heading1", "To be read aloud"),
             airway(),
             report,
             _spoken("concerns", "What worries the nurse"),
