@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 import subprocess
 from collections.abc import Mapping
 from functools import lru_cache
@@ -12,7 +13,7 @@ from handoff.document.confidential import confidential_sheet
 from handoff.policy import Policy
 from handoff.shift.note import shift_note
 from handoff.shift.ward import digest_of, standing, ward_page
-from tests.conftest import needs_tool
+from tests.conftest import ROOT, needs_tool
 from tests.shift.helpers import EXAMPLES, assessed, text_of_example
 from tests.transfer.helpers import made as leaving
 
@@ -23,6 +24,17 @@ def example_documents() -> dict[str, bytes]:
     made: dict[str, bytes] = {}
     for name, at in EXAMPLES.items():
         made |= draft(assessed(text_of_example(name), at), name)
+    return made
+
+
+@lru_cache(maxsize=1)
+def further_patients() -> dict[str, bytes]:
+    """Return the handover and the care plan of every patient in ``examples/patients`` by file name."""
+    made: dict[str, bytes] = {}
+    for path in sorted((ROOT / "examples/patients").glob("*.yaml")):
+        text = path.read_text(encoding="utf-8")
+        (moment,) = re.findall(r'^# .*--at "([^"]+)"', text, flags=re.MULTILINE)
+        made |= draft(assessed(text, moment), path.stem)
     return made
 
 

@@ -15,7 +15,7 @@ from handoff.document.context import context, texts
 from handoff.document.handover import handover
 from handoff.document.names import DRAWING, SHAPE, WORD, WORD_2010
 from handoff.document.read_back import text_of
-from tests.document.printing import all_documents, example_documents
+from tests.document.printing import all_documents, example_documents, further_patients
 from tests.document.reading import body, tags
 from tests.shift.helpers import EXAMPLES, assessed, text_of_example
 
@@ -23,7 +23,7 @@ KINDS = {"handover": handover, "care-plan": care_plan}
 
 
 def test_an_office_validator_finds_nothing_in_any_document(tmp_path: Path) -> None:
-    for name, content in all_documents().items():
+    for name, content in {**all_documents(), **further_patients()}.items():
         path = tmp_path / name
         path.write_bytes(content)
         result = OpenXmlValidator(file_format=FileFormat.MICROSOFT_365).validate(str(path))
