@@ -103,6 +103,7 @@ def styled(text: str, policy: Policy) -> str:
 
 @lru_cache(maxsize=3)
 def _spelling(which: str) -> tuple[tuple[re.Pattern[str], str], ...]:
+    pairs: tuple[tuple[str, str], ...]
     if which == "american":
         pairs = VARIANTS
     elif which == "british":

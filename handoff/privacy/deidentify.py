@@ -86,7 +86,7 @@ def deidentified(loaded: Loaded, setup: Setup) -> tuple[Assessment, Report]:
     case = PatientState(made.root(setup.schema), f"{STEM}.yaml")
     case.clock = SinceBurn()
     case.__dict__["digest"] = DIGEST
-    own = replace(setup, policy=replace(setup.policy, name="local policy", unit_name=""))
+    own = replace(setup, policy=replace(setup.policy, name="local policy", unit_name="", templates=""))
     unusual = tuple(_over(fault, scrubber) for fault in loaded.unusual)
     assessment = assess_loaded(Loaded(case, mover.moment(loaded.now), unusual), own)
     found = {

@@ -133,3 +133,26 @@ def test_it_goes_without_the_confidential_sheet(tmp_path: Path) -> None:
     )
     assert done.exit_code == 2
     assert list(tmp_path.iterdir()) == []
+
+
+def test_the_letterhead_of_the_unit_is_left_out(tmp_path: Path) -> None:
+    from docx import Document
+
+    from handoff.document.render import template_bytes
+
+    document = Document(BytesIO(template_bytes("handover.docx")))
+    document.paragraphs[0].insert_paragraph_before("SECRETWORD Hospital")
+    (tmp_path / "look").mkdir()
+    document.save(str(tmp_path / "look" / "handover.docx"))
+    (tmp_path / "unit.yaml").write_text(
+        "policy: 1\nname: SECRETWORD\nunit_name: SECRETWORD Unit\ntemplates: look\n", encoding="utf-8"
+    )
+    source, out = str(ROOT / "examples" / "house-fire.yaml"), tmp_path / "out"
+    policy = ["--policy", str(tmp_path / "unit.yaml"), "--at", AT, "--out", str(out)]
+    assert CliRunner().invoke(app, ["draft", source, *policy]).exit_code == 0
+    assert "SECRETWORD" in text_of((out / "house-fire-handover.docx").read_bytes())
+    assert CliRunner().invoke(app, ["draft", source, "--deidentified", *policy]).exit_code == 0
+    made = [text_of(path.read_bytes()) for path in out.glob("case-*.docx")]
+    assert len(made) == 2
+    assert [text for text in made if "SECRETWORD" in text] == []
+    assert "SECRETWORD" not in (out / "case.items.json").read_text(encoding="utf-8")
