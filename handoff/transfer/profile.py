@@ -49,7 +49,6 @@ class Profile:
     file: str
     ask: tuple[str, ...]
     observe_every_min: float
-    centre: str = ""
     phones: tuple[tuple[str, str], ...] = ()
     paper: str = ""
     choices: Mapping[str, str] = field(default_factory=dict)
@@ -64,9 +63,7 @@ class Profile:
 
 def nameless(profile: Profile) -> Profile:
     """Return what a receiver wants without who it is, for a case that is used in teaching."""
-    return replace(
-        profile, name="a receiving centre", centre="", phones=(), checklist=(), records=(), file=""
-    )
+    return replace(profile, name="a receiving centre", phones=(), checklist=(), records=(), file="")
 
 
 def bundled() -> tuple[str, ...]:
@@ -121,11 +118,10 @@ def _profile(root: Map, file: str) -> Profile:
     name, dated = words(root.get("name")), words(root.get("dated"))
     choices = root.get("choices")
     return Profile(
-        name=f"{name}, {dated}" if dated else name,
+        name=", ".join(part for part in (name, words(root.get("centre")), dated) if part),
         file=file,
         ask=_texts(root, "ask"),
         observe_every_min=amount(root.get("observe_every"), "min", "duration") or 0,
-        centre=words(root.get("centre")),
         phones=tuple(
             (words(entry.get("who")), words(entry.get("number"))) for entry in entries(root.get("phones"))
         ),

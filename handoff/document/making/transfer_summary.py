@@ -221,10 +221,9 @@ def _law() -> str:
     written = paragraph(
         "Boxes",
         run("{%r if line.value %}"),
-        run("{{ line.value }}"),
-        run("{%r else %}"),
-        blank("{{ line.tag }}", "To be written", BLANK * 4),
+        run("{{ line.value }} "),
         run("{%r endif %}"),
+        blank("{{ line.tag }}", "To be written or initialled", BLANK * 2),
     )
     rows = listing(
         "What the law asks for",
