@@ -263,4 +263,4 @@ def test_a_step_of_one_kilogram_begins_above_the_line_and_not_at_it() -> None:
 
 def test_a_distance_from_the_middle_of_a_growth_table_must_be_a_number() -> None:
     with pytest.raises(FormulaInputError):
-        formula.at_z_score(math.nan, power=1, median=10, spread=0.1)
+        formula.at_z_score(math.nan, power=0, median=10, spread=0.1)
