@@ -38,13 +38,22 @@ def test_every_command_of_the_guide_runs_and_prints_what_it_shows(
             out = done.out
 
 
-def test_the_guide_names_every_reading_command() -> None:
-    for command in ("due", "show", "since", "note", "ward", "wording"):
+def test_the_guide_names_every_command_of_a_shift() -> None:
+    for command in ("begin", "chart", "collect", "due", "show", "since", "note", "ward", "wording"):
         assert f"\nhandoff {command} " in GUIDE
 
 
-@pytest.mark.parametrize("command", ["due", "show", "since", "note", "ward", "wording", "draft"])
+@pytest.mark.parametrize(
+    "command",
+    ["begin", "chart", "collect", "due", "show", "since", "note", "ward", "wording", "draft", "transfer"],
+)
 def test_the_help_of_each_command_shows_a_real_example(command: str) -> None:
     done = run(command, "--help")
     assert done.code == 0
     assert f"Example: handoff {command} " in " ".join(done.out.split())
+
+
+def test_every_picture_of_the_guide_is_there() -> None:
+    for page, folder in ((GUIDE, ROOT / "docs"), ((ROOT / "README.md").read_text(encoding="utf-8"), ROOT)):
+        pictures = re.findall(r"!\[[^]]*\]\(([^)]+)\)", page)
+        assert pictures and all((folder / picture).is_file() for picture in pictures)
