@@ -40,7 +40,7 @@ RECKONINGS = {
 """The tests that hold the second reckoning of each plugin, and what they compare."""
 
 
-HEAD = """# Second reckonings over 20,000 patients
+HEAD = """# Second reckonings over many patients
 
 `python -m tests.long patients --count 20000 --write` runs them all again and writes this page.
 
