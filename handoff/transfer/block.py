@@ -8,7 +8,9 @@ from handoff.assess import Assessment
 from handoff.document.identity import person
 from handoff.document.sections import NOT_RECORDED, Mark, sentence, shown
 from handoff.parameters import Source
-from handoff.plugin import Flag, Map, Node, child, entries, words
+from handoff.plugin import Flag, Map, Node, amount, child, entries, with_unit, words
+
+PLACES = 2
 
 
 @dataclass(frozen=True, slots=True)
@@ -145,12 +147,17 @@ def pumps(assessment: Assessment) -> tuple[Pump, ...]:
             Pump(
                 drug=words(entry.get("drug")) + (f", line {line}" if line else ""),
                 strength=words(entry.get("concentration")) or NOT_RECORDED,
-                rate=words(entry.get("rate")) or NOT_RECORDED,
-                left=words(entry.get("left")) or NOT_RECORDED,
+                rate=_measured(entry.get("rate"), "mL/h", "flow"),
+                left=_measured(entry.get("left"), "mL", "volume"),
                 lasts=", ".join(lasts) or NOT_RECORDED,
             )
         )
     return tuple(made)
+
+
+def _measured(node: Node | None, unit: str, kind: str) -> str:
+    value = amount(node, unit, kind)
+    return NOT_RECORDED if value is None else with_unit(value, unit, PLACES)
 
 
 def advice(assessment: Assessment) -> tuple[Advice, ...]:

@@ -14,11 +14,14 @@ from handoff.plugin import (
     fact,
     hours_text,
     line_of,
+    with_unit,
     words,
 )
 
 from . import formula
 from .journey import lasts_min
+
+PLACES = 2
 
 
 def items(case: Case) -> tuple[Item, ...]:
@@ -38,8 +41,8 @@ def _pump(case: Case, entry: Map, number: int) -> Item:
         if journey is not None and lasts is not None and lasts < journey
     ]
     parts = [words(entry.get("concentration")) or "concentration not recorded"]
-    parts.append(words(entry.get("rate")) or "rate not recorded")
-    parts.append(f"{words(entry.get('left'))} left" if left is not None else "volume left not recorded")
+    parts.append(with_unit(rate, "mL/h", PLACES) if rate is not None else "rate not recorded")
+    parts.append(f"{with_unit(left, 'mL', PLACES)} left" if left is not None else "volume left not recorded")
     if minutes is not None:
         parts.append(f"lasts {hours_text(minutes / formula.MINUTES_AN_HOUR)}")
     if battery is not None:

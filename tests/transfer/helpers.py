@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from functools import lru_cache
-from pathlib import Path
 
 from handoff.document.read_back import text_of
 from handoff.transfer.packet import Made, packet
@@ -16,14 +15,12 @@ SECRET = "bruise on the wrist told to nobody"  # noqa: S105 (a text that must no
 CONFIDENTIAL = (
     f"confidential:\n  safeguarding:\n    - {{at: 2026-03-14 15:00, note: {SECRET}, told: charge nurse}}\n"
 )
-FOLDER = Path(__file__).parent
 
 
 def text(more: str = "") -> str:
     """Return the state file of the house fire with its transfer block, and ``more``."""
     example = text_of_example("house-fire")
-    block = "" if "\ntransfer:\n" in example else (FOLDER / "house-fire-leaves.yaml").read_text("utf-8")
-    return f"{example}\n{block}{more}"
+    return f"{example}{more}"
 
 
 @lru_cache(maxsize=4)

@@ -89,7 +89,7 @@ def test_the_summary_opens_with_the_airway_and_its_plan() -> None:
 
 
 def test_without_a_plan_the_summary_says_not_recorded_and_never_that_there_is_none() -> None:
-    more = text().partition("\ntransfer:\n")[0]
+    more = text().partition("\ntransfer:\n")[0] + "\n"
     from handoff.transfer.packet import packet
     from handoff.transfer.profile import load_profile
     from handoff.work import assess_loaded
@@ -132,7 +132,7 @@ def test_medicines_show_the_last_dose_of_each_and_what_was_held() -> None:
 
 def test_pumps_oxygen_advice_and_pending_are_on_the_summary() -> None:
     found = tables(document("transfer-summary"))
-    assert cells(found["Pump at departure"][0])[1][2:4] == ["520 mL/h", "1400 mL"]
+    assert cells(found["Pump at departure"][0])[1][2:4] == ["520 mL/h", "1,400 mL"]
     oxygen = dict(cells(found["Oxygen"][0])[1:])
     assert oxygen["Oxygen lasts"].startswith("3 h 1 min at 15 L/min")
     assert "2,720 L / 15 L/min = 181 min" in said("transfer-summary")
@@ -178,7 +178,7 @@ def test_confidential_entries_stay_unless_they_are_chosen(place: Path) -> None:
         assert not any(SECRET.encode() in file.read(name) for name in file.namelist())
 
 
-@pytest.mark.parametrize("before", ["clock: ", "patient:\n", "transfer:\n", ""])
+@pytest.mark.parametrize("before", ["clock: ", "patient:\n", "events:\n", ""])
 def test_the_copy_of_the_state_file_lacks_the_confidential_block_its_remarks_and_nothing_else(
     before: str,
 ) -> None:
