@@ -1,5 +1,6 @@
 """Floors as a Typer application: ``nothing`` is a no-op command, ``render`` is F1 inside one (F2). By path, alone."""
 
+import sys
 from pathlib import Path
 from typing import Annotated
 
@@ -25,6 +26,13 @@ def render(folder: Path, at: AtOption = "") -> None:
 
     fill(folder)
 
+
+def one_of_many() -> None:
+    """Stand for a command of which only the line in the list of commands counts."""
+
+
+for number in range(int(sys.argv.pop()) if "--help" in sys.argv else 0):
+    app.command(f"command-{number}")(one_of_many)
 
 if __name__ == "__main__":
     app()
