@@ -1,4 +1,4 @@
-"""Bundled tables and the merged schema, read once in the build so that a command need not parse them again.
+"""Bundled tables, the merged schema and the templates, read once in the build so that no command parses them again.
 
 Each is kept under the digest of the text that it was made from. A table that was edited since has
 another digest, is not found here and is read from its source: what is kept can be absent, never stale.
@@ -14,6 +14,10 @@ from pathlib import Path
 from typing import Any
 
 FILE = Path(__file__).with_name("compiled.json")
+"""Tables and schema."""
+
+TEMPLATES = Path(__file__).with_name("compiled-templates.json")
+"""What the tags of the built-in Word templates become; only drafting needs them."""
 
 
 def digest_of(texts: Iterable[str]) -> str:
@@ -26,9 +30,9 @@ def digest_of(texts: Iterable[str]) -> str:
     return found.hexdigest()
 
 
-def kept(texts: Iterable[str]) -> Any | None:
+def kept(texts: Iterable[str], file: Path = FILE) -> Any | None:
     """Return what the build made from exactly these texts, or None when it made nothing from them."""
-    return _all().get(digest_of(texts))
+    return _all(file).get(digest_of(texts))
 
 
 def parsed(text: str) -> Any:
@@ -56,9 +60,9 @@ def keep(made: Iterable[tuple[tuple[str, ...], Any]], file: Path) -> None:
 
 
 @cache
-def _all() -> Mapping[str, Any]:
+def _all(file: Path) -> Mapping[str, Any]:
     try:
-        found: Mapping[str, Any] = json.loads(FILE.read_text(encoding="utf-8"))
+        found: Mapping[str, Any] = json.loads(file.read_text(encoding="utf-8"))
     except (OSError, ValueError):
         return {}
     return found

@@ -18,6 +18,7 @@ _SHORT = 60
 _PARAGRAPH, _RUN, _TEXT, _VALUE = (f"{WORD}{name}" for name in ("p", "r", "t", "val"))
 _TAGS = (f"{WORD}tag", f"{WORD}alias")
 _WHITE = {f"{WORD}br": "\n", f"{WORD}tab": "\t"}
+_PASSING = (_PARAGRAPH, _TEXT, *_TAGS, *_WHITE)
 
 
 def check_document(content: bytes, printed: list[str], data: Mapping[str, Data]) -> None:
@@ -69,65 +70,39 @@ def text_of(content: bytes) -> str:
     return _text_in(_read(content))
 
 
-def _text_in(parts: Iterable[_Reader]) -> str:
-    return "\n".join(line for part in parts for line in part.lines())
+def _text_in(parts: Iterable[_Part]) -> str:
+    return "".join(part.text for part in parts).removeprefix("\n")
 
 
-class _Reader:
-    """Takes the elements of a part as they pass, so that no second tree of the document is held.
+class _Part:
+    """The text of one part of a document, a paragraph beginning on a line of its own, and its tags."""
 
-    ``paragraphs`` holds the texts of each paragraph in the order in which they begin; a paragraph
-    within another (in a drawing) counts for both.
-    """
-
-    def __init__(self) -> None:
-        self.paragraphs: list[list[str]] = []
+    def __init__(self, content: bytes) -> None:
         self.tags: set[str] = set()
-        self._open: list[list[str]] = []
-        self._above: list[str] = []
-
-    def start(self, name: str, attributes: Mapping[str, str]) -> None:
-        """An element begins."""
-        if name == _PARAGRAPH:
-            self.paragraphs.append([])
-            self._open.append(self.paragraphs[-1])
-        elif name in _TAGS:
-            self.tags.add(attributes.get(_VALUE, ""))
-        elif name in _WHITE and self._above[-1] == _RUN:
-            self._say(_WHITE[name])
-        self._above.append(name)
-
-    def end(self, name: str) -> None:
-        """An element ends."""
-        self._above.pop()
-        if name == _PARAGRAPH:
-            self._open.pop()
-
-    def data(self, text: str) -> None:
-        """Characters pass."""
-        if self._above[-1] == _TEXT:
-            self._say(text)
-
-    def close(self) -> _Reader:
-        """Return what was read."""
-        return self
-
-    def _say(self, text: str) -> None:
-        for paragraph in self._open:
-            paragraph.append(text)
-
-    def lines(self) -> Iterable[str]:
-        """Return the text of each paragraph."""
-        return ("".join(paragraph) for paragraph in self.paragraphs)
+        said: list[str] = []
+        # Elements are taken as they pass and let go at once, so that no second tree of the document is held.
+        for event, node in etree.iterparse(BytesIO(content), events=("start", "end"), tag=_PASSING):
+            if event == "end":
+                if node.tag == _TEXT:
+                    said.append(node.text or "")
+                elif node.tag == _PARAGRAPH:
+                    node.clear(keep_tail=True)
+            elif node.tag == _PARAGRAPH:
+                said.append("\n")
+            elif node.tag in _TAGS:
+                self.tags.add(node.get(_VALUE, ""))
+            elif node.tag in _WHITE and node.getparent().tag == _RUN:
+                said.append(_WHITE[node.tag])
+        self.text = "".join(said)
 
 
-def _read(content: bytes) -> list[_Reader]:
+def _read(content: bytes) -> list[_Part]:
     found = []
     with ZipFile(BytesIO(content)) as file:
         names = file.namelist()
         for start in ("word/document", "word/header", "word/footer"):
             for name in sorted(name for name in names if name.startswith(start) and name.endswith(".xml")):
-                found.append(etree.fromstring(file.read(name), etree.XMLParser(target=_Reader())))
+                found.append(_Part(file.read(name)))
     return found
 
 

@@ -8,13 +8,13 @@ from pathlib import Path
 from typing import Any
 from xml.sax.saxutils import escape
 
-from docxtpl import DocxTemplate
-from jinja2 import StrictUndefined, TemplateError, pass_context
+from jinja2 import StrictUndefined, Template, TemplateError, pass_context
 from jinja2.sandbox import SandboxedEnvironment
 from markupsafe import Markup
 
 from handoff.document.context import Data
 from handoff.document.errors import DocumentError
+from handoff.document.prepared import PreparedTemplate, code_of
 from handoff.document.sections import Mark
 
 FILTERS = ("capitalize", "count", "default", "first", "join", "last", "length", "lower", "trim", "upper")
@@ -24,7 +24,7 @@ FILTERS = ("capitalize", "count", "default", "first", "join", "last", "length", 
 class Filled:
     """A filled template that is not yet a file, and every text that it printed, in order."""
 
-    def __init__(self, template: DocxTemplate, printed: list[str]) -> None:
+    def __init__(self, template: PreparedTemplate, printed: list[str]) -> None:
         self.template = template
         self.printed = printed
 
@@ -41,7 +41,7 @@ def fill(template: bytes, name: str, data: Mapping[str, Data]) -> Filled:
         DocumentError: The template names a field that is not there, or a tag in it is not closed.
     """
     printed: list[str] = []
-    document = DocxTemplate(BytesIO(template))
+    document = PreparedTemplate(BytesIO(template))
     try:
         document.render(dict(data), environment(printed), autoescape=True)
     except TemplateError as error:
@@ -60,7 +60,18 @@ def environment(printed: list[str]) -> SandboxedEnvironment:
     """Return the sandbox in which templates are filled; it writes every text that is printed into ``printed``."""
 
     class KeysFirst(SandboxedEnvironment):
-        """``{{ a.items }}`` means the key ``items``, never the method."""
+        """``{{ a.items }}`` means the key ``items``, never the method; known sources are compiled already."""
+
+        def from_string(
+            self,
+            source: Any,
+            globals: Any = None,
+            template_class: type[Template] | None = None,
+        ) -> Template:
+            code = code_of(source)
+            if code is None:
+                return super().from_string(source, globals, template_class)
+            return (template_class or self.template_class).from_code(self, code, self.make_globals(globals))
 
         def getattr(self, obj: Any, attribute: str) -> Any:
             if isinstance(obj, Mapping):

@@ -48,11 +48,13 @@ def compile_everything() -> None:
     import compileall
     import sysconfig
 
-    from handoff.compiled import FILE
+    from handoff.compiled import FILE, TEMPLATES
+    from handoff.document.prepared import compile_templates
     from handoff.registry import compile_bundled
     from tests.bench.files import ROOT
 
     compile_bundled(ROOT / "plugins", FILE)
+    compile_templates(TEMPLATES)
     for folder in (
         sysconfig.get_path("purelib"),
         ROOT / "handoff",

@@ -13,6 +13,7 @@ from tests.packaging.project import BUNDLED, ROOT, named, project
 HELD = (
     "handoff/**.py",
     "handoff/compiled.json",
+    "handoff/compiled-templates.json",
     "handoff/py.typed",
     "handoff/document/templates/*.docx",
     "handoff/shift/wording/rules.yaml",
