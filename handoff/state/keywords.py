@@ -6,6 +6,7 @@ One keyword, one message, so that a fault is said once: what is wrong and what t
 from __future__ import annotations
 
 import difflib
+import re
 from collections.abc import Iterable, Iterator, Mapping
 from functools import lru_cache
 from typing import Any, TypeAlias
@@ -19,6 +20,7 @@ from handoff.state.nodes import List, Map, Text
 from handoff.state.pair_keywords import PAIR_KEYWORDS
 from handoff.state.quantity import Quantity, QuantityError, read_quantity
 from handoff.state.time_keywords import TimeKeywords
+from handoff.state.units import WRITTEN_SHORT
 
 Schema: TypeAlias = Mapping[str, Any]
 Found: TypeAlias = Iterator[ValidationError]
@@ -146,6 +148,10 @@ def _condition(validator: Any, condition: Schema, instance: Any, schema: Schema)
         yield from validator.descend(instance, schema[branch], schema_path=branch)
 
 
+ENDING_ZEROS = re.compile(r"(?P<kept>[+-]?[0-9]+(?=\.)(?:\.[0-9]*[1-9])?)\.?0+(?![0-9.])")
+"""A number with zeros at the end of its decimals; what is kept is the number without them."""
+
+
 @lru_cache(maxsize=1024)
 def _limit(kind: str, text: str) -> Quantity:
     if kind == "pressure_pair":
@@ -188,6 +194,13 @@ def _quantity(validator: Any, kind: str, instance: Any, schema: Schema) -> Found
         yield Finding(
             f"{instance} is unusual (outside {unusual[0]} to {unusual[1]})",
             "check it; if it is right, add confirmed: yes beside it",
+            Severity.UNUSUAL,
+        )
+    elif quantity.unit in WRITTEN_SHORT and (zeros := ENDING_ZEROS.match(str(instance))):
+        short = zeros["kept"]
+        yield Finding(
+            f"{instance} ends in a zero after the point; it is soon read as {zeros[0].replace('.', '')}",
+            f"write {short} {quantity.unit}, or the figure without the point, whichever is meant",
             Severity.UNUSUAL,
         )
 

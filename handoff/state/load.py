@@ -10,6 +10,7 @@ from pathlib import Path
 from typing import Any, TypeAlias
 
 from handoff.state.clock import Clock, ClockError
+from handoff.state.comments import entries_behind_hash
 from handoff.state.faults import Fault, Severity, StateFaults
 from handoff.state.file_text import read_text
 from handoff.state.nodes import Map, Text
@@ -59,6 +60,7 @@ def load_text(text: str, file: str, at: str, schema: Mapping[str, Any], checks: 
     root, found = read_nodes(text, file)
     now = _moment(at, root)
     found += check(root, schema, now, found)
+    found += entries_behind_hash(text, root)
     faults = [fault for fault in found if fault.severity is Severity.FAULT]
     if faults:
         raise StateFaults(file, faults)

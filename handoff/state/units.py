@@ -146,5 +146,8 @@ UNSAFE = {
 WHOLE = frozenset({"mL", "mL/h", "mL/min", "drops/min", "/min", "mmHg", "cm", "mm", "V", "U/L"})
 """Units in which nobody measures to a thousandth: ``1.200 mL`` is 1200 mL where a point parts thousands."""
 
+WRITTEN_SHORT = WHOLE - {"cm", "mm"} | {"mg", "mcg", "g", "%", "min", "h", "kV", "umol/L"}
+"""Units of figures that are written without a zero after the point: ``2.0 mg`` is soon read as 20 mg."""
+
 DOSES = frozenset({"mg", "mcg", "units"})
 """Units in which a third decimal that is zero (``1.250 mg``) is as likely a point between thousands."""

@@ -1,4 +1,4 @@
-"""Catheters as charted: what drained at insertion belongs to a urinary catheter, and has a time."""
+"""Catheters and cannulas as charted: what drained belongs to a catheter and has a time; a cannula is counted."""
 
 from __future__ import annotations
 
@@ -6,17 +6,26 @@ from collections.abc import Iterator
 
 from handoff.plugin import Case, List, Map, Problem, Severity, words
 
+from .tubes import misspelt
 from .urine import CATHETER, is_catheter
 
 
 def check_tubes(case: Case) -> Iterator[Problem]:
-    """Yield a warning where a drained volume stands with another kind of line, or without its time."""
+    """Yield a warning for a drained volume of another line or without its time, and for a misspelt cannula."""
     node = case.state.root.get("lines")
     for index, entry in enumerate(node) if isinstance(node, List) else ():
         if not isinstance(entry, Map) or "struck" in entry or words(entry.get("confirmed")) == "yes":
             continue
         path = ("lines", index)
         kind = words(entry.get("kind"))
+        if name := misspelt(entry):
+            yield Problem(
+                entry["what"],
+                (*path, "what"),
+                f"'{name}' is not counted as a cannula of a known gauge",
+                "write it like IV cannula 16 G, or add kind: or confirmed: yes",
+                Severity.UNUSUAL,
+            )
         drained = entry.get("drained_at_insertion")
         if drained is None:
             continue

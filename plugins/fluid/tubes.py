@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import re
+from difflib import SequenceMatcher
 from itertools import pairwise
 
 from handoff.plugin import Action, Flag, Item, Map, Part, System, Urgency, entries, number_text, plural, words
@@ -152,3 +154,20 @@ def actions(course: Course) -> tuple[Action, ...]:
         )
         for item in asked
     )
+
+
+def misspelt(entry: Map) -> str:
+    """Return what in the name of a line is nearly a cannula or its gauge, so that it is not counted; or nothing."""
+    what = words(entry.get("what"))
+    if "kind" in entry or not what:
+        return ""
+    if is_cannula(entry):
+        marked = any(letter.isdigit() for letter in what)
+        return what if marked and gauge_of(entry) is None else ""
+    letters = "".join(what.lower().split())
+    found = SequenceMatcher(None, "cannula", letters, autojunk=False).get_matching_blocks()
+    return what if sum(block.size for block in found) >= len("cannula") - 1 and _has_gauge(what) else ""
+
+
+def _has_gauge(what: str) -> bool:
+    return re.search(r"\d *G\b", what) is not None

@@ -1,0 +1,1 @@
+"""Every slip of one key in the invented patients, and who notices it."""
