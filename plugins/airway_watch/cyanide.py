@@ -53,7 +53,14 @@ def pointers(case: Case, seen: Exposure, run: Watch) -> Pointers | None:
     if not seen.smoke_recorded or not seen.watched:
         return None
     entries = _entries(case, seen, run)
-    return Pointers(entries, _prompts(case, entries) and not _antidote(case))
+    asks = _prompts(case, entries) and not _antidote(case) and not is_history(case)
+    return Pointers(entries, asks)
+
+
+def is_history(case: Case) -> bool:
+    """Return whether the hours after the fire have passed in which its findings ask for an answer now."""
+    burn = case.state.burn_time
+    return burn is not None and case.now > burn.latest + _first(case)
 
 
 def items(case: Case, seen: Exposure, run: Watch) -> tuple[Item, ...]:
@@ -66,12 +73,15 @@ def items(case: Case, seen: Exposure, run: Watch) -> tuple[Item, ...]:
     met = [name for name, fact in found.entries if fact.met]
     given = _antidote(case)
     said = found.said()
+    parameter = case.parameters[f"cyanide.{case.chosen('cyanide').name}"]
     shown = f"for the prescriber: {said}" if said else "no finding beside the smoke is recorded as met"
     if missing:
         shown += f"; not recorded: {', '.join(missing)}"
     if given:
         shown += f"; {given}"
-    parameter = case.parameters[f"cyanide.{case.chosen('cyanide').name}"]
+    if said and is_history(case):
+        hours = number_text(case.parameters.number("cyanide.first_hours"))
+        shown = f"of the first {hours} h after the fire, history now: {shown.removeprefix('for the prescriber: ')}"
     return (
         *measured,
         say.fact(
@@ -90,7 +100,11 @@ def items(case: Case, seen: Exposure, run: Watch) -> tuple[Item, ...]:
                 inputs=tuple(Input(name, fact.shown(), fact.line) for name, fact in found.entries),
                 rule=str(parameter.value["title"]),
             ),
-            sources=(parameter.source, case.parameters.source_of("cyanide.lactate_above")),
+            sources=(
+                parameter.source,
+                case.parameters.source_of("cyanide.lactate_above"),
+                case.parameters.source_of("cyanide.first_hours"),
+            ),
             cautions=(*_limits(case), BLOOD_FIRST),
         ),
     )
@@ -152,12 +166,16 @@ def _prompts(case: Case, entries: tuple[tuple[str, Fact], ...]) -> bool:
     return "lactate" in met or {"consciousness", "blood pressure"} <= met
 
 
+def _first(case: Case) -> timedelta:
+    return timedelta(hours=case.parameters.number("cyanide.first_hours"))
+
+
 def _early(case: Case, rows: tuple[Row, ...]) -> tuple[Row, ...]:
     """Findings long after the fire have other causes."""
     burn = case.state.burn_time
     if burn is None:
         return rows
-    last = burn.latest + timedelta(hours=case.parameters.number("cyanide.first_hours"))
+    last = burn.latest + _first(case)
     return tuple(row for row in rows if row.at <= last)
 
 

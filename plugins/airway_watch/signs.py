@@ -24,6 +24,11 @@ def _count(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> I
     source = case.parameters.source_of("signs.value")
     if not signs:
         return say.gap(key, label, unit="count", rank=10 if seen.watched else None, cautions=(NO_ALL_CLEAR,))
+    signs, before = _around_tube(signs, run)
+    if not signs:
+        return say.fact(
+            key, label, f"none looked for since the tube; {_before(case, before, run)}", unit="count"
+        )
     present = [sign for sign in signs if sign.present]
     old = [sign for sign in signs if run.is_old(sign.at)]
     times = [sign.at for sign in signs]
@@ -40,6 +45,8 @@ def _count(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> I
         shown += f": {', '.join(sign.name for sign in present)}"
     if old:
         shown += f"; {len(old)} not reassessed in time"
+    if before:
+        shown += f"; {_before(case, before, run)}"
     return say.fact(
         key,
         label,
@@ -58,6 +65,20 @@ def _count(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> I
     )
 
 
+def _around_tube(signs: tuple[Sign, ...], run: Watch) -> tuple[tuple[Sign, ...], tuple[Sign, ...]]:
+    """Parts the signs looked for since the tube went in from those last looked for before: history, not present."""
+    placed = run.tube.since
+    if placed is None:
+        return signs, ()
+    return tuple(s for s in signs if s.at >= placed), tuple(s for s in signs if s.at < placed)
+
+
+def _before(case: Case, before: tuple[Sign, ...], run: Watch) -> str:
+    found = [f"{sign.name} {sign.state}" for sign in sorted(before, key=lambda sign: not sign.present)]
+    placed = say.at(case, run.tube.since) if run.tube.since else ""
+    return f"last looked for before the tube of {placed}: {', '.join(found)}"
+
+
 def _counted(present: list[Sign], signs: tuple[Sign, ...]) -> str:
     return f"{len(present)} present of {plural(len(signs), 'sign')} looked for"
 
@@ -67,24 +88,27 @@ def _input(case: Case, sign: Sign, run: Watch) -> Input:
 
 
 def _list(case: Case, seen: Exposure, run: Watch, signs: tuple[Sign, ...]) -> Item:
+    every = signs
     looked = [sign.name for sign in signs]
+    signs, before = _around_tube(signs, run)
     missing = [name for name in SUSPICION_SIGNS if name not in looked]
     parts = [aged(case, sign, run) for sign in signs if sign.present]
     parts += [aged(case, sign, run) for sign in signs if not sign.present]
+    parts += [_before(case, before, run)] if before else []
     shown = "; ".join(parts) or say.NOT_RECORDED
-    if signs and missing:
+    if every and missing:
         shown += f"; not assessed: {', '.join(missing)}"
-    shown += "".join(f"; {note}" for note in _notes(case, signs))
+    shown += "".join(f"; {note}" for note in _notes(case, every))
     old = any(run.is_old(sign.at) for sign in signs)
-    flag = Flag.NOT_RECORDED if not signs else Flag.REVIEW if old and seen.watched else Flag.NONE
+    flag = Flag.NOT_RECORDED if not every else Flag.REVIEW if old and seen.watched else Flag.NONE
     return say.fact(
         "airway_watch.signs",
         "Airway signs, one by one",
         shown,
-        as_of=max((sign.at for sign in signs), default=None),
+        as_of=max((sign.at for sign in every), default=None),
         flag=flag,
         cautions=(NO_ALL_CLEAR,),
-        line=signs[-1].line if signs else 0,
+        line=every[-1].line if every else 0,
     )
 
 

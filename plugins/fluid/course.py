@@ -108,6 +108,13 @@ class Course:
         """Return whether a line was not seen running for so long that no volume is said."""
         return (self.now - seen) / HOUR > self.number("line.not_confirmed_longest")
 
+    def given_ml(self) -> float:
+        """Return what was given, confirmed, from the moment on from which the plan counts, in mL."""
+        since = self.plan.since if self.plan else None
+        if since is None:
+            return self.given.total_ml(self.counted)
+        return self.given.between_ml(since, self.now, self.counted, first=True)
+
     def _open(self, purposes: Collection[str] | None) -> list[Portion]:
         return [
             p

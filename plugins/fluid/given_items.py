@@ -136,7 +136,7 @@ def _against(course: Course) -> Item:
         if course.plan is None and not missing:
             return unflagged("against_plan", label, f"{course.no_order}: nothing to set it against")
         return unflagged("against_plan", label, why_not(missing), detail=True)
-    given = course.given.total_ml(course.counted)
+    given, since = course.given_ml(), course.plan.since if course.plan else None
     low, high = (formula.surplus_ml(due, given) for due in reversed(bounds))
     is_one = low == high
     behind, urine = low < 0, course.urine_in_target
@@ -145,6 +145,8 @@ def _against(course: Course) -> Item:
         said = f"{ml(abs(low))} {'less' if low < 0 else 'more'} than due" if round(low) else "as due"
     else:
         said = f"from {_signed(low)} to {_signed(high)} against due"
+    if since is not None:
+        said += f" since the order of {course.time(since)}"
     flag = Flag.REVIEW if behind and urine is False else Flag.NONE
     word = "Behind the plan: " if flag is Flag.REVIEW else ""
     return figure(

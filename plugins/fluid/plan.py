@@ -64,6 +64,11 @@ class Plan:
             parts.append(formula.infusion_ml(rate.ml_h, max(0.0, (end - rate.at) / HOUR)))
         return math.fsum(parts)
 
+    @property
+    def since(self) -> datetime | None:
+        """From when it counts: None from the burn; the first ordered rate where no volume was ordered."""
+        return self.rates[0].at if self.volume is None and self.rates else None
+
     def gaps(self, moment: datetime) -> tuple[tuple[datetime, datetime], ...]:
         """Return the times up to ``moment`` in which an order had ended and no other had come."""
         if not self.rates:
@@ -96,7 +101,7 @@ def ordered_plan(case: Case, person: Person, facts: Facts) -> Plan | None:
     if force is None:
         return None
     setting = [row for row in orders(case) if sets(row.entry, SETS_FLUID)]
-    bases = [row for row in setting if "formula" in row.entry or "coefficient" in row.entry]
+    bases = [row for row in setting if _sets_volume(row.entry)]
     base = bases[-1] if bases else None
     volume: Volume | NoVolume | None = None
     if base is not None:
@@ -121,13 +126,18 @@ def ordered_plan(case: Case, person: Person, facts: Facts) -> Plan | None:
     )
 
 
+def _sets_volume(entry: Map) -> bool:
+    """A bare rate, of the unit's own formula too, follows on the volume before it and does not begin it anew."""
+    return "coefficient" in entry or words(entry.get("formula")) not in ("", LOCAL)
+
+
 def _volume_of(case: Case, person: Person, entry: Map, facts: Facts) -> Volume | NoVolume | None:
     written = words(entry.get("formula"))
     name = written.replace(" ", "-")
     coefficient = amount(entry.get("coefficient"), "mL/kg/%")
     if coefficient is not None:
         return by_coefficient(case, person, name or "coefficient as ordered", coefficient)
-    return None if name == LOCAL else by_rule(case, person, name, facts)
+    return by_rule(case, person, name, facts)
 
 
 def _said(case: Case, row: Row) -> str:

@@ -187,7 +187,7 @@ def _due(course: Course) -> Item:
         label,
         value=known[0] if is_one else None,
         unit="mL",
-        shown=f"{prefix}{said} (formula estimate)",
+        shown=f"{prefix}{said} {_counted_from(course)}",
         as_of=course.now,
         working=Working(
             formula="share of each period gone by since the burn x its volume; an ordered rate x its hours",
@@ -202,6 +202,15 @@ def _due(course: Course) -> Item:
     )
 
 
+def _counted_from(course: Course) -> str:
+    """From when it counts, as what was given is counted: the burn, or the first ordered rate."""
+    since = course.plan.since if course.plan else None
+    if since is None:
+        return "since the burn (formula estimate)"
+    given = f"; given since then {ml(course.given_ml())}" if course.given.charted else ""
+    return f"since the order of {course.time(since)} (ordered rate){given}"
+
+
 def _gaps(course: Course) -> tuple[str, ...]:
     """The times between orders in which none was in force: nothing is due for them."""
     spans = course.plan.gaps(course.now) if course.plan else ()
@@ -213,4 +222,7 @@ def _gaps(course: Course) -> tuple[str, ...]:
 
 def _due_sum(course: Course) -> str:
     hours = [number_text(_since(course, moment), 2) for moment in burn_moments(course)]
+    since = course.plan.since if course.plan else None
+    if since is not None:
+        return f"{number_text(_since(course, since), 2)} h since the order of {course.time(since)}: "
     return f"{' to '.join(dict.fromkeys(hours))} h since the burn: " if hours else ""

@@ -314,6 +314,32 @@ def test_a_late_lactate_is_not_a_sign_of_cyanide() -> None:
     assert item(found(state_text({}, results=results), at="2026-03-15 11:00"), "cyanide").flag is Flag.NONE
 
 
+def test_the_question_about_cyanide_becomes_history_when_the_first_day_is_over() -> None:
+    results = [{"at": T + "10:40", "lactate": "11 mmol/L"}]
+    text = state_text({}, results=results)
+    last, after = found(text, at="2026-03-15 10:00"), found(text, at="2026-03-15 10:01")
+    assert item(last, "cyanide").flag is Flag.ACTION
+    assert action(last, "tell_prescriber") is not None
+    assert item(after, "cyanide").flag is Flag.NONE
+    assert item(after, "cyanide").rank is None
+    assert item(after, "cyanide").shown.startswith("of the first 24 h after the fire, history now: ")
+    assert action(after, "tell_prescriber") is None
+
+
+def test_signs_from_before_the_tube_do_not_count_as_present_with_it() -> None:
+    signs = [looked("10:30", stridor="present"), looked("11:20", wheeze="present")]
+    block = {"signs": signs, "tube": [{"placed": T + "11:00"}]}
+    findings = found(state_text(block), at=T + "11:30")
+    assert item(findings, "signs_present").value == 1
+    assert item(findings, "signs_present").shown == (
+        "1 present of 1 sign looked for: wheeze; last looked for before the tube of 11:00: stridor present"
+    )
+    assert "stridor present 10:30" not in item(findings, "signs").shown
+    alone = found(state_text({**block, "signs": signs[:1]}), at=T + "11:30")
+    assert item(alone, "signs_present").value is None
+    assert item(alone, "signs_present").shown.startswith("none looked for since the tube; last looked for")
+
+
 def test_stridor_keeps_asking_after_a_review() -> None:
     block = {"signs": [looked("10:30", stridor="present")], "reviews": [{"at": T + "10:35", "who": "Dr A"}]}
     review = item(found(state_text(block), at=T + "10:40"), "senior_review")

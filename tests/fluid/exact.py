@@ -31,6 +31,11 @@ def minute(text: str, burn: str) -> int:
     return int(gone.total_seconds()) // 60
 
 
+def sets_volume(order: Mapping[str, Any]) -> bool:
+    """A coefficient or a published formula; ``local`` with a bare rate is a rate."""
+    return "coefficient" in order or order.get("formula", "local") != "local"
+
+
 class Exact:
     """The figures of one state at one moment."""
 
@@ -127,7 +132,7 @@ class Exact:
 
     def plan(self) -> tuple[F, tuple[tuple[int, F], ...]] | None:
         """Volume and periods of the last order with a coefficient or a formula; None for none."""
-        named = [e for e in self.block.get("orders", []) if "coefficient" in e or "formula" in e]
+        named = [e for e in self.block.get("orders", []) if sets_volume(e)]
         if not named:
             return None
         last = max(named, key=lambda e: self._at(e["at"]))
@@ -153,7 +158,7 @@ class Exact:
     def rates(self) -> list[tuple[int, F]]:
         """Rates ordered since the volume, in their order of time."""
         orders = self.block.get("orders", [])
-        bases = [self._at(e["at"]) for e in orders if "coefficient" in e or "formula" in e]
+        bases = [self._at(e["at"]) for e in orders if sets_volume(e)]
         since = max(bases, default=-1)
         return sorted(
             (self._at(e["at"]), quantity(e["rate"]))
@@ -265,7 +270,10 @@ class Exact:
         has_rate = has_plan and (bool(self.rates()) or not ended)
         found["rate_now"] = self.rate_at(self.now) if has_rate else None
         found["due_by_now"] = self.due(self.now) if has_plan else None
-        found["against_plan"] = given - self.due(self.now) if has_plan and charted else None
+        # without a volume the plan begins with its first rate, and what was given counts from there too
+        since = self.rates()[0][0] if self.plan() is None and self.rates() else 0
+        counted = given if since == 0 else self.given(purpose, True, since)
+        found["against_plan"] = counted - self.due(self.now) if has_plan and charted else None
         found["catch_up_rate"] = self._catch_up(given, charted)
         in_day = min(self.now, day)
         one = self.given(purpose, True, 0, in_day) + (

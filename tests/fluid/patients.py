@@ -48,7 +48,8 @@ def orders(dice: random.Random, now: int) -> list[dict[str, Any]]:
     times = sorted(dice.sample(range(now + 1), min(now + 1, dice.randint(1, 3))))
     for index, at in enumerate(times):
         if index and dice.random() < 0.5:
-            made.append({"at": text(at), "rate": f"{dice.randint(0, 1500)} mL/h"})
+            own = {"formula": "local"} if dice.random() < 0.3 else {}
+            made.append({"at": text(at), **own, "rate": f"{dice.randint(0, 1500)} mL/h"})
         elif dice.random() < 0.5:
             made.append({"at": text(at), "formula": dice.choice(FORMULAS)})
         else:

@@ -148,6 +148,27 @@ def test_the_order_in_force_counts_from_its_moment_and_a_rate_replaces_the_formu
     assert "A rate of 700 mL/h was ordered at 10:00" in " ".join(item(found, "total_24h").cautions)
 
 
+def test_a_rate_of_the_units_own_follows_on_the_volume_ordered_before_it() -> None:
+    own = {"at": "2026-03-14 10:00", "formula": "local", "rate": "700 mL/h"}
+    found = computed(burned(orders=[order(), own], given=[bolus(1500)]))
+    assert value(found, "due_by_now") == 400 * 2 + 700 * 2
+    assert item(found, "due_by_now").shown == "2,200 mL since the burn (formula estimate)"
+    assert value(found, "against_plan") == 1500 - 2200
+    assert value(found, "total_24h") == 6400
+
+
+def test_where_only_rates_were_ordered_due_and_given_count_from_the_first_of_them() -> None:
+    own = {"at": "2026-03-14 10:00", "formula": "local", "rate": "700 mL/h"}
+    ran = [run("900 mL/h", "2026-03-14 08:30", stopped="2026-03-14 10:30")]
+    found = computed(burned(orders=[own], given=ran))
+    assert item(found, "due_by_now").shown == (
+        "1,400 mL since the order of 10:00 (ordered rate); given since then 450 mL"
+    )
+    assert value(found, "given") == 1800
+    assert value(found, "against_plan") == 450 - 1400
+    assert item(found, "against_plan").shown.startswith("950 mL less than due since the order of 10:00;")
+
+
 def test_a_plan_beside_a_burn_below_the_start_line_is_shown_because_it_was_ordered() -> None:
     found = computed(burned("80 kg", "12 %", orders=[order()]))
     assert value(found, "total_24h") == 1920
