@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-import traceback
 from collections.abc import Mapping
 from dataclasses import dataclass
 from datetime import datetime
-from pathlib import Path
+from types import MappingProxyType
 
 from handoff.contract import breach
+from handoff.outside.stopped import Stopped, place_of
 from handoff.plugin import Action, Case, Findings, Flag, Item, Plugin
 from handoff.policy import Policy
 from handoff.registry import Setup
@@ -50,10 +50,23 @@ class Assessment:
         return tuple(item for item in self.items if item.flag is Flag.NOT_RECORDED)
 
 
-def assess(state: PatientState, setup: Setup, now: datetime, warnings: tuple[Fault, ...] = ()) -> Assessment:
-    """Return the assessment of ``state`` at ``now``; never raises for what a plugin does."""
+def assess(
+    state: PatientState,
+    setup: Setup,
+    now: datetime,
+    warnings: tuple[Fault, ...] = (),
+    unchecked: Mapping[str, str] = MappingProxyType({}),
+) -> Assessment:
+    """Return the assessment of ``state`` at ``now``; never raises for what a plugin does.
+
+    ``unchecked`` says for each plugin that could not check the file, by its name, why not.
+    """
     findings: dict[str, Findings] = {}
-    failures: list[Failure] = []
+    failures = [
+        Failure(plugin.name, plugin.title, f"its entries were not checked: it {unchecked[plugin.name]}")
+        for plugin in setup.plugins
+        if plugin.name in unchecked
+    ]
     for plugin in setup.plugins:
         lost = [name for name in plugin.requires if name not in findings]
         if lost:
@@ -66,8 +79,10 @@ def assess(state: PatientState, setup: Setup, now: datetime, warnings: tuple[Fau
         try:
             found = plugin.compute(case)
             problem = breach(plugin, found)
+        except Stopped as stopped:
+            problem = str(stopped)
         except Exception as error:  # a plugin may fail in any way; the document must still be made
-            problem = f"stopped with {type(error).__name__} {_place(error)}"
+            problem = f"stopped with {type(error).__name__} {place_of(error)}".rstrip()
         if problem:
             failures.append(Failure(plugin.name, plugin.title, problem))
         else:
@@ -91,11 +106,3 @@ def case_of(
     """Return what ``plugin`` is given for ``state`` at ``now``."""
     block = state.root.get(plugin.name)
     return Case(state, block, setup.parameters[plugin.name], now, findings)
-
-
-def _place(error: Exception) -> str:
-    frames = traceback.extract_tb(error.__traceback__)
-    if not frames:
-        return ""
-    last = frames[-1]
-    return f"({Path(last.filename).name}, line {last.lineno})"

@@ -17,6 +17,8 @@ from typing import Any
 import yaml
 
 from handoff.compiled import keep, kept, parsed
+from handoff.outside.plugins import OutsidePlugin, load_outside
+from handoff.outside.stopped import Stopped
 from handoff.parameters import ParameterError, Parameters, read_parameters
 from handoff.plugin import API_VERSION, Plugin
 from handoff.policy import Policy, PolicyError
@@ -55,7 +57,7 @@ def find_plugins(policy: Policy, bundled_only: bool = False) -> tuple[Plugin, ..
         if not is_bundled and (bundled_only or point.name not in wanted):
             continue
         wanted.discard(point.name)
-        found.append(_load(point))
+        found.append(_load(point) if is_bundled else _load_outside(point))
     if wanted and not bundled_only:
         raise PluginError(f"the policy names the plugin '{min(wanted)}', which is not installed")
     return in_order(found)
@@ -70,6 +72,19 @@ def _load(point: metadata.EntryPoint) -> Plugin:
         ) from error
     if not isinstance(plugin, Plugin):
         raise PluginError(f"the entry point '{point.name}' is not a handoff.plugin.Plugin")
+    return _of_that_name(plugin, point)
+
+
+def _load_outside(point: metadata.EntryPoint) -> Plugin:
+    try:
+        return _of_that_name(load_outside(point), point)
+    except Stopped as stopped:
+        raise PluginError(
+            f"the plugin '{point.name}' cannot be used: {stopped}; --bundled-only leaves it out"
+        ) from None
+
+
+def _of_that_name(plugin: Plugin, point: metadata.EntryPoint) -> Plugin:
     if plugin.name != point.name:
         raise PluginError(f"the entry point '{point.name}' brings a plugin that calls itself '{plugin.name}'")
     return plugin
@@ -113,6 +128,8 @@ def in_order(plugins: Iterable[Plugin]) -> tuple[Plugin, ...]:
 
 def part_of(plugin: Plugin, name: str) -> str | None:
     """Return the text of the file ``name`` in the plugin's package, or None when there is none."""
+    if isinstance(plugin, OutsidePlugin):
+        return plugin.parts.get(name) or None
     path = resources.files(plugin.package).joinpath(name)
     return path.read_text(encoding="utf-8") if path.is_file() else None
 
@@ -140,11 +157,15 @@ def parameters_of(plugin: Plugin) -> Parameters:
     try:
         data = kept([text]) or parsed(text)
         where = f"parameters.yaml of '{plugin.name}'"
-        if not plugin.package.startswith(BUNDLED):
+        if _is_outside(plugin):
             _hold_to_schema(data, where)
         return read_parameters(data, where)
     except (yaml.YAMLError, ParameterError) as error:
         raise PluginError(str(error)) from None
+
+
+def _is_outside(plugin: Plugin) -> bool:
+    return isinstance(plugin, OutsidePlugin) or not plugin.package.startswith(BUNDLED)
 
 
 def _hold_to_schema(data: Any, where: str) -> None:
@@ -172,7 +193,7 @@ def prepare(policy: Policy, plugins: Iterable[Plugin]) -> Setup:
         name: table.with_policy(policy.choices_of(name), policy.values_of(name))
         for name, table in tables.items()
     }
-    outside = tuple(plugin.name for plugin in ordered if not plugin.package.startswith(BUNDLED))
+    outside = tuple(plugin.name for plugin in ordered if _is_outside(plugin))
     return Setup(policy, ordered, parameters, schema, outside)
 
 

@@ -3,10 +3,7 @@
 from __future__ import annotations
 
 import json
-import os
 import re
-import subprocess
-import sys
 from base64 import b64decode, b64encode
 from collections.abc import Mapping
 from pathlib import Path
@@ -18,9 +15,13 @@ from handoff.document.errors import DocumentError
 from handoff.document.finish import Properties
 from handoff.document.paper import Page
 from handoff.document.sections import Mark
+from handoff.outside.runner import answer_of
+from handoff.outside.stopped import Stopped
 
 STOPPED_AFTER_S = 30
 """How long the filling of one template may take; one of ours takes a second."""
+
+CHILD = "handoff.document.outside_child"
 
 MARKED = "\0mark"
 """Key under which a tag travels, so that it is told from a text that is printed."""
@@ -75,22 +76,10 @@ def fill_outside(
         "page": [page.paper, page.landscape],
         "drawings": dict(drawings),
     }
-    house = str(Path(__file__).resolve().parents[2])
-    command = [sys.executable, "-m", "handoff.document.outside_child"]
-    kept = {key: os.environ[key] for key in ("SYSTEMROOT", "PATH", "LANG", "LC_ALL") if key in os.environ}
     try:
-        done = subprocess.run(  # noqa: S603 (our own module; what is foreign travels as data)
-            command,
-            input=json.dumps(asked).encode(),
-            capture_output=True,
-            timeout=STOPPED_AFTER_S,
-            env={**kept, "PYTHONPATH": house},
-            check=False,
-        )
-    except subprocess.TimeoutExpired:
-        raise _stopped(name, "it does not come to an end") from None
-    try:
-        answer: dict[str, Any] = json.loads(done.stdout)
+        answer: dict[str, Any] = json.loads(answer_of(CHILD, json.dumps(asked).encode(), STOPPED_AFTER_S))
+    except Stopped as stopped:
+        raise _stopped(name, str(stopped)) from None
     except ValueError:
         raise _stopped(name, "it took too much time or memory") from None
     if "fault" in answer:

@@ -2,18 +2,13 @@
 
 from __future__ import annotations
 
-import contextlib
 import json
 import sys
 from base64 import b64decode, b64encode
 from datetime import datetime
 from typing import Any
 
-LARGEST_BYTES = 1_000_000_000
-"""Address space that the process may have; one of our own templates takes a fifth of it."""
-
-AFTER_S = 20
-"""Seconds of work after which the system ends the process."""
+from handoff.outside.limits import keep_in, limit
 
 
 def main() -> None:
@@ -21,7 +16,8 @@ def main() -> None:
     from handoff.document import finish, outside, render  # noqa: PLC0415 (loaded before the limits are set)
 
     asked = json.loads(sys.stdin.buffer.read())
-    _limit()
+    limit()
+    keep_in()
     try:
         answer = _filled(asked, finish, outside, render)
     except MemoryError:
@@ -29,16 +25,6 @@ def main() -> None:
             "fault": f"the template {asked['name']} was stopped: it fills the memory; look for a loop in it"
         }
     sys.stdout.write(json.dumps(answer))
-
-
-def _limit() -> None:
-    # Windows knows no such limits; there the time alone is watched, by the one who asked.
-    with contextlib.suppress(ImportError):
-        import resource  # noqa: PLC0415
-
-        resource.setrlimit(resource.RLIMIT_AS, (LARGEST_BYTES, LARGEST_BYTES))
-        resource.setrlimit(resource.RLIMIT_CPU, (AFTER_S, AFTER_S))
-        resource.setrlimit(resource.RLIMIT_FSIZE, (0, 0))
 
 
 def _filled(asked: dict[str, Any], finish: Any, outside: Any, render: Any) -> dict[str, Any]:

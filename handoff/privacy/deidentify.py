@@ -88,7 +88,7 @@ def deidentified(loaded: Loaded, setup: Setup) -> tuple[Assessment, Report]:
     case.__dict__["digest"] = DIGEST
     own = replace(setup, policy=replace(setup.policy, name="local policy", unit_name="", templates=""))
     unusual = tuple(_over(fault, scrubber) for fault in loaded.unusual)
-    assessment = assess_loaded(Loaded(case, mover.moment(loaded.now), unusual), own)
+    assessment = assess_loaded(Loaded(case, mover.moment(loaded.now), unusual, loaded.unchecked), own)
     found = {
         name: replace(one, items=_over(one.items, scrubber), actions=_over(one.actions, scrubber))
         for name, one in assessment.findings.items()

@@ -17,6 +17,9 @@ class SinceBurn(Clock):
         super().__init__("UTC")
         self.zone = "hours since the burn"
 
+    def __reduce__(self) -> tuple[object, ...]:
+        return SinceBurn, ()
+
     def day_and_time(self, instant: datetime) -> str:
         """Return ``+06:10 h since burn``."""
         return f"{self.time(instant)} h since burn"

@@ -113,6 +113,9 @@ class Clock:
         self.zone = zone
         self._read = lru_cache(maxsize=4096)(self._read_local)
 
+    def __reduce__(self) -> tuple[object, ...]:
+        return type(self), (self.zone,)
+
     def read(self, text: str) -> datetime:
         """Return the instant of ``text``: ``2026-03-14 14:30``, with an offset if it must be told apart.
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import os
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from datetime import UTC, datetime
 from pathlib import Path
 from typing import Any, TypeAlias
@@ -32,6 +32,8 @@ class Loaded:
     state: PatientState
     now: datetime
     unusual: tuple[Fault, ...]
+    unchecked: Mapping[str, str] = field(default_factory=dict)
+    """Why each plugin that could not check the file failed, by its name."""
 
 
 def load_file(path: Path, at: str, schema: Mapping[str, Any], checks: Checks) -> Loaded:

@@ -30,6 +30,9 @@ class Text(str):
         text.line, text.column, text.start, text.end, text.plain = line, column, start, end, plain
         return text
 
+    def __reduce__(self) -> tuple[object, ...]:
+        return Text.at, (str(self), self.line, self.column, self.start, self.end, self.plain)
+
 
 class List(tuple["Node", ...]):
     """A list of the file, in its written order."""
@@ -54,6 +57,9 @@ class List(tuple["Node", ...]):
         made = cls(values)
         made.line, made.column, made.start, made.end, made.flow = line, column, start, end, flow
         return made
+
+    def __reduce__(self) -> tuple[object, ...]:
+        return List.at, (tuple(self), self.line, self.column, self.start, self.end, self.flow)
 
 
 class Map(dict[str, "Node"]):
@@ -80,6 +86,9 @@ class Map(dict[str, "Node"]):
         made = cls(pairs)
         made.line, made.column, made.start, made.end, made.flow = line, column, start, end, flow
         return made
+
+    def __reduce__(self) -> tuple[object, ...]:
+        return Map.at, (tuple(self.items()), self.line, self.column, self.start, self.end, self.flow)
 
     def key(self, name: str) -> Text:
         """Return the key ``name`` as it stands in the file, with its place."""

@@ -1,0 +1,1 @@
+"""What comes from outside: plugins that fail in every way."""
