@@ -31,6 +31,13 @@ MAX_DEPTH = 24
 MANY = 80
 """Characters before a key among which a sign that belongs to it is sought."""
 
+MOST_FAULTS = 1000
+"""So many faults are named in one run; a file with more has lost its shape."""
+
+AFTER_LETTERS = 300_000
+LETTERS_A_TEXT = 3
+"""So many letters into a file its texts are longer than this on average, commas and blanks counted in."""
+
 _Loader = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
 
 
@@ -91,6 +98,7 @@ class _Reading:
         self._open: list[_Open] = []
         self._root: Node | None = None
         self._upset_to = -1
+        self._texts = 0
         self._has_explicit_keys = "?" in text
 
     def root(self) -> Node | None:
@@ -138,6 +146,8 @@ class _Reading:
     def _fault(self, event: yaml.Event, what: str, cure: str) -> None:
         mark: Any = event.start_mark
         self.faults.append(Fault(mark.line + 1, mark.column + 1, self._path(), what, cure))
+        if len(self.faults) == MOST_FAULTS:
+            raise _Stop
 
     def _stop(self, event: yaml.Event, what: str, cure: str) -> None:
         self._fault(event, what, cure)
@@ -194,6 +204,11 @@ class _Reading:
             self._refuse_marks(event)
         start: Any = event.start_mark
         end: Any = event.end_mark
+        self._texts += 1
+        if start.index > AFTER_LETTERS and start.index < self._texts * LETTERS_A_TEXT:
+            self._stop(
+                event, "the file is almost nothing but commas or colons", "delete what is not an entry"
+            )
         is_plain = not event.style
         text = Text.at(event.value, start.line + 1, start.column + 1, start.index, end.index, is_plain)
         if not is_plain:

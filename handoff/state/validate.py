@@ -12,9 +12,14 @@ from handoff.state.keywords import make_validator
 from handoff.state.moments import Moments
 from handoff.state.nodes import List, Map, Node, path_text
 
+MOST_FAULTS = 1000
+"""So many faults are named in one run; who has more has lost the shape of the file, and names take time to find."""
+
 
 def check(root: Map, schema: Mapping[str, Any], now: datetime, refused: Iterable[Fault] = ()) -> list[Fault]:
     """Return every fault and every unusual, unconfirmed value of ``root``, in the order of the file.
+
+    After a thousand faults no more are sought.
 
     Args:
         root: The file as it was read.
@@ -24,6 +29,7 @@ def check(root: Map, schema: Mapping[str, Any], now: datetime, refused: Iterable
     """
     validator = make_validator(Moments(root, now))(schema)
     faults = []
+    left = MOST_FAULTS
     done = {(fault.line, fault.column) for fault in refused}
     for error in validator.iter_errors(root):
         path = list(error.absolute_path)
@@ -42,6 +48,9 @@ def check(root: Map, schema: Mapping[str, Any], now: datetime, refused: Iterable
         faults.append(
             Fault(place.line, place.column, path_text(path), error.message, error.cure, error.severity)
         )
+        left -= error.severity is Severity.FAULT
+        if not left:
+            break
     return sorted(faults)
 
 

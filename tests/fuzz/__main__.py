@@ -75,7 +75,8 @@ def said(results: list[Result], seed: int) -> str:
     ).stdout.strip()
     total = sum(result.count for result in results)
     lines = [
-        f"{datetime.now(UTC):%Y-%m-%d}, commit {commit}, Python {sys.version.split()[0]}, seed {seed}: {total:,} inputs.",
+        f"{datetime.now(UTC):%Y-%m-%d}, commit {commit}, Python {sys.version.split()[0]}, seed {seed}: "
+        f"{total:,} inputs.",
         "",
         "| target | inputs | read | refused | broken promises | longest | memory |",
         "|---|--:|--:|--:|--:|--:|--:|",
