@@ -3,8 +3,11 @@
 from __future__ import annotations
 
 import random
+import tempfile
+from dataclasses import replace
 from functools import lru_cache
 from io import BytesIO
+from pathlib import Path
 from zipfile import ZIP_DEFLATED, ZIP_STORED, ZipFile
 
 from handoff.chart.asking import Refused
@@ -15,6 +18,7 @@ from handoff.document import DocumentError, draft
 from handoff.document.outside import refuse_what_reaches_out
 from handoff.document.render import template_bytes
 from handoff.document.template_check import KINDS, template_faults
+from handoff.policy import Policy
 from handoff.shift.wording.word_text import NotADocument
 from handoff.state.faults import StateFaults
 from handoff.work import assess_loaded, open_text
@@ -22,9 +26,10 @@ from tests.chart.charts import MOMENTS, example, setup
 from tests.document.reading import parts
 
 from . import grammar
-from .properties import told
+from .properties import Breach, told
 
 PATIENT = "house-fire"
+DRAFTED = ("handover.docx", "care-plan.docx")
 LATER = "2026-03-15 07:30"
 BOMB = b'<?xml version="1.0"?><!DOCTYPE a [<!ENTITY a "aaaaaaaaaa"><!ENTITY b "&a;&a;&a;&a;&a;&a;&a;&a;">]><a>&b;</a>'
 HOSTILE_TEXT = [
@@ -170,7 +175,22 @@ def _checked(name: str, content: bytes) -> str:
     if faults:
         told(*faults)
         return REFUSED
+    if name in DRAFTED:
+        _filled(name, content)
     return READ
+
+
+def _filled(name: str, content: bytes) -> None:
+    """Print a patient with an edited template, as the command does: in a process with limits."""
+    with tempfile.TemporaryDirectory() as folder:
+        (Path(folder) / name).write_bytes(content)
+        read = open_text(example(PATIENT), "patient.yaml", setup(), MOMENTS[PATIENT])
+        assessment = replace(assess_loaded(read, setup()), policy=Policy(templates=folder))
+        trouble: list[str] = []
+        made = draft(assessment, "fuzz", None, trouble)
+    if len(made) != len(DRAFTED):
+        raise Breach("a document was not made")
+    told(*trouble)
 
 
 NOT_A_TEMPLATE = (Exception,)
