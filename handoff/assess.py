@@ -45,6 +45,11 @@ class Assessment:
         return next((item for item in self.items if item.key == key), None)
 
     @property
+    def shown_warnings(self) -> tuple[Fault, ...]:
+        """The warnings that a document may hold: even the place of a confidential entry is confidential."""
+        return tuple(one for one in self.warnings if one.path.partition(".")[0] != "confidential")
+
+    @property
     def not_recorded(self) -> tuple[Item, ...]:
         """The items whose value is missing from the file."""
         return tuple(item for item in self.items if item.flag is Flag.NOT_RECORDED)

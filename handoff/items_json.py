@@ -28,7 +28,7 @@ def as_data(assessment: Assessment) -> dict[str, Any]:
         "not_recorded": [{"key": item.key, "label": item.label} for item in assessment.not_recorded],
         "unusual": [
             {"line": fault.line, "path": fault.path, "what": fault.what, "cure": fault.cure}
-            for fault in assessment.warnings
+            for fault in assessment.shown_warnings
         ],
         "failures": [{"plugin": failure.plugin, "what": failure.what} for failure in assessment.failures],
     }

@@ -89,9 +89,10 @@ def bands(assessment: Assessment, lost: tuple[str, ...] = ()) -> tuple[Band, ...
     failed = (*(f"{failure.title}: {failure.what}" for failure in assessment.failures), *lost)
     if failed:
         found.append(Band("Could not be computed; work it out by hand", failed))
-    if assessment.warnings:
+    if assessment.shown_warnings:
         lines = tuple(
-            f"{fault.path}: {fault.what}; {fault.cure} (line {fault.line})" for fault in assessment.warnings
+            f"{fault.path}: {fault.what}; {fault.cure} (line {fault.line})"
+            for fault in assessment.shown_warnings
         )
         found.append(Band("Unusual and not confirmed; check at the bedside", lines))
     return tuple(found)
