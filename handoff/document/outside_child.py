@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 import json
+import re
 import sys
 from base64 import b64decode, b64encode
+from collections.abc import Iterator
 from datetime import datetime
 from typing import Any
 
@@ -44,7 +46,7 @@ def _filled(asked: dict[str, Any], finish: Any, outside: Any, render: Any) -> di
             return {
                 "fault": f"the template {name} was stopped: it reaches for the program itself ({error.__cause__})"
             }
-        return {"fault": str(error)}
+        return {"fault": _without_values(str(error), asked["data"])}
     except MemoryError:
         raise
     except Exception as error:  # a foreign template may fail in any way
@@ -52,6 +54,23 @@ def _filled(asked: dict[str, Any], finish: Any, outside: Any, render: Any) -> di
             return {"fault": f"the template {name} was stopped: it asks for another file"}
         return {"fault": f"the template {name} was stopped: it failed with {type(error).__name__}"}
     return {"content": b64encode(content).decode(), "printed": filled.printed}
+
+
+def _without_values(said: str, data: Any) -> str:
+    """A template can name a field by a value of the page; the value is the patient's and is not repeated."""
+    values = set(_texts(data))
+    return re.sub(r"'([^']*)'", lambda found: "a value of the page" if found[1] in values else found[0], said)
+
+
+def _texts(data: Any) -> Iterator[str]:
+    if isinstance(data, dict):
+        for value in data.values():
+            yield from _texts(value)
+    elif isinstance(data, list):
+        for value in data:
+            yield from _texts(value)
+    elif isinstance(data, str):
+        yield data
 
 
 if __name__ == "__main__":
