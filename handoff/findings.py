@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from datetime import datetime, timedelta
 from enum import StrEnum
 from typing import TypeAlias
@@ -218,3 +218,16 @@ def gap(
         cautions=cautions,
         rank=rank,
     )
+
+
+COMFORT_ASKS = "not asked for: the goal of care is comfort"
+
+
+def not_asked(item: Item) -> Item:
+    """Return an item that is not there as no gap: where the goal is comfort it is not asked for."""
+    if item.flag is not Flag.NOT_RECORDED:
+        return item
+    shown = (
+        f"{NOT_RECORDED}; {COMFORT_ASKS}" if item.shown == NOT_RECORDED else f"{item.shown}; {COMFORT_ASKS}"
+    )
+    return replace(item, flag=Flag.NONE, shown=shown, rank=None, detail=True)

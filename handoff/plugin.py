@@ -27,6 +27,7 @@ from handoff.findings import (
     Working,
     fact,
     gap,
+    not_asked,
 )
 from handoff.later import later
 from handoff.parameters import Chosen, Parameter, Parameters, Source
@@ -169,6 +170,7 @@ __all__ = [
     "joined",
     "later",
     "line_of",
+    "not_asked",
     "number",
     "number_text",
     "plural",

@@ -9,6 +9,10 @@ from decimal import ROUND_HALF_UP, Context, Decimal
 _ALL_PLACES = Context(prec=400, rounding=ROUND_HALF_UP)
 """Enough digits for every float, so that rounding itself never fails."""
 
+HOURS_A_DAY = 24
+DAYS_BEYOND_H = 3 * HOURS_A_DAY
+"""Beyond so many hours nobody counts in hours."""
+
 
 def number(value: float, places: int = 0) -> str:
     """Return ``value`` rounded half up to ``places``, without trailing zeros, commas from 1,000."""
@@ -30,9 +34,15 @@ def with_unit(value: float, unit: str, places: int = 0) -> str:
 
 
 def hours(value: float) -> str:
-    """Return hours as hours and minutes: ``6 h 10 min``; a negative value keeps its sign."""
+    """Return hours as hours and minutes: ``6 h 10 min``; beyond three days as days and whole hours.
+
+    A negative value keeps its sign.
+    """
     minutes = int(_rounded(abs(value) * 60, 0))
     whole, rest = divmod(minutes, 60)
+    if minutes > DAYS_BEYOND_H * 60:
+        days, left = divmod(whole, HOURS_A_DAY)
+        return f"{'-' if value < 0 else ''}{days} days{f' {left} h' if left else ''}"
     said = f"{whole} h {rest} min" if rest and whole else f"{rest} min" if rest else f"{whole} h"
     return f"-{said}" if value < 0 and minutes else said
 

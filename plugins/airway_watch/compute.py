@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import replace
 
-from handoff.plugin import Case, Findings, Flag, Item
+from handoff.plugin import Case, Findings, Flag, Item, not_asked
 
 from . import (
     antidote,
@@ -61,6 +61,7 @@ def compute(case: Case) -> Findings:
 
 
 def _silent(item: Item) -> Item:
-    """Where the goal is comfort a finding is shown and asks for nothing; what is not recorded still says so."""
-    flag = item.flag if item.flag is Flag.NOT_RECORDED else Flag.NONE
-    return replace(item, flag=flag, rank=None)
+    """Where the goal is comfort a finding is shown and asks for nothing; what is not recorded is no gap."""
+    if item.flag is Flag.NOT_RECORDED:
+        return not_asked(item)
+    return replace(item, flag=Flag.NONE, rank=None)

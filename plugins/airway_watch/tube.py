@@ -140,7 +140,7 @@ def _drift(case: Case, marks: list[tuple[datetime, float, str]]) -> Item:
         working=Working(
             formula="mark now - mark before; deeper is positive",
             sum=f"{number_text(depth, 1)} - {number_text(before, 1)} = {number_text(moved, 1)} cm",
-            rule=f"told from {with_unit(limit, 'cm', say.PLACES)}",
+            rule=f"a move of {with_unit(limit, 'cm', say.PLACES)} or more is told",
         ),
         sources=(case.parameters.source_of("tube.drift"),),
     )

@@ -144,9 +144,20 @@ def _special(assessment: Assessment) -> Item:
         for burn in assessment.burns
         if burn.counted is not False and (unsure := sites_unsure(burn))
     )
-    sites_said = [f"{name} ({joined(list(dict.fromkeys(depths)))})" for name, depths in said.items()]
+    inferred = [name for name in said if all(_is_inferred(name, burn) for burn in assessment.burns)]
+    sites_said = [
+        f"{name} ({joined(list(dict.fromkeys(depths)))}"
+        f"{'; taken from the larger region charted whole: ask' if name in inferred else ''})"
+        for name, depths in said.items()
+    ]
     shown = "; ".join([*sites_said, *may]) or "none charted"
     return _item("area.special_sites", "Special sites", shown, assessment)
+
+
+def _is_inferred(name: str, burn: Burn) -> bool:
+    """Whether a burn does not name the site itself; it holds it only because its region was charted whole."""
+    own = name in burn.sites or name in (burn.region, special_site(burn.region, burn.face))
+    return not own and not (burn.joint and name == f"{burn.joint} (joint)")
 
 
 def _region(assessment: Assessment, index: int, burn: Burn) -> Item:

@@ -42,11 +42,18 @@ def _level(case: Case) -> tuple[Item, ...]:
             flag=Flag.ACTION if acts else Flag.NONE,
             sources=(case.parameters.source_of("news2.consciousness"), *sources),
             cautions=(SEDATED,) if acts else (),
-            rank=RANK if acts and said in DEEP else None,
+            rank=RANK if acts and said in DEEP and not _summed(case, last) else None,
             detail=not acts,
             line=last.node.line,
         ),
     )
+
+
+def _summed(case: Case, level: Reading) -> bool:
+    """Whether the coma scale of the same minute says it, and stands on page one for both."""
+    same = [coma_of(one.node)[0] for one in case.state.series("gcs")[-1:] if one.at == level.at]
+    low = case.parameters.number("coma.low")
+    return any(total is not None and total <= low for total in same)
 
 
 def _median(case: Case, reading: Reading, said: str) -> tuple[str, tuple[Source, ...]]:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import replace
 
-from handoff.plugin import Case, Findings, Item
+from handoff.plugin import Case, Findings, Item, not_asked
 
 from . import (
     abdomen_items,
@@ -43,7 +43,7 @@ BY_WEIGHT = (
 def compute(case: Case) -> Findings:
     """Return the items and actions of fluid; ``values`` holds the course by the hour and what others read."""
     course = read_course(case)
-    return Findings(
+    found = Findings(
         items=_weighed(
             course,
             *plan_items.items(course),
@@ -70,6 +70,7 @@ def compute(case: Case) -> Findings:
         ),
         values=_values(course),
     )
+    return replace(found, items=tuple(not_asked(one) for one in found.items)) if case.comfort else found
 
 
 def _weighed(course: Course, *items: Item) -> tuple[Item, ...]:

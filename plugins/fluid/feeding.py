@@ -85,8 +85,14 @@ def _small(course: Course) -> bool:
     return pick(course.case.parameters[f"maintenance_for.{rule}"].value, course.facts).band is not None
 
 
+def _still_asked(course: Course) -> bool:
+    """Whether glucose of the small child is asked for: the first days, or while fluid runs by a line."""
+    recent = course.hours is None or course.hours <= course.number("child_glucose.to")
+    return recent or bool(course.given.running)
+
+
 def _glucose(course: Course) -> tuple[Item, ...]:
-    if course.comfort or not _small(course):
+    if course.comfort or not _small(course) or not _still_asked(course):
         return ()
     readings = [r for r in course.case.state.result_series("glucose") if unit_of(r.node)]
     if readings:
@@ -96,7 +102,7 @@ def _glucose(course: Course) -> tuple[Item, ...]:
 
 def actions(course: Course) -> tuple[Action, ...]:
     """Return the watch on glucose of a small child."""
-    if course.comfort or not _small(course):
+    if course.comfort or not _small(course) or not _still_asked(course):
         return ()
     readings = [r for r in course.case.state.result_series("glucose") if unit_of(r.node)]
     said = f"last {course.time(readings[-1].at)}" if readings else "none recorded"

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from datetime import datetime
 
 from handoff.plugin import Flag, Item, System, Working, amount, number_text, pressure_pair, words
@@ -48,7 +48,11 @@ def latest_mean(course: Course) -> Mean | None:
 
 def items(course: Course) -> tuple[Item, ...]:
     """Return mean arterial pressure, and systolic pressure where it is below its line."""
-    return (*_mean(course), *_systolic(course))
+    mean, systolic = _mean(course), _systolic(course)
+    if mean and systolic and mean[0].rank is not None and mean[0].as_of == systolic[0].as_of:
+        said = f"{systolic[0].shown}; mean {mean[0].shown}"  # one pressure takes one row of page one
+        return (replace(mean[0], rank=None), replace(systolic[0], shown=said))
+    return (*mean, *systolic)
 
 
 def _mean(course: Course) -> tuple[Item, ...]:

@@ -136,13 +136,13 @@ def _rate_range(course: Course, key: str, label: str) -> Item:
         key,
         label,
         unit="mL/h",
-        shown=f"{course.no_order}; {said} by the published coefficients ({range_said(course)}){_policy_said(course)}",
+        shown=f"{course.no_order}; {said} by the published coefficients{_policy_said(course)}",
         as_of=course.now,
         flag=Flag.REVIEW,
         rank=None if course.ended else RANK_NO_ORDER,  # the order that was ended stands there already
         working=Working(
             formula="lowest and highest rate of the published coefficients at this time since the burn",
-            sum=f"{course.published[0].sum} and {course.published[-1].sum} in 24 h: {said} now",
+            sum=f"{range_said(course)}: {course.published[0].sum} and {course.published[-1].sum} in 24 h: {said} now",
             inputs=inputs(course, with_burn=True),
             rule="no order in force: a range, no single rate",
         ),

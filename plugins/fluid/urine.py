@@ -39,6 +39,7 @@ class Urine:
     how: str
     word: str = ""
     count: int = 1
+    since: datetime | None = None
 
     @property
     def ml_h(self) -> float | None:
@@ -154,6 +155,7 @@ def _read(case: Case, reading: Reading, start: datetime | None) -> Urine:
         getattr(node, "line", reading.row.line),
         how,
         word,
+        since=None if over is not None else start,
     )
 
 
@@ -183,4 +185,5 @@ def _merged(same: list[Urine]) -> Urine:
         "pad by weight" if any(one.how for one in same) else "",
         LOST if any(one.word == LOST for one in same) else first.word,
         len(held),
+        first.since,
     )

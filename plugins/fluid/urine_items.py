@@ -37,6 +37,12 @@ def _not_since(course: Course) -> str:
     return f"; not measured since {course.time(last.at)}" if last is not None and _old(course) else ""
 
 
+def _long_since(course: Course, last: Urine) -> str:
+    """Where the interval was not written and is long: the measure or the catheter from which it is counted."""
+    long = last.since is not None and (last.hours or 0.0) > course.number("urine.check_every")
+    return f", counted from {course.time(last.since)}, none charted between" if long and last.since else ""
+
+
 def _rate(course: Course) -> Item:
     key, label = "urine_rate", "Urine by weight, last measure"
     last = course.urine.last
@@ -53,6 +59,7 @@ def _rate(course: Course) -> Item:
     words_for = {"below": "below the target", "above": "above the target", "in": "within the target"}
     against = f"; {words_for[judged]} of {aimed.shown}" if judged else f"; {aimed.shown}"
     run = _run_hours(course, judged) if judged in ("below", "above") else 0.0
+    said = f"{last.shown()}{_long_since(course, last)}"
     against = "" if course.comfort else against
     against += f" for {hours_text(run)} without a break" if against and run > (last.hours or 0.0) else ""
     return figure(
@@ -60,7 +67,7 @@ def _rate(course: Course) -> Item:
         label,
         value=value,
         unit="mL/kg/h",
-        shown=f"{ml_kg_h(value)} ({last.shown()}){against}{_trend(course, used.kg)}{_not_since(course)}",
+        shown=f"{ml_kg_h(value)} ({said}){against}{_trend(course, used.kg)}{_not_since(course)}",
         as_of=last.at,
         flag=_flag(course, judged),
         rank=RANK_LOW if judged == "below" and _flag(course, judged) is not Flag.NONE else None,

@@ -23,7 +23,7 @@ from handoff.plugin import (
 from . import formula, patient
 from .temperature import latest
 
-RANK = 36
+RANK = 34
 LABEL = "Toxic-shock signs in a child"
 SMALL = "It comes with small burns too, and looks like an ordinary childhood illness at first."
 

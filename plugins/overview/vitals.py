@@ -52,6 +52,16 @@ SATURATION = "vital.spo2"
 GASES = ("ph", "pao2", "paco2", "base_excess", "bicarbonate")
 TREND_LENGTH = 4
 
+RESULT_NAMES = {
+    "ph": "pH",
+    "pao2": "PaO2",
+    "paco2": "PaCO2",
+    "fio2": "FiO2 of the sample",
+    "ecg": "ECG",
+    "c_reactive_protein": "C-reactive protein",
+}
+"""Names that their key does not spell as they are written."""
+
 
 def vital_items(case: Case) -> tuple[Item, ...]:
     """Return the latest of each vital sign and each laboratory result, with its trend and age."""
@@ -62,6 +72,15 @@ def vital_items(case: Case) -> tuple[Item, ...]:
             items.append(_latest(case, f"vital.{name}", label, system, readings))
     items += _results(case)
     return tuple(items)
+
+
+def _interval_name(case: Case) -> str:
+    """The interval that holds: a longer one once the way home is planned and the first days are over."""
+    planned = words(child(case.state.root.get("wellbeing"), "discharge", "planned"))
+    burn = case.state.burn_time
+    after = case.parameters.number("vital.before_home_after")
+    settled = burn is not None and case.hours_between(burn.latest, case.now) > after
+    return "vital.check_interval_before_home" if planned and settled else "vital.check_interval"
 
 
 def _said(node: Node) -> str:
@@ -85,7 +104,7 @@ def _latest(case: Case, key: str, label: str, system: System, readings: tuple[Re
         )
         shown += f"; before: {trend}"
     age = case.now - last.at
-    interval = timedelta(minutes=case.parameters.number("vital.check_interval"))
+    interval = timedelta(minutes=case.parameters.number(_interval_name(case)))
     flag = Flag.NONE
     if age > interval and not case.comfort:
         flag = Flag.REVIEW
@@ -138,11 +157,7 @@ def _results(case: Case) -> list[Item]:
         items.append(
             Item(
                 key=f"result.{name}",
-                label=name.replace("_", " ")
-                .capitalize()
-                .replace("Ph", "pH")
-                .replace("Pao2", "PaO2")
-                .replace("Paco2", "PaCO2"),
+                label=RESULT_NAMES.get(name, name.replace("_", " ").capitalize()),
                 part=Part.ASSESSMENT,
                 system=system,
                 value=shown,
@@ -162,7 +177,7 @@ def vital_actions(case: Case) -> tuple[Action, ...]:
     """
     if case.comfort:
         return ()
-    interval = timedelta(minutes=case.parameters.number("vital.check_interval"))
+    interval = timedelta(minutes=case.parameters.number(_interval_name(case)))
     rows = [
         row.at for row in case.state.rows if sum(name in row.entry for name in FULL_ROW) > len(FULL_ROW) / 2
     ]
@@ -182,6 +197,6 @@ def vital_actions(case: Case) -> tuple[Action, ...]:
             first_due=rows[-1] + interval if rows else case.now,
             every=interval,
             urgency=Urgency.NOW if never else Urgency.TIMED,
-            sources=(case.parameters.source_of("vital.check_interval"),),
+            sources=(case.parameters.source_of(_interval_name(case)),),
         ),
     )

@@ -44,6 +44,8 @@ def item(case: Case, charted: Charted) -> Item:
     said += ", ".join(names) if names else "no scale of this list is published for this age and state"
     used = [score.scale for score in latest_scores(charted)]
     misfits = [scale.called for scale in used if scale.listed and scale.key not in fitting]
+    if case.comfort and state.able is False:
+        misfits = []  # where the goal is comfort a scale that watches is kept, not changed for another
     if misfits and fitting:
         said += f"; the latest score used the {', '.join(dict.fromkeys(misfits))}"
     return Item(

@@ -35,7 +35,7 @@ from .reassess import Due, interval, unwatched_for_long
 from .scores import scale_of
 
 SEDATION, BREATHING = "pain.sedation", "pain.breathing"
-RANK = 15
+RANK_STOP, RANK = 8, 15
 SEDATIVE = "sedative"
 COMFORT = "the goal of care is comfort: ask which depth of sedation is intended"
 
@@ -53,6 +53,7 @@ class Level:
     sources: tuple[Source, ...]
     node: Node
     reduce: bool = False
+    stop: bool = False
 
 
 def latest_level(case: Case) -> Level | None:
@@ -92,7 +93,16 @@ def _poss(case: Case, reading: Reading, node: Map) -> Level:
     ranged = ", ".join(table["levels"])
     reduce = written == table["reduce"]
     return Level(
-        reading.at, "POSS", written, ranged, prompt, bool(prompt), sources[: 1 + reduce], node, reduce
+        reading.at,
+        "POSS",
+        written,
+        ranged,
+        prompt,
+        bool(prompt),
+        sources[: 1 + reduce],
+        node,
+        reduce,
+        written == table["stop"],
     )
 
 
@@ -167,7 +177,7 @@ def _sedation_item(case: Case, charted: Charted) -> Item:
         sources=level.sources,
         cautions=("rising sedation comes before slow breathing",),
         repeats=True,
-        rank=RANK if flag is Flag.ACTION else None,
+        rank=(RANK_STOP if level.stop else RANK) if flag is Flag.ACTION else None,
         line=line_of(level.node),
     )
 
@@ -212,11 +222,12 @@ def _breathing_item(case: Case, charted: Charted) -> Item:
         shown = "not recorded, and an opioid was given" if opioid else "not recorded"
         return Item(
             key=BREATHING, label=label, part=Part.ASSESSMENT, system=System.PAIN, unit="/min",
-            shown=shown, flag=Flag.NOT_RECORDED, repeats=True,
+            shown=shown, flag=Flag.NOT_RECORDED, repeats=True, detail=opioid is None,
         )  # fmt: skip
     reading, rate = latest
     at = case.clock.time(reading.at, case.now)
     shown = f"{number_text(rate)} /min, {at}"
+    shown += "" if opioid else "; no opioid charted in the last 24 h"
     old = stale(case, charted, reading.at)
     if old:
         shown += f"; not reassessed since {at}, an opioid was given after it"
@@ -245,7 +256,8 @@ def _breathing_item(case: Case, charted: Charted) -> Item:
         sources=(case.parameters.source_of("respiration.hold_below"), *(source for _, source in risks)),
         cautions=tuple(cautions),
         repeats=True,
-        rank=RANK if flag is Flag.ACTION else None,
+        rank=RANK_STOP if flag is Flag.ACTION else None,
+        detail=opioid is None,
         line=line_of(reading.node),
     )
 

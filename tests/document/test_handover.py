@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from dataclasses import replace
 
 from handoff.document import draft
@@ -73,7 +74,41 @@ def test_an_overdue_action_stands_under_due_with_its_reference(handover: bytes) 
 
 def test_what_does_not_fit_page_one_is_named_there(handover: bytes) -> None:
     (line,) = [line for line in text_of(handover).splitlines() if line.startswith("Also due for review: ")]
-    assert "Oxygen saturation by pulse oximeter; Given since the burn" in line
+    assert "Given since the burn, confirmed; Pain at rest" in line
+    assert "Oxygen saturation" not in line  # the late check of vital signs says it
+
+
+def test_what_is_due_is_named_up_to_eight_times_and_then_counted() -> None:
+    given = assessment()
+    late = tuple(
+        item(f"wounds.late_{n}", f"Dressing {n}", f"soaked, {n}", Part.ASSESSMENT, flag=Flag.REVIEW)
+        for n in range(14)
+    )
+    content = made(replace(given, items=(*given.items, *late)))
+    (line,) = [line for line in text_of(content).splitlines() if line.startswith("Also due for review: ")]
+    names = line.removeprefix("Also due for review: ").split("; ")
+    assert len(names) == 9
+    assert re.fullmatch(r"and \d+ more on page two", names[-1])
+
+
+def test_one_reading_takes_one_row_of_page_one_and_its_reason_is_a_sentence_of_its_own() -> None:
+    given = assessment()
+    low, again = (
+        replace(
+            item(key, name, "2.4 mmol/L", Part.ASSESSMENT, flag=Flag.ACTION, rank=rank),
+            value=2.4,
+            unit="mmol/L",
+            as_of=given.now,
+            cautions=("measure again soon",),
+        )
+        for key, name, rank in (("a.low", "Glucose, low", 1), ("b.line", "Glucose beyond a line", 2))
+    )
+    content = made(replace(given, items=(low, again, *given.items)))
+    rows = cells(tables(content)["NEEDS ACTION"][0])
+    assert rows[1][:2] == ["Glucose, low", "2.4 mmol/L.  Measure again soon"]
+    assert not [row for row in rows if row[0] == "Glucose beyond a line"]
+    (line,) = [line for line in text_of(content).splitlines() if line.startswith("Also flagged ACTION: ")]
+    assert "Glucose beyond a line" in line
 
 
 def test_a_long_finding_is_cut_at_a_clause_on_page_one_and_whole_further_on() -> None:

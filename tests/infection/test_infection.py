@@ -182,7 +182,7 @@ def test_a_look_older_than_its_interval_is_due_and_a_later_look_replaces_an_earl
 def test_a_sign_of_toxic_shock_calls_the_childrens_doctor_now() -> None:
     signs = [{"at": "2026-03-14 18:00", "sudden change": "present"}]
     found = made(patient=CHILD, infection={"toxic_shock": signs})
-    assert item(found, "infection.toxic_shock").rank == 36
+    assert item(found, "infection.toxic_shock").rank == 34
     assert action(found, "infection.toxic_shock_call").urgency is Urgency.NOW
 
 

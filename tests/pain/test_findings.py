@@ -185,14 +185,28 @@ def test_the_opioid_total_is_exposure_with_the_hours_charted_and_the_table() -> 
 
 def test_oversedation_and_slow_breathing_lead_page_one_and_call() -> None:
     found = computed(RICH)
-    for key in ("pain.sedation", "pain.breathing"):
+    for key, rank in (("pain.sedation", 15), ("pain.breathing", 8)):
         assert item(found, key).flag is Flag.ACTION
-        assert item(found, key).rank == 15
+        assert item(found, key).rank == rank
     call = next(action for action in found.actions if action.key == "pain.oversedation")
     assert call.urgency is Urgency.NOW
     assert "25 % to 50 % less" in call.text
     risks = " ".join(item(found, "pain.breathing").cautions)
     assert "first day of an opioid; sedatives given too: midazolam; kidney disease" in risks
+
+
+def test_not_rousable_under_an_opioid_stands_before_the_airway_ranks() -> None:
+    found = computed(patient_state({}, {DAY: {"19:50": {"sedation": {"scale": "poss", "score": "4"}}}}))
+    assert item(found, "pain.sedation").rank == 8
+
+
+def test_breathing_under_opioids_stands_in_the_detail_where_no_opioid_was_charted() -> None:
+    breaths = {DAY: {"19:50": {"resp": "24 /min"}}}
+    without = item(computed(patient_state({}, breaths)), "pain.breathing")
+    assert without.detail
+    assert without.shown == "24 /min, 19:50; no opioid charted in the last 24 h"
+    dose = {"at": f"{DAY} 19:00", "drug": "morphine", "dose": "5 mg", "route": "IV"}
+    assert not item(computed(patient_state({"doses": [dose]}, breaths)), "pain.breathing").detail
 
 
 def test_the_published_reduction_is_worked_out_for_the_prescriber_only_in_the_working() -> None:

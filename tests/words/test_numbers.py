@@ -85,7 +85,7 @@ def test_a_unit_stands_after_one_space() -> None:
     assert with_unit(7.31, "", 2) == "7.31"
 
 
-@given(st.integers(-100_000, 100_000))
+@given(st.integers(-72 * 60, 72 * 60))
 def test_hours_and_minutes_read_back_as_the_same_minutes(minutes: int) -> None:
     said = hours(minutes / 60)
     match = re.fullmatch(r"(-?)(?:(\d+) h)?(?: ?(\d+) min)?", said)
@@ -95,10 +95,19 @@ def test_hours_and_minutes_read_back_as_the_same_minutes(minutes: int) -> None:
     assert int(match[3] or 0) < 60
 
 
+@given(st.integers(72 * 60 + 1, 100_000))
+def test_beyond_three_days_hours_are_said_as_days_and_whole_hours(minutes: int) -> None:
+    match = re.fullmatch(r"(\d+) days(?: (\d+) h)?", hours(minutes / 60))
+    assert match
+    assert int(match[1]) * 24 + int(match[2] or 0) == minutes // 60
+    assert hours(-minutes / 60) == f"-{hours(minutes / 60)}"
+
+
 @pytest.mark.parametrize(
     ("value", "said"),
     [(6 + 10 / 60, "6 h 10 min"), (0.5, "30 min"), (8, "8 h"), (0, "0 h"), (-1.5, "-1 h 30 min"), (-0.001, "0 h"),
-     (0.999, "1 h"), (23.9999, "24 h"), (2.5 / 60, "3 min")],
+     (0.999, "1 h"), (23.9999, "24 h"), (2.5 / 60, "3 min"), (72, "72 h"),
+     (72.25, "3 days"), (340.75, "14 days 4 h")],
 )  # fmt: skip
 def test_hours_are_said_as_at_the_bedside(value: float, said: str) -> None:
     assert hours(value) == said
