@@ -20,6 +20,8 @@ from handoff.items_json import as_json
 from handoff.privacy.deidentify import deidentified
 from handoff.privacy.free_text import Scrubber, known_terms
 from handoff.state.schema import load_schema
+from handoff.transfer.packet import packet
+from handoff.transfer.profile import load_profile, nameless
 from handoff.work import assess_loaded, open_text
 from tests.packaging.project import ROOT
 from tests.privacy.planting import AT, PLANTED, SECRETS, planted_text, setup
@@ -29,7 +31,17 @@ from tests.privacy.planting import AT, PLANTED, SECRETS, planted_text, setup
 def files() -> dict[str, bytes]:
     loaded = open_text(planted_text(), "ferrandel.yaml", setup(), AT)
     assessment, _ = deidentified(loaded, setup())
-    return draft(assessment, "case") | {"case.items.json": as_json(assessment).encode()}
+    sent = packet(
+        assessment,
+        nameless(load_profile("burn-centre")),
+        setup().parameters,
+        "case",
+        None,
+        name="case-transfer",
+    )
+    assert len(sent.files) > 4
+    packed = {f"{sent.name}/{name}": content for name, content in sent.files.items()}
+    return draft(assessment, "case") | packed | {"case.items.json": as_json(assessment).encode()}
 
 
 def every_part() -> dict[str, str]:
