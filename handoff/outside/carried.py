@@ -87,7 +87,8 @@ def _read(kind: Any, data: Any, where: str) -> Any:
         hints = get_type_hints(kind)
         if set(hints) != set(data):
             _misfit(where)
-        return kind(**{name: _read(hint, data[name], name) for name, hint in hints.items()})
+        made: Any = kind
+        return made(**{name: _read(hint, data[name], name) for name, hint in hints.items()})
     if isinstance(kind, type) and issubclass(kind, Enum) and data in [one.value for one in kind]:
         return kind(data)
     if kind in (datetime, timedelta) and isinstance(data, dict):

@@ -7,6 +7,7 @@ import json
 import os
 import pickle
 import sys
+from collections.abc import Callable, Mapping
 from importlib import metadata, resources
 from typing import Any
 
@@ -106,7 +107,11 @@ def _print_of(case: Case) -> str:
     return hashlib.sha256(pickle.dumps((given, case.parameters, case.findings))).hexdigest()
 
 
-_JOBS = {"describe": _describe, "compute": _compute, "check": _check}
+_JOBS: Mapping[str, Callable[[Plugin, Any], dict[str, Any]]] = {
+    "describe": _describe,
+    "compute": _compute,
+    "check": _check,
+}
 
 
 if __name__ == "__main__":

@@ -5,7 +5,7 @@ from __future__ import annotations
 import os
 import sys
 import traceback
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from pathlib import Path
 from typing import NamedTuple
 
@@ -23,14 +23,17 @@ class Ran(NamedTuple):
     written: list[Path]
 
 
-def run(folder: Path, arguments: Sequence[object]) -> Ran:
-    """Run ``handoff`` in ``folder`` with an open umask, ``TMPDIR`` below it and every socket refused."""
+def run(folder: Path, arguments: Sequence[object], first: Callable[[], object] = int) -> Ran:
+    """Run ``handoff`` in ``folder`` with an open umask, ``TMPDIR`` below it and every socket refused.
+
+    ``first`` is called in the new process before the command, to put something in its way.
+    """
     said, heard = folder / ".said", folder / ".heard"
     (folder / "temporary").mkdir(exist_ok=True)
     sys.stdout.flush()
     child = os.fork()
     if child == 0:
-        _become(folder, arguments, said, heard)
+        _become(folder, arguments, said, heard, first)
     _, status = os.waitpid(child, 0)
     lines = heard.read_text(encoding="utf-8").splitlines()
     told = said.read_text(encoding="utf-8", errors="replace")
@@ -44,7 +47,9 @@ def run(folder: Path, arguments: Sequence[object]) -> Ran:
     )
 
 
-def _become(folder: Path, arguments: Sequence[object], said: Path, heard: Path) -> None:
+def _become(
+    folder: Path, arguments: Sequence[object], said: Path, heard: Path, first: Callable[[], object]
+) -> None:
     code = 70
     try:
         os.chdir(folder)
@@ -69,6 +74,7 @@ def _become(folder: Path, arguments: Sequence[object], said: Path, heard: Path) 
         protect.ask_password.__globals__["sys"] = _Terminal() if "sys" in vars(protect) else sys
         log = os.open(heard, os.O_CREAT | os.O_WRONLY | os.O_TRUNC | os.O_APPEND, 0o600)
         _hear(log)
+        first()
         main()
         code = 0
     except SystemExit as left:
