@@ -158,7 +158,8 @@ def _names(items: Sequence[Item]) -> list[str]:
 def _why(item: Item) -> str:
     if item.cautions:
         return item.cautions[0]
-    return item.working.rule if item.working else ""
+    rule = item.working.rule if item.working else ""
+    return "" if rule in shown(item) else rule
 
 
 def _key_row(item: Item, shift: Shift) -> KeyRow:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from datetime import datetime
+from datetime import datetime, timedelta
 
 from handoff.plugin import (
     Case,
@@ -16,6 +16,7 @@ from handoff.plugin import (
     System,
     Working,
     amount,
+    hours_text,
     line_of,
     number_text,
     words,
@@ -158,6 +159,9 @@ def _pf_item(case: Case, row: Row, pao2: float, given: Fraction) -> Item:
             f"{said} (estimated FiO2) at {say.at(case, row.at)}; "
             "no range named because the estimate crosses ranges"
         )
+    old_after = timedelta(hours=case.parameters.number("gas.old_after"))
+    if case.now - row.at > old_after:
+        shown += f"; no gas for {hours_text((case.now - row.at) / timedelta(hours=1))}"
     flag = _pf_flag(value, best, limits)
     sources = [case.parameters.source_of("berlin")] + ([given.source] if given.source else [])
     pao2_said = words(row.entry.get("pao2"))

@@ -25,6 +25,8 @@ from handoff.plugin import (
 from . import formula
 
 RANK_HF = 36
+SOONEST = ("chemical.rinse", "chemical.eye", "chemical.hydrofluoric", "chemical.poisons")
+"""The tasks by what is lost soonest: water first, on the eye too; then the doctor, then advice by telephone."""
 HF = "hydrofluoric acid"
 LABEL = "Chemical rinsed off"
 
@@ -265,4 +267,4 @@ def actions(case: Case, cause: Map) -> tuple[Action, ...]:
                 sources=(case.parameters.source_of("rinse.until"),),
             )
         )
-    return tuple(made)
+    return tuple(sorted(made, key=lambda action: SOONEST.index(action.key)))
