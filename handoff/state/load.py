@@ -16,6 +16,7 @@ from handoff.state.file_text import read_text
 from handoff.state.nodes import Map, Text
 from handoff.state.patient import PatientState
 from handoff.state.reader import read_nodes
+from handoff.state.swallowed import entries_in_texts
 from handoff.state.validate import check, without_blanks
 
 Checks: TypeAlias = Callable[[PatientState, datetime], list[Fault]]
@@ -63,6 +64,7 @@ def load_text(text: str, file: str, at: str, schema: Mapping[str, Any], checks: 
     now = _moment(at, root)
     found += check(root, schema, now, found)
     found += entries_behind_hash(text, root)
+    found += entries_in_texts(text, root)
     faults = [fault for fault in found if fault.severity is Severity.FAULT]
     if faults:
         raise StateFaults(file, faults)

@@ -29,8 +29,11 @@ def main(arguments: Sequence[str] | None = None) -> int:
     )
     parser.add_argument("--seed", type=int, default=1)
     parser.add_argument("--only", nargs="+", choices=sorted(MOMENTS), default=list(MOMENTS), metavar="NAME")
+    parser.add_argument(
+        "--kinds", nargs="+", metavar="KIND", help="kinds by their beginning: indent 'line joined'"
+    )
     asked = parser.parse_args(arguments)
-    outcomes = judged(asked.only, asked.sample, asked.seed)
+    outcomes = judged(asked.only, asked.sample, asked.seed, asked.kinds)
     left = [one for one in outcomes if one[1].verdict == LEFT]
     print(said(outcomes, asked.sample, asked.seed))
     for name, outcome in left:
@@ -44,9 +47,12 @@ def every(names: Iterable[str]) -> list[tuple[Patient, Slip]]:
     return [(patient, slip) for patient in patients for slip in slips(patient.text)]
 
 
-def judged(names: Iterable[str], sample: int | None, seed: int) -> list[tuple[str, Outcome]]:
+def judged(
+    names: Iterable[str], sample: int | None, seed: int, kinds: Sequence[str] | None = None
+) -> list[tuple[str, Outcome]]:
     """Return what became of the slips, or of so many of them picked by ``seed``."""
-    found = every(names)
+    begun = tuple(kinds or ("",))
+    found = [(patient, slip) for patient, slip in every(names) if slip.kind.startswith(begun)]
     if sample is not None and sample < len(found):
         found = random.Random(seed).sample(found, sample)  # noqa: S311  (no secret)
     return [(patient.name, patient.judge(slip)) for patient, slip in found]

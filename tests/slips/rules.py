@@ -41,6 +41,8 @@ def rule_of(
         return _value(before[path], after[path], form_at(schema, path), hard(old) == hard(new), path)
     if not changed and gone and (step := _moved(gone, come)):
         return Rule(f"another digit in the {step} of a row", True)
+    if not gone and _parted(before, after, changed, come):
+        return Rule("a comma that parts a text of a list in brackets", True)
     return Rule(f"shape: {_said(changed, gone, come)}", False)
 
 
@@ -100,6 +102,18 @@ def _moved(gone: Leaves, come: Leaves) -> str:
             if first == second and len(first) == len(gone):
                 return named
     return ""
+
+
+def _parted(before: Leaves, after: Leaves, changed: list[Path], come: Leaves) -> bool:
+    """Whether a text of a list became two entries of it, as a comma in brackets is meant to do."""
+    if not come or any(not isinstance(path[-1], int) for path in (*changed, *come)):
+        return False
+    lists = {path[:-1] for path in (*changed, *come)}
+    return len(lists) == 1 and len(come) == 1 and _run(before, *lists) == _run(after, *lists)
+
+
+def _run(found: Leaves, below: Path) -> str:
+    return "".join(value.replace(" ", "") for path, value in found.items() if path[:-1] == below)
 
 
 def _said(changed: list[Path], gone: Leaves, come: Leaves) -> str:

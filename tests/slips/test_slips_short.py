@@ -55,6 +55,12 @@ def test_another_unit_that_nobody_warns_of_would_be_left() -> None:
     )
 
 
+def test_a_comma_in_a_list_in_brackets_is_what_the_list_is_for() -> None:
+    text = f"{HEAD}lines:\n  - {{what: IV cannula 16 G, failed_sites: [left hand foot]}}\n"
+    patient = Patient("small", text, NOW, setup())
+    assert "a comma" in patient.judge(slip("left hand", ",", text=text)).why
+
+
 def test_the_slips_of_a_short_text() -> None:
     made = {one.done_to("a: 1\n") for one in slips("a: 1\n")}
     assert {": 1\n", "aa: 1\n", ":a 1\n", "s: 1\n", "a: 2\n", "a: 0\n", "a:: 1\n", "a: 1", "#a: 1\n"} <= made
@@ -84,6 +90,34 @@ def test_an_entry_behind_a_hash_is_named(line: str, column: int) -> None:
 )
 def test_a_remark_is_not(line: str) -> None:
     assert read(f"{HEAD}{line}\n").unusual == ()
+
+
+@pytest.mark.parametrize(
+    ("written", "entry"),
+    [
+        ("  - a\n  summary: |\n    two lines\n    concerns:\n    - none", "'concerns:'"),
+        ("  - a\n  summary: |\n    one line    concerns:\n", "'concerns:'"),
+        ("  - left hand    - foot\n", "'- f'"),
+    ],
+)
+def test_an_entry_inside_a_text_is_named(written: str, entry: str) -> None:
+    text = HEAD.replace(
+        "injury: {at: 2026-03-14 13:20}", "injury:\n  at: 2026-03-14 13:20\n  what_happened: TEXT"
+    )
+    value = written.partition("summary: ")[2] or written.partition("- ")[2]
+    found = read(text.replace("TEXT", value.rstrip("\n"))).unusual
+    assert [one.what.partition(" stands")[0] for one in found] == [entry]
+
+
+@pytest.mark.parametrize(
+    "value", ["plan: rest", "A - b", '"a  - b"', "|\n    Plan:\n    - rest", "fell  -two steps"]
+)
+def test_other_texts_are_texts(value: str) -> None:
+    text = HEAD.replace(
+        "injury: {at: 2026-03-14 13:20}", "injury:\n  at: 2026-03-14 13:20\n  what_happened: TEXT"
+    )
+    value = value if value != "plan: rest" else '"plan: rest"'
+    assert read(text.replace("TEXT", value)).unusual == ()
 
 
 def test_nor_is_a_line_of_a_text() -> None:
