@@ -7,6 +7,6 @@ plugin = Plugin(
     title="Patient, injury and course",
     package="handoff.bundled.overview",
     compute=later("handoff.bundled.overview.compute", "compute"),
-    requires=("airway_watch",),
+    requires=("airway_watch", "early_warning", "infection"),
     owns=("patient", "injury", "vital", "result", "line", "event", "handover"),
 )

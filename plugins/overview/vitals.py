@@ -19,6 +19,7 @@ from handoff.plugin import (
     Urgency,
     child,
     line_of,
+    read_date,
     unit_of,
     words,
 )
@@ -75,12 +76,20 @@ def vital_items(case: Case) -> tuple[Item, ...]:
 
 
 def _interval_name(case: Case) -> str:
-    """The interval that holds: a longer one once the way home is planned and the first days are over."""
+    """The interval that holds: a longer one shortly before the way home, while nothing new needs action."""
     planned = words(child(case.state.root.get("wellbeing"), "discharge", "planned"))
+    days = timedelta(days=case.parameters.number("vital.before_home_days"))
+    day = read_date(planned).earliest() if planned else None
+    is_near = day is not None and day <= case.clock.local(case.now + days).date()
     burn = case.state.burn_time
     after = case.parameters.number("vital.before_home_after")
     settled = burn is not None and case.hours_between(burn.latest, case.now) > after
-    return "vital.check_interval_before_home" if planned and settled else "vital.check_interval"
+    acts = any(
+        item.flag is Flag.ACTION
+        for name in ("early_warning", "infection")
+        for item in (case.findings[name].items if name in case.findings else ())
+    )
+    return "vital.check_interval_before_home" if is_near and settled and not acts else "vital.check_interval"
 
 
 def _said(node: Node) -> str:

@@ -102,7 +102,10 @@ def _eye_care(case: Case) -> list[Action]:
     entry = _last(case, "eyes")
     at = case.when(entry.get("at")) if entry is not None else None
     made = []
-    if entry is None or words(entry.get("cornea")) in ("", "not assessed"):
+    unseen = entry is None or words(entry.get("cornea")) in ("", "not assessed")
+    if (
+        unseen and not case.comfort
+    ):  # where the goal is comfort the eyes are kept moist and nobody opens the lids
         made.append(
             Action(
                 key="wounds.eye_examination",
@@ -110,7 +113,7 @@ def _eye_care(case: Case) -> list[Action]:
                 text="Have both eyes examined before the lids swell shut; contact lenses out; write down sight",
                 why="the face is burned and no examination of the cornea is recorded",
                 system=System.WOUND,
-                urgency=Urgency.SHIFT if case.comfort else Urgency.NOW,
+                urgency=Urgency.NOW,
                 sources=(case.parameters.source_of("eyes.look_every"),),
             )
         )

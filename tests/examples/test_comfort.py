@@ -34,3 +34,9 @@ def test_where_comfort_is_the_goal_no_other_scale_is_asked_for_than_the_one_that
     assert found is not None
     assert found.flag is Flag.NONE
     assert "latest score used" not in found.shown
+
+
+def test_where_comfort_is_the_goal_nobody_opens_swollen_lids_to_examine_the_eyes() -> None:
+    keys = {action.key for action in assessment_of("comfort-care").actions}
+    assert "wounds.eye_care" in keys
+    assert "wounds.eye_examination" not in keys

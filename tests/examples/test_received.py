@@ -55,6 +55,8 @@ def test_a_child_going_home_is_checked_four_hourly_and_asked_for_no_glucose() ->
     check = next(action for action in made.actions if action.key == "vital.check")
     assert check.every == timedelta(hours=4)
     assert made.item("fluid.glucose_small_child") is None
+    sick = next(one for one in assessment_of("grafted-day-20").actions if one.key == "vital.check")
+    assert sick.every == timedelta(hours=1)  # home is planned there too, and she has a fever
     breaths = made.item("vital.resp")
     assert breaths is not None
     assert breaths.flag is Flag.NONE
