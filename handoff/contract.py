@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import unicodedata
 from collections.abc import Iterator
 from datetime import datetime, timedelta
 
@@ -59,6 +60,10 @@ def _texts(*texts: object) -> Iterator[str]:
     for text in texts:
         if not isinstance(text, str):
             yield f"with {type(text).__name__} where a text is due"
+        elif not text.isprintable() and any(
+            unicodedata.category(one) == "Cc" for one in text if one not in "\n\t"
+        ):
+            yield "with a control character in a text"
 
 
 def _kinds(*pairs: tuple[object, type]) -> Iterator[str]:

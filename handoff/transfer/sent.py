@@ -12,7 +12,7 @@ from handoff.transfer.packet import CONTENTS, Sent
 
 ITEMS = ".items.json"
 LARGEST = 50_000_000
-"""No file of a packet comes near to so many bytes."""
+"""No packet comes near to so many bytes, unpacked."""
 
 
 class NotAPacket(ValueError):
@@ -27,7 +27,7 @@ def read_sent(path: Path) -> tuple[Sent, tuple[str, ...]]:
     """
     try:
         files = _files(path)
-    except (OSError, zipfile.BadZipFile, RuntimeError) as error:
+    except Exception as error:  # each way of packing fails in a way of its own
         raise NotAPacket(f"{path} cannot be read as a packet ({type(error).__name__}); {_CURE}") from None
     items = [name for name in files if name.endswith(ITEMS)]
     if len(items) != 1:
@@ -48,7 +48,9 @@ def _files(path: Path) -> Mapping[str, bytes]:
         return {one.name: one.read_bytes() for one in sorted(path.iterdir()) if one.is_file()}
     if path.suffix == ".zip":
         with zipfile.ZipFile(path) as archive:
-            held = [info for info in archive.infolist() if not info.is_dir() and info.file_size <= LARGEST]
+            held = [info for info in archive.infolist() if not info.is_dir()]
+            if sum(info.file_size for info in held) > LARGEST:
+                raise zipfile.BadZipFile
             return {PurePosixPath(info.filename).name: archive.read(info) for info in held}
     return {path.name: path.read_bytes()}
 
