@@ -86,7 +86,7 @@ def deep(_: str) -> bytes:
 
 
 XML: dict[str, Callable[[str], bytes]] = {"entities": entities, "a file": reads_a_file, "levels": deep}
-PARTS = ("word/document.xml", "docProps/core.xml", "docProps/custom.xml", "word/header1.xml")
+PARTS = ("word/document.xml", "docProps/core.xml", "docProps/custom.xml")
 
 
 def parts_of(document: bytes) -> dict[str, bytes]:
@@ -172,7 +172,7 @@ def place(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> Path:
     return folder
 
 
-def meet(place: Path, reader: str, content: bytes) -> str:
+def meet(place: Path, reader: str, content: bytes, is_kept: bool = True) -> None:
     for name in ("x.docx", "x.zip", "handover.docx", "look/handover.docx", "patient-handover.docx"):
         (place / name).write_bytes(content)
     before = (place / "patient.yaml").read_bytes()
@@ -182,8 +182,7 @@ def meet(place: Path, reader: str, content: bytes) -> str:
     assert "root:" not in said
     assert not list(place.parent.parent.rglob("escaped*"))
     assert (place / "patient.yaml").read_bytes() == before or (reader == "collect" and code == 0)
-    assert (place / "patient-handover.docx").read_bytes() == content
-    return said
+    assert not is_kept or (place / "patient-handover.docx").read_bytes() == content
 
 
 @pytest.mark.parametrize("reader", READERS)
@@ -199,8 +198,9 @@ def test_a_document_packed_to_do_harm_is_refused_or_read_as_it_is(
 def test_a_document_whose_parts_are_built_to_do_harm_is_refused_or_read_as_it_is(
     kind: str, reader: str, place: Path, plan: bytes
 ) -> None:
-    for part in PARTS[:3]:
-        meet(place, reader, zipped({**parts_of(plan), part: XML[kind](part)}))
+    for part in PARTS:
+        # A document of which the properties alone were touched is as drafted, and may be drafted anew.
+        meet(place, reader, zipped({**parts_of(plan), part: XML[kind](part)}), part == PARTS[0])
 
 
 FORMULAS = (
