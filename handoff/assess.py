@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from datetime import datetime
 from types import MappingProxyType
+
+from msgspec import Struct
 
 from handoff.contract import breach
 from handoff.outside.stopped import Stopped, place_of
@@ -17,8 +18,7 @@ from handoff.state.patient import PatientState
 from handoff.ticks import known_done
 
 
-@dataclass(frozen=True, slots=True)
-class Failure:
+class Failure(Struct, frozen=True):
     """What could not be computed and why; holds no patient data."""
 
     plugin: str
@@ -26,8 +26,7 @@ class Failure:
     what: str
 
 
-@dataclass(frozen=True, slots=True)
-class Assessment:
+class Assessment(Struct, frozen=True):
     """What is known of one patient at one moment: items and actions, and what could not be computed."""
 
     state: PatientState

@@ -3,10 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass, field, replace
 from datetime import datetime, timedelta
 from enum import StrEnum
 from typing import TypeAlias
+
+from msgspec import Struct, field
+from msgspec.structs import replace
 
 from handoff.parameters import Source
 
@@ -68,8 +70,7 @@ class FormulaInputError(ValueError):
     """An argument of a formula is not finite or lies outside its range."""
 
 
-@dataclass(frozen=True, slots=True)
-class Input:
+class Input(Struct, frozen=True):
     """One number or fact that went into a sum: its name, how it is printed, its line (0: not from the file)."""
 
     label: str
@@ -77,8 +78,7 @@ class Input:
     line: int = 0
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Working:
+class Working(Struct, frozen=True, kw_only=True):
     """How a figure was worked out, for a reader to check."""
 
     formula: str
@@ -87,8 +87,7 @@ class Working:
     rule: str = ""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Item:
+class Item(Struct, frozen=True, kw_only=True):
     """One thing that the reader should know.
 
     ``value`` is not rounded and is in ``unit``; ``shown`` is how it is printed, with its unit.
@@ -115,8 +114,7 @@ class Item:
     line: int = 0
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Action:
+class Action(Struct, frozen=True, kw_only=True):
     """One line of the care plan: what to do, why, when first and how often.
 
     ``every`` and ``first_due`` give the boxes of the shift; an action with neither is done once.
@@ -134,8 +132,7 @@ class Action:
     cautions: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
-class Findings:
+class Findings(Struct, frozen=True):
     """What one plugin returns; ``values`` is for the plugins that require it, by any key they agree on."""
 
     items: tuple[Item, ...] = ()

@@ -8,8 +8,10 @@ refused.
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, replace
 from typing import Any, TypeAlias
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 Table: TypeAlias = Mapping[str, Any]
 
@@ -22,8 +24,7 @@ class ParameterError(ValueError):
     """A table of parameters is not usable; says which entry and why."""
 
 
-@dataclass(frozen=True, slots=True)
-class Source:
+class Source(Struct, frozen=True):
     """Where a number comes from: the publication, its place in it, and what kind of truth it is."""
 
     key: str
@@ -46,8 +47,7 @@ class Source:
         return f"{cited} {notes.get(self.kind, '')}".strip()
 
 
-@dataclass(frozen=True, slots=True)
-class Parameter:
+class Parameter(Struct, frozen=True):
     """One cited value: a number, a text, a list or a table, in ``unit``."""
 
     id: str
@@ -57,8 +57,7 @@ class Parameter:
     source: Source
 
 
-@dataclass(frozen=True, slots=True)
-class Choice:
+class Choice(Struct, frozen=True):
     """A choice between named rule sets: which there are, the default, and why it is the default."""
 
     name: str
@@ -67,8 +66,7 @@ class Choice:
     why: str
 
 
-@dataclass(frozen=True, slots=True)
-class Chosen:
+class Chosen(Struct, frozen=True):
     """The rule set in use, and whether the local policy named it."""
 
     name: str

@@ -9,8 +9,9 @@ and actions (what the care plan asks for), each with its working.
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.findings import (
     NOT_RECORDED,
@@ -54,8 +55,7 @@ API_VERSION = 1
 COMFORT_CARE = "comfort care"
 
 
-@dataclass(frozen=True, slots=True)
-class Case:
+class Case(Struct, frozen=True):
     """What a plugin is given: everything it may know, and nothing it could change."""
 
     state: PatientState
@@ -91,8 +91,7 @@ class Case:
         return (later - earlier) / timedelta(hours=1)
 
 
-@dataclass(frozen=True, slots=True)
-class Problem:
+class Problem(Struct, frozen=True):
     """A fault of the state file that no schema can see: the node, its path, what is wrong, what to do.
 
     ``path`` is counted from the root of the state file. ``Severity.UNUSUAL`` is a warning that
@@ -106,8 +105,7 @@ class Problem:
     severity: Severity = Severity.FAULT
 
 
-@dataclass(frozen=True, slots=True)
-class Plugin:
+class Plugin(Struct, frozen=True):
     """A plugin: its name (folder, entry point and block of the state file), and what it computes.
 
     ``package`` is the import name of the folder that holds ``schema.json``, ``parameters.yaml``

@@ -8,10 +8,11 @@ from __future__ import annotations
 
 import os
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, field
 from datetime import UTC, datetime, timedelta
 from pathlib import Path
 from typing import Any
+
+from msgspec import Struct, field
 
 from handoff.state.access import amount, words
 from handoff.state.faults import Fault, StateFaults
@@ -31,8 +32,7 @@ class PolicyError(Exception):
         self.lines = lines
 
 
-@dataclass(frozen=True, slots=True)
-class Policy:
+class Policy(Struct, frozen=True):
     """What the unit decided; ``choices`` and ``values`` are keyed ``plugin.name``."""
 
     name: str = "built-in defaults"
@@ -50,8 +50,8 @@ class Policy:
     plugins: tuple[str, ...] = ()
     choices: Mapping[str, str] = field(default_factory=dict)
     values: Mapping[str, Mapping[str, Any]] = field(default_factory=dict)
-    file: str = field(default="policy", compare=False)
-    places: Mapping[str, tuple[int, int]] = field(default_factory=dict, compare=False)
+    file: str = "policy"
+    places: Mapping[str, tuple[int, int]] = field(default_factory=dict)
     """Line and column of each choice and value, by ``choices.`` or ``values.`` and its key."""
 
     def choices_of(self, plugin: str) -> dict[str, str]:

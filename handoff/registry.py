@@ -8,13 +8,13 @@ from __future__ import annotations
 
 import json
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
 from graphlib import CycleError, TopologicalSorter
 from importlib import import_module, metadata, resources
 from pathlib import Path
 from typing import Any
 
 import yaml
+from msgspec import Struct
 
 from handoff.compiled import keep, kept, parsed
 from handoff.outside.plugins import OutsidePlugin, load_outside
@@ -33,8 +33,7 @@ class PluginError(Exception):
     """A plugin cannot be used; names both parties and the reason."""
 
 
-@dataclass(frozen=True, slots=True)
-class Setup:
+class Setup(Struct, frozen=True):
     """Everything that is ready before a patient is read: plugins in order, their tables, the schema."""
 
     policy: Policy

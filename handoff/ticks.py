@@ -7,16 +7,17 @@ says by whom and when it was ticked, because what was done may still not be char
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, replace
 from datetime import datetime
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from handoff.findings import Action, Urgency
 from handoff.state.access import entries, words
 from handoff.state.patient import PatientState
 
 
-@dataclass(frozen=True, slots=True)
-class Tick:
+class Tick(Struct, frozen=True):
     """The latest tick of a task: when it was due and done, as far as it was written, and by whom."""
 
     due: datetime | None

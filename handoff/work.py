@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
 from datetime import datetime
 from pathlib import Path
+
+from msgspec.structs import replace
 
 from handoff.assess import Assessment, assess, case_of
 from handoff.outside.stopped import Stopped

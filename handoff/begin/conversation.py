@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass, field
 from datetime import UTC, datetime
+
+from msgspec import Struct, field
 
 from handoff.begin.filling import NotYet, completed, faults_of, file_text
 from handoff.begin.questions import QUESTIONS, Question, choices
@@ -21,8 +22,7 @@ class Stopped(Exception):
     """The nurse stopped, or nobody can answer; nothing was written."""
 
 
-@dataclass
-class Conversation:
+class Conversation(Struct):
     """Asks every question and keeps the answers.
 
     ``ask`` prints a question and returns the line typed; ``say`` prints a line. ``at`` is the moment as a file

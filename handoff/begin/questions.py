@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
 from typing import TypeAlias
+
+from msgspec import Struct
 
 from handoff.chart import shape
 from handoff.chart.shape import Schema
@@ -14,8 +15,7 @@ Answers: TypeAlias = Mapping[str, str]
 UNKNOWN = "unknown"
 
 
-@dataclass(frozen=True)
-class Question:
+class Question(Struct, frozen=True):
     """One question: where its answer stands, how it is asked, an example with its unit.
 
     ``asked_if`` tells from the answers so far whether it is asked; ``needed`` that it cannot be

@@ -4,8 +4,10 @@ from __future__ import annotations
 
 import re
 from collections.abc import Container, Mapping
-from dataclasses import dataclass, replace
 from typing import Any
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from handoff.chart import shape
 from handoff.chart.asking import Refused
@@ -29,8 +31,7 @@ _REFERENCE = re.compile(
 WHOLE = -1
 
 
-@dataclass(frozen=True)
-class Amendment:
+class Amendment(Struct, frozen=True):
     """One correction (time and the entry as it should be) or one entry to strike out, by whom and why."""
 
     correct: str
@@ -72,8 +73,7 @@ def amend(
     return work.correct(text) if asked.correct else work.strike(text)
 
 
-@dataclass(frozen=True)
-class _Work:
+class _Work(Struct, frozen=True):
     restating: Restating
     schema: Schema
     words: Lexicon

@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.state.patient import PatientState
 
 
-@dataclass(frozen=True)
-class Question:
+class Question(Struct, frozen=True):
     """A question with yes or no: its key, how it is asked, and what is said where nobody can answer.
 
     ``by_confirm`` tells that ``--confirm`` answers it with yes.

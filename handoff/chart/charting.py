@@ -4,9 +4,10 @@ from __future__ import annotations
 
 from collections import Counter
 from collections.abc import Callable, Collection, Iterator
-from dataclasses import dataclass, field
 from datetime import datetime
 from typing import Any
+
+from msgspec import Struct, field
 
 from handoff.chart.adding import added_to
 from handoff.chart.amending import Amendment, amend
@@ -27,8 +28,7 @@ from handoff.state.nodes import Map, plain
 from handoff.work import open_text
 
 
-@dataclass(frozen=True)
-class Request:
+class Request(Struct, frozen=True):
     """What the nurse asks for: phrases with their time, or one correction, or one entry to strike out."""
 
     phrases: tuple[str, ...] = ()
@@ -39,8 +39,7 @@ class Request:
     why: str = ""
 
 
-@dataclass(frozen=True)
-class Charted:
+class Charted(Struct, frozen=True):
     """The new text, the state before and after, and what was charted in words."""
 
     text: str
@@ -49,8 +48,7 @@ class Charted:
     lines: tuple[str, ...]
 
 
-@dataclass
-class _Made:
+class _Made(Struct):
     """A draft with its entries in place, and the lines that say what they chart."""
 
     draft: Draft
@@ -99,8 +97,7 @@ def chart(
         raise
 
 
-@dataclass(frozen=True)
-class _Work:
+class _Work(Struct, frozen=True):
     text: str
     file: str
     setup: Setup

@@ -7,8 +7,9 @@ and the new tree is the old tree with the one change that was meant.
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
-from dataclasses import dataclass
 from typing import Any, TypeAlias
+
+from msgspec import Struct
 
 from handoff.chart.insertion import Entry, Insertion, Value, pairs, scalar, woven
 from handoff.chart.layout import CannotInsert, Layout
@@ -20,8 +21,7 @@ Path: TypeAlias = tuple[str | int, ...]
 Tree: TypeAlias = Any
 
 
-@dataclass(frozen=True)
-class _Change:
+class _Change(Struct, frozen=True):
     """One change: the block it is in, its insertions, how they are found, and what it does to the tree."""
 
     block: str

@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Collection, Iterator, Mapping, Sequence
-from dataclasses import dataclass, field, replace
 from datetime import datetime
 from typing import Any
+
+from msgspec import Struct, field
+from msgspec.structs import replace
 
 from handoff.chart import shape
 from handoff.chart.asking import Refused
@@ -23,8 +25,7 @@ CLOSED = ("struck", "confirmed", "written", "corrects")
 """Keys that speak for a whole entry: nothing is added to an entry that has one."""
 
 
-@dataclass(frozen=True)
-class Moment:
+class Moment(Struct, frozen=True):
     """When something was so, who charts it, and the late mark (empty where it is not late)."""
 
     at: datetime
@@ -43,8 +44,7 @@ class Moment:
         return self.spelled[:10], self.spelled[11:]
 
 
-@dataclass(frozen=True)
-class Write:
+class Write(Struct, frozen=True):
     """One entry to be written: its keys in order, and the phrase and meaning that each came from."""
 
     kind: str
@@ -60,8 +60,7 @@ class Write:
         return next(iter(self.said.values())).meaning
 
 
-@dataclass
-class Placed:
+class Placed(Struct):
     """An entry in its place."""
 
     write: Write
@@ -81,8 +80,7 @@ class Placed:
         return said or next(iter(self.write.said.values()))
 
 
-@dataclass
-class _Row:
+class _Row(Struct):
     keys: dict[str, Value] = field(default_factory=dict)
     said: dict[str, Said] = field(default_factory=dict)
 

@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
 from typing import TypeAlias
+
+from msgspec import Struct
 
 _PLAIN = re.compile(r"[A-Za-z0-9][A-Za-z0-9 _./%+\-()']*(?::[0-9][A-Za-z0-9 _./%+\-()]*)*")
 _HAZARD = re.compile(r" #|: |\s$|:$")
@@ -17,8 +18,7 @@ Value: TypeAlias = "str | Mapping[str, Value] | Sequence[Value]"
 Entry: TypeAlias = Mapping[str, Value]
 
 
-@dataclass(frozen=True, slots=True, order=True)
-class Insertion:
+class Insertion(Struct, frozen=True, order=True):
     """A text to be put before the character at ``place`` (an offset from 0)."""
 
     place: int

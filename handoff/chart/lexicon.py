@@ -5,8 +5,9 @@ from __future__ import annotations
 import json
 import re
 from collections.abc import Iterator, Mapping, Sequence
-from dataclasses import dataclass
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.chart import shape
 from handoff.chart.meanings import (
@@ -60,8 +61,7 @@ def _part(plugin: Plugin) -> Mapping[str, Any]:
     return part
 
 
-@dataclass(frozen=True)
-class _Maker:
+class _Maker(Struct, frozen=True):
     schema: Schema
     also: Mapping[str, str]
     found: dict[tuple[str, str], tuple[str, ...]]

@@ -4,9 +4,10 @@ from __future__ import annotations
 
 import re
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 from functools import cached_property
 from typing import Any, TypeAlias
+
+from msgspec import Struct, field
 
 from handoff.chart.insertion import Value
 from handoff.chart.slots import Slot
@@ -17,8 +18,7 @@ OBSERVATION, RESULT, LIST, GROUP, ADDITION = "observation", "result", "list", "g
 REST = "*"
 
 
-@dataclass(frozen=True)
-class Meaning:
+class Meaning(Struct, frozen=True):
     """One thing that can be charted: how it is said, what it means, where it goes.
 
     ``kind`` is observation, result, list, group or addition; ``place`` is the key of the row, or the
@@ -50,8 +50,7 @@ class Meaning:
         return (*steps[:-1], str(values[match["name"]]) if match else steps[-1])
 
 
-@dataclass
-class Lexicon:
+class Lexicon(Struct, dict=True):
     """Every meaning of the plugins in use, and which figures are worth saying after a change.
 
     ``found`` holds, for the file at hand, the words that stand at a place under a key.

@@ -5,8 +5,9 @@ from __future__ import annotations
 import difflib
 import re
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
 from functools import lru_cache
+
+from msgspec import Struct
 
 from handoff.chart.insertion import Value
 from handoff.chart.meanings import SLOT, Lexicon, Meaning, filled
@@ -22,8 +23,7 @@ class NotUnderstood(ValueError):
     """A phrase has no meaning here, or two; says what to do."""
 
 
-@dataclass(frozen=True)
-class Said:
+class Said(Struct, frozen=True):
     """A phrase with its meaning and the values of its slots."""
 
     text: str
@@ -47,8 +47,7 @@ class Said:
         return {} if value is None else value
 
 
-@dataclass(frozen=True)
-class _Miss:
+class _Miss(Struct, frozen=True):
     score: int
     said: str
 

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.chart import shape
 from handoff.chart.describing import describe_key, same
@@ -24,8 +25,7 @@ class SameAlready(ValueError):
     """The new value is the one that stands there."""
 
 
-@dataclass(frozen=True)
-class Restating:
+class Restating(Struct, frozen=True):
     """The draft, who changes it when and why, and whether an unusual new value was confirmed."""
 
     draft: Draft

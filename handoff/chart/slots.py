@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import re
 from collections.abc import Callable, Iterable, Mapping
-from dataclasses import dataclass, field
 from typing import Protocol
+
+from msgspec import Struct, field
 
 from handoff.chart import shape
 from handoff.chart.insertion import Value
@@ -60,8 +61,7 @@ def alternatives(words: Iterable[str]) -> str:
     return f"(?:{'|'.join(found)})(?![\\w/])" if found else r"(?!)"
 
 
-@dataclass(frozen=True)
-class Quantity:
+class Quantity(Struct, frozen=True):
     """A number with a unit of one kind, or one of a few words."""
 
     kind: str
@@ -91,8 +91,7 @@ class Quantity:
         return f"{number} {found.unit}".strip()
 
 
-@dataclass(frozen=True)
-class Listed:
+class Listed(Struct, frozen=True):
     """One of the words that the schema lists, or a short word for one."""
 
     name: str
@@ -118,8 +117,7 @@ class Listed:
         return folded[said.casefold()]
 
 
-@dataclass(frozen=True)
-class Number:
+class Number(Struct, frozen=True):
     """A number without a unit; its limits are the schema's matter."""
 
     is_telling: bool = True
@@ -136,8 +134,7 @@ class Number:
         return text.removeprefix("+")
 
 
-@dataclass(frozen=True)
-class Word:
+class Word(Struct, frozen=True):
     """One word, whatever it is."""
 
     is_telling: bool = False
@@ -152,8 +149,7 @@ class Word:
         return text
 
 
-@dataclass(frozen=True)
-class Free:
+class Free(Struct, frozen=True):
     """A text in the nurse's own words."""
 
     is_telling: bool = False
@@ -168,8 +164,7 @@ class Free:
         return text
 
 
-@dataclass(frozen=True)
-class Known:
+class Known(Struct, frozen=True):
     """A word that stands in the file already, such as the name of a line."""
 
     place: str
@@ -192,8 +187,7 @@ class Known:
         raise NotThat(f"no {self.key} '{text}' stands in {self.place}", f"begin one first; {there}")
 
 
-@dataclass(frozen=True)
-class Pairs:
+class Pairs(Struct, frozen=True):
     """Several keys with their values, one after the other: ``pulse weak, refill 4 s``."""
 
     keys: Mapping[str, tuple[str, Slot]]

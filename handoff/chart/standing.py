@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.chart import shape
 from handoff.chart.drafting import Path
@@ -17,8 +18,7 @@ CONFIDENTIAL = "confidential"
 """What stands there is never told on a screen."""
 
 
-@dataclass(frozen=True)
-class Standing:
+class Standing(Struct, frozen=True):
     """One entry that stands in a file, not struck out: where, and in which list (or the observations)."""
 
     path: Path

@@ -107,7 +107,7 @@ def _faults(path: Path) -> list[str]:
 
 def _trial(path: Path) -> list[str]:
     """Fill the template with an invented patient; return what is wrong with it."""
-    from dataclasses import replace
+    from msgspec.structs import replace
 
     from handoff.document import draft, note_document, ward_document
     from handoff.policy import Policy

@@ -6,8 +6,9 @@ Where two of them disagree, the row or box is told and not read.
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass, field
 from typing import Any
+
+from msgspec import Struct, field
 
 from handoff.document.references import BY_HAND
 from handoff.document.schedule import UNTIMED
@@ -23,8 +24,7 @@ _LABEL = re.compile(
 _ON = ("1", "true", "on")
 
 
-@dataclass(frozen=True)
-class Box:
+class Box(Struct, frozen=True):
     """One box: which of its row, whether it is ticked, and what is written beside it."""
 
     stamp: str
@@ -34,8 +34,7 @@ class Box:
     beside: str
 
 
-@dataclass(frozen=True)
-class Row:
+class Row(Struct, frozen=True):
     """One row that was found: its reference, what the task says, its boxes, and what cannot be read."""
 
     ref: str
@@ -49,8 +48,7 @@ class Row:
         return self.ref.startswith(BY_HAND)
 
 
-@dataclass
-class _Raw:
+class _Raw(Struct):
     """A box while it is read: its control, its symbol, the text behind it."""
 
     tag: str = ""

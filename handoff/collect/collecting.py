@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.chart.asking import Refused
 from handoff.chart.charting import Charted
@@ -28,8 +29,7 @@ BLOCK = "collected"
 _COMPARED = ("done", "by", "text", "note")
 
 
-@dataclass(frozen=True)
-class Collected:
+class Collected(Struct, frozen=True):
     """What was read: the new text with its states, what is said of it, and what needs a look.
 
     ``charted.lines`` are the ticks to be written, one a line; ``said`` is about the document,

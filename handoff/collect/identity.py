@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.collect.package import Returned
 from handoff.collect.times import printed_moment
@@ -25,8 +26,7 @@ class NotThisPlan(Exception):
         self.lines = lines
 
 
-@dataclass(frozen=True)
-class Plan:
+class Plan(Struct, frozen=True):
     """Which care plan it is: when it was made, from which version, and what is to be said of that."""
 
     made_at: datetime

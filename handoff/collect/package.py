@@ -4,12 +4,12 @@ from __future__ import annotations
 
 import zlib
 from collections.abc import Mapping
-from dataclasses import dataclass
 from io import BytesIO
 from typing import Any
 from zipfile import BadZipFile, ZipFile, ZipInfo
 
 from lxml import etree
+from msgspec import Struct
 
 from handoff.document.made_from import PREFIX
 from handoff.shift.wording.word_text import (
@@ -27,8 +27,7 @@ MOST_PARTS = 1000
 _DOCUMENT, _CORE, _CUSTOM = "word/document.xml", "docProps/core.xml", "docProps/custom.xml"
 
 
-@dataclass(frozen=True)
-class Returned:
+class Returned(Struct, frozen=True):
     """What a returned care plan says of itself: its body, its printed text, its properties.
 
     ``properties`` are those that were put in when it was made; a program that saved it may have

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.sections import NOT_RECORDED, Row, cautions_of, row, sentence, shown
@@ -27,16 +28,14 @@ class Citations:
         return tuple(Cited(f"[{mark}]", text) for text, mark in self._numbers.items())
 
 
-@dataclass(frozen=True, slots=True)
-class Cited:
+class Cited(Struct, frozen=True):
     """One source with its mark."""
 
     mark: str
     text: str
 
 
-@dataclass(frozen=True, slots=True)
-class Figure:
+class Figure(Struct, frozen=True):
     """One figure with its working, for a reader to check."""
 
     what: str
@@ -49,8 +48,7 @@ class Figure:
     cautions: str
 
 
-@dataclass(frozen=True, slots=True)
-class Note:
+class Note(Struct, frozen=True):
     """A value that is no sum: the sources and cautions that stand behind it."""
 
     what: str
@@ -58,8 +56,7 @@ class Note:
     sources: str
 
 
-@dataclass(frozen=True, slots=True)
-class Gap:
+class Gap(Struct, frozen=True):
     """One thing that is not recorded, and how it is printed."""
 
     what: str
@@ -67,8 +64,7 @@ class Gap:
     where: str
 
 
-@dataclass(frozen=True, slots=True)
-class Appendix:
+class Appendix(Struct, frozen=True):
     """Working, sources, and what is not recorded."""
 
     made_by: str

@@ -4,7 +4,8 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.sections import FLAG_WORDS, sentence, shown
@@ -56,8 +57,7 @@ _HANGING = re.compile(r"(?: (?!not?\b)[a-z]{1,3})+$")
 _WITH_UNIT = re.compile(r"[-+\d.,/]+ (?P<unit>[^\s\d]\S*)")
 
 
-@dataclass(frozen=True, slots=True)
-class Said:
+class Said(Struct, frozen=True):
     """One value in a line of values: what, the value with its unit, its time, its flag."""
 
     what: str
@@ -67,16 +67,14 @@ class Said:
     is_action: bool
 
 
-@dataclass(frozen=True, slots=True)
-class Brief:
+class Brief(Struct, frozen=True):
     """One part of the handover in few lines, and the names of what is not recorded in it."""
 
     said: tuple[Said, ...]
     missing: str
 
 
-@dataclass(frozen=True, slots=True)
-class BriefSystem:
+class BriefSystem(Struct, frozen=True):
     """One system of the assessment in few lines."""
 
     title: str

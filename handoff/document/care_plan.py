@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.appendix import Citations, Cited
@@ -16,8 +16,7 @@ BLANK_ROWS, BLANK_BOXES = 5, 6
 """Rows for tasks that are added by hand, and boxes of each."""
 
 
-@dataclass(frozen=True, slots=True)
-class Box:
+class Box(Struct, frozen=True):
     """One box to tick with room for time and initials, and the tags that find both again."""
 
     label: str
@@ -27,8 +26,7 @@ class Box:
     by_title: Mark
 
 
-@dataclass(frozen=True, slots=True)
-class Task:
+class Task(Struct, frozen=True):
     """One row of the plan; ``tag`` marks its printed reference."""
 
     ref: str
@@ -42,16 +40,14 @@ class Task:
     boxes: tuple[Box, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Area:
+class Area(Struct, frozen=True):
     """One problem area."""
 
     title: str
     tasks: tuple[Task, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class BlankBox:
+class BlankBox(Struct, frozen=True):
     """One box of a row that is added by hand: room for the time due beside it."""
 
     due_tag: Mark
@@ -62,8 +58,7 @@ class BlankBox:
     by_title: Mark
 
 
-@dataclass(frozen=True, slots=True)
-class BlankRow:
+class BlankRow(Struct, frozen=True):
     """One row for a task that is added by hand."""
 
     ref: str
@@ -73,8 +68,7 @@ class BlankRow:
     boxes: tuple[BlankBox, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class CarePlan:
+class CarePlan(Struct, frozen=True):
     """Everything that the care plan prints."""
 
     frame: Frame

@@ -2,11 +2,10 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 
-@dataclass(frozen=True, slots=True)
-class Change:
+class Change(Struct, frozen=True):
     """One thing that changed: what, before, now, and how (up, down, a flag that is new)."""
 
     what: str
@@ -15,16 +14,14 @@ class Change:
     how: str
 
 
-@dataclass(frozen=True, slots=True)
-class ChangedSystem:
+class ChangedSystem(Struct, frozen=True):
     """What changed in one system of the body."""
 
     title: str
     rows: tuple[Change, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Changes:
+class Changes(Struct, frozen=True):
     """What changed between two moments of one patient; without a title there is nothing to print."""
 
     title: str = ""

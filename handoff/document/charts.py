@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.sections import NOT_RECORDED, sentence
@@ -20,8 +21,7 @@ COLUMNS = {BURNS: 7, HOURS: 7}
 _COUNTED = {True: "counted", False: "NOT counted", None: "not assessed"}
 
 
-@dataclass(frozen=True, slots=True)
-class Burn:
+class Burn(Struct, frozen=True):
     """One burned region: where, how deep, how much of the body, and whether it counts."""
 
     region: str
@@ -32,8 +32,7 @@ class Burn:
     line: str
 
 
-@dataclass(frozen=True, slots=True)
-class Hour:
+class Hour(Struct, frozen=True):
     """One hour since the burn: what was due, what went in, what came out."""
 
     hour: str

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import fields, is_dataclass
 from typing import TypeAlias
+
+from msgspec import Struct
 
 from handoff.document.printable import visible
 from handoff.document.sections import Mark
@@ -12,9 +13,9 @@ from handoff.document.sections import Mark
 Data: TypeAlias = "str | bool | list[Data] | dict[str, Data]"
 
 
-def context(section: object) -> dict[str, Data]:
-    """Return a section (a dataclass of texts, truths, tuples and further sections) as plain data."""
-    return {field.name: _plain(getattr(section, field.name)) for field in fields(section)}  # type: ignore[arg-type]
+def context(section: Struct) -> dict[str, Data]:
+    """Return a section (a Struct of texts, truths, tuples and further sections) as plain data."""
+    return {field: _plain(getattr(section, field)) for field in section.__struct_fields__}
 
 
 def texts(data: Data, path: str = "") -> Iterator[tuple[str, str]]:
@@ -36,6 +37,6 @@ def _plain(value: object) -> Data:
         return visible(value)
     if isinstance(value, tuple):
         return [_plain(entry) for entry in value]
-    if is_dataclass(value):
+    if isinstance(value, Struct):
         return context(value)
     raise TypeError(f"a document holds texts, not {type(value).__name__}")

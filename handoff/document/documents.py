@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
 from datetime import datetime
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from handoff.assess import Assessment
 from handoff.document.care_plan import care_plan
@@ -76,7 +78,7 @@ def confidential_document(
 
 
 def patient_document(
-    template: str, section: object, assessment: Assessment, page: Page, trouble: list[str] | None = None
+    template: str, section: Struct, assessment: Assessment, page: Page, trouble: list[str] | None = None
 ) -> bytes:
     """Return the section of a patient in ``template`` on ``page``; ``trouble`` and raises as in :func:`draft`."""
     return _of_patient(template, context(section), assessment, page, trouble)

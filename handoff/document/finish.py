@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, field
 from datetime import UTC, datetime
 from io import BytesIO
 from itertools import count
 from typing import Any
 from zipfile import ZIP_DEFLATED, ZipFile, ZipInfo
+
+from msgspec import Struct, field
 
 from handoff.document.edited import MARK, UNSET, sealed
 from handoff.document.made_from import put_in
@@ -23,8 +24,7 @@ UNWANTED = ("stylesWithEffects",)
 _EPOCH = (1980, 1, 1, 0, 0, 0)
 
 
-@dataclass(frozen=True, slots=True)
-class Properties:
+class Properties(Struct, frozen=True):
     """The document properties: title, moment of making, digest of the clinical content.
 
     ``made_from`` holds what a care plan carries to be read back.

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.appendix import Appendix, appendix
@@ -62,16 +62,14 @@ BEDSIDE_CHECKS = (
 )
 
 
-@dataclass(frozen=True, slots=True)
-class Check:
+class Check(Struct, frozen=True):
     """One thing that giver and receiver look at together, with the tag of its tick box."""
 
     text: str
     tag: Mark
 
 
-@dataclass(frozen=True, slots=True)
-class Handover:
+class Handover(Struct, frozen=True):
     """Everything that the handover prints."""
 
     frame: Frame

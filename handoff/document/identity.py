@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.sections import CAUTION, NOT_RECORDED
@@ -12,8 +12,7 @@ from handoff.state.clock import read_date
 DIGEST_LENGTH = 12
 
 
-@dataclass(frozen=True, slots=True)
-class Frame:
+class Frame(Struct, frozen=True):
     """What stands on every page: who, which document, made when and from which version of the file."""
 
     title: str
@@ -26,8 +25,7 @@ class Frame:
     caution: str
 
 
-@dataclass(frozen=True, slots=True)
-class Identity:
+class Identity(Struct, frozen=True):
     """The identity band; a value that is missing says so."""
 
     name: str

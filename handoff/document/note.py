@@ -2,29 +2,26 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.document.identity import Frame
 
 
-@dataclass(frozen=True, slots=True)
-class NoteLine:
+class NoteLine(Struct, frozen=True):
     """One entry: when it happened, and what was charted, in words."""
 
     time: str
     text: str
 
 
-@dataclass(frozen=True, slots=True)
-class NoteSystem:
+class NoteSystem(Struct, frozen=True):
     """What was charted in one system of the body."""
 
     title: str
     lines: tuple[NoteLine, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Note:
+class Note(Struct, frozen=True):
     """Everything that the note prints; ``silent`` names the systems without an entry."""
 
     frame: Frame

@@ -4,8 +4,10 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass, replace
 from datetime import UTC, datetime
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from handoff.assess import Assessment
 from handoff.document.brief import named
@@ -31,8 +33,7 @@ _CLAUSE = re.compile(r"(?<=;)\s+|(?<=[\w)][\w)][\w)]\.)\s+|\n+")
 """Where a clause ends; the point of ``Dr B. Osei`` is not such a place."""
 
 
-@dataclass(frozen=True, slots=True)
-class KeyRow:
+class KeyRow(Struct, frozen=True):
     """One line of page one: what, what was found, when, and (where it needs action) why it matters."""
 
     what: str
@@ -41,24 +42,21 @@ class KeyRow:
     why: str
 
 
-@dataclass(frozen=True, slots=True)
-class Task:
+class Task(Struct, frozen=True):
     """One line of what to do: its reference in the care plan and the text; the reason stands in the plan."""
 
     ref: str
     text: str
 
 
-@dataclass(frozen=True, slots=True)
-class IfThen:
+class IfThen(Struct, frozen=True):
     """What may happen, and what to do then."""
 
     event: str
     answer: str
 
 
-@dataclass(frozen=True, slots=True)
-class PageOne:
+class PageOne(Struct, frozen=True):
     """The tables of page one; ``more_`` names what did not fit into its table."""
 
     actions: tuple[KeyRow, ...]

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.document.names import WORD
 
@@ -12,8 +13,7 @@ SIZES = {"A4": (11906, 16838), "Letter": (12240, 15840)}
 """Width and height of portrait paper in twentieths of a point (definition)."""
 
 
-@dataclass(frozen=True, slots=True)
-class Page:
+class Page(Struct, frozen=True):
     """The paper and how it is turned."""
 
     paper: str

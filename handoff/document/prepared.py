@@ -27,7 +27,7 @@ _LISTING = re.compile("[\t\n\a\f]")
 """What the library turns into tabs, breaks and paragraphs after the filling."""
 
 
-class PreparedTemplate(DocxTemplate):
+class PreparedTemplate(DocxTemplate):  # type: ignore[misc] # the library has no types  # type: ignore[misc] # the library has no types
     """A template that takes from the build what does not depend on the patient."""
 
     def patch_xml(self, src_xml: str) -> str:

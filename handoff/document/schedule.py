@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import Action, Clock, Urgency, hours_text, plural
 
@@ -20,8 +21,7 @@ UNTIMED = {
 }
 
 
-@dataclass(frozen=True, slots=True)
-class Shift:
+class Shift(Struct, frozen=True):
     """The window of a document: from its moment to the end of the coming shift."""
 
     start: datetime
@@ -33,8 +33,7 @@ class Shift:
         return self.clock.time(moment, self.start)
 
 
-@dataclass(frozen=True, slots=True)
-class Slot:
+class Slot(Struct, frozen=True):
     """One box: how it is labelled, and its part of the tag (``1930``)."""
 
     label: str

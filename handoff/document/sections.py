@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.plugin import Flag, Item
@@ -30,8 +31,7 @@ class Mark(str):
     __slots__ = ()
 
 
-@dataclass(frozen=True, slots=True)
-class Row:
+class Row(Struct, frozen=True):
     """One value as it is printed: what, the value with its unit, its time, its flag."""
 
     what: str
@@ -41,8 +41,7 @@ class Row:
     is_action: bool
 
 
-@dataclass(frozen=True, slots=True)
-class Block:
+class Block(Struct, frozen=True):
     """Rows under a heading of their own."""
 
     title: str
@@ -50,8 +49,7 @@ class Block:
     cautions: str
 
 
-@dataclass(frozen=True, slots=True)
-class Band:
+class Band(Struct, frozen=True):
     """A warning at the top of a document."""
 
     title: str

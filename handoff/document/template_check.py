@@ -4,13 +4,13 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, fields, is_dataclass
 from io import BytesIO
 from types import MappingProxyType
 from typing import Any, get_args, get_origin, get_type_hints
 
 from docxtpl import DocxTemplate
 from jinja2 import TemplateSyntaxError, nodes
+from msgspec import Struct
 
 from handoff.document.care_plan import CarePlan
 from handoff.document.handover import Handover
@@ -29,11 +29,10 @@ SHOWN = 80
 """Letters of a paragraph that are shown to find it by."""
 
 
-@dataclass(frozen=True, slots=True)
-class _Shape:
+class _Shape(Struct, frozen=True):
     """What stands behind a name: a section, a list of something, a text; None is not known."""
 
-    section: type | None = None
+    section: type[Struct] | None = None
     element: _Shape | None = None
 
     def parts(self) -> dict[str, _Shape]:
@@ -41,13 +40,13 @@ class _Shape:
         if self.section is None:
             return {}
         hints = get_type_hints(self.section)
-        return {field.name: _shape(hints[field.name]) for field in fields(self.section)}
+        return {name: _shape(hints[name]) for name in self.section.__struct_fields__}
 
 
 def _shape(kind: Any) -> _Shape:
     if get_origin(kind) is tuple:
         return _Shape(element=_shape(get_args(kind)[0]))
-    return _Shape(section=kind) if is_dataclass(kind) and isinstance(kind, type) else _Shape()
+    return _Shape(section=kind) if isinstance(kind, type) and issubclass(kind, Struct) else _Shape()
 
 
 def template_faults(content: bytes, name: str) -> list[str]:

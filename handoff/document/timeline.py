@@ -4,8 +4,10 @@ from __future__ import annotations
 
 import re
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
 from datetime import datetime
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from handoff.assess import Assessment
 from handoff.document.brief import shortened
@@ -23,8 +25,7 @@ NURSE_WRITTEN = "handover."
 """Actions with such keys repeat what the nurse wrote; here they are taken from the file itself."""
 
 
-@dataclass(frozen=True, slots=True)
-class Planned:
+class Planned(Struct, frozen=True):
     """One task: its reference in the care plan (empty where it has none), what to do, and its rhythm.
 
     ``at`` is its own time where that is neither the time of its line nor that of the task before it.
@@ -37,16 +38,14 @@ class Planned:
     is_urgent: bool = False
 
 
-@dataclass(frozen=True, slots=True)
-class Moment:
+class Moment(Struct, frozen=True):
     """What is due at one time."""
 
     when: str
     tasks: tuple[Planned, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Pending:
+class Pending(Struct, frozen=True):
     """A result or decision that is awaited: what, by when, who telephones whom."""
 
     what: str

@@ -4,9 +4,11 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterable
-from dataclasses import dataclass, replace
 from datetime import UTC, datetime
 from typing import Any
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from handoff.assess import Assessment
 from handoff.document.edited import is_as_drafted, read_parts
@@ -30,8 +32,7 @@ class NotOurs(Exception):
     """The document cannot be compared with a file; says why and what to do."""
 
 
-@dataclass(frozen=True, slots=True)
-class Made:
+class Made(Struct, frozen=True):
     """What a document says of itself: from which version of the file, for which moment, its text, its rows."""
 
     digest: str
@@ -41,8 +42,7 @@ class Made:
     as_drafted: bool
 
 
-@dataclass(frozen=True, slots=True)
-class Moved:
+class Moved(Struct, frozen=True):
     """One value that is no longer what the document says."""
 
     system: str

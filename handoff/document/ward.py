@@ -2,13 +2,12 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.document.sections import Band
 
 
-@dataclass(frozen=True, slots=True)
-class WardFrame:
+class WardFrame(Struct, frozen=True):
     """What stands on every page of it: which document, of which unit, made when."""
 
     title: str
@@ -17,8 +16,7 @@ class WardFrame:
     caution: str
 
 
-@dataclass(frozen=True, slots=True)
-class WardRow:
+class WardRow(Struct, frozen=True):
     """One patient: who and where, how sick in the nurse's word, what first, how much is overdue, what comes."""
 
     patient: str
@@ -29,8 +27,7 @@ class WardRow:
     next: str
 
 
-@dataclass(frozen=True, slots=True)
-class Ward:
+class Ward(Struct, frozen=True):
     """Everything that the page prints."""
 
     frame: WardFrame

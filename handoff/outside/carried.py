@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, fields, is_dataclass
 from datetime import datetime, timedelta
 from enum import Enum
 from types import NoneType, UnionType
 from typing import Any, TypeVar, get_args, get_origin, get_type_hints
+
+from msgspec import Struct
 
 from handoff.outside.stopped import Stopped
 
@@ -15,8 +16,7 @@ _MOMENT, _LENGTH, _MAP = "moment", "seconds", "map"
 T = TypeVar("T")
 
 
-@dataclass(frozen=True, slots=True)
-class Described:
+class Described(Struct, frozen=True):
     """What a plugin says of itself, and the texts of its files."""
 
     name: str
@@ -30,8 +30,7 @@ class Described:
     parameters: str
 
 
-@dataclass(frozen=True, slots=True)
-class Told:
+class Told(Struct, frozen=True):
     """One fault that a plugin's check found: line and column, path, what is wrong, what to do."""
 
     line: int
@@ -43,13 +42,13 @@ class Told:
 
 
 def packed(value: object) -> Any:
-    """Return ``value`` (a dataclass of the contract, or what it holds) as data that JSON can hold.
+    """Return ``value`` (a record of the contract, or what it holds) as data that JSON can hold.
 
     Raises:
         Stopped: It holds something of another kind; named.
     """
-    if is_dataclass(value) and not isinstance(value, type):
-        return {one.name: packed(getattr(value, one.name)) for one in fields(value)}
+    if isinstance(value, Struct):
+        return {name: packed(getattr(value, name)) for name in value.__struct_fields__}
     if isinstance(value, Enum):
         return value.value
     if isinstance(value, datetime):
@@ -83,7 +82,7 @@ def _read(kind: Any, data: Any, where: str) -> Any:
         return tuple(_read(get_args(kind)[0], one, where) for one in data)
     if origin is not None:  # the values that plugins hand to each other
         return _free(data) if isinstance(data, dict) else _misfit(where)
-    if is_dataclass(kind) and isinstance(data, dict):
+    if isinstance(kind, type) and issubclass(kind, Struct) and isinstance(data, dict):
         hints = get_type_hints(kind)
         if set(hints) != set(data):
             _misfit(where)

@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field, replace
 from importlib import metadata
 from typing import Any
+
+from msgspec import field
+from msgspec.structs import replace
 
 from handoff.findings import Findings
 from handoff.outside.stopped import Stopped
@@ -22,8 +24,7 @@ WITHHELD = ("confidential",)
 CHILD = "handoff.outside.plugin_child"
 
 
-@dataclass(frozen=True, slots=True)
-class OutsidePlugin(Plugin):
+class OutsidePlugin(Plugin, frozen=True):
     """A plugin whose code is never loaded here; ``parts`` holds the texts of its files."""
 
     parts: Mapping[str, str] = field(default_factory=dict)

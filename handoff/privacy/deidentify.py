@@ -8,11 +8,13 @@ from __future__ import annotations
 
 from collections import Counter
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, fields, is_dataclass, replace
-from datetime import datetime, timedelta
+from datetime import datetime
 from enum import Enum
 from pathlib import Path as FilePath
 from typing import Any, TypeVar
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from handoff.assess import Assessment
 from handoff.parameters import Source
@@ -40,8 +42,7 @@ DROPPED = ("confidential", "collected")
 _T = TypeVar("_T")
 
 
-@dataclass(frozen=True, slots=True)
-class Report:
+class Report(Struct, frozen=True):
     """What was taken out, by kind; what a person must look at; what nobody looked for."""
 
     counted: Mapping[str, int]
@@ -240,11 +241,11 @@ def _over(value: _T, scrubber: Scrubber) -> _T:
         made = replace(value, citation=scrubber.printed(value.citation)) if value.kind == "local" else value
     elif isinstance(value, tuple) and not hasattr(value, "_fields"):
         made = tuple(_over(one, scrubber) for one in value)
-    elif is_dataclass(value) and not isinstance(value, type) and not isinstance(value, (datetime, timedelta)):
+    elif isinstance(value, Struct):
         changed = {
-            one.name: _over(getattr(value, one.name), scrubber)
-            for one in fields(value)
-            if one.init and one.name not in ("key", "path", "severity", "unit")
+            one: _over(getattr(value, one), scrubber)
+            for one in value.__struct_fields__
+            if one not in ("key", "path", "severity", "unit")
         }
         made = replace(value, **changed)
     return made  # type: ignore[no-any-return]

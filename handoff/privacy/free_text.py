@@ -5,7 +5,8 @@ from __future__ import annotations
 import re
 from collections import Counter
 from collections.abc import Iterable
-from dataclasses import dataclass, field
+
+from msgspec import Struct, field
 
 _MONTH = (
     r"(?:jan(?:uary)?|feb(?:ruary)?|mar(?:ch)?|apr(?:il)?|(?-i:[Mm]ay|MAY)|june?|july?|aug(?:ust)?|"
@@ -55,8 +56,7 @@ PERSON, PLACE, NUMBER, DATE, TIME, NAME = (
 )
 
 
-@dataclass(slots=True)
-class Scrubber:
+class Scrubber(Struct):
     """Replaces what it knows and what looks like it; counts, and keeps what a person must look at.
 
     ``known`` are (text, what stands in its place); ``vocabulary`` are the words of the trade in small letters.

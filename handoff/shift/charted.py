@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterator
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import List, Map, Node, PatientState, Text
 from handoff.state.clock import Clock, ClockError
@@ -23,8 +24,7 @@ ROWS = "observations"
 _INSTANT = re.compile(r"\d{4}-\d{2}-\d{2}[T ]\d{2}:\d{2}(?: ?(?:Z|[+-]\d{2}:\d{2}))?")
 
 
-@dataclass(frozen=True, slots=True)
-class Entry:
+class Entry(Struct, frozen=True):
     """One dated entry: its path, when it happened, when it was written, and what stands there."""
 
     path: Path

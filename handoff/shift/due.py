@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
-from dataclasses import dataclass
 from datetime import datetime
 from enum import IntEnum
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.printable import visible
@@ -29,8 +30,7 @@ class Group(IntEnum):
         return ("overdue", "now", "due within the hour", "due this shift")[self]
 
 
-@dataclass(frozen=True, slots=True)
-class Due:
+class Due(Struct, frozen=True):
     """One line: when, who, its reference in the care plan, and what to do."""
 
     group: Group
@@ -45,8 +45,7 @@ class Due:
         return visible(f"{self.time}  {self.patient}  {self.ref}  {self.text}")
 
 
-@dataclass(frozen=True, slots=True)
-class DueList:
+class DueList(Struct, frozen=True):
     """What is due for one patient; ``ongoing`` and ``later`` count what has no line here."""
 
     moment: str

@@ -6,10 +6,11 @@ import re
 from collections.abc import Callable, Iterable, Iterator, Sequence
 from concurrent.futures import ProcessPoolExecutor
 from concurrent.futures.process import BrokenProcessPool
-from dataclasses import dataclass
 from functools import lru_cache, partial
 from pathlib import Path
 from typing import Generic, TypeVar
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.plugin import plural
@@ -27,8 +28,7 @@ SUFFIXES = (".yaml", ".yml")
 _POLICY = re.compile(rb"^policy[ \t]*:", re.MULTILINE)
 
 
-@dataclass(frozen=True, slots=True)
-class Unread:
+class Unread(Struct, frozen=True):
     """A file that could not be read, and why, in one line each; ``usage`` where the command was at fault."""
 
     file: str
@@ -36,8 +36,7 @@ class Unread:
     usage: bool = False
 
 
-@dataclass(frozen=True, slots=True)
-class Patient(Generic[T]):
+class Patient(Struct, Generic[T], frozen=True):
     """One patient of many: how they are named, who they are, what could not be computed, what was made."""
 
     said: str
@@ -46,16 +45,14 @@ class Patient(Generic[T]):
     made: T
 
 
-@dataclass(frozen=True, slots=True)
-class Read(Generic[T]):
+class Read(Struct, Generic[T], frozen=True):
     """A file and what was made of it."""
 
     file: str
     made: T
 
 
-@dataclass(frozen=True, slots=True)
-class Request(Generic[T]):
+class Request(Struct, Generic[T], frozen=True):
     """How each file is read, and what is made of its assessment; can be handed to another process."""
 
     at: str

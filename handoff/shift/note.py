@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.identity import frame
@@ -23,8 +24,7 @@ WITHOUT_TIME = ("fluid", "pain", "airway_watch", "wounds", "lines")
 """Blocks whose lists are dated; an entry without a time there may be of this shift."""
 
 
-@dataclass(frozen=True, slots=True)
-class _Found:
+class _Found(Struct, frozen=True):
     system: str
     at: datetime
     line: int

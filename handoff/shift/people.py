@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.plugin import PatientState, joined, words
 from handoff.state.clock import read_date
@@ -13,8 +14,7 @@ UNKNOWN = "unknown"
 """The name that a file holds until the patient is identified."""
 
 
-@dataclass(frozen=True, slots=True)
-class Person:
+class Person(Struct, frozen=True):
     """What tells one patient from another; a bed is not among it."""
 
     name: str

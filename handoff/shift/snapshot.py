@@ -4,9 +4,10 @@ from __future__ import annotations
 
 import json
 from collections.abc import Mapping
-from dataclasses import dataclass
 from datetime import UTC, datetime
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.references import references
@@ -18,8 +19,7 @@ class NotItems(ValueError):
     """A text is not an items.json that can be compared; says what to do."""
 
 
-@dataclass(frozen=True, slots=True)
-class Seen:
+class Seen(Struct, frozen=True):
     """One item as it was printed; ``value`` is a number, a text, or None."""
 
     key: str
@@ -33,8 +33,7 @@ class Seen:
     detail: bool = False
 
 
-@dataclass(frozen=True, slots=True)
-class Planned:
+class Planned(Struct, frozen=True):
     """One line of the care plan; ``ref`` is empty where it is not known."""
 
     key: str
@@ -42,8 +41,7 @@ class Planned:
     ref: str = ""
 
 
-@dataclass(frozen=True, slots=True)
-class Snapshot:
+class Snapshot(Struct, frozen=True):
     """Everything that two moments of one patient are compared by."""
 
     person: Person

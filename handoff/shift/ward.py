@@ -5,9 +5,10 @@ from __future__ import annotations
 import hashlib
 import math
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass
 from datetime import datetime
 from typing import TypeAlias
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.page_one import page_one
@@ -32,8 +33,7 @@ ACTS, HAS_GAPS, NO_MARK = 0, 1, 2
 LAST = math.inf
 
 
-@dataclass(frozen=True, slots=True)
-class Standing:
+class Standing(Struct, frozen=True):
     """One patient of the ward: what the line prints, and what it is sorted by."""
 
     row: WardRow

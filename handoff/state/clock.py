@@ -9,10 +9,11 @@ from __future__ import annotations
 
 import re
 from calendar import monthrange
-from dataclasses import dataclass
 from datetime import UTC, date, datetime, timedelta
 from functools import lru_cache
 from zoneinfo import ZoneInfo, ZoneInfoNotFoundError
+
+from msgspec import Struct
 
 MONTHS = ("Jan", "Feb", "Mar", "Apr", "May", "Jun", "Jul", "Aug", "Sep", "Oct", "Nov", "Dec")
 DAYS = ("Mon", "Tue", "Wed", "Thu", "Fri", "Sat", "Sun")
@@ -34,8 +35,7 @@ class ClockError(ValueError):
         self.cure = cure
 
 
-@dataclass(frozen=True, slots=True)
-class PartialDate:
+class PartialDate(Struct, frozen=True):
     """A date of which the day, or day and month, may be unknown."""
 
     year: int

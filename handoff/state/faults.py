@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from enum import StrEnum
+
+from msgspec import Struct
 
 LONGEST = 600
 """Characters of a message, file name and place not counted."""
@@ -16,8 +17,7 @@ class Severity(StrEnum):
     UNUSUAL = "unusual"
 
 
-@dataclass(frozen=True, slots=True, order=True)
-class Fault:
+class Fault(Struct, frozen=True, order=True):
     """One line for the nurse: where, what is wrong, what to do."""
 
     line: int

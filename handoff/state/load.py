@@ -4,10 +4,11 @@ from __future__ import annotations
 
 import os
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field
 from datetime import UTC, datetime
 from pathlib import Path
 from typing import Any, TypeAlias
+
+from msgspec import Struct, field
 
 from handoff.state.clock import Clock, ClockError
 from handoff.state.comments import entries_behind_hash
@@ -26,8 +27,7 @@ class MomentError(ValueError):
     """The moment asked for on the command line is not one."""
 
 
-@dataclass(frozen=True, slots=True)
-class Loaded:
+class Loaded(Struct, frozen=True):
     """A validated state, the moment it is read for, and the unusual values that nobody confirmed."""
 
     state: PatientState

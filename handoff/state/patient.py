@@ -4,9 +4,10 @@ from __future__ import annotations
 
 import hashlib
 import json
-from dataclasses import dataclass
 from datetime import UTC, date, datetime
 from functools import cached_property
+
+from msgspec import Struct
 
 from handoff.state.access import amount, child, entries, instant, unit_of, without_struck, words
 from handoff.state.clock import Clock, read_date
@@ -20,8 +21,7 @@ KNOWN = ("measured", "from records", "reported by patient", "reported by family"
 """How a weight can be known, best first."""
 
 
-@dataclass(frozen=True, slots=True)
-class Age:
+class Age(Struct, frozen=True):
     """Age at a moment: completed years, months and days.
 
     An estimated age has months and days only as far as it was written in them.
@@ -42,8 +42,7 @@ class Age:
         return prefix + plural(self.years, "year")
 
 
-@dataclass(frozen=True, slots=True)
-class Weight:
+class Weight(Struct, frozen=True):
     """One recorded weight: value in kg, which weight it is, how it was known, and where it stands."""
 
     kg: float
@@ -58,8 +57,7 @@ class Weight:
         return KNOWN.index(self.known) if self.known in KNOWN else len(KNOWN)
 
 
-@dataclass(frozen=True, slots=True)
-class BurnTime:
+class BurnTime(Struct, frozen=True):
     """When the burn happened; earliest and latest differ where the time is uncertain."""
 
     earliest: datetime
@@ -72,8 +70,7 @@ class BurnTime:
         return self.earliest == self.latest
 
 
-@dataclass(frozen=True, slots=True)
-class Row:
+class Row(Struct, frozen=True):
     """One charted row of observations or results: its moment and what was written."""
 
     at: datetime
@@ -85,8 +82,7 @@ class Row:
         return self.entry.line
 
 
-@dataclass(frozen=True, slots=True)
-class Reading:
+class Reading(Struct, frozen=True):
     """One charted value of a series: its moment, the node, and the row it came from."""
 
     at: datetime

@@ -7,8 +7,9 @@ write them (``mcg``, ``mL``, ``C``). The text is kept for the document, the numb
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass
 from functools import lru_cache
+
+from msgspec import Struct
 
 from handoff.state.characters import look_alike
 from handoff.state.units import ALIASES, DOSES, KINDS, UNSAFE, WHOLE, Unit
@@ -23,8 +24,7 @@ class QuantityError(ValueError):
         self.cure = cure
 
 
-@dataclass(frozen=True, slots=True)
-class Quantity:
+class Quantity(Struct, frozen=True):
     """A number with its unit, as written and convertible within its dimension."""
 
     text: str

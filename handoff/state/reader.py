@@ -8,10 +8,10 @@ entry is refused by line.
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass, field
 from typing import Any
 
 import yaml
+from msgspec import Struct, field
 
 from handoff.state.characters import refused_characters
 from handoff.state.faults import Fault, StateFaults
@@ -67,8 +67,7 @@ def _not_a_mapping(root: Node | None, begin: str) -> Fault:
     return Fault(root.line, root.column, "", "the file is not a list of keys", f"begin with '{begin}'")
 
 
-@dataclass(slots=True)
-class _Open:
+class _Open(Struct):
     """A list or mapping that is still being read."""
 
     is_map: bool

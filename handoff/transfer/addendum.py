@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from msgspec import Struct
+from msgspec.structs import replace
 
 from handoff.assess import Assessment
 from handoff.document.changes import Changes
@@ -13,8 +14,7 @@ from handoff.shift.snapshot import Snapshot, snapshot_of
 RULE = "Ring the receiver first and read this aloud; then send it. It goes beside the packet, which is not taken back."
 
 
-@dataclass(frozen=True, slots=True)
-class Addendum:
+class Addendum(Struct, frozen=True):
     """Everything that the addendum prints."""
 
     frame: Frame

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.identity import person
@@ -13,16 +13,14 @@ from handoff.plugin import Flag, Map, Node, amount, child, entries, with_unit, w
 PLACES = 2
 
 
-@dataclass(frozen=True, slots=True)
-class Line:
+class Line(Struct, frozen=True):
     """What, and what is known of it."""
 
     what: str
     value: str
 
 
-@dataclass(frozen=True, slots=True)
-class Ticked:
+class Ticked(Struct, frozen=True):
     """What, how it is known, and the tag of what is ticked or written there."""
 
     what: str
@@ -30,8 +28,7 @@ class Ticked:
     tag: Mark
 
 
-@dataclass(frozen=True, slots=True)
-class Advice:
+class Advice(Struct, frozen=True):
     """Who said what, when, and whether it was read back."""
 
     time: str
@@ -40,8 +37,7 @@ class Advice:
     after: str
 
 
-@dataclass(frozen=True, slots=True)
-class Pump:
+class Pump(Struct, frozen=True):
     """One pump as it leaves."""
 
     drug: str

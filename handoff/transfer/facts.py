@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.brief import BEFORE
@@ -65,8 +66,7 @@ OPTIONAL = frozenset(("earlier areas", "limbs", "pumps", "scores", "lines"))
 """Facts of which there may be none: what is not there is not missing."""
 
 
-@dataclass(frozen=True, slots=True)
-class Answer:
+class Answer(Struct, frozen=True):
     """One fact as it is read aloud: its label, what is known with its time, and what is not recorded of it."""
 
     label: str

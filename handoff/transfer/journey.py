@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import timedelta
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.identity import Frame, Identity, frame, identity
@@ -39,8 +40,7 @@ CHECKS = (
 )
 
 
-@dataclass(frozen=True, slots=True)
-class Check:
+class Check(Struct, frozen=True):
     """One line to tick before leaving."""
 
     area: str
@@ -48,16 +48,14 @@ class Check:
     tag: Mark
 
 
-@dataclass(frozen=True, slots=True)
-class Blank:
+class Blank(Struct, frozen=True):
     """One blank line of the observation sheet, with the time planned for it."""
 
     due: str
     key: Mark
 
 
-@dataclass(frozen=True, slots=True)
-class Journey:
+class Journey(Struct, frozen=True):
     """Everything that the crew's sheet prints."""
 
     frame: Frame

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.identity import person
@@ -13,8 +14,7 @@ from handoff.plugin import child, words
 from handoff.transfer.block import Ticked, at, moment
 
 
-@dataclass(frozen=True, slots=True)
-class Law:
+class Law(Struct, frozen=True):
     """The fields of one country: what is charted of each; an empty value is left to be written."""
 
     title: str

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.sections import NOT_RECORDED
@@ -14,8 +15,7 @@ from handoff.transfer.block import at, moment
 GIVEN = "given"
 
 
-@dataclass(frozen=True, slots=True)
-class Medicine:
+class Medicine(Struct, frozen=True):
     """One drug by one route: its last dose and when; or why it was not given."""
 
     drug: str

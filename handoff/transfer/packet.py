@@ -5,8 +5,9 @@ from __future__ import annotations
 import hashlib
 import zipfile
 from collections.abc import Mapping
-from dataclasses import dataclass
 from io import BytesIO
+
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document import confidential_document, patient_document
@@ -32,16 +33,14 @@ NAMES = {
 """How the documents are called: in the order in which they are used."""
 
 
-@dataclass(frozen=True, slots=True)
-class Sent:
+class Sent(Struct, frozen=True):
     """A packet that has left: what it is called and what it held."""
 
     name: str
     snapshot: Snapshot
 
 
-@dataclass(frozen=True, slots=True)
-class Made:
+class Made(Struct, frozen=True):
     """A packet: what it is called, its files by name, and the contents list."""
 
     name: str
@@ -89,7 +88,7 @@ def packet(
     upright, turned = Page(assessment.policy.paper), Page(assessment.policy.paper, landscape=True)
     made: dict[str, bytes] = {}
 
-    def add(kind: str, section: object, page: Page) -> None:
+    def add(kind: str, section: Struct, page: Page) -> None:
         made[f"{stem}-{NAMES[kind]}"] = patient_document(f"transfer-{kind}.docx", section, assessment, page)
 
     if sent is not None:

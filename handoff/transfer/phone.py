@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.identity import Frame, Identity, frame, identity, person
@@ -14,8 +14,7 @@ from handoff.transfer.profile import Profile
 OPENING = "Say who you are and from where. Ask who is listening, name and role, and write both down."
 
 
-@dataclass(frozen=True, slots=True)
-class Said:
+class Said(Struct, frozen=True):
     """One line to be read aloud, with the tag of its tick box."""
 
     label: str
@@ -23,8 +22,7 @@ class Said:
     tag: Mark
 
 
-@dataclass(frozen=True, slots=True)
-class Phone:
+class Phone(Struct, frozen=True):
     """Everything that the phone report prints."""
 
     frame: Frame

@@ -4,10 +4,12 @@ from __future__ import annotations
 
 import os
 from collections.abc import Mapping
-from dataclasses import dataclass, field, replace
 from datetime import UTC, datetime
 from pathlib import Path
 from typing import Any
+
+from msgspec import Struct, field
+from msgspec.structs import replace
 
 from handoff.policy import Policy
 from handoff.state.access import amount, entries, words
@@ -32,8 +34,7 @@ class ProfileError(Exception):
         self.lines = lines
 
 
-@dataclass(frozen=True, slots=True)
-class Extra:
+class Extra(Struct, frozen=True):
     """An item that this receiver wants beside the usual: what it is called, its key, its line."""
 
     label: str
@@ -41,8 +42,7 @@ class Extra:
     line: int
 
 
-@dataclass(frozen=True, slots=True)
-class Profile:
+class Profile(Struct, frozen=True):
     """What a receiver wants; ``paper`` is empty where the policy's is used."""
 
     name: str

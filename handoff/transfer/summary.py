@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.appendix import Appendix, appendix
@@ -23,8 +23,7 @@ from handoff.transfer.missing import answers, missing
 from handoff.transfer.profile import Profile
 
 
-@dataclass(frozen=True, slots=True)
-class Summary:
+class Summary(Struct, frozen=True):
     """Everything that the transfer summary prints."""
 
     frame: Frame
@@ -60,8 +59,7 @@ class Summary:
     figures: Figures
 
 
-@dataclass(frozen=True, slots=True)
-class WorkingSheet:
+class WorkingSheet(Struct, frozen=True):
     """Every value in full, how it was worked out, and its source."""
 
     frame: Frame

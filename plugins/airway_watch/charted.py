@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Map, Node, Row, amount, child, entries, words
 
@@ -62,8 +63,7 @@ def block_rows(case: Case, name: str, key: str = "at") -> tuple[Row, ...]:
     return ordered(case, child(case.block, name), key)
 
 
-@dataclass(frozen=True, slots=True)
-class Sign:
+class Sign(Struct, frozen=True):
     """The latest assessment of one sign; ``since`` is when the present run of "present" began."""
 
     name: str
@@ -120,8 +120,7 @@ def check_times(case: Case) -> tuple[datetime, ...]:
     )
 
 
-@dataclass(frozen=True, slots=True)
-class Level:
+class Level(Struct, frozen=True):
     """One measured carboxyhaemoglobin in %, when the blood was taken, and the node it was read from."""
 
     at: datetime
@@ -144,8 +143,7 @@ def levels(case: Case) -> tuple[Level, ...]:
     return tuple(sorted(found, key=lambda level: (level.at, level.pct)))
 
 
-@dataclass(frozen=True, slots=True)
-class Tube:
+class Tube(Struct, frozen=True):
     """The tube in the airway now, or the moment since which there is none."""
 
     since: datetime | None

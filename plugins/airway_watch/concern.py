@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import Action, Case, Flag, Input, Item, Parameter, System, Urgency, Working, plural
 
@@ -21,8 +22,7 @@ CALL = "Call for senior airway review; sit the patient up, stay with them"
 PROMPT = "A prompt for senior airway review, not a decision about a tube."
 
 
-@dataclass(frozen=True, slots=True)
-class Listed:
+class Listed(Struct, frozen=True):
     """One published list with the entries that the file records as met, and those it does not record."""
 
     parameter: Parameter
@@ -68,8 +68,7 @@ def _deciding(case: Case, found: tuple[Listed, ...]) -> list[Listed]:
     return [listed for listed in found if everything or listed.parameter.kind != "from memory"]
 
 
-@dataclass(frozen=True, slots=True)
-class Review:
+class Review(Struct, frozen=True):
     """What asks for a senior look: how soon, the entries that are met, what got worse, the last review."""
 
     flag: Flag

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Action,
@@ -35,8 +36,7 @@ BLOOD_FIRST = (
 )
 
 
-@dataclass(frozen=True, slots=True)
-class Pointers:
+class Pointers(Struct, frozen=True):
     """The findings of one set: each recorded, recorded as not so, or not recorded; and whether they ask."""
 
     entries: tuple[tuple[str, Fact], ...]

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Parameter, number_text
 
@@ -13,8 +14,7 @@ from .exposure import Exposure
 from .oxygen import Stretch
 
 
-@dataclass(frozen=True, slots=True)
-class Expected:
+class Expected(Struct, frozen=True):
     """The level expected now in %, its range, and whether a half-life from memory went into it."""
 
     level: Level
@@ -30,8 +30,7 @@ class Expected:
         return not self.parts or any(part.kind != oxygen.UNCHARTED for part in self.parts)
 
 
-@dataclass(frozen=True, slots=True)
-class Monoxide:
+class Monoxide(Struct, frozen=True):
     """What is known of carbon monoxide, and why a saturation by oximeter cannot be trusted (empty: no reason)."""
 
     levels: tuple[Level, ...]
@@ -44,8 +43,7 @@ class Monoxide:
         return bool(self.doubt) and bool(self.levels)
 
 
-@dataclass(frozen=True, slots=True)
-class HalfLife:
+class HalfLife(Struct, frozen=True):
     """Low, central and high half-life in min, and the parameters that they come from."""
 
     low: float

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from typing import Protocol
+
+from msgspec import Struct
 
 from handoff.plugin import Case, child, joined, plural, words
 
@@ -52,8 +53,7 @@ class Burn(Protocol):
         """Line of the file."""
 
 
-@dataclass(frozen=True, slots=True)
-class Exposure:
+class Exposure(Struct, frozen=True):
     """What is recorded of smoke, face and neck; ``reasons`` ask for the watch, ``missing`` is not recorded."""
 
     smoke: tuple[str, ...]

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Row, number_text, words
 
@@ -17,8 +18,7 @@ ALERT = "alert"
 ALTERED = ("new confusion", "responds to voice", "responds to pain", "unresponsive")
 
 
-@dataclass(frozen=True, slots=True)
-class Fact:
+class Fact(Struct, frozen=True):
     """Whether an entry is met (None: not recorded), how it is said, since when, and on which line."""
 
     met: bool | None
@@ -35,8 +35,7 @@ UNKNOWN = Fact(None)
 NOT_SO = Fact(False)
 
 
-@dataclass(frozen=True, slots=True)
-class Record:
+class Record(Struct, frozen=True):
     """The case with the readings that the entries are looked up in."""
 
     case: Case

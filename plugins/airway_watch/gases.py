@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Case,
@@ -31,8 +32,7 @@ RANK = 22
 NOT_ARDS = "A range of a ratio is not a diagnosis: that needs PEEP, imaging, timing and a doctor."
 
 
-@dataclass(frozen=True, slots=True)
-class Breathed:
+class Breathed(Struct, frozen=True):
     """A measurement with the inspired oxygen that goes with it."""
 
     at: datetime

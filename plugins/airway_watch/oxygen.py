@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Case,
@@ -32,8 +33,7 @@ SET_DEVICES = (HIGH_FLOW, "CPAP", "BiPAP", VENTILATOR)
 FULL, AIR, PART, CHAMBER, UNCHARTED = "100 % oxygen", "room air", "part oxygen", "hyperbaric", "not recorded"
 
 
-@dataclass(frozen=True, slots=True)
-class Oxygen:
+class Oxygen(Struct, frozen=True):
     """One charted stretch of oxygen; ``end`` is None for the one that holds now."""
 
     start: datetime
@@ -104,8 +104,7 @@ def holding(case: Case, moment: datetime) -> Oxygen | None:
     )
 
 
-@dataclass(frozen=True, slots=True)
-class Stretch:
+class Stretch(Struct, frozen=True):
     """Minutes under one kind of oxygen, for the fall of carboxyhaemoglobin."""
 
     kind: str
@@ -153,8 +152,7 @@ def kind_of(case: Case, part: Oxygen) -> str:
     return PART
 
 
-@dataclass(frozen=True, slots=True)
-class Fraction:
+class Fraction(Struct, frozen=True):
     """Inspired oxygen in %: set or charted (``low == high``), or estimated; ``table`` names the table."""
 
     low: float

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Action,
@@ -26,8 +27,7 @@ from .exposure import LOOKED_FOR, Exposure
 RANK = 11
 
 
-@dataclass(frozen=True, slots=True)
-class Schedule:
+class Schedule(Struct, frozen=True):
     """A named timetable: minutes between checks and where each stretch ends."""
 
     name: str
@@ -57,8 +57,7 @@ def schedule_of(case: Case) -> Schedule:
     return Schedule(table["title"], table["said"], phases, parameter.source)
 
 
-@dataclass(frozen=True, slots=True)
-class Watch:
+class Watch(Struct, frozen=True):
     """The watch of one patient: where its clock starts, what is due, and the checks that were made."""
 
     schedule: Schedule

@@ -2,16 +2,16 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Input, plural
 
 MONTHS_A_YEAR = 12
 
 
-@dataclass(frozen=True, slots=True)
-class AgeAtBurn:
+class AgeAtBurn(Struct, frozen=True):
     """Age in completed years at the burn; ``exact_years`` counts completed months where they are known."""
 
     years: int

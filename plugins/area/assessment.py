@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, field
 from datetime import datetime
 from typing import NamedTuple
+
+from msgspec import Struct, field
 
 from handoff.plugin import Case, List, Map, Row, amount, child, entries, number, number_text, words
 
@@ -19,8 +20,7 @@ PLACES = 2
 ENCIRCLING: dict[str, bool] = {"yes": True, "no": False}
 
 
-@dataclass(frozen=True, slots=True)
-class Burn:
+class Burn(Struct, frozen=True):
     """One burned region: where, how deep, how much of the body, whether it counts, and its line."""
 
     region: str
@@ -81,8 +81,7 @@ class BurnRow(NamedTuple):
     line: int
 
 
-@dataclass(frozen=True, slots=True)
-class Assessment:
+class Assessment(Struct, frozen=True):
     """One assessment, measured by its method; ``missing`` says why an extent could not be worked out."""
 
     at: datetime

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
 from itertools import groupby
+
+from msgspec import Struct
 
 from handoff.plugin import Case, List, Map, Node, Problem, Severity, number_text, words
 
@@ -24,8 +25,7 @@ ROUNDING_PCT = 1e-9
 Path = tuple[str | int, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class _Charted:
+class _Charted(Struct, frozen=True):
     burn: Burn
     entry: Map
     path: Path

@@ -5,8 +5,9 @@ from __future__ import annotations
 import math
 import operator
 from collections.abc import Callable, Mapping, Sequence
-from dataclasses import dataclass, field
 from typing import Any
+
+from msgspec import Struct, field
 
 ASK = "ask"
 ROUNDING = 1e-9
@@ -18,8 +19,7 @@ COMPARATORS: dict[str, Callable[[float, float], bool]] = {
 }
 
 
-@dataclass(frozen=True, slots=True)
-class Fact:
+class Fact(Struct, frozen=True):
     """What is known for a criterion: a number, yes or no, or a set of names; ``missing`` says what is not.
 
     ``unsure`` holds the names that may apply although nobody wrote so (the face, where a burn
@@ -36,8 +36,7 @@ class Fact:
 Facts = Mapping[str, Fact]
 
 
-@dataclass(frozen=True, slots=True)
-class Verdict:
+class Verdict(Struct, frozen=True):
     """Whether a criterion is met (None: cannot be judged), by what, and what is missing for it."""
 
     met: bool | None

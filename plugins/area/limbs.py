@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Map, amount, entries, number_text, words
 
@@ -29,8 +30,7 @@ FIELDS = {
 }
 
 
-@dataclass(frozen=True, slots=True)
-class Place:
+class Place(Struct, frozen=True):
     """A limb, or a part of the trunk or neck, that is burned all round, or that somebody charted a check of."""
 
     name: str
@@ -60,8 +60,7 @@ class Place:
         return ", ".join(said) or "no burn charted there"
 
 
-@dataclass(frozen=True, slots=True)
-class LimbCheck:
+class LimbCheck(Struct, frozen=True):
     """One charted check of one place."""
 
     at: datetime

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Action,
@@ -31,8 +32,7 @@ COMPARATOR_NOTE = (
 )
 
 
-@dataclass(frozen=True, slots=True)
-class Criterion:
+class Criterion(Struct, frozen=True):
     """One row of a list with its verdict."""
 
     tier: str

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Chosen, Source, number_text
 
@@ -27,8 +28,7 @@ class NoTableError(Exception):
     """A method has no table for this patient; the message says what is missing."""
 
 
-@dataclass(frozen=True, slots=True)
-class RegionTable:
+class RegionTable(Struct, frozen=True):
     """Regions of the body in % of body surface, front and back, for one patient."""
 
     name: str

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Case,
@@ -27,8 +28,7 @@ SHOWN_PLACES = 1
 NOT_RECORDED = "not recorded"
 
 
-@dataclass(frozen=True, slots=True)
-class Total:
+class Total(Struct, frozen=True):
     """One total of the burn: which burns belong to it and how it is called."""
 
     key: str

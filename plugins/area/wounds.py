@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Case,
@@ -36,8 +37,7 @@ STATES = {
 }
 
 
-@dataclass(frozen=True, slots=True)
-class Wounds:
+class Wounds(Struct, frozen=True):
     """The wound areas of one assessment: each with its state."""
 
     at: datetime

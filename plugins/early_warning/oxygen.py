@@ -2,16 +2,16 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Node, words
 
 AIR = "room air"
 
 
-@dataclass(frozen=True, slots=True)
-class Oxygen:
+class Oxygen(Struct, frozen=True):
     """Air or oxygen at a moment: ``on`` is None where nothing says so; ``at`` is when a row said it.
 
     A device holds from its start, which ``said`` names, and so has no time of its own.

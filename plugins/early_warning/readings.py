@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass, replace
 from datetime import datetime, timedelta
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from handoff.plugin import (
     Case,
@@ -26,8 +28,7 @@ SIGNS = ("resp", "spo2", "bp", "pulse", "consciousness", "temp")
 """The observations that a set is made of, in the order in which the parts are printed."""
 
 
-@dataclass(frozen=True, slots=True)
-class SetPart:
+class SetPart(Struct, frozen=True):
     """One part of the score: what was charted and its points; ``missing`` says why there are none."""
 
     name: str
@@ -49,8 +50,7 @@ class SetPart:
         return Input(self.name, shown, line_of(self.node))
 
 
-@dataclass(frozen=True, slots=True)
-class SignSet:
+class SignSet(Struct, frozen=True):
     """The parts of the score at one moment."""
 
     at: datetime

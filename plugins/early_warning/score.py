@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.plugin import (
     NOT_RECORDED,
@@ -44,8 +45,7 @@ CAUTIONS = (
 )
 
 
-@dataclass(frozen=True, slots=True)
-class Scored:
+class Scored(Struct, frozen=True):
     """The latest set with the step that it reaches; ``step`` is None where nothing can be said yet."""
 
     signs: SignSet

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.plugin import Case, Map, Row, amount, child, entries, words
 
@@ -13,8 +13,7 @@ KNOWN = {"yes": True, "no": False, "present": True, "absent": False}
 UNKNOWN_VOLTAGE = "voltage not recorded"
 
 
-@dataclass(frozen=True, slots=True)
-class Injury:
+class Injury(Struct, frozen=True):
     """The electrical injury as charted; ``facts`` is None for what nothing says."""
 
     cause: Map

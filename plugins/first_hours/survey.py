@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import (
     NOT_RECORDED,
@@ -25,8 +26,7 @@ BACK = "back"
 LABEL = "First-hours survey"
 
 
-@dataclass(frozen=True, slots=True)
-class Step:
+class Step(Struct, frozen=True):
     """One step: when and by whom it was done, what was found; ``left`` says why it was not done."""
 
     name: str

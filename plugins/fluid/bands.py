@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import operator
 from collections.abc import Callable, Mapping, Sequence
-from dataclasses import dataclass
 from typing import Any, TypeAlias
+
+from msgspec import Struct
 
 Facts: TypeAlias = Mapping[str, float | bool | None]
 Band: TypeAlias = Mapping[str, Any]
@@ -40,8 +41,7 @@ MISSING = {
 }
 
 
-@dataclass(frozen=True, slots=True)
-class Picked:
+class Picked(Struct, frozen=True):
     """The band that holds, or why none does: what is not recorded, or that the patient falls between."""
 
     band: Band | None

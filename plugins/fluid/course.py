@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import math
 from collections.abc import Collection
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import BurnTime, Case, Flag, Source, hours_text, joined, number_text, plural
 
@@ -25,8 +26,7 @@ COMFORT = "not prompted: the goal of care is comfort"
 PCT_PLACES = 1
 
 
-@dataclass(frozen=True, slots=True)
-class Course:
+class Course(Struct, frozen=True):
     """The resuscitation so far, as the items see it."""
 
     case: Case

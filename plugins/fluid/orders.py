@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Map, Row, child
 
@@ -12,8 +13,7 @@ SETS_FLUID = ("formula", "coefficient", "rate")
 SETS_URINE = ("urine_target", "urine_target_per_kg")
 
 
-@dataclass(frozen=True, slots=True)
-class Ended:
+class Ended(Struct, frozen=True):
     """The last fluid order where it was ended, and the latest earlier one that nobody ended."""
 
     row: Row

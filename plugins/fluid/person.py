@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import Age, Case, Input, Map, amount, child, entries, joined, number, words
 
@@ -15,8 +16,7 @@ WITHOUT_SMOKE = ("scald", "contact", "friction", "cold", "radiation", "chemical"
 OVERLOAD = ("heart disease", "kidney disease", "frailty")
 
 
-@dataclass(frozen=True, slots=True)
-class Person:
+class Person(Struct, frozen=True):
     """The patient as the rules see them; what is not known is None."""
 
     age: Age | None

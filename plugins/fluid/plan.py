@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Map, Row, amount, number_text, words
 
@@ -19,8 +20,7 @@ HOUR = timedelta(hours=1)
 LOCAL = "local"
 
 
-@dataclass(frozen=True, slots=True)
-class OrderedRate:
+class OrderedRate(Struct, frozen=True):
     """A rate that an order set, from its moment on, to where the order was ended."""
 
     at: datetime
@@ -33,8 +33,7 @@ class OrderedRate:
         return moment if self.until is None else min(self.until, moment)
 
 
-@dataclass(frozen=True, slots=True)
-class Plan:
+class Plan(Struct, frozen=True):
     """What is due: the volume of an order or a named formula from the burn, then any rates ordered since."""
 
     said: str

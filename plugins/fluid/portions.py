@@ -4,8 +4,10 @@ from __future__ import annotations
 
 import math
 from collections.abc import Collection, Iterable, Mapping
-from dataclasses import dataclass, replace
 from datetime import datetime, timedelta
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from handoff.plugin import Case, Map, amount, child, entries, words
 
@@ -16,8 +18,7 @@ RESUSCITATION = "resuscitation"
 COLLOID = "colloid"
 
 
-@dataclass(frozen=True, slots=True)
-class Portion:
+class Portion(Struct, frozen=True):
     """A volume that went in evenly from ``start`` to ``end``, or at once where the two are equal."""
 
     start: datetime
@@ -40,8 +41,7 @@ class Portion:
         return self.ml * max(0.0, overlap)
 
 
-@dataclass(frozen=True, slots=True)
-class Running:
+class Running(Struct, frozen=True):
     """A line that has not been stopped: its rate, since when, and when it was last seen running."""
 
     name: str
@@ -53,8 +53,7 @@ class Running:
     line: int
 
 
-@dataclass(frozen=True, slots=True)
-class Given:
+class Given(Struct, frozen=True):
     """Everything that went in, the lines that run now, and whether anything was charted: blank is not zero."""
 
     portions: tuple[Portion, ...]
@@ -152,8 +151,7 @@ def _lines(rows: Iterable[Map]) -> dict[str, list[Map]]:
     return found
 
 
-@dataclass(frozen=True, slots=True)
-class _Rate:
+class _Rate(Struct, frozen=True):
     start: datetime
     ml_h: float
     purpose: str
@@ -161,8 +159,7 @@ class _Rate:
     line: int
 
 
-@dataclass(frozen=True, slots=True)
-class Stop:
+class Stop(Struct, frozen=True):
     """A stop of a line; ``apart`` where it stands in an entry of its own, not in that of the rate it ends."""
 
     at: datetime

@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
 from datetime import datetime
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from handoff.plugin import Flag, Item, System, Working, amount, number_text, pressure_pair, words
 
@@ -15,8 +17,7 @@ RANK_LOW = 31
 MEAN_PLACES = 0
 
 
-@dataclass(frozen=True, slots=True)
-class Mean:
+class Mean(Struct, frozen=True):
     """A mean arterial pressure: mmHg, when, whether it was measured or worked out, and its sum."""
 
     mmhg: float

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Source, number_text
 
@@ -34,8 +35,7 @@ RANGE_RULES = (
 """Rules by weight and area whose coefficients make the range that stands where nothing is ordered."""
 
 
-@dataclass(frozen=True, slots=True)
-class Schedule:
+class Schedule(Struct, frozen=True):
     """How a volume is spread: the end of each period in hours since the burn, and its share."""
 
     name: str
@@ -43,8 +43,7 @@ class Schedule:
     shares: tuple[float, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Volume:
+class Volume(Struct, frozen=True):
     """What a rule gives: volumes in mL over its schedule, or a starting rate in mL/h alone."""
 
     rule: str
@@ -87,8 +86,7 @@ class Volume:
         return f"{self.rule} ({', '.join(parts)})" if parts else self.rule
 
 
-@dataclass(frozen=True, slots=True)
-class NoVolume:
+class NoVolume(Struct, frozen=True):
     """Why a rule gives nothing: what is missing, or that the patient falls between its bands."""
 
     rule: str

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.plugin import Case, Source
 
@@ -10,8 +10,7 @@ from . import formula
 from .weights import height_cm
 
 
-@dataclass(frozen=True, slots=True)
-class Surface:
+class Surface(Struct, frozen=True):
     """Body surface in m2, the formula by name, and its source."""
 
     m2: float

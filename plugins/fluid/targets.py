@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Source, amount, child
 
@@ -17,8 +18,7 @@ ROUNDING = 1e-9
 """Binary fractions: urine of exactly the target is in the target."""
 
 
-@dataclass(frozen=True, slots=True)
-class Target:
+class Target(Struct, frozen=True):
     """A urine target: both ends in mL/kg/h (None for an open end), how it is printed, whose it is."""
 
     low_ml_kg_h: float | None
@@ -39,8 +39,7 @@ class Target:
         return "in"
 
 
-@dataclass(frozen=True, slots=True)
-class NoTarget:
+class NoTarget(Struct, frozen=True):
     """Why no target is named, and what to say about it."""
 
     shown: str

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Map, Node, Reading, amount, child, entries, hours_text, words
 
@@ -27,8 +28,7 @@ NAMES = (
 """Words that together name a urinary catheter, where no kind is written."""
 
 
-@dataclass(frozen=True, slots=True)
-class Urine:
+class Urine(Struct, frozen=True):
     """One measure: when, how much, over how many hours (None where that is not known), and its colour."""
 
     at: datetime
@@ -57,8 +57,7 @@ class Urine:
         return f"{ml(self.ml)}{over}{entries_said}"
 
 
-@dataclass(frozen=True, slots=True)
-class Charted:
+class Charted(Struct, frozen=True):
     """All measures of urine, and the catheter."""
 
     readings: tuple[Urine, ...]

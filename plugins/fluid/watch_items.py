@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import operator
 from collections.abc import Iterator
-from dataclasses import dataclass
 from datetime import timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import (
     NOT_RECORDED,
@@ -31,8 +32,7 @@ RANK_OTHER = 47
 HOUR = timedelta(hours=1)
 
 
-@dataclass(frozen=True, slots=True)
-class Analyte:
+class Analyte(Struct, frozen=True):
     """A result to watch: its name, unit and places (SI, conventional), and its tables of lines."""
 
     name: str

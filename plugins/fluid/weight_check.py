@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Age,
@@ -31,8 +32,7 @@ EDITIONS = ("who-2006", "who-2007")
 CURE = "check it; if it is right, add confirmed: yes beside it"
 
 
-@dataclass(frozen=True, slots=True)
-class Range:
+class Range(Struct, frozen=True):
     """The weights that a table holds for this patient, in kg, and how the table is called."""
 
     low_kg: float

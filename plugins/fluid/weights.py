@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.plugin import Case, Input, Weight, amount, joined, number_text
 
@@ -15,8 +15,7 @@ ORDER = {
 KG_PLACES = 1
 
 
-@dataclass(frozen=True, slots=True)
-class Used:
+class Used(Struct, frozen=True):
     """A weight in use: kg, what it is called in print, where it stands, its cautions, and others that differ."""
 
     kg: float

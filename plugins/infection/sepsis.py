@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Action,
@@ -31,8 +32,7 @@ PROMPT = "A trigger to look for infection, no diagnosis; a large burn has an inf
 ADULTS_ONLY = ("china-2013", "qsofa-2016", "sirs-1992", "sirs-uk")
 
 
-@dataclass(frozen=True, slots=True)
-class Row:
+class Row(Struct, frozen=True):
     """One row of a list with its verdict and what decided it."""
 
     name: str
@@ -45,8 +45,7 @@ class Row:
         return f"{self.name} ({self.why})" if self.why else self.name
 
 
-@dataclass(frozen=True, slots=True)
-class Triggers:
+class Triggers(Struct, frozen=True):
     """The chosen list, judged; ``decides`` is False for one from memory that the policy did not name."""
 
     title: str

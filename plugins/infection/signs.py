@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Case,
@@ -48,8 +49,7 @@ CLEAR = ("alert", "soft and moving", "better", "same")
 UNSAID = ("", "not measured", "not assessed", "sedated", "no trace")
 
 
-@dataclass(frozen=True, slots=True)
-class Sign:
+class Sign(Struct, frozen=True):
     """One sign as last charted: a number in the unit of its line, or a finding that is there or not."""
 
     name: str

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Input, Node, child, entries, line_of, number_text, with_unit
 
@@ -16,8 +17,7 @@ from .scores import Score, pain_scores
 CHARTS_OF_DOSES = ("doses", "infusions", "patient_controlled", "blocks")
 
 
-@dataclass(frozen=True, slots=True)
-class Portion:
+class Portion(Struct, frozen=True):
     """What one dose, reading or run gave in the last 24 h; ``mg`` is None where ``missing`` says why.
 
     ``certain`` marks a single dose whose time is known to the minute."""
@@ -36,8 +36,7 @@ class Portion:
         return Input(f"{self.drug.name} {self.route}", self.said, line_of(self.node))
 
 
-@dataclass(frozen=True, slots=True)
-class Charted:
+class Charted(Struct, frozen=True):
     """Doses, runs of infusions and scores of one patient; ``any_doses`` is False where the last day is not charted."""
 
     given: tuple[Given, ...]

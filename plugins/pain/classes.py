@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.plugin import Case, Flag, FormulaInputError, Item, Part, System, Working, number_text
 
@@ -18,8 +18,7 @@ SEVERE_RANK, SEVERE_RANK_IN_COMFORT_CARE = 62, 12
 OFF = "off"
 
 
-@dataclass(frozen=True, slots=True)
-class Class:
+class Class(Struct, frozen=True):
     """The class of one score: its word, its bounds, the set by name, and whether it may decide a flag."""
 
     word: str

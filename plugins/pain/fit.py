@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.plugin import Age, Case, Flag, Item, Part, Source, System, child, entries, line_of, words, yes
 
@@ -22,8 +22,7 @@ ICU_CAUTION = "scale_caution.icu"
 MONTHS_A_YEAR = 12
 
 
-@dataclass(frozen=True, slots=True)
-class _State:
+class _State(Struct, frozen=True):
     able: bool | None
     why: str
     said: str

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
 from datetime import UTC, datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import Case, List, Map, Node, amount, child, entries, unit_of, words
 
@@ -17,8 +18,7 @@ DOSE, BLOCK, PUMP = "dose", "block", "patient-controlled"
 OLDEST = datetime.min.replace(tzinfo=UTC)
 
 
-@dataclass(frozen=True, slots=True)
-class Given:
+class Given(Struct, frozen=True):
     """One amount of one drug that was given.
 
     ``mg`` is None where the amount is not known or is not a mass; ``missing`` says why.

@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass, replace
 from datetime import datetime
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from handoff.plugin import Case, Map, Node, amount, child, entries, unit_of, words
 
@@ -19,8 +21,7 @@ INHERITED = ("drug", "route", "concentration", "weight")
 WEIGHTS = ("before burn", "today", "ideal")
 
 
-@dataclass(frozen=True, slots=True)
-class Run:
+class Run(Struct, frozen=True):
     """One rate of one infusion from ``start`` to ``end``, the last moment at which it is confirmed.
 
     ``open`` is True where nothing says that it stopped at ``end``. ``mg_h`` is None where the

@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 from typing import Any
+
+from msgspec import Struct, field
 
 from handoff.plugin import Age, Case, Input, Weight, child, number_text, with_unit, yes
 
@@ -15,8 +16,7 @@ WEIGHTS = ("before burn", "today", "ideal")
 LIVER = "liver disease"
 
 
-@dataclass(frozen=True, slots=True)
-class Limit:
+class Limit(Struct, frozen=True):
     """A limit in mg for 24 h and for one dose; ``daily_mg`` is None where ``missing`` says why.
 
     ``interval_h`` is the least time between two doses where the rule set has one."""
@@ -35,8 +35,7 @@ class Limit:
     decides: bool = True
 
 
-@dataclass(frozen=True, slots=True)
-class _Patient:
+class _Patient(Struct, frozen=True):
     age: Age | None
     weight: Weight | None
     inputs: tuple[Input, ...] = field(default=())

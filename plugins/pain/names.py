@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Map, Node, words
 
@@ -13,8 +14,7 @@ IBUPROFEN = "ibuprofen"
 PATCH = "transdermal"
 
 
-@dataclass(frozen=True, slots=True)
-class Drug:
+class Drug(Struct, frozen=True):
     """A drug: the name it is counted under, the group it belongs to, and whether it is in our list."""
 
     name: str

@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import timedelta
 from itertools import pairwise
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Case,
@@ -28,8 +29,7 @@ OVER_RANK = 65
 NOT_ASKED = "doses from home, ambulance and combination products: not asked about"
 
 
-@dataclass(frozen=True, slots=True)
-class _Total:
+class _Total(Struct, frozen=True):
     drug: str
     portions: tuple[Portion, ...]
     limit: Limit

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Map, child, entries, number_text, words, yes
 
@@ -12,8 +13,7 @@ from .given import DAY
 from .names import OPIOID, Drug, drug_of, factor_heading, route_of
 
 
-@dataclass(frozen=True, slots=True)
-class Lead:
+class Lead(Struct, frozen=True):
     """Minutes before a procedure at which a drug by a route is given, from the earliest to the latest."""
 
     earliest: float
@@ -21,8 +21,7 @@ class Lead:
     identifier: str
 
 
-@dataclass(frozen=True, slots=True)
-class Timed:
+class Timed(Struct, frozen=True):
     """When a premedication is to be given: from, by, and the lead time that says so."""
 
     give_from: datetime
@@ -30,8 +29,7 @@ class Timed:
     lead: Lead
 
 
-@dataclass(frozen=True, slots=True)
-class Premedication:
+class Premedication(Struct, frozen=True):
     """One drug prescribed before a procedure; ``timed`` is None where no table has its lead time."""
 
     drug: Drug

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Case,
@@ -33,8 +34,7 @@ SETTINGS = (
 )
 
 
-@dataclass(frozen=True, slots=True)
-class Pump:
+class Pump(Struct, frozen=True):
     """One pump with one group of settings; ``stopped`` is None while nothing ends it."""
 
     line: str

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Action,
@@ -30,8 +31,7 @@ MODIFIED = "modified release"
 ROUTINE = "routine_interval"
 
 
-@dataclass(frozen=True, slots=True)
-class Interval:
+class Interval(Struct, frozen=True):
     """Minutes from a dose to its reassessment, the latest minutes, and the parameter they stand in."""
 
     minutes: float
@@ -39,8 +39,7 @@ class Interval:
     identifier: str
 
 
-@dataclass(frozen=True, slots=True)
-class Due:
+class Due(Struct, frozen=True):
     """A dose that has not been reassessed, and when it is or was due."""
 
     dose: Given

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import Case, FormulaInputError, List, Map, Node, number, number_text, words
 
@@ -14,8 +15,7 @@ PREFIX = "scale."
 DURING = ("rest", "movement", "procedure")
 
 
-@dataclass(frozen=True, slots=True)
-class Scale:
+class Scale(Struct, frozen=True):
     """A scale: how the file names it, how it is printed, its range, its words or its items."""
 
     key: str
@@ -37,8 +37,7 @@ class Scale:
         return f"{number_text(self.lowest)} to {number_text(self.highest)}"
 
 
-@dataclass(frozen=True, slots=True)
-class Score:
+class Score(Struct, frozen=True):
     """One charted score; ``points`` is None on a scale of words."""
 
     at: datetime

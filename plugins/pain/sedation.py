@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from datetime import datetime
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Case,
@@ -40,8 +41,7 @@ SEDATIVE = "sedative"
 COMFORT = "the goal of care is comfort: ask which depth of sedation is intended"
 
 
-@dataclass(frozen=True, slots=True)
-class Level:
+class Level(Struct, frozen=True):
     """The latest sedation level: its scale, when, what the published prompt is, and whether that decides a flag."""
 
     at: datetime

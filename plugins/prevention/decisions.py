@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import (
     NOT_RECORDED,
@@ -23,8 +24,7 @@ from handoff.plugin import (
 BLEEDING = "Bleeding, surgery to come and kidneys are for the prescriber to weigh."
 
 
-@dataclass(frozen=True, slots=True)
-class Matter:
+class Matter(Struct, frozen=True):
     """One matter to decide: its key, its label, and what asks for it in this patient (empty: nothing does)."""
 
     key: str

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Action,
@@ -30,8 +31,7 @@ LONG = "A burned patient is not left fasting for longer than this: ask when thea
 ORDER = "The anaesthetist's order goes before the table; opioids and a sick stomach empty slowly."
 
 
-@dataclass(frozen=True, slots=True)
-class Intake:
+class Intake(Struct, frozen=True):
     """The last time something of one kind was taken."""
 
     kind: str

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from typing import Protocol
+
+from msgspec import Struct
 
 from handoff.plugin import Case, Map, amount, entries, words
 
@@ -33,8 +34,7 @@ class AreaRow(Protocol):
         """Whether it counts towards the burned area; None where its depth is not assessed."""
 
 
-@dataclass(frozen=True, slots=True)
-class Burn:
+class Burn(Struct, frozen=True):
     """One burned region with the joint that it crosses and its special sites.
 
     ``whole`` where all of the region is burned; ``shrinks`` where it is deep enough to shrink, or
@@ -49,8 +49,7 @@ class Burn:
     shrinks: bool
 
 
-@dataclass(frozen=True, slots=True)
-class Burned:
+class Burned(Struct, frozen=True):
     """The burned regions that are deeper than epidermal, or whose depth is not assessed."""
 
     burns: tuple[Burn, ...]

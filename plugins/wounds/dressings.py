@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Action,
@@ -29,8 +30,7 @@ from .burned import Burned
 WORSE = ("smell", "spreading redness")
 
 
-@dataclass(frozen=True, slots=True)
-class Dressing:
+class Dressing(Struct, frozen=True):
     """The latest dressing of one place; ``due`` is None where neither chart nor table says when."""
 
     where: str

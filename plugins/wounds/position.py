@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import timedelta
+
+from msgspec import Struct
 
 from handoff.plugin import Action, Case, Flag, Item, Map, System, Urgency, child, entries, fact, words
 
@@ -50,8 +51,7 @@ WHOLE = {"arm": ("axilla", "elbow", *HAND), "leg": ("hip", "knee", "ankle", "toe
 WHY = "the position that feels best is the one in which the burn shrinks"
 
 
-@dataclass(frozen=True, slots=True)
-class Place:
+class Place(Struct, frozen=True):
     """One burned joint or part: the site of the table, and its side."""
 
     site: str

@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from datetime import date
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.plugin import (
     Action,
@@ -28,8 +29,7 @@ LABEL = "Tetanus by the wound table"
 PROMPT = "The table is a prompt; product and dose are for the prescriber and the local schedule."
 
 
-@dataclass(frozen=True, slots=True)
-class Answer:
+class Answer(Struct, frozen=True):
     """What the table says: yes, no, or empty where it cannot be judged (``missing`` says why)."""
 
     vaccine: str

@@ -33,11 +33,11 @@ from tests.document.reading import WORD, parts
 MADE_AT, NEXT_MORNING = "2026-03-14 19:30", "2026-03-15 07:30"
 STATE = example("house-fire")
 TICKS = {
-    "A1:1815-overdue": "19:35 JO",
-    "A1:2015": "20:20 JO",
-    "A1:0015": "0:20 JO",
-    "A1:2215": "JO",
-    "A2:once": "1950 KL",
+    "A2:1815-overdue": "19:35 JO",
+    "A2:2015": "20:20 JO",
+    "A2:0015": "0:20 JO",
+    "A2:2215": "JO",
+    "A1:once": "1950 KL",
 }
 
 
@@ -62,15 +62,15 @@ def test_ticks_times_and_initials_stand_in_the_file_with_their_task() -> None:
     found = {(entry["ref"], entry["box"]): entry for entry in entries(done)}
     assert done.problems == ()
     assert {place: (one.get("done"), one.get("by")) for place, one in found.items()} == {
-        ("A1", "1815-overdue"): ("2026-03-14 19:35", "JO"),
-        ("A1", "2015"): ("2026-03-14 20:20", "JO"),
-        ("A1", "0015"): ("2026-03-15 00:20", "JO"),
-        ("A1", "2215"): (None, "JO"),
-        ("A2", "once"): ("2026-03-14 19:50", "KL"),
+        ("A2", "1815-overdue"): ("2026-03-14 19:35", "JO"),
+        ("A2", "2015"): ("2026-03-14 20:20", "JO"),
+        ("A2", "0015"): ("2026-03-15 00:20", "JO"),
+        ("A2", "2215"): (None, "JO"),
+        ("A1", "once"): ("2026-03-14 19:50", "KL"),
     }
-    assert found["A1", "2015"]["task"] == "airway_watch.check"
-    assert found["A1", "0015"]["due"] == "2026-03-15 00:15"
-    assert found["A1", "1815-overdue"]["due"] == "2026-03-14 18:15"
+    assert found["A2", "2015"]["task"] == "airway_watch.check"
+    assert found["A2", "0015"]["due"] == "2026-03-15 00:15"
+    assert found["A2", "1815-overdue"]["due"] == "2026-03-14 18:15"
     assert {entry["plan"] for entry in found.values()} == {MADE_AT}
 
 
@@ -164,39 +164,39 @@ def test_a_second_time_nothing_is_written() -> None:
 
 
 def test_what_differs_from_an_earlier_collection_is_shown_and_the_file_keeps_it() -> None:
-    once = read(filled(plan(), {"A1:2015": "20:20 JO", "A1:2115": "21:15 JO"}))
-    again = read(filled(plan(), {"A1:2015": "20:40 KL"}), once.charted.text)
+    once = read(filled(plan(), {"A2:2015": "20:20 JO", "A2:2115": "21:15 JO"}))
+    again = read(filled(plan(), {"A2:2015": "20:40 KL"}), once.charted.text)
     assert again.charted.text == once.charted.text
     assert again.problems == (
-        "A1 20:15: collected before with done 2026-03-14 20:20; by JO; "
+        "A2 20:15: collected before with done 2026-03-14 20:20; by JO; "
         "the document now says done 2026-03-14 20:40; by KL; the file keeps it",
-        "A1 21:15: collected before as done, and is not ticked now; the file keeps it",
+        "A2 21:15: collected before as done, and is not ticked now; the file keeps it",
     )
 
 
 def test_a_time_that_is_none_is_kept_in_words_and_never_read_as_a_moment() -> None:
-    (entry,) = entries(read(filled(plan(), {"A1:2015": "25:61 JO"})))
+    (entry,) = entries(read(filled(plan(), {"A2:2015": "25:61 JO"})))
     assert entry["note"] == "written beside it: 25:61 JO"
     assert "done" not in entry
 
 
 def test_a_time_that_has_not_come_yet_is_not_read_as_done() -> None:
-    (entry,) = entries(read(filled(plan(), {"A1:2015": "22:00 JO"}), now="2026-03-14 21:00"))
+    (entry,) = entries(read(filled(plan(), {"A2:2015": "22:00 JO"}), now="2026-03-14 21:00"))
     assert "done" not in entry and entry["note"] == "written beside it: 22:00 JO"
 
 
 def test_initials_without_a_tick_are_shown_and_not_read() -> None:
-    done = read(filled(plan(), {}, {"by:A1:2015": "20:20 JO"}))
+    done = read(filled(plan(), {}, {"by:A2:2015": "20:20 JO"}))
     assert done.charted.text == STATE
-    assert done.problems == ("A1 20:15: not ticked, but '20:20 JO' is written beside it; not collected",)
+    assert done.problems == ("A2 20:15: not ticked, but '20:20 JO' is written beside it; not collected",)
 
 
 def _rename(kind: str) -> object:
     def change(root: object) -> None:
         for node in root.iter(f"{WORD}{kind}"):  # type: ignore[attr-defined]
             for key, value in node.attrib.items():
-                if value in ("row:A2", "row_A2"):
-                    node.set(key, value.replace("A2", "A3"))
+                if value in ("row:A1", "row_A1"):
+                    node.set(key, value.replace("A1", "A4"))
 
     return change
 
@@ -205,12 +205,12 @@ def _rename(kind: str) -> object:
 def test_a_row_whose_names_disagree_is_shown_and_not_read(kind: str) -> None:
     change = _rename(kind)
     assert callable(change)
-    done = read(changed(filled(plan(), {"A2:once": "19:50 KL"}), change))
+    done = read(changed(filled(plan(), {"A1:once": "19:50 KL"}), change))
     assert done.charted.text == STATE
     assert any(
-        "a row is named differently by what is left of it (printed A2" in line for line in done.problems
+        "a row is named differently by what is left of it (printed A1" in line for line in done.problems
     )
-    assert any(line.startswith("A2: the row was not found") for line in done.problems)
+    assert any(line.startswith("A1: the row was not found") for line in done.problems)
 
 
 def test_a_box_that_looks_otherwise_than_it_is_kept_is_not_read() -> None:
@@ -219,9 +219,9 @@ def test_a_box_that_looks_otherwise_than_it_is_kept_is_not_read() -> None:
             if node.text == "\u2612":
                 node.text = "\u2610"
 
-    done = read(changed(filled(plan(), {"A1:2015": "20:20 JO"}), change))
+    done = read(changed(filled(plan(), {"A2:2015": "20:20 JO"}), change))
     assert done.charted.text == STATE
-    assert done.problems == ("A1 20:15: the box looks empty and is kept as the other; not read",)
+    assert done.problems == ("A2 20:15: the box looks empty and is kept as the other; not read",)
 
 
 def test_a_box_whose_printed_time_was_changed_is_not_read() -> None:
@@ -229,9 +229,9 @@ def test_a_box_whose_printed_time_was_changed_is_not_read() -> None:
         node = next(n for n in root.iter(f"{WORD}t") if (n.text or "").strip("\u00a0 ") == "20:15")  # type: ignore[attr-defined]
         node.text = "\u00a020:45\u00a0"
 
-    done = read(changed(filled(plan(), {"A1:2015": "20:20 JO"}), change))
+    done = read(changed(filled(plan(), {"A2:2015": "20:20 JO"}), change))
     assert done.charted.text == STATE
-    assert done.problems == ("A1 20:45: its tag belongs to another box (A1 2015); it was not read",)
+    assert done.problems == ("A2 20:45: its tag belongs to another box (A2 2015); it was not read",)
 
 
 def test_a_copied_row_is_not_read() -> None:
@@ -241,13 +241,13 @@ def test_a_copied_row_is_not_read() -> None:
         row = next(
             n
             for n in root.iter(f"{WORD}tr")
-            if any(t.get(f"{WORD}val") == "row:A2" for t in n.iter(f"{WORD}tag"))
+            if any(t.get(f"{WORD}val") == "row:A1" for t in n.iter(f"{WORD}tag"))
         )  # type: ignore[attr-defined]
         row.addnext(deepcopy(row))
 
-    done = read(changed(filled(plan(), {"A2:once": "19:50 KL"}), change))
+    done = read(changed(filled(plan(), {"A1:once": "19:50 KL"}), change))
     assert done.charted.text == STATE
-    assert "A2: the row stands more than once in the document; none was read" in done.problems
+    assert "A1: the row stands more than once in the document; none was read" in done.problems
 
 
 @pytest.mark.parametrize(
@@ -319,11 +319,11 @@ def test_the_next_plan_and_the_due_list_know_what_was_ticked() -> None:
         return {line.ref: (line.time, line.text) for line in due_list(assessment).lines}
 
     done = read(filled(plan(), TICKS))
-    before, after = due(STATE)["A1"], due(done.charted.text)["A1"]
+    before, after = due(STATE)["A2"], due(done.charted.text)["A2"]
     assert before[0] == "since 18:15 on 14 Mar"
     assert after[0] == "since 04:20"
     assert after[1].endswith("ticked done 00:20 by JO")
-    assert due(done.charted.text)["A2"][0] == "now"
+    assert due(done.charted.text)["A1"][0] == "now"
     next_plan = draft(
         assess_loaded(open_text(done.charted.text, "f", setup(), NEXT_MORNING), setup()), "plan"
     )["plan-care-plan.docx"]
@@ -331,12 +331,12 @@ def test_the_next_plan_and_the_due_list_know_what_was_ticked() -> None:
 
 
 def test_a_tick_that_was_struck_out_counts_nowhere() -> None:
-    done = read(filled(plan(), {"A1:2015": "20:20 JO"}))
+    done = read(filled(plan(), {"A2:2015": "20:20 JO"}))
     text = done.charted.text.replace(
         "by: JO, written: 2026-03-15 07:30}",
         "by: JO, written: 2026-03-15 07:30, struck: {by: EM, at: 2026-03-15 07:30, why: not done}}",
     )
     state = open_text(text, "f", setup(), NEXT_MORNING)
     block = state.state.written["collected"]
-    assert isinstance(block, List) and isinstance(block[0], Map) and words(block[0].get("ref")) == "A1"
+    assert isinstance(block, List) and isinstance(block[0], Map) and words(block[0].get("ref")) == "A2"
     assert all("Ticked" not in " ".join(a.cautions) for a in assess_loaded(state, setup()).actions)

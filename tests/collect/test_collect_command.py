@@ -19,7 +19,7 @@ def patient(tmp_path: Path) -> Path:
     file = write(tmp_path / "ferrandel.yaml", example("house-fire"))
     assert run("draft", file, "--at", MADE_AT, "--out", tmp_path).returncode == 0
     document = tmp_path / "ferrandel-care-plan.docx"
-    document.write_bytes(filled(document.read_bytes(), {"A1:2015": "20:20 JO"}))
+    document.write_bytes(filled(document.read_bytes(), {"A2:2015": "20:20 JO"}))
     return file
 
 
@@ -28,7 +28,7 @@ def test_what_was_read_is_shown_and_written_only_when_told_so(patient: Path) -> 
     done = run("collect", document, patient, "--now", NEXT_MORNING)
     assert done.returncode == 2
     assert done.stdout.splitlines()[0] == "Tomas Ferrandel, born 11 Feb 1985, record number HSH-204518"
-    assert "  A1 20:15: done Sat 14 Mar 2026 20:20 by JO" in done.stdout
+    assert "  A2 20:15: done Sat 14 Mar 2026 20:20 by JO" in done.stdout
     assert done.stderr.splitlines() == ["add --yes to write what was read; nothing was written"]
     assert patient.read_text(encoding="utf-8") == example("house-fire")
     done = run("collect", document, patient, "--now", NEXT_MORNING, "--yes")

@@ -114,9 +114,9 @@ def test_working_of_an_unknown_figure_names_the_nearest(small: Path) -> None:
 
 def test_working_of_a_figure_that_could_not_be_computed_ends_with_exit_code_3(small: Path) -> None:
     script = (
-        "import sys, dataclasses, handoff.bundled.fluid as f, handoff.registry as r\n"
+        "import sys, msgspec, handoff.bundled.fluid as f, handoff.registry as r\n"
         "def broken(case): raise ValueError('x')\n"
-        "f.plugin = dataclasses.replace(f.plugin, compute=broken)\n"
+        "f.plugin = msgspec.structs.replace(f.plugin, compute=broken)\n"
         "import handoff.cli; sys.argv = ['handoff', 'working', *sys.argv[1:]]; handoff.cli.main()\n"
     )
     for key in ("fluid.total_24h", "injury.hours_since"):

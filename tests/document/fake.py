@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
 from datetime import datetime, timedelta
 from pathlib import Path
+
+from msgspec.structs import replace
 
 from handoff.assess import Assessment, Failure
 from handoff.parameters import Source

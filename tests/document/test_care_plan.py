@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
 from datetime import timedelta
 from io import BytesIO
 
 import pytest
 from docx import Document
+from msgspec.structs import replace
 
 from handoff.document import draft
 from handoff.document.care_plan import BLANK_BOXES, BLANK_ROWS

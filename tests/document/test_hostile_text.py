@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
 from io import BytesIO
 from pathlib import Path
 
@@ -10,6 +9,7 @@ import pytest
 from docx import Document
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
+from msgspec.structs import replace
 from openxml_audit import FileFormat, OpenXmlValidator
 
 from handoff.document import DocumentError, draft
@@ -161,10 +161,9 @@ def test_a_constant_in_a_template_does_not_upset_the_reading_back() -> None:
 
 
 def test_a_section_that_is_not_finished_text_is_refused() -> None:
-    from dataclasses import dataclass
+    from msgspec import Struct
 
-    @dataclass(frozen=True)
-    class Unfinished:
+    class Unfinished(Struct, frozen=True):
         volume: float
 
     with pytest.raises(TypeError):

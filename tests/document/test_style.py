@@ -3,10 +3,10 @@
 from __future__ import annotations
 
 import re
-from dataclasses import replace
 from functools import lru_cache
 
 import pytest
+from msgspec.structs import replace
 
 from handoff.assess import Assessment
 from handoff.document import draft

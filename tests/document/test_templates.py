@@ -5,7 +5,6 @@ from __future__ import annotations
 import re
 from collections.abc import Callable
 from copy import deepcopy
-from dataclasses import replace
 from functools import lru_cache
 from io import BytesIO
 from pathlib import Path
@@ -13,6 +12,7 @@ from typing import Any
 
 import pytest
 from docx import Document
+from msgspec.structs import replace
 from openxml_audit import FileFormat, OpenXmlValidator
 from typer.testing import CliRunner, Result
 

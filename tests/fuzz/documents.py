@@ -4,11 +4,12 @@ from __future__ import annotations
 
 import random
 import tempfile
-from dataclasses import replace
 from functools import lru_cache
 from io import BytesIO
 from pathlib import Path
 from zipfile import ZIP_DEFLATED, ZIP_STORED, ZipFile
+
+from msgspec.structs import replace
 
 from handoff.chart.asking import Refused
 from handoff.collect.collecting import collect

@@ -6,7 +6,6 @@ import json
 from pathlib import Path
 
 HEAD = """\
-from dataclasses import replace
 from handoff.plugin import *
 
 def one(case):

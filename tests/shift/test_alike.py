@@ -2,9 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
-
 import pytest
+from msgspec.structs import replace
 
 from handoff.shift.alike import mixed_up, names_alike
 from handoff.shift.people import DifferentPatients, Person, same_patient

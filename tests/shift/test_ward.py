@@ -7,11 +7,11 @@ import subprocess
 import sys
 from collections.abc import Callable, Iterator
 from concurrent.futures.process import BrokenProcessPool
-from dataclasses import replace
 from datetime import timedelta
 from pathlib import Path
 
 import pytest
+from msgspec.structs import replace
 
 from handoff.assess import Assessment
 from handoff.document import ward_document

@@ -61,7 +61,7 @@ def test_a_policy_says_what_it_says() -> None:
 
 def test_what_is_left_empty_is_the_built_in_default() -> None:
     policy = read_policy("policy: 1\nname:\npaper:\nshift_length:\nchoices:\n", "policy.yaml")
-    assert policy == Policy(name="policy.yaml")
+    assert policy == Policy(name="policy.yaml", file="policy.yaml")
 
 
 @pytest.mark.parametrize(

@@ -86,7 +86,7 @@ def test_what_is_said_of_a_template_repeats_no_value_of_the_page(tag: str, tmp_p
     edited(tmp_path, "handover.docx", put_first(tag))
     given = assessed(text_of_example("house-fire"), AT)
     trouble: list[str] = []
-    from dataclasses import replace
+    from msgspec.structs import replace
 
     draft(replace(given, policy=Policy(templates=str(tmp_path))), "x", None, trouble)
     assert len(trouble) == 1

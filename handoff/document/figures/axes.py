@@ -4,15 +4,15 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 STEPS = (1.0, 2.0, 2.5, 5.0, 10.0)
 """Round steps of an axis, times a power of ten."""
 
 
-@dataclass(frozen=True, slots=True)
-class Scale:
+class Scale(Struct, frozen=True):
     """A straight scale: ``low`` lies at ``start`` and ``high`` at ``end``."""
 
     low: float
@@ -25,8 +25,7 @@ class Scale:
         return self.start + (value - self.low) / (self.high - self.low) * (self.end - self.start)
 
 
-@dataclass(frozen=True, slots=True)
-class Moments:
+class Moments(Struct, frozen=True):
     """A scale of time."""
 
     first: datetime

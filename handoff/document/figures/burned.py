@@ -4,7 +4,8 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.document.figures.body import BACK, FACES, FRONT, body
 from handoff.document.figures.depths import NOT_COUNTED, Depth, depth_of
@@ -38,8 +39,7 @@ POINTED_AT = {
 """The part to which the label of a larger region points; otherwise its first."""
 
 
-@dataclass(frozen=True, slots=True)
-class Burn:
+class Burn(Struct, frozen=True):
     """One row of the burn table as the chart takes it; the share in % of the body, None where not known."""
 
     region: str
@@ -49,8 +49,7 @@ class Burn:
     around: bool
 
 
-@dataclass(frozen=True, slots=True)
-class Extent:
+class Extent(Struct, frozen=True):
     """One depth within a label: how it is shaded, its share of the body in words, and what is said below."""
 
     depth: Depth
@@ -59,8 +58,7 @@ class Extent:
     share_pct: float
 
 
-@dataclass(frozen=True, slots=True)
-class Label:
+class Label(Struct, frozen=True):
     """What stands beside the figure for one charted region on one face."""
 
     region: str

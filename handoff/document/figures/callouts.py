@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.document.figures.burned import Label
 from handoff.document.figures.curves import Point
@@ -19,8 +20,7 @@ LETTERS = 26
 """Longer names are cut; the table has them whole."""
 
 
-@dataclass(frozen=True, slots=True)
-class Column:
+class Column(Struct, frozen=True):
     """Where labels of one side stand; ``towards`` is the edge that faces the figure."""
 
     left: float
@@ -35,8 +35,7 @@ class Column:
         return self.right if self.is_left else self.left
 
 
-@dataclass(frozen=True, slots=True)
-class Placed:
+class Placed(Struct, frozen=True):
     """A label with its place: its upper edge, and the point that its line leads to."""
 
     label: Label

@@ -4,9 +4,10 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Iterable, Sequence
-from dataclasses import dataclass
 from itertools import pairwise
 from typing import NamedTuple
+
+from msgspec import Struct
 
 ROUNDNESS = 1 / 6
 """How far a smooth line leaves a point along its direction, in parts of the way between its neighbours."""
@@ -30,8 +31,7 @@ class Step(NamedTuple):
     second: Point | None = None
 
 
-@dataclass(frozen=True, slots=True)
-class Path:
+class Path(Struct, frozen=True):
     """A path from ``start`` along ``steps``; closed paths end where they began."""
 
     start: Point

@@ -4,15 +4,15 @@ colour, a photocopy and a coarse fax still tell them apart."""
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.document.figures.shapes import Look
 
 PALE, DARK = "D9D9D9", "8C8C8C"
 
 
-@dataclass(frozen=True, slots=True)
-class Depth:
+class Depth(Struct, frozen=True):
     """A class of depth: its words in the legend, its place among the depths (the deepest last), its look."""
 
     words: str

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.document.context import Data
 from handoff.document.sections import Mark
@@ -23,8 +24,7 @@ class Drawing(Mark):
         return made
 
 
-@dataclass(frozen=True, slots=True)
-class Figure:
+class Figure(Struct, frozen=True):
     """A drawing, what its place in the template is called, and the lines printed below it."""
 
     drawing: Drawing

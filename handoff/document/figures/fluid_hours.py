@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.plugin import number_text
 
@@ -13,8 +14,7 @@ MOST_HOURS = 48
 """More hours than this are not drawn; the last ones are kept."""
 
 
-@dataclass(frozen=True, slots=True)
-class FluidHour:
+class FluidHour(Struct, frozen=True):
     """One hour since the burn; None where there is no plan, or no measure of urine."""
 
     number: str

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from datetime import datetime, timedelta
+
+from msgspec import Struct
 
 from handoff.document.figures.axes import Scale, ticks
 from handoff.document.figures.curves import Point
@@ -28,8 +29,7 @@ AXIS = Look(width_pt=0.75)
 HOUR = timedelta(hours=1)
 
 
-@dataclass(frozen=True, slots=True)
-class Sheet:
+class Sheet(Struct, frozen=True):
     """The hours on the sheet, side by side, each as wide as ``slot``."""
 
     hours: tuple[FluidHour, ...]

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.document.figures.shapes import Words, label
 
@@ -13,8 +14,7 @@ LETTER_WIDE = 0.5
 """Mean width of a letter in parts of its height; the boxes leave room for more."""
 
 
-@dataclass(frozen=True, slots=True)
-class Entry:
+class Entry(Struct, frozen=True):
     """One symbol of a legend, drawn under a name in a box of left, top, width and height; and its words."""
 
     symbol: Callable[[str, float, float, float, float], str]

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+
+from msgspec import Struct
 
 from handoff.document.figures.curves import Line, Path, Point, closed, loop, oval
 from handoff.document.figures.proportions import Build
@@ -13,8 +14,7 @@ FLAT = 0.3
 """Height of a ring in parts of its width: a circle seen from slightly above."""
 
 
-@dataclass(frozen=True, slots=True)
-class Region:
+class Region(Struct, frozen=True):
     """One region on one face: its outline, where a label points to, and the ring that goes round it."""
 
     path: Path

@@ -6,14 +6,13 @@ figure changes at the first and at the twelfth birthday, where it would begin to
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 CHILD_FROM_YEARS = 1
 ADULT_FROM_YEARS = 12
 
 
-@dataclass(frozen=True, slots=True)
-class Build:
+class Build(Struct, frozen=True):
     """Heights from the top of the head (0) to the soles (1000), and half widths, of one figure."""
 
     name: str

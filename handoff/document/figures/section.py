@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from handoff.assess import Assessment
 from handoff.document.charts import BURNS, HOURS, rows
@@ -18,8 +18,7 @@ TARGET = "urine_target_ml_h"
 """Where the fluid plugin passes the ends of the urine target on, in mL/h; either may be None."""
 
 
-@dataclass(frozen=True, slots=True)
-class Figures:
+class Figures(Struct, frozen=True):
     """The figures, none or one of each kind; the trends in words; and a line for each that is not drawn."""
 
     body: tuple[Figure, ...]

@@ -6,8 +6,9 @@ All measures are in points. Every shape has a name, so that a reader's program f
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
 from xml.sax.saxutils import escape
+
+from msgspec import Struct
 
 from handoff.document.figures.curves import Path, Point, oval
 from handoff.document.printable import visible
@@ -37,8 +38,7 @@ NAMESPACES = {
 }
 
 
-@dataclass(frozen=True, slots=True)
-class Look:
+class Look(Struct, frozen=True):
     """How a shape is filled and lined: a colour, a preset pattern in black upon that colour, or neither."""
 
     fill: str = ""
@@ -48,8 +48,7 @@ class Look:
     dash: str = ""
 
 
-@dataclass(frozen=True, slots=True)
-class Words:
+class Words(Struct, frozen=True):
     """One line of a label."""
 
     text: str

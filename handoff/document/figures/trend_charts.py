@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
 from datetime import datetime
+
+from msgspec import Struct
 
 from handoff.document.figures.axes import Moments, Scale, around
 from handoff.document.figures.curves import Point
@@ -42,8 +43,7 @@ LINE, SECOND_LINE = Look(width_pt=1.1), Look(width_pt=1.1, dash="sysDash")
 DOT, SECOND_DOT = Look(fill="000000", line=""), Look(fill=WHITE, width_pt=0.75)
 
 
-@dataclass(frozen=True, slots=True)
-class _Panel:
+class _Panel(Struct, frozen=True):
     """One small chart: its place on the sheet and its two scales."""
 
     trend: Trend

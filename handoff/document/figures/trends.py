@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator
-from dataclasses import dataclass, replace
 from datetime import datetime, timedelta
 from itertools import pairwise
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from handoff.plugin import (
     List,
@@ -33,16 +35,14 @@ GAP = 3
 Reader = Callable[[Node], "tuple[float, ...] | None"]
 
 
-@dataclass(frozen=True, slots=True)
-class Value:
+class Value(Struct, frozen=True):
     """One charted moment; ``numbers`` holds one number, or systolic and diastolic pressure, or None: no number."""
 
     at: datetime
     numbers: tuple[float, ...] | None
 
 
-@dataclass(frozen=True, slots=True)
-class Trend:
+class Trend(Struct, frozen=True):
     """One variable over time.
 
     ``least`` is how far its axis spans at least; ``ends`` are the ends of an axis that has fixed ones.

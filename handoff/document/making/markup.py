@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
 from xml.sax.saxutils import escape
+
+from msgspec import Struct
 
 SHADE = "E6E8EA"
 BOX = "\u2610"
@@ -75,8 +76,7 @@ def header_row(widths: Sequence[int], *labels: str, heading: str = "") -> str:
     return row(*cells, header=True)
 
 
-@dataclass(frozen=True, slots=True)
-class Column:
+class Column(Struct, frozen=True):
     """A column of a listing: its width in twentieths of a point, its label, and what its cells hold."""
 
     width: int

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Iterator, Mapping, Sequence
-from dataclasses import dataclass
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.plugin import Map, Node, Text, child
 from handoff.shift.wording.places import FreeText, free_texts, place_of
@@ -18,8 +19,7 @@ LONGEST_PIECE = 4000
 """Letters that are searched at once; a text of a state file is no longer."""
 
 
-@dataclass(frozen=True, slots=True, order=True)
-class Finding:
+class Finding(Struct, frozen=True, order=True):
     """One stretch of text to be written otherwise: where it stands, what it is, and its rule."""
 
     line: int

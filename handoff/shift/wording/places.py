@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.plugin import List, Map, Node, Text
 
@@ -31,8 +32,7 @@ NAMES = frozenset(
 _LINE_END = re.compile(r"\r\n|\r|\n")
 
 
-@dataclass(frozen=True, slots=True)
-class FreeText:
+class FreeText(Struct, frozen=True):
     """One free text: the steps to it, its path without counts (``handovers.concerns``), the text."""
 
     steps: tuple[str | int, ...]

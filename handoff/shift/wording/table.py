@@ -4,10 +4,11 @@ from __future__ import annotations
 
 import re
 from collections.abc import Mapping
-from dataclasses import dataclass
 from functools import lru_cache
 from importlib import resources
 from typing import Any
+
+from msgspec import Struct
 
 from handoff.compiled import kept, parsed
 from handoff.parameters import UNCITED_KINDS, Source
@@ -23,8 +24,7 @@ class RuleError(ValueError):
     """The table of rules cannot be used; names the rule."""
 
 
-@dataclass(frozen=True, slots=True)
-class Rule:
+class Rule(Struct, frozen=True):
     """What is pointed out, the safe form, the reason and the list it comes from."""
 
     id: str
@@ -47,8 +47,7 @@ class Rule:
         return not self.only_in or any(_below(path, place) for place in self.only_in)
 
 
-@dataclass(frozen=True, slots=True)
-class Rules:
+class Rules(Struct, frozen=True):
     """All rules, in the order in which they claim a stretch of text, with their examples."""
 
     rules: tuple[Rule, ...]

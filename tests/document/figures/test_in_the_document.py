@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import shutil
 import subprocess
-from dataclasses import replace
 from io import BytesIO
 from itertools import combinations
 from pathlib import Path
@@ -13,6 +12,7 @@ from typing import Any
 import pytest
 from docx import Document
 from lxml import etree
+from msgspec.structs import replace
 from openxml_audit import FileFormat, OpenXmlValidator
 
 from handoff.assess import Assessment
