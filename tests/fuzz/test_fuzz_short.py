@@ -50,8 +50,9 @@ def test_a_large_file_is_read_or_refused_in_time(name: str) -> None:
 def test_a_fault_after_a_thousand_warnings_is_found() -> None:
     dose = "    - {at: 2026-03-14 15:00, drug: morphine, dose: 2.0 mg, route: IV, by: EM}\n"
     text = f"{HEAD}pain:\n  doses:\n{dose * (MOST_FAULTS + 5)}    - {{dose: 2}}\n"
-    with pytest.raises(StateFaults):
+    with pytest.raises(StateFaults) as refused:
         open_text(text, "patient.yaml", setup(), NOW)
+    assert any("'2' has no unit" in fault.what for fault in refused.value.faults)
 
 
 def test_a_file_of_commas_is_refused_by_its_place() -> None:
