@@ -35,7 +35,7 @@ MOST_FAULTS = 1000
 """So many faults are named in one run; a file with more has lost its shape."""
 
 AFTER_LETTERS = 300_000
-LETTERS_A_TEXT = 3
+LETTERS_A_TEXT = 4
 """So many letters into a file its texts are longer than this on average, commas and blanks counted in."""
 
 _Loader = getattr(yaml, "CSafeLoader", yaml.SafeLoader)

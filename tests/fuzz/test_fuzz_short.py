@@ -7,6 +7,7 @@ import time
 import pytest
 
 from handoff.state.faults import Fault, StateFaults
+from handoff.state.reader import read_nodes
 from handoff.state.validate import MOST_FAULTS
 from handoff.work import open_text
 from tests.chart.charts import HEAD, NOW, setup
@@ -53,6 +54,13 @@ def test_a_fault_after_a_thousand_warnings_is_found() -> None:
     with pytest.raises(StateFaults) as refused:
         open_text(text, "patient.yaml", setup(), NOW)
     assert any("'2' has no unit" in fault.what for fault in refused.value.faults)
+
+
+def test_a_file_of_entries_of_one_letter_is_refused_early() -> None:
+    text = f"{HEAD}events: [{'a: b, ' * 160_000}]"
+    with pytest.raises(StateFaults) as refused:
+        read_nodes(text, "patient.yaml")
+    assert "nothing but commas" in refused.value.faults[-1].what
 
 
 def test_a_file_of_commas_is_refused_by_its_place() -> None:
