@@ -16,6 +16,9 @@ from handoff.outside.stopped import Stopped
 MOST_BYTES = 200_000_000
 """How long an answer may be; a document with every picture takes a hundredth of it."""
 
+PIECE_BYTES = 65_536
+"""How much of an answer is read at once."""
+
 _KEPT = ("SYSTEMROOT", "PATH", "LANG", "LC_ALL")
 
 
@@ -71,7 +74,7 @@ def _write(stream: IO[bytes], asked: bytes) -> None:
 
 def _read(stream: IO[bytes], said: bytearray) -> None:
     with contextlib.suppress(OSError, ValueError):
-        while len(said) <= MOST_BYTES and (piece := os.read(stream.fileno(), 1 << 16)):
+        while len(said) <= MOST_BYTES and (piece := os.read(stream.fileno(), PIECE_BYTES)):
             said.extend(piece)
 
 

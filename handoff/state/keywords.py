@@ -196,7 +196,11 @@ def _quantity(validator: Any, kind: str, instance: Any, schema: Schema) -> Found
             "check it; if it is right, add confirmed: yes beside it",
             Severity.UNUSUAL,
         )
-    elif quantity.unit in WRITTEN_SHORT and (zeros := ENDING_ZEROS.match(str(instance))):
+    elif (
+        quantity.unit in WRITTEN_SHORT
+        and "x-laboratory" not in schema
+        and (zeros := ENDING_ZEROS.match(str(instance)))
+    ):
         short = zeros["kept"]
         yield Finding(
             f"{instance} ends in a zero after the point; it is soon read as {zeros[0].replace('.', '')}",

@@ -97,7 +97,16 @@ def merged_schema(parts: Iterable[tuple[str, Mapping[str, Any]]]) -> Schema:
             _add(row, row_owners, name, key, expand(value, own))
         for key, value in part.get("results", {}).items():
             _add(result, result_owners, name, key, expand(value, own))
+    _mark_laboratory(result)
     return schema
+
+
+def _mark_laboratory(schema: Any) -> None:
+    """Mark every quantity of a laboratory result: there a zero after the point says how exact the figure is."""
+    for part in schema.values() if isinstance(schema, dict) else ():
+        _mark_laboratory(part)
+    if isinstance(schema, dict) and "x-quantity" in schema:
+        schema["x-laboratory"] = True
 
 
 def _add(into: Schema, owners: dict[str, str], plugin: str, key: str, value: Schema) -> None:

@@ -6,9 +6,9 @@ import ast
 import os
 import subprocess
 import sys
+from dataclasses import replace
 
 import yaml
-from msgspec.structs import replace
 
 from .__main__ import picked
 from .apply import module_of, put
