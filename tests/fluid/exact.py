@@ -241,6 +241,13 @@ class Exact:
             total += quantity(line.get("drained_at_insertion", "0 mL"))
         return total + sum((quantity(e["volume"]) for e in self.block.get("losses", [])), start=F(0))
 
+    def is_output_charted(self) -> bool:
+        """Whether anything that left the patient was measured; 0 mL is measured, a word is not."""
+        rows = [row for times in self.state.get("observations", {}).values() for row in times.values()]
+        urine = any(row.get("urine", "not measured") != "not measured" for row in rows)
+        drained = any("drained_at_insertion" in line for line in self.state.get("lines", []))
+        return urine or drained or bool(self.block.get("losses"))
+
     def maintenance(self) -> F | None:
         """The hourly form for a child below 30 kg, in mL/h; None for others."""
         if self.years >= 16 or self.kg >= 30:
@@ -295,7 +302,7 @@ class Exact:
         measured = self.urine()
         found["urine_last"] = measured[0] / (measured[1] / 60) if measured else None
         found["urine_rate"] = measured[0] / self.kg / (measured[1] / 60) if measured else None
-        any_output = self.output() > 0
+        any_output = self.is_output_charted()
         found["balance"] = self.given(None, True) - self.output() if charted or any_output else None
         return found
 
