@@ -87,13 +87,14 @@ def ward(drafted: Path, tmp_path: Path) -> Iterator[Path]:
     place.chmod(stat.S_IRWXU)
 
 
-@pytest.mark.parametrize("way", WAYS)
-@pytest.mark.parametrize("command", COMMANDS)
+# Nobody holds a file that is not there yet: 'begin' is not tried with a held file.
+TRIED = [(command, way) for command in COMMANDS for way in WAYS if (command, way) != ("begin", "held")]
+
+
+@pytest.mark.parametrize(("command", "way"), TRIED)
 def test_what_cannot_be_written_is_said_and_every_file_is_as_it_was(
     command: str, way: str, ward: Path
 ) -> None:
-    if (command, way) == ("begin", "held"):
-        pytest.skip("nobody holds a file that is not there yet")
     before = contents(ward)
     done = run(ward, COMMANDS[command], WAYS[way])
     ward.chmod(stat.S_IRWXU)
